@@ -1,0 +1,150 @@
+package agreement
+
+import (
+	"errors"
+	"fmt"
+	"math"
+)
+
+// Category numbers what a call can be: 0 … categories−1, in the order the
+// caller chose. It is a byte, so that ten million calls take ten megabytes.
+type Category = uint8
+
+// Missing stands where no call was made, and where a part has no reference.
+const Missing Category = 255
+
+// MaxCategories is the largest number of categories that Ratings can hold.
+const MaxCategories = 254
+
+// maxCells bounds the dense table. A study beyond it is not large but sparse:
+// nearly every cell would be Missing.
+const maxCells = math.MaxInt32
+
+// Ratings holds the calls of one study densely: a row for each part and, in
+// it, a column for each trial of each appraiser, appraiser by appraiser.
+// Appraisers may have different numbers of trials and any call may be
+// Missing.
+type Ratings struct {
+	parts      int
+	categories int
+	first      []int // first[a] is appraiser a's first column; the last entry is the number of columns
+	calls      []Category
+	reference  []Category // nil: the study has none
+	accept     []bool     // nil: the categories are not split into accept and reject
+}
+
+// New returns Ratings in which every call is Missing, for so many parts and
+// categories and, for each appraiser, the number of trials given. It returns
+// an error if a number is out of range or the table would be larger than
+// 2³¹−1 cells.
+func New(parts, categories int, trials []int) (*Ratings, error) {
+	if parts < 0 {
+		return nil, fmt.Errorf("agreement: %d parts", parts)
+	}
+	if categories < 1 || categories > MaxCategories {
+		return nil, fmt.Errorf("agreement: %d categories, want 1 to %d", categories, MaxCategories)
+	}
+	r := &Ratings{parts: parts, categories: categories, first: make([]int, len(trials)+1)}
+	for a, n := range trials {
+		if n < 1 {
+			return nil, fmt.Errorf("agreement: appraiser %d has %d trials, want 1 or more", a, n)
+		}
+		r.first[a+1] = r.first[a] + n
+	}
+	cells := float64(parts) * float64(r.columns())
+	if cells > maxCells {
+		return nil, fmt.Errorf("agreement: %d parts × %d trials of all appraisers make %.3g cells, more than %d", parts, r.columns(), cells, maxCells)
+	}
+	r.calls = make([]Category, int(cells))
+	for i := range r.calls {
+		r.calls[i] = Missing
+	}
+	return r, nil
+}
+
+// Parts, Appraisers and Categories return the size of the study; Trials the
+// number of trials of one appraiser.
+func (r *Ratings) Parts() int               { return r.parts }
+func (r *Ratings) Appraisers() int          { return len(r.first) - 1 }
+func (r *Ratings) Categories() int          { return r.categories }
+func (r *Ratings) Trials(appraiser int) int { return r.first[appraiser+1] - r.first[appraiser] }
+
+func (r *Ratings) columns() int { return r.first[len(r.first)-1] }
+
+// Row returns the calls on one part, shared with r: all trials of the first
+// appraiser, then of the second, and so on. Writing to it sets calls.
+func (r *Ratings) Row(part int) []Category {
+	n := r.columns()
+	return r.calls[part*n : (part+1)*n : (part+1)*n]
+}
+
+// Column returns where in a Row the call of one appraiser in one trial stands.
+func (r *Ratings) Column(appraiser, trial int) int { return r.first[appraiser] + trial }
+
+// Calls returns the calls of one appraiser on one part, a trial each, shared with r.
+func (r *Ratings) Calls(part, appraiser int) []Category {
+	return r.Row(part)[r.first[appraiser]:r.first[appraiser+1]]
+}
+
+// SetReference gives each part the category that it truly belongs to, or
+// Missing. The slice, one entry a part, is kept.
+func (r *Ratings) SetReference(reference []Category) error {
+	if len(reference) != r.parts {
+		return fmt.Errorf("agreement: %d references for %d parts", len(reference), r.parts)
+	}
+	r.reference = reference
+	return nil
+}
+
+// HasReference reports whether a reference was set.
+func (r *Ratings) HasReference() bool { return r.reference != nil }
+
+// Reference returns the category that a part truly belongs to, or Missing.
+func (r *Ratings) Reference(part int) Category {
+	if r.reference == nil {
+		return Missing
+	}
+	return r.reference[part]
+}
+
+// SetAccept splits the categories into those of a part that may be used
+// (true) and of one that may not (false). Without it there are no bad parts
+// and no good ones, hence no miss and no false alarm. The slice, one entry a
+// category, is kept.
+func (r *Ratings) SetAccept(accept []bool) error {
+	if len(accept) != r.categories {
+		return fmt.Errorf("agreement: accept has %d entries for %d categories", len(accept), r.categories)
+	}
+	r.accept = accept
+	return nil
+}
+
+// HasAccept reports whether the categories are split into accept and reject.
+func (r *Ratings) HasAccept() bool { return r.accept != nil }
+
+// Accepts reports whether a category is one of a part that may be used.
+func (r *Ratings) Accepts(c Category) bool { return r.accept != nil && c != Missing && r.accept[c] }
+
+// Count returns the number of calls made and of cells left Missing.
+func (r *Ratings) Count() (made, missing int) {
+	for _, c := range r.calls {
+		if c == Missing {
+			missing++
+		}
+	}
+	return len(r.calls) - missing, missing
+}
+
+var errCategory = errors.New("agreement: a call or a reference is no category of the study")
+
+// validate checks what Row and SetReference let a caller break.
+func (r *Ratings) validate() error {
+	for _, s := range [][]Category{r.calls, r.reference} {
+		for _, c := range s {
+			if int(c) >= r.categories && c != Missing {
+				return errCategory
+			}
+		}
+	}
+	return nil
+}
