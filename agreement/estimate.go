@@ -1,0 +1,57 @@
+package agreement
+
+import "samecall/agreement/interval"
+
+// Estimate is a figure with its interval.
+//
+// A figure that cannot be computed is absent: Absent says why, and all else
+// is zero. Unbounded says why a figure has no interval.
+type Estimate struct {
+	Value     float64
+	Interval  interval.Interval
+	Method    string // how the interval was found
+	Absent    error
+	Unbounded error
+	// Independent is the asymptotic interval that treats calls as
+	// independent, which they are not; nil unless it was asked for.
+	Independent *interval.Interval
+}
+
+// Share is a share of parts, or a rate over calls: Count of Of.
+type Share struct {
+	Estimate
+	Count, Of int
+	// Effective is, for a rate over calls, the number of independent calls
+	// that would be worth as much.
+	Effective float64
+}
+
+func absent(why error) Estimate { return Estimate{Absent: why} }
+
+// shareOfParts is a share of parts with its exact interval.
+func shareOfParts(count, of int, confidence float64, none error) Share {
+	if of == 0 {
+		return Share{Estimate: absent(none)}
+	}
+	return Share{Count: count, Of: of, Estimate: Estimate{
+		Value:    float64(count) / float64(of),
+		Interval: interval.ClopperPearson(count, of, confidence),
+		Method:   "Clopper-Pearson over parts",
+	}}
+}
+
+// rateOverCalls is a rate of events over calls, its interval by part.
+func rateOverCalls(clusters []interval.Cluster, opt Options, none error) Share {
+	r := interval.KornGraubard(clusters, opt.Confidence)
+	if r.Calls == 0 {
+		return Share{Estimate: absent(none)}
+	}
+	s := Share{Count: r.Events, Of: r.Calls, Effective: r.Effective, Estimate: Estimate{
+		Value: r.Value, Interval: r.Interval, Method: "Korn-Graubard over parts",
+	}}
+	if opt.Independent {
+		i := interval.ClopperPearson(r.Events, r.Calls, opt.Confidence)
+		s.Independent = &i
+	}
+	return s
+}

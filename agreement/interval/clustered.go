@@ -1,0 +1,81 @@
+package interval
+
+import (
+	"math"
+
+	"gonum.org/v1/gonum/stat/distuv"
+)
+
+// Cluster is what happened on one part, or on several parts alike: of Calls
+// calls on each part, Events were events (misses, say). Parts is how many
+// parts were so.
+type Cluster struct {
+	Events, Calls, Parts int
+}
+
+// Rate is a rate over calls that come several to a part.
+type Rate struct {
+	Interval
+	Value         float64 // events / calls
+	Events, Calls int
+	Parts         int     // parts with a call
+	Effective     float64 // the number of independent calls that would be worth as much
+}
+
+// KornGraubard returns the rate of events over calls and the exact interval
+// on the effective number of calls (Korn & Graubard, Survey Methodology 24
+// (1998) 193–201). The variance of the rate is taken between parts, by
+// linearising the ratio; the effective number is never above the real one,
+// and is reduced for the few parts that the variance is estimated from, by
+// (t(calls−1) / t(parts−1))².
+//
+// With no event, with nothing but events, or with a single part, the
+// variance between parts says nothing: the interval is then the exact one on
+// the number of parts. Without any call the interval is [0, 1].
+func KornGraubard(clusters []Cluster, confidence float64) Rate {
+	var r Rate
+	for _, c := range clusters {
+		if c.Calls > 0 {
+			r.Events += c.Events * c.Parts
+			r.Calls += c.Calls * c.Parts
+			r.Parts += c.Parts
+		}
+	}
+	if r.Calls == 0 {
+		r.Interval = Interval{0, 1}
+		return r
+	}
+	events, calls, parts := float64(r.Events), float64(r.Calls), float64(r.Parts)
+	r.Value = events / calls
+	if r.Events == 0 || r.Events == r.Calls || r.Parts == 1 {
+		r.Effective = parts
+		r.Interval = exact(r.Value*parts, parts, confidence).with(r.Value)
+		return r
+	}
+	var variance float64
+	for _, c := range clusters {
+		d := float64(c.Events) - r.Value*float64(c.Calls)
+		variance += d * d * float64(c.Parts)
+	}
+	variance *= parts / (parts - 1) / (calls * calls)
+	r.Effective = calls
+	if variance > 0 {
+		r.Effective = min(calls, r.Value*(1-r.Value)/variance)
+	}
+	tail := (1 - confidence) / 2
+	ratio := studentQuantile(tail, calls-1) / studentQuantile(tail, parts-1)
+	r.Effective *= ratio * ratio
+	r.Interval = exact(r.Value*r.Effective, r.Effective, confidence).with(r.Value)
+	return r
+}
+
+func studentQuantile(p, df float64) float64 {
+	if df > 1e7 { // indistinguishable, and the series for t grows slow
+		return distuv.UnitNormal.Quantile(p)
+	}
+	q := distuv.StudentsT{Mu: 0, Sigma: 1, Nu: df}.Quantile(p)
+	if math.IsNaN(q) {
+		return distuv.UnitNormal.Quantile(p)
+	}
+	return q
+}

@@ -1,0 +1,49 @@
+package agreement
+
+import "fmt"
+
+// Pairing says which calls of two appraisers on a part are put side by side.
+type Pairing int
+
+const (
+	// Matched pairs trial t of the one with trial t of the other.
+	Matched Pairing = iota
+	// All pairs every trial of the one with every trial of the other.
+	All
+)
+
+func (p Pairing) String() string {
+	if p == All {
+		return "all"
+	}
+	return "matched"
+}
+
+// Options says how a study is analysed. Its zero value is not useful; start
+// from DefaultOptions.
+type Options struct {
+	Confidence  float64 // of every interval, between 0 and 1
+	Resamples   int     // of whole parts, for the intervals of coefficients; 0: linearised intervals instead
+	Seed        uint64  // of the resampling: the same seed gives the same intervals
+	Pairing     Pairing // of the trials of two appraisers
+	Ordered     bool    // categories are grades in order: weighted kappas too
+	Independent bool    // also the asymptotic intervals that treat calls as independent
+	// Progress, if not nil, is told from time to time how much of the
+	// resampling is done.
+	Progress func(done, of int)
+}
+
+// DefaultOptions returns 95 % confidence, 2000 resamples, matched trials.
+func DefaultOptions() Options {
+	return Options{Confidence: 0.95, Resamples: 2000, Seed: 1}
+}
+
+func (o Options) check() error {
+	if !(o.Confidence > 0 && o.Confidence < 1) {
+		return fmt.Errorf("agreement: confidence %v is not between 0 and 1", o.Confidence)
+	}
+	if o.Resamples < 0 {
+		return fmt.Errorf("agreement: %d resamples", o.Resamples)
+	}
+	return nil
+}

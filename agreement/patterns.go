@@ -1,0 +1,50 @@
+package agreement
+
+// patterns holds the different rows of a study, each with its reference, and
+// how many parts have it. Every figure but the lists of parts depends on the
+// study only through them, and a million parts with ten calls each have but
+// a few hundred: this is what makes large studies fast.
+type patterns struct {
+	rows    [][]Category
+	ref     []Category
+	times   []int   // how many parts have this row
+	pattern []int32 // of each part
+}
+
+func (r *Ratings) patterns() patterns {
+	var p patterns
+	p.pattern = make([]int32, r.parts)
+	seen := make(map[string]int32)
+	key := make([]byte, r.columns()+1)
+	for part := range r.parts {
+		row := r.Row(part)
+		copy(key, row)
+		key[len(row)] = r.Reference(part)
+		i, ok := seen[string(key)]
+		if !ok {
+			i = int32(len(p.rows))
+			seen[string(key)] = i
+			p.rows = append(p.rows, row)
+			p.ref = append(p.ref, key[len(row)])
+			p.times = append(p.times, 0)
+		}
+		p.times[i]++
+		p.pattern[part] = i
+	}
+	return p
+}
+
+// where returns, in order, the parts whose pattern is chosen.
+func (p patterns) where(chosen func(pattern int) bool) []int {
+	parts := []int{}
+	yes := make([]bool, len(p.rows))
+	for i := range p.rows {
+		yes[i] = chosen(i)
+	}
+	for part, i := range p.pattern {
+		if yes[i] {
+			parts = append(parts, part)
+		}
+	}
+	return parts
+}

@@ -1,0 +1,208 @@
+package agreement
+
+import (
+	"errors"
+	"math"
+	"math/rand/v2"
+
+	"samecall/agreement/interval"
+)
+
+const (
+	// manyParts is where resampling stops to pay: with more parts than this
+	// the linearised interval covers as well (docs/coverage.md) and costs
+	// nothing.
+	manyParts = 1000
+	// fewestResamples is how many resamples must have a value for limits to
+	// be read from them.
+	fewestResamples = 100
+	// resamplingBudget bounds the additions spent on resampling one study.
+	// Beyond it, some two hundred appraisers in pairs, say, the intervals
+	// are linearised.
+	resamplingBudget = 2e9
+)
+
+var errOnePart = errors.New("a single part: there is no interval")
+
+// resampler draws whole parts, once for all coefficients of a study, so that
+// they all see the same resampled studies.
+type resampler struct {
+	opt         Options
+	width       int
+	weights     []uint16 // resample after resample, how often each pattern was drawn; nil: linearise
+	budget      float64
+	resampled   []float64 // reused
+	done, total int       // coefficients, for Options.Progress
+}
+
+func newResampler(p patterns, opt Options, coefficients int) *resampler {
+	r := &resampler{opt: opt, width: len(p.rows), budget: resamplingBudget, total: coefficients}
+	parts := len(p.pattern)
+	if opt.Resamples == 0 || parts > manyParts || parts < 2 {
+		return r
+	}
+	rng := rand.New(rand.NewPCG(opt.Seed, 0))
+	r.weights = make([]uint16, opt.Resamples*r.width)
+	r.resampled = make([]float64, 0, opt.Resamples)
+	for b := range opt.Resamples {
+		w := r.weights[b*r.width : (b+1)*r.width]
+		for range parts {
+			w[p.pattern[rng.IntN(parts)]]++
+		}
+	}
+	return r
+}
+
+// estimate returns a coefficient with its interval. undefined is the reason
+// why it is absent when no disagreement is to be expected.
+func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined error) Estimate {
+	defer r.progress()
+	sums := z.sums()
+	if sums[compared] <= 0 {
+		return absent(nothing)
+	}
+	value, ok := evaluate(c, sums)
+	if !ok {
+		return absent(undefined)
+	}
+	e := Estimate{Value: value}
+	parts, disagreeing := z.disagreeing()
+	switch {
+	case parts == 1:
+		e.Unbounded = errOnePart
+		return e
+	case disagreeing == 0:
+		e.Method = "exact on the share of disagreeing parts"
+		e.Interval = byShareOfParts(c, sums, disagreeing, parts, r.opt.Confidence)
+	default:
+		e.Method, e.Interval = r.interval(c, z, sums, value, parts)
+		if e.Interval.Width() <= 0 { // all parts alike
+			e.Method = "exact on the share of disagreeing parts"
+			e.Interval = byShareOfParts(c, sums, disagreeing, parts, r.opt.Confidence)
+		}
+	}
+	e.Interval.Lower = max(e.Interval.Lower, min(-1, value))
+	e.Interval.Upper = min(e.Interval.Upper, 1)
+	return e
+}
+
+func (r *resampler) interval(c coefficient, z contributions, sums []float64, value float64, parts int) (string, interval.Interval) {
+	if r.weights != nil && r.afford(z) {
+		values := r.resample(c, z)
+		if len(values) >= min(fewestResamples, r.opt.Resamples) {
+			return "BCa over parts", interval.BCa(value, values, leaveOneOut(c, z, sums), r.opt.Confidence)
+		}
+	}
+	return "linearised over parts", interval.Linearised(value, standardError(c, z, sums, parts), parts, r.opt.Confidence)
+}
+
+func (r *resampler) afford(z contributions) bool {
+	cost := float64(len(z.vectors)) * float64(r.opt.Resamples)
+	if cost > r.budget {
+		return false
+	}
+	r.budget -= cost
+	return true
+}
+
+// resample returns the coefficient of each resampled study that has one.
+func (r *resampler) resample(c coefficient, z contributions) []float64 {
+	values := r.resampled[:0]
+	sums := make([]float64, z.size)
+	for b := range r.opt.Resamples {
+		clear(sums)
+		for i, w := range r.weights[b*r.width : (b+1)*r.width] {
+			if w == 0 {
+				continue
+			}
+			n := float64(w)
+			v := z.vectors[i*z.size : (i+1)*z.size]
+			for j := range sums {
+				sums[j] += n * v[j]
+			}
+		}
+		if k, ok := evaluate(c, sums); ok {
+			values = append(values, k)
+		}
+	}
+	return values
+}
+
+func (r *resampler) progress() {
+	r.done++
+	if r.opt.Progress != nil {
+		r.opt.Progress(r.done, r.total)
+	}
+}
+
+// disagreeing returns the number of parts that count and of those on which
+// something disagreed.
+func (c contributions) disagreeing() (parts, disagreeing int) {
+	for i, n := range c.parts {
+		v := c.of(i)
+		if v[compared] > 0 {
+			parts += n
+			if v[disagreed] > 0 {
+				disagreeing += n
+			}
+		}
+	}
+	return parts, disagreeing
+}
+
+// leaveOneOut returns the coefficient with each part left out.
+func leaveOneOut(c coefficient, z contributions, sums []float64) []interval.LeftOut {
+	left := make([]interval.LeftOut, 0, len(z.parts))
+	rest := make([]float64, z.size)
+	for i, n := range z.parts {
+		v := z.of(i)
+		if v[compared] == 0 {
+			continue
+		}
+		for j := range rest {
+			rest[j] = sums[j] - v[j]
+		}
+		if k, ok := evaluate(c, rest); ok {
+			left = append(left, interval.LeftOut{Value: k, Parts: n})
+		}
+	}
+	return left
+}
+
+// standardError returns the standard error of a coefficient linearised over
+// parts: its derivative by the sums, times what each part contributes.
+func standardError(c coefficient, z contributions, sums []float64, parts int) float64 {
+	g := make([]float64, z.size)
+	c.gradient(sums, g)
+	var sum, squares float64
+	for i, n := range z.parts {
+		v := z.of(i)
+		if v[compared] == 0 {
+			continue
+		}
+		var u float64
+		for j := range g {
+			u += g[j] * v[j]
+		}
+		sum += float64(n) * u
+		squares += float64(n) * u * u
+	}
+	N := float64(parts)
+	return math.Sqrt(max(0, squares-sum*sum/N) * N / (N - 1))
+}
+
+// byShareOfParts carries the exact interval of the share of parts that
+// disagree over to the coefficient, at the disagreement that was found on
+// such a part (or, where none was, the largest) and was expected by chance.
+func byShareOfParts(c coefficient, sums []float64, disagreeing, parts int, confidence float64) interval.Interval {
+	observed, expected, _ := c.disagreements(sums)
+	share := interval.ClopperPearson(disagreeing, parts, confidence)
+	severity := 1.0
+	if disagreeing > 0 {
+		severity = observed * float64(parts) / float64(disagreeing)
+	}
+	return interval.Interval{
+		Lower: 1 - share.Upper*severity/expected,
+		Upper: 1 - share.Lower*severity/expected,
+	}
+}
