@@ -7,11 +7,14 @@ import "samecall/agreement/interval"
 // A figure that cannot be computed is absent: Absent says why, and all else
 // is zero. Unbounded says why a figure has no interval.
 type Estimate struct {
-	Value     float64
-	Interval  interval.Interval
-	Method    string // how the interval was found
-	Absent    error
-	Unbounded error
+	Value    float64
+	Interval interval.Interval
+	Method   string // how the interval was found
+	// StandardError is that of a coefficient, linearised over parts; 0 for a
+	// share or a rate.
+	StandardError float64
+	Absent        error
+	Unbounded     error
 	// Independent is the asymptotic interval that treats calls as
 	// independent, which they are not; nil unless it was asked for.
 	Independent *interval.Interval

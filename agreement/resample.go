@@ -67,33 +67,36 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 	}
 	e := Estimate{Value: value}
 	parts, disagreeing := z.disagreeing()
-	switch {
-	case parts == 1:
+	if parts == 1 {
 		e.Unbounded = errOnePart
 		return e
-	case disagreeing == 0:
-		e.Method = "exact on the share of disagreeing parts"
-		e.Interval = byShareOfParts(c, sums, disagreeing, parts, r.opt.Confidence)
-	default:
-		e.Method, e.Interval = r.interval(c, z, sums, value, parts)
-		if e.Interval.Width() <= 0 { // all parts alike
-			e.Method = "exact on the share of disagreeing parts"
-			e.Interval = byShareOfParts(c, sums, disagreeing, parts, r.opt.Confidence)
-		}
+	}
+	e.StandardError = standardError(c, z, sums, parts)
+	// However many parts there are, an interval is never narrower than the
+	// share of parts that disagree is certain: where few do, resampling sees
+	// too little of what could have been.
+	e.Method = "exact on the share of disagreeing parts"
+	e.Interval = byShareOfParts(c, sums, disagreeing, parts, r.opt.Confidence)
+	if disagreeing > 0 {
+		method, i := r.interval(c, z, sums, e, parts)
+		e.Method = method + ", no narrower than " + e.Method
+		e.Interval.Lower = min(e.Interval.Lower, i.Lower)
+		e.Interval.Upper = max(e.Interval.Upper, i.Upper)
 	}
 	e.Interval.Lower = max(e.Interval.Lower, min(-1, value))
 	e.Interval.Upper = min(e.Interval.Upper, 1)
 	return e
 }
 
-func (r *resampler) interval(c coefficient, z contributions, sums []float64, value float64, parts int) (string, interval.Interval) {
+func (r *resampler) interval(c coefficient, z contributions, sums []float64, e Estimate, parts int) (string, interval.Interval) {
 	if r.weights != nil && r.afford(z) {
 		values := r.resample(c, z)
 		if len(values) >= min(fewestResamples, r.opt.Resamples) {
-			return "BCa over parts", interval.BCa(value, values, leaveOneOut(c, z, sums), r.opt.Confidence)
+			confidence := interval.Expanded(r.opt.Confidence, parts)
+			return "BCa over parts", interval.BCa(e.Value, values, leaveOneOut(c, z, sums), confidence)
 		}
 	}
-	return "linearised over parts", interval.Linearised(value, standardError(c, z, sums, parts), parts, r.opt.Confidence)
+	return "linearised over parts", interval.Linearised(e.Value, e.StandardError, parts, r.opt.Confidence)
 }
 
 func (r *resampler) afford(z contributions) bool {

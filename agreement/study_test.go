@@ -103,12 +103,10 @@ func TestMSAStudy(t *testing.T) {
 		near(t, what+" lower", s.Interval.Lower, want.Lower, closedForm)
 		near(t, what+" upper", s.Interval.Upper, want.Upper, closedForm)
 	}
-	// se of a linearised interval, from its width and t on 49 degrees of freedom.
 	linearised := func(what string, e Estimate, want se) {
 		t.Helper()
 		near(t, what, e.Value, want.Kappa, closedForm)
-		half := interval.Linearised(0, 1, 50, 0.95).Upper
-		near(t, what+" se", (e.Value-e.Interval.Lower)/half, want.SE, 1e-6)
+		near(t, what+" se", e.StandardError, want.SE, 1e-6)
 	}
 	independent := func(what string, e Estimate, want pair) {
 		t.Helper()
