@@ -1,0 +1,347 @@
+package signal
+
+import (
+	"fmt"
+	"math"
+
+	"gonum.org/v1/gonum/mat"
+)
+
+// fit fits the curve. With search, outliers are looked for.
+func (d *dataset) fit(search bool) (*Curve, error) {
+	c := &Curve{Options: d.options, Limits: d.limits, sc: d.sc, factor: 1}
+	hs := d.halves()
+	var overlap, turning int
+	for k := range hs {
+		if !d.has[k] {
+			continue
+		}
+		l := &LimitFit{Side: Side(k), Status: hs[k].status, Why: hs[k].why}
+		if k == 0 {
+			l.Limit, l.HasLimit = d.limits.Lower, d.limits.HasLower
+			c.Lower = l
+		} else {
+			l.Limit, l.HasLimit = d.limits.Upper, d.limits.HasUpper
+			c.Upper = l
+		}
+		switch l.Status {
+		case Fitted:
+			overlap, turning = overlap+1, turning+1
+		case Separated, QuasiSeparated:
+			turning++
+		}
+	}
+	if turning == 0 {
+		return nil, d.noTurn(hs)
+	}
+	// Blocks of maximum likelihood: both limits together where both overlap,
+	// else each by itself.
+	var blocks []*block
+	if overlap == 2 {
+		b, err := d.maximum(0, len(d.x), d.has, hs)
+		if err != nil {
+			return nil, err
+		}
+		blocks = append(blocks, b)
+	} else {
+		for k, h := range hs {
+			if !d.has[k] || h.status != Fitted {
+				continue
+			}
+			from, to := h.from, h.to
+			if other := hs[1-k]; d.has[1-k] && other.status == OneSided && !other.reversed && !other.hasReject {
+				from, to = 0, len(d.x) // nothing was rejected there: all parts tell of this limit
+			}
+			b, err := d.maximum(from, to, [2]bool{k == 0, k == 1}, hs)
+			if err != nil {
+				return nil, err
+			}
+			blocks = append(blocks, b)
+		}
+	}
+	for _, b := range blocks {
+		c.take(b)
+	}
+	separated := [2]*firthFit{}
+	for k, h := range hs {
+		if d.has[k] && (h.status == Separated || h.status == QuasiSeparated) {
+			f, err := d.firth(h)
+			if err != nil {
+				return nil, err
+			}
+			separated[k] = f
+			c.local[2*k], c.local[2*k+1] = f.cut, f.logSigma
+			c.known[2*k], c.known[2*k+1] = true, true
+			c.Parameters += 2
+		}
+	}
+	if d.options.Lapse {
+		d.lapse(c, &blocks, hs)
+	}
+	c.summarise(d)
+	c.judgeFit()
+	c.params(d)
+	for _, b := range blocks {
+		d.describe(c, b)
+	}
+	for k, f := range separated {
+		if f != nil {
+			d.describeSeparated(c, hs[k], f)
+		}
+	}
+	for k, h := range hs {
+		if d.has[k] && h.status == OneSided {
+			d.describeOneSided(c, h)
+		}
+	}
+	if search {
+		if overlap == 2 {
+			c.SameSigma = d.sameSigma(c, hs)
+		}
+		d.outliers(c, hs)
+	}
+	c.notes(d)
+	if err := c.sound(); err != nil {
+		return nil, err
+	}
+	c.order(d)
+	return c, nil
+}
+
+// noTurn says why nothing can be fitted.
+func (d *dataset) noTurn(hs [2]half) error {
+	for _, h := range hs {
+		if d.has[h.k] && h.reversed {
+			return fmt.Errorf("%w: %s", ErrNoTurn, h.why)
+		}
+	}
+	for _, h := range hs {
+		if d.has[h.k] {
+			return fmt.Errorf("%w: %s", ErrNoTurn, h.why)
+		}
+	}
+	return ErrNoTurn
+}
+
+// block is one verified maximum of a likelihood.
+type block struct {
+	m          *model
+	s          *solver
+	theta      []float64
+	loglik     float64
+	covariance *mat.SymDense
+	has        [2]bool
+}
+
+func (b *block) cov(i, j int) float64 { return b.covariance.At(i, j) }
+
+// convergence is the log-likelihood that a fit may leave to be gained.
+const convergence = 1e-15
+
+// maximum fits parts from up to to by maximum likelihood and verifies the
+// maximum: the gradient, measured by the gain that it still promises, is nil
+// and the Hessian is negative definite.
+func (d *dataset) maximum(from, to int, has [2]bool, hs [2]half) (*block, error) {
+	b := &block{m: d.model(from, to, has), has: has, loglik: math.Inf(-1)}
+	b.s = newSolver(b.m)
+	var last outcome
+	what := "the acceptance curve"
+	if has != [2]bool{true, true} {
+		what = "the acceptance curve at the " + Side(boolInt(has[1])).String() + " limit"
+	}
+	for try := range 3 {
+		d.startAt(b, hs, min(try, 1))
+		if try == 2 {
+			if b.theta != nil {
+				break
+			}
+			b.s.fallback()
+		}
+		last = b.s.maximise(absent, convergence)
+		if last.converged && !last.atBound && last.loglik > b.loglik+1e-9 {
+			if cov, ok := b.s.definite(); ok {
+				b.theta, b.loglik, b.covariance = append(b.theta[:0], b.s.theta...), last.loglik, cov
+			}
+		}
+		if b.theta != nil && has != [2]bool{true, true} {
+			break // the likelihood of one limit has one maximum
+		}
+	}
+	if b.theta == nil {
+		reason := "the likelihood has no verified maximum"
+		switch {
+		case last.atBound && math.Abs(maxLogSigma(b)) >= logSigmaHigh-1:
+			reason = "σ grows without limit: acceptance hardly depends on the value"
+		case last.atBound:
+			reason = "σ shrinks to nothing"
+		case !last.converged:
+			reason = fmt.Sprintf("the likelihood still climbs after %d evaluations", b.s.evals)
+		}
+		return nil, &NotConvergedError{What: what, Reason: reason}
+	}
+	copy(b.s.theta, b.theta)
+	return b, nil
+}
+
+func boolInt(b bool) int {
+	if b {
+		return 1
+	}
+	return 0
+}
+
+func maxLogSigma(b *block) float64 {
+	most := math.Inf(-1)
+	for i, is := range b.s.isLogSigma {
+		if is {
+			most = math.Max(most, b.s.theta[i])
+		}
+	}
+	return most
+}
+
+// startAt sets the solver to one of the guesses.
+func (d *dataset) startAt(b *block, hs [2]half, which int) {
+	g := b.m.groups[0]
+	var shared []float64
+	for k := range 2 {
+		if !b.has[k] {
+			continue
+		}
+		cut, logSigma := d.starts(hs[k])
+		b.s.theta[g.cut[k]], b.s.theta[g.logSigma[k]] = cut[which], logSigma[which]
+		shared = append(shared, logSigma[which])
+	}
+	if len(shared) == 2 {
+		if g.logSigma[0] == g.logSigma[1] {
+			b.s.theta[g.logSigma[0]] = (shared[0] + shared[1]) / 2
+		}
+		// Cuts that cross would make every accepted call impossible.
+		if lo, hi := b.s.theta[g.cut[0]], b.s.theta[g.cut[1]]; !(lo < hi) {
+			middle, off := lo/2+hi/2, math.Max(1e-3, math.Abs(lo-hi))
+			b.s.theta[g.cut[0]], b.s.theta[g.cut[1]] = middle-off, middle+off
+		}
+		if g.logSigma[0] != g.logSigma[1] {
+			// Unequal σs can make P negative in a far tail that was accepted;
+			// equal ones cannot.
+			if math.IsInf(b.s.eval(b.s.theta, b.s.tgrad, b.s.thess), -1) {
+				s := (shared[0] + shared[1]) / 2
+				b.s.theta[g.logSigma[0]], b.s.theta[g.logSigma[1]] = s, s
+			}
+		}
+	}
+}
+
+// take copies a block's estimates and covariance into the curve.
+func (c *Curve) take(b *block) {
+	place := b.m.places(0)
+	for i, pi := range place {
+		if pi == absent {
+			continue
+		}
+		c.local[i], c.known[i], c.hasCov[i] = b.theta[pi], true, true
+		for j, pj := range place {
+			if pj != absent {
+				c.cov[i][j] = b.covariance.At(pi, pj)
+			}
+		}
+	}
+	c.blockLogLikelihood = b.loglik
+	c.free += b.m.n
+	c.Parameters += b.m.n
+}
+
+// lapse fits the share of calls made at random besides, where maximum
+// likelihood was reached by one block.
+func (d *dataset) lapse(c *Curve, blocks *[]*block, hs [2]half) {
+	if len(*blocks) != 1 || c.separatedAnywhere() {
+		c.warn("no lapse rate: it cannot be told from the curve where no part at a limit is mixed")
+		return
+	}
+	plain := (*blocks)[0]
+	b := &block{m: d.model(0, 0, plain.has), has: plain.has, loglik: math.Inf(-1)}
+	b.m.x, b.m.accepted, b.m.rejected, b.m.first = plain.m.x, plain.m.accepted, plain.m.rejected, plain.m.first
+	b.m.lapse = b.m.n
+	b.m.n++
+	b.s = newSolver(b.m)
+	for try := range 4 {
+		if try%2 == 0 {
+			copy(b.s.theta, plain.theta)
+		} else {
+			d.startAt(b, hs, 0)
+		}
+		b.s.theta[b.m.lapse] = [...]float64{-4, -4, -1.5, -1.5}[try]
+		out := b.s.maximise(absent, convergence)
+		if out.converged && !out.atBound && out.loglik > b.loglik+1e-9 {
+			if cov, ok := b.s.definite(); ok {
+				b.theta, b.loglik, b.covariance = append(b.theta[:0], b.s.theta...), out.loglik, cov
+			}
+		} else if out.converged && out.atBound && out.loglik > b.loglik+1e-3 && out.loglik > plain.loglik+1e-3 {
+			c.warn("no lapse rate: with one, σ is no longer determined; too few mixed parts lie near the limit")
+			return
+		}
+	}
+	c.HasLapse = true
+	if b.theta == nil || b.loglik <= plain.loglik+1e-9 {
+		// The best rate is none; only an upper bound can be told.
+		c.Lapse = Estimate{Value: 0, Lower: 0, HasLower: true, Confidence: d.options.Confidence, Method: profileMethod}
+		copy(b.s.theta, plain.theta)
+		b.s.theta[b.m.lapse] = -20
+		start := append([]float64(nil), b.s.theta...)
+		p := newProfiler(b.s, start, plain.loglik, nil, b.m.lapse)
+		if at, ok := crossing(-20, 8, 28, twoSided(d.options.Confidence), p.root); ok {
+			c.Lapse.Upper, c.Lapse.HasUpper = logistic(at), true
+		} else {
+			c.Lapse.Why = "the likelihood sets no upper bound"
+		}
+		return
+	}
+	copy(b.s.theta, b.theta)
+	*blocks = []*block{b}
+	c.free, c.Parameters = 0, 0
+	c.take(b)
+}
+
+func (c *Curve) separatedAnywhere() bool {
+	found := false
+	c.each(func(l *LimitFit) { found = found || l.Status == Separated || l.Status == QuasiSeparated })
+	return found
+}
+
+// notes adds the warnings that the finished curve calls for.
+func (c *Curve) notes(d *dataset) {
+	c.each(func(l *LimitFit) {
+		if l.Status != Fitted {
+			c.warn("%s limit: %s", l.Side, l.Why)
+		}
+	})
+	values := 0
+	for i, x := range d.x {
+		if i == 0 || x != d.x[i-1] {
+			values++
+		}
+	}
+	if values < 5 {
+		c.warn("only %d distinct values: the shape of the curve cannot be checked", values)
+	}
+	if c.Lower.Known() && c.Upper.Known() {
+		if p, _ := c.probability(c.local[cutL]/2 + c.local[cutU]/2); p < 0.99 {
+			c.warn("the grey zones of the two limits overlap: midway between the cuts only %.3g %% of calls accept", 100*p)
+		}
+	}
+}
+
+// sound makes sure that no NaN or infinity leaves.
+func (c *Curve) sound() error {
+	ok := finite(c.LogLikelihood, c.CallLogLikelihood)
+	c.each(func(l *LimitFit) {
+		for _, e := range []Estimate{l.Cut, l.Offset, l.Sigma, l.Width, l.Share, l.AtLimit} {
+			ok = ok && finite(e.Value, e.Lower, e.Upper, e.SE)
+		}
+		ok = ok && finite(l.From, l.To, l.SD)
+	})
+	if !ok {
+		return &NotConvergedError{What: "the acceptance curve", Reason: "the result is not a finite number in the unit of the values"}
+	}
+	return nil
+}

@@ -1,0 +1,112 @@
+package signal
+
+import "math"
+
+// crossing walks from inside, where root is below target, in steps that start
+// at first, until root reaches target, and closes in on the value where it
+// does. root is the signed-root deviance, which grows nearly in proportion to
+// the distance, so that a secant finds the crossing in a few evaluations.
+// It returns false if target is not reached within reach of inside, or if a
+// constrained fit did not converge (root then returns NaN).
+func crossing(inside, first, reach, target float64, root func(float64) float64) (at float64, found bool) {
+	lo, rlo := inside, 0.0
+	step := first
+	var hi, rhi float64
+	for tries := 0; ; tries++ {
+		hi = lo + step
+		if tries > 60 || math.Abs(hi-inside) > reach {
+			return 0, false
+		}
+		rhi = root(hi)
+		if math.IsNaN(rhi) {
+			return 0, false
+		}
+		if rhi >= target {
+			break
+		}
+		grow := 2.0
+		if rhi > rlo {
+			grow = math.Min(3, math.Max(0.1, 1.02*(target-rhi)/(rhi-rlo)))
+		}
+		lo, rlo = hi, rhi
+		step *= grow
+	}
+	// Illinois: a secant that never leaves the bracket.
+	flo, fhi := rlo-target, rhi-target
+	side := 0
+	for range 60 {
+		if fhi == 0 {
+			return hi, true
+		}
+		mid := (lo*fhi - hi*flo) / (fhi - flo)
+		if !(math.Min(lo, hi) < mid && mid < math.Max(lo, hi)) {
+			mid = lo + (hi-lo)/2
+		}
+		r := root(mid)
+		if math.IsNaN(r) {
+			return 0, false
+		}
+		f := r - target
+		if math.Abs(f) < 1e-8 || math.Abs(hi-lo) <= 1e-12*math.Abs(first) {
+			return mid, true
+		}
+		if f < 0 {
+			lo, flo = mid, f
+			if side == -1 {
+				fhi /= 2
+			}
+			side = -1
+		} else {
+			hi, fhi = mid, f
+			if side == 1 {
+				flo /= 2
+			}
+			side = 1
+		}
+	}
+	return lo + (hi-lo)/2, true
+}
+
+// profiler finds likelihood-ratio limits of one parameter of a fitted model.
+type profiler struct {
+	s      *solver
+	best   []float64 // maximum likelihood, or the point to start from under separation
+	loglik float64   // its supremum
+	slope  []float64 // how the other parameters move with the one held, to first order
+	param  int
+	last   []float64 // previous solution
+}
+
+// newProfiler returns a profiler of parameter param. covariance may be nil.
+func newProfiler(s *solver, best []float64, loglik float64, covariance func(i, j int) float64, param int) *profiler {
+	p := &profiler{s: s, best: best, loglik: loglik, param: param, slope: make([]float64, len(best)), last: append([]float64(nil), best...)}
+	if covariance != nil {
+		for i := range p.slope {
+			p.slope[i] = covariance(i, param) / covariance(param, param)
+		}
+	}
+	return p
+}
+
+// root is the square root of twice the log-likelihood lost by holding the
+// parameter at value.
+func (p *profiler) root(value float64) float64 {
+	d := value - p.last[p.param]
+	for i := range p.last {
+		p.s.theta[i] = p.last[i] + p.slope[i]*d
+	}
+	p.s.theta[p.param] = value
+	out := p.s.maximise(p.param, 1e-12)
+	if !out.converged {
+		copy(p.s.theta, p.best)
+		p.s.theta[p.param] = value
+		if out = p.s.maximise(p.param, 1e-12); !out.converged {
+			return math.NaN()
+		}
+	}
+	copy(p.last, p.s.theta)
+	return math.Sqrt(2 * math.Max(0, p.loglik-out.loglik))
+}
+
+// restart forgets the previous solution.
+func (p *profiler) restart() { copy(p.last, p.best) }
