@@ -1,0 +1,72 @@
+package main
+
+import (
+	"fmt"
+
+	"github.com/spf13/cobra"
+
+	"samecall/cmd/samecall/internal/example"
+)
+
+func newExample(s streams) *cobra.Command {
+	var to string
+	cmd := &cobra.Command{
+		Use:   "example [NAME]",
+		Short: "Built-in studies, invented, to look at and to start from",
+		Long: `example lists the built-in studies or, with a name and --to, writes the files
+of one into a folder: a study file and the calls that it names, to start from.
+All of them are invented. Files that are there already are not overwritten.`,
+		Example: `  samecall example
+  samecall example bore --to bore-study
+  samecall judge --example bore`,
+		Args: func(cmd *cobra.Command, args []string) error {
+			if len(args) > 1 {
+				return fmt.Errorf("%d examples are named; expected one", len(args))
+			}
+			return nil
+		},
+		ValidArgsFunction: completeExamples,
+		RunE: func(cmd *cobra.Command, args []string) error {
+			if len(args) == 0 {
+				if to != "" {
+					return fmt.Errorf("--to wants the name of an example before it, as in: samecall example bore --to %s", to)
+				}
+				return listExamples(s)
+			}
+			if to == "" {
+				return showExample(s, args[0])
+			}
+			files, err := example.WriteTo(to, args[0])
+			if err != nil {
+				return err
+			}
+			for _, f := range files {
+				fmt.Fprintln(s.out, f)
+			}
+			return nil
+		},
+	}
+	cmd.Flags().StringVar(&to, "to", "", "write the example's files into this `folder`")
+	return cmd
+}
+
+func listExamples(s streams) error {
+	for _, e := range example.Names() {
+		fmt.Fprintf(s.out, "%-9s %s\n%-9s %s\n", e.Name, e.Title, "", e.About)
+	}
+	_, err := fmt.Fprintln(s.out, "\nsamecall judge --example NAME runs on one; samecall example NAME --to FOLDER writes its files.")
+	return err
+}
+
+func showExample(s streams, name string) error {
+	if _, err := example.FS(name); err != nil {
+		return err
+	}
+	for _, e := range example.Names() {
+		if e.Name == name {
+			fmt.Fprintf(s.out, "%s\n%s\n", e.Title, e.About)
+		}
+	}
+	_, err := fmt.Fprintf(s.out, "\n  samecall judge --example %s           the answer\n  samecall example %s --to FOLDER      its files, to start from\n", name, name)
+	return err
+}

@@ -1,0 +1,78 @@
+// Package judge puts a study through every method that applies to it.
+package judge
+
+import (
+	"samecall/agreement"
+	"samecall/cmd/samecall/internal/study"
+	"samecall/signal"
+)
+
+// Result is all that is known of a study.
+type Result struct {
+	Study     *study.Study
+	Options   agreement.Options
+	Agreement *agreement.Analysis
+	// Detection holds the detection indices of each appraiser; nil entries
+	// where bad or good parts are lacking.
+	Detection []*signal.Detection
+	Warnings  []Warning
+}
+
+// Warning is something to be said with the result; Code is fixed, for programs.
+type Warning struct {
+	Code, Text string
+}
+
+// Run computes the result of a study.
+func Run(s *study.Study, opt agreement.Options) (*Result, error) {
+	opt.Ordered = len(s.Settings.Order) > 0
+	a, err := agreement.Analyse(s.Ratings, opt)
+	if err != nil {
+		return nil, err
+	}
+	r := &Result{Study: s, Options: opt, Agreement: a}
+	for _, n := range s.Notes {
+		r.Warnings = append(r.Warnings, Warning{n.Code, n.Text})
+	}
+	for _, w := range a.Warnings {
+		r.Warnings = append(r.Warnings, Warning{w.Code, w.Text})
+	}
+	r.Detection = detection(s.Ratings, opt.Confidence)
+	return r, nil
+}
+
+func detection(r *agreement.Ratings, confidence float64) []*signal.Detection {
+	all := make([]*signal.Detection, r.Appraisers())
+	if !r.HasReference() || !r.HasAccept() {
+		return all
+	}
+	var bad, good []signal.Tally
+	for a := range all {
+		bad, good = bad[:0], good[:0]
+		for part := range r.Parts() {
+			ref := r.Reference(part)
+			if ref == agreement.Missing {
+				continue
+			}
+			var t signal.Tally
+			for _, c := range r.Calls(part, a) {
+				if c == agreement.Missing {
+					continue
+				}
+				t.Calls++
+				if !r.Accepts(c) {
+					t.Rejected++
+				}
+			}
+			if r.Accepts(ref) {
+				good = append(good, t)
+			} else {
+				bad = append(bad, t)
+			}
+		}
+		if d, err := signal.DetectByPart(bad, good, confidence); err == nil {
+			all[a] = &d
+		}
+	}
+	return all
+}

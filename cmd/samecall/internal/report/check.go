@@ -1,0 +1,127 @@
+package report
+
+import (
+	"fmt"
+	"io"
+	"strconv"
+	"strings"
+
+	"samecall/cmd/samecall/internal/study"
+)
+
+// Check writes what a study holds and what it can show.
+func Check(w io.Writer, s *study.Study, term Terminal) error {
+	p := &printer{w: w, term: term}
+	sum := s.Summary()
+	title := s.Settings.Title
+	if title == "" && len(s.Inputs) > 0 {
+		title = s.Inputs[len(s.Inputs)-1].File
+	}
+	p.line(term.bold(plain(title)))
+	p.wrap("The study is read without a problem.", "")
+	p.table(Table{Columns: []Column{{Name: "what"}, {Name: "how many"}}, Rows: holds(s, sum)})
+	p.table(appraisersTable(sum))
+	if sum.Values != nil && (sum.Values.Lower != nil || sum.Values.Upper != nil) {
+		p.table(nearTable(sum.Values, s.Settings.Unit))
+	}
+	p.line("")
+	p.line(term.bold("What it can and cannot show"))
+	for _, c := range sum.CanShow {
+		p.wrap("· "+c.Text, "  ")
+	}
+	for _, n := range s.Notes {
+		p.line("")
+		p.wrap("Note: "+n.Text, "      ")
+	}
+	return p.err
+}
+
+func holds(s *study.Study, sum study.Summary) [][]Cell {
+	var rows [][]Cell
+	add := func(what, how string) { rows = append(rows, []Cell{say(what), say(how)}) }
+	parts := count(sum.Parts)
+	if s.Ratings.HasReference() && s.Ratings.HasAccept() {
+		parts += fmt.Sprintf(", of these %s bad, %s good", count(sum.Bad), count(sum.Good))
+		if sum.Unreferenced > 0 {
+			parts += ", " + count(sum.Unreferenced) + " without reference"
+		}
+	}
+	add("parts", parts)
+	if sum.ByCategory != nil && !s.PassFail {
+		var by []string
+		for k, n := range sum.ByCategory {
+			by = append(by, s.Categories[k]+" "+count(n))
+		}
+		add("parts by reference", strings.Join(by, ", "))
+	}
+	add("reference", map[study.ReferenceKind]string{
+		study.Given:   "given in the calls file",
+		study.Derived: "derived from values and limits",
+		study.None:    "none",
+	}[s.Reference])
+	categories := make([]string, len(s.Categories))
+	for k, c := range s.Categories {
+		categories[k] = c
+		if s.Ratings.Accepts(uint8(k)) && !s.PassFail {
+			categories[k] += " (accepted)"
+		}
+	}
+	add("categories", strings.Join(categories, ", "))
+	calls := count(sum.Calls)
+	if sum.Missing > 0 {
+		calls += ", " + count(sum.Missing) + " missing"
+	}
+	add("calls", calls)
+	balance := "yes: every appraiser called every part in every trial"
+	if !sum.Balanced {
+		balance = "no: appraisers have different trials or missing calls; each figure says what it rests on"
+	}
+	add("balanced", balance)
+	if v := sum.Values; v != nil {
+		unit := s.Settings.Unit
+		if unit != "" {
+			unit = " " + unit
+		}
+		add("values", fmt.Sprintf("%s, from %s to %s%s", counted(v.Count, "part"), number(v.Min), number(v.Max), unit))
+	}
+	for _, in := range s.Inputs {
+		add("read", in.File+", SHA-256 "+in.SHA256[:16]+"…")
+	}
+	return rows
+}
+
+func appraisersTable(sum study.Summary) Table {
+	t := Table{Title: "Appraisers", Columns: []Column{{Name: "appraiser"}, {"trials", true}, {"parts called", true}, {"calls", true}, {"missing", true}}}
+	for _, a := range sum.Appraisers {
+		t.Rows = append(t.Rows, []Cell{say(a.Appraiser), say(trialList(a.Trials)), intCell(a.Parts), intCell(a.Calls), intCell(a.Missing)})
+	}
+	return t
+}
+
+// trialList writes trial numbers, a run of them as its ends.
+func trialList(numbers []int) string {
+	if n := len(numbers); n > 2 && numbers[n-1]-numbers[0] == n-1 {
+		return fmt.Sprintf("%d–%d", numbers[0], numbers[n-1])
+	}
+	var out []string
+	for _, n := range numbers {
+		out = append(out, strconv.Itoa(n))
+	}
+	return strings.Join(out, ", ")
+}
+
+func nearTable(v *study.ValueSummary, unit string) Table {
+	t := Table{Title: "Parts near the limits", Columns: []Column{{Name: "limit"}, {"at", true}, {"near means within", true}, {"near, bad", true}, {"near, good", true}}}
+	if unit != "" {
+		unit = " " + unit
+	}
+	add := func(name string, l *study.LimitSummary) {
+		if l != nil {
+			t.Rows = append(t.Rows, []Cell{say(name), say(number(l.Limit) + unit), say(strconv.FormatFloat(l.Width, 'g', 3, 64) + unit), intCell(l.NearBad), intCell(l.NearGood)})
+		}
+	}
+	add("lower", v.Lower)
+	add("upper", v.Upper)
+	t.Note = "Only parts near a limit show where the calls turn; parts far away are called alike by anybody."
+	return t
+}

@@ -1,0 +1,3 @@
+// Package report says a result in words and tables: for the terminal, for
+// programs, for the file.
+package report

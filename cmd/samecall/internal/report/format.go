@@ -1,0 +1,122 @@
+package report
+
+import (
+	"math"
+	"strconv"
+	"strings"
+	"unicode"
+
+	"samecall/agreement"
+	"samecall/agreement/interval"
+)
+
+// percent writes a share in percent. 0 and 100 are written for none and all
+// only, never for nearly so.
+func percent(share float64) string { return digits(share) + " %" }
+
+func digits(share float64) string {
+	p := 100 * share
+	switch {
+	case p == 0 || share == 1:
+		return strconv.FormatFloat(p, 'f', 0, 64)
+	case p < 0.095:
+		return strconv.FormatFloat(p, 'g', 1, 64)
+	case p < 9.95:
+		return strconv.FormatFloat(p, 'f', 1, 64)
+	case p > 99:
+		return strconv.FormatFloat(math.Floor(10*p)/10, 'f', 1, 64)
+	}
+	return strconv.FormatFloat(p, 'f', 0, 64)
+}
+
+// between writes the limits of an interval of a share, in percent.
+func betweenPercent(i interval.Interval) string {
+	return "(" + digits(i.Lower) + "–" + digits(i.Upper) + ")"
+}
+
+// figure writes a kappa: two digits, a true minus, and 1.00 for 1 only.
+func figure(x float64) string {
+	if x < 1 && x > 0.99 {
+		x = 0.99
+	}
+	s := strconv.FormatFloat(math.Abs(x), 'f', 2, 64)
+	if x < 0 && s != "0.00" {
+		s = "−" + s
+	}
+	return s
+}
+
+func betweenFigures(i interval.Interval) string {
+	to := "–"
+	if i.Lower < 0 {
+		to = " to "
+	}
+	return "(" + figure(i.Lower) + to + figure(i.Upper) + ")"
+}
+
+// dash stands for a figure that is absent.
+const dash = "–"
+
+// shareText writes a share with its interval.
+func shareText(s agreement.Share) string {
+	if s.Absent != nil {
+		return dash
+	}
+	return percent(s.Value) + " " + betweenPercent(s.Interval)
+}
+
+// kappaText writes a coefficient with its interval.
+func kappaText(e agreement.Estimate) string {
+	switch {
+	case e.Absent != nil:
+		return dash
+	case e.Unbounded != nil:
+		return figure(e.Value)
+	}
+	return figure(e.Value) + " " + betweenFigures(e.Interval)
+}
+
+// probability writes a p-value.
+func probability(p float64) string {
+	if p < 0.0005 {
+		return "< 0.001"
+	}
+	return strconv.FormatFloat(p, 'f', 3, 64)
+}
+
+// number writes a value of the study as short as it can be read back.
+func number(x float64) string {
+	return strings.Replace(strconv.FormatFloat(x, 'f', -1, 64), "-", "−", 1)
+}
+
+// count writes a number of things, in groups of three digits.
+func count(n int) string {
+	s := strconv.Itoa(n)
+	for i := len(s) - 3; i > 0; i -= 3 {
+		s = s[:i] + "\u00a0" + s[i:]
+	}
+	return s
+}
+
+// counted writes a number with its noun: 1 part, 2 parts.
+func counted(n int, noun string) string {
+	if n != 1 {
+		noun += "s"
+	}
+	return count(n) + " " + noun
+}
+
+// plain makes a text from a user's file safe to print on one line: control
+// characters, which could move the cursor or hide what stands there, and
+// those that turn the direction of what follows, are made visible.
+func plain(s string) string {
+	return strings.Map(func(r rune) rune {
+		switch {
+		case r == '\t' || r == '\n' || r == '\r' || r == '\u2028' || r == '\u2029':
+			return ' '
+		case unicode.IsControl(r), r >= '\u202a' && r <= '\u202e', r >= '\u2066' && r <= '\u2069':
+			return unicode.ReplacementChar
+		}
+		return r
+	}, s)
+}

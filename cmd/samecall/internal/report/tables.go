@@ -1,0 +1,306 @@
+package report
+
+import (
+	"fmt"
+	"strings"
+
+	"samecall/agreement"
+	"samecall/cmd/samecall/internal/judge"
+)
+
+const together = "all together"
+
+// Tables returns every table of a result, in the order of reading.
+func Tables(r *judge.Result) []Table {
+	var out []Table
+	if r.Agreement.All != nil {
+		out = append(out, againstTable(r, true), errorsTable(r))
+	}
+	out = append(out, withinTable(r))
+	if len(r.Study.Appraisers) > 1 {
+		s := newSquare(r).table(true)
+		s.Note = squareNote
+		out = append(out, s, pairsTable(r))
+	}
+	out = append(out, coefficientsTable(r))
+	if t := categoriesTable(r); len(t.Rows) > 0 {
+		out = append(out, t)
+	}
+	out = append(out, crossTables(r)...)
+	if t := directionTable(r); len(t.Rows) > 0 {
+		out = append(out, t)
+	}
+	if t := partsTable(r); len(t.Rows) > 0 {
+		out = append(out, t)
+	}
+	return out
+}
+
+const squareNote = "Share of parts on which all calls are alike · kappa. In brackets, each appraiser with itself; last column, against the reference."
+
+func shareCell(s agreement.Share) Cell {
+	if s.Absent != nil {
+		return say(dash)
+	}
+	return Cell{shareText(s), s.Value}
+}
+
+func kappaCell(e agreement.Estimate) Cell {
+	if e.Absent != nil {
+		return say(dash)
+	}
+	return Cell{kappaText(e), e.Value}
+}
+
+func ofCell(s agreement.Share) Cell {
+	if s.Absent != nil {
+		return say(dash)
+	}
+	return say(count(s.Count) + " of " + count(s.Of))
+}
+
+func intCell(n int) Cell { return Cell{count(n), n} }
+
+// againstTable is the table of appraisers against the reference.
+func againstTable(r *judge.Result, all bool) Table {
+	t := Table{
+		Name:    "appraisers",
+		Title:   "Against the reference",
+		Columns: []Column{{Name: "appraiser"}, {"effectiveness", true}, {"miss rate", true}, {"false-alarm rate", true}, {"kappa", true}},
+		Note:    fmt.Sprintf("In brackets the %s interval, the part being the sampled unit.", percent(r.Options.Confidence)),
+	}
+	row := func(name string, a agreement.Against) {
+		t.Rows = append(t.Rows, []Cell{say(name), shareCell(a.Effectiveness), shareCell(a.Miss), shareCell(a.FalseAlarm), kappaCell(a.Kappa)})
+	}
+	for i, a := range r.Agreement.Against {
+		row(r.Study.Appraisers[i], a)
+	}
+	if all && len(r.Agreement.Against) > 1 {
+		row(together, *r.Agreement.All)
+	}
+	return t
+}
+
+// errorsTable gives the counts behind the rates, and the detection indices.
+func errorsTable(r *judge.Result) Table {
+	t := Table{
+		Name:  "errors",
+		Title: "Counts behind the rates",
+		Columns: []Column{{Name: "appraiser"}, {"parts right", true}, {"misses, of calls on bad", true}, {"worth, calls", true},
+			{"false alarms, of calls on good", true}, {"worth, calls", true}, {"d′", true}, {"criterion", true}},
+		Note: "Worth: how many independent calls the calls are worth, since calls on one part are alike. d′: how well bad is told from good; criterion: below 0 leans to rejecting, above 0 to accepting.",
+	}
+	worth := func(s agreement.Share) Cell {
+		if s.Absent != nil {
+			return say(dash)
+		}
+		return Cell{fmt.Sprintf("%.1f", s.Effective), s.Effective}
+	}
+	row := func(name string, a agreement.Against, dPrime, criterion Cell) {
+		t.Rows = append(t.Rows, []Cell{say(name), ofCell(a.Effectiveness), ofCell(a.Miss), worth(a.Miss), ofCell(a.FalseAlarm), worth(a.FalseAlarm), dPrime, criterion})
+	}
+	for i, a := range r.Agreement.Against {
+		dPrime, criterion := say(dash), say(dash)
+		if d := r.Detection[i]; d != nil {
+			dPrime, criterion = Cell{figure(d.DPrime.Value), d.DPrime.Value}, Cell{figure(d.Criterion.Value), d.Criterion.Value}
+		}
+		row(r.Study.Appraisers[i], a, dPrime, criterion)
+	}
+	if len(r.Agreement.Against) > 1 {
+		row(together, *r.Agreement.All, say(""), say(""))
+	}
+	return t
+}
+
+func withinTable(r *judge.Result) Table {
+	t := Table{
+		Name:    "within",
+		Title:   "Within appraiser: does each repeat its own call?",
+		Columns: []Column{{Name: "appraiser"}, {"parts alike", true}, {"share", true}, {"kappa over trials", true}},
+	}
+	for a, w := range r.Agreement.Within {
+		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), ofCell(w.Share), shareCell(w.Share), kappaCell(w.Kappa)})
+	}
+	return t
+}
+
+func pairsTable(r *judge.Result) Table {
+	t := Table{
+		Name:    "pairs",
+		Title:   "Between appraisers: each two",
+		Columns: []Column{{Name: "first"}, {Name: "second"}, {"parts alike", true}, {"share", true}, {"calls alike", true}, {"kappa", true}},
+		Note:    pairingNote(r.Options.Pairing),
+	}
+	weighted := r.Options.Ordered && len(r.Study.Categories) > 2
+	if weighted {
+		t.Columns = append(t.Columns, Column{"linear", true}, Column{"quadratic", true})
+	}
+	for _, p := range r.Agreement.Between.Pairs {
+		row := []Cell{say(r.Study.Appraisers[p.A]), say(r.Study.Appraisers[p.B]), ofCell(p.Share), shareCell(p.Share),
+			say(count(p.Alike) + " of " + count(p.Pairs)), kappaCell(p.Kappa)}
+		if weighted {
+			row = append(row, kappaCell(*p.Linear), kappaCell(*p.Quadratic))
+		}
+		t.Rows = append(t.Rows, row)
+	}
+	return t
+}
+
+func pairingNote(p agreement.Pairing) string {
+	if p == agreement.All {
+		return "Each trial of the one beside each trial of the other."
+	}
+	return "Trial by trial: the first trial of the one beside the first of the other, and so on."
+}
+
+func coefficientsTable(r *judge.Result) Table {
+	b := r.Agreement.Between
+	t := Table{
+		Name:    "between",
+		Title:   "All appraisers together",
+		Columns: []Column{{Name: "figure"}, {"value", true}, {Name: "what it tells"}},
+	}
+	add := func(name string, c Cell, what string) { t.Rows = append(t.Rows, []Cell{say(name), c, say(what)}) }
+	add("parts alike", shareCell(b.Share), "every call of every appraiser is the same")
+	add("Fleiss' kappa", kappaCell(b.Fleiss), "agreement of all calls beyond chance")
+	add("Gwet's AC1", kappaCell(b.AC1), "the same, not pulled down where one category prevails")
+	add("Krippendorff's alpha", kappaCell(b.Alpha), "the same, corrected for few calls")
+	add("same appraiser", kappaCell(b.SameAppraiser), "two calls on a part by one appraiser")
+	add("different appraisers", kappaCell(b.DifferentAppraisers), "two calls on a part by two appraisers")
+	if all := r.Agreement.All; all != nil && all.Linear != nil {
+		add("kappa, linear weights", kappaCell(*all.Linear), "all calls against the reference, by steps")
+		add("kappa, quadratic weights", kappaCell(*all.Quadratic), "the same, by squared steps")
+	}
+	return t
+}
+
+// categoriesTable gives the kappa of each category; empty with two
+// categories, whose kappas are those of the whole.
+func categoriesTable(r *judge.Result) Table {
+	if len(r.Study.Categories) < 3 {
+		return Table{}
+	}
+	t := Table{
+		Name:    "categories",
+		Title:   "Kappa of each category against all others",
+		Columns: []Column{{Name: "category"}, {"between", true}},
+	}
+	against := r.Agreement.All != nil
+	if against {
+		for _, n := range r.Study.Appraisers {
+			t.Columns = append(t.Columns, Column{n, true})
+		}
+	}
+	for k, name := range r.Study.Categories {
+		row := []Cell{say(name), kappaCell(r.Agreement.Between.Categories[k])}
+		if against {
+			for _, a := range r.Agreement.Against {
+				if len(r.Study.Appraisers) > 3 && a.Categories[k].Absent == nil { // intervals would not fit
+					row = append(row, Cell{figure(a.Categories[k].Value), a.Categories[k].Value})
+					continue
+				}
+				row = append(row, kappaCell(a.Categories[k]))
+			}
+		}
+		t.Rows = append(t.Rows, row)
+	}
+	if against {
+		t.Note = "Between: Fleiss' kappa of all calls; under an appraiser's name, Cohen's kappa against the reference."
+	}
+	return t
+}
+
+// crossTables gives the calls of each appraiser by the reference.
+func crossTables(r *judge.Result) []Table {
+	var out []Table
+	for a, g := range r.Agreement.Against {
+		t := crossTable(r, g.Table)
+		t.Name = fmt.Sprintf("calls %d", a+1)
+		t.Title = "Calls of " + r.Study.Appraisers[a] + " by reference"
+		out = append(out, t)
+	}
+	return out
+}
+
+func crossTable(r *judge.Result, x agreement.Table) Table {
+	t := Table{Columns: []Column{{Name: "call"}}}
+	for _, c := range r.Study.Categories {
+		t.Columns = append(t.Columns, Column{"truly " + c, true})
+	}
+	t.Columns = append(t.Columns, Column{"calls", true})
+	sums := make([]int, len(r.Study.Categories))
+	row := func(name string, counts []int) {
+		cells, sum := []Cell{say(name)}, 0
+		for _, n := range counts {
+			cells = append(cells, intCell(n))
+			sum += n
+		}
+		t.Rows = append(t.Rows, append(cells, intCell(sum)))
+	}
+	for k, c := range r.Study.Categories {
+		row(c, x[k])
+		for j, n := range x[k] {
+			sums[j] += n
+		}
+	}
+	row("calls", sums)
+	return t
+}
+
+// directionTable gives the tests of direction.
+func directionTable(r *judge.Result) Table {
+	t := Table{
+		Name:    "direction",
+		Title:   "Do the errors lean one way?",
+		Columns: []Column{{Name: "appraiser"}, {Name: "test"}, {"statistic", true}, {"degrees of freedom", true}, {"p", true}},
+		Note:    "A small p: the calls differ from the reference more often one way than the other. The tests take calls as independent; with several calls on a part p is too small.",
+	}
+	add := func(a int, name string, test *agreement.Test) {
+		if test == nil {
+			return
+		}
+		df := say(dash)
+		if test.DF > 0 {
+			df = intCell(test.DF)
+		}
+		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), say(name), {fmt.Sprintf("%.2f", test.Statistic), test.Statistic}, df, {probability(test.P), test.P}})
+	}
+	for a, g := range r.Agreement.Against {
+		add(a, "McNemar, exact", g.McNemar)
+		add(a, "Bowker", g.Bowker)
+		add(a, "Stuart–Maxwell", g.StuartMaxwell)
+	}
+	return t
+}
+
+// manyParts is how many parts are named in a list before it is cut.
+const manyParts = 40
+
+// partsTable names the parts that were wrong every time or mixed.
+func partsTable(r *judge.Result) Table {
+	t := Table{Name: "parts", Title: "Parts to look at", Columns: []Column{{Name: "appraiser"}, {Name: "what"}, {"parts", true}, {Name: "which"}}}
+	add := func(name, what string, list []int) {
+		if len(list) > 0 {
+			t.Rows = append(t.Rows, []Cell{say(name), say(what), intCell(len(list)), say(partList(r, list))})
+		}
+	}
+	for a, w := range r.Agreement.Within {
+		if r.Agreement.All != nil {
+			add(r.Study.Appraisers[a], "wrong every time", r.Agreement.Against[a].WrongEveryTime)
+		}
+		add(r.Study.Appraisers[a], "mixed", w.Mixed)
+	}
+	if all := r.Agreement.All; all != nil && len(r.Study.Appraisers) > 1 {
+		add(together, "wrong every time", all.WrongEveryTime)
+	}
+	return t
+}
+
+func partList(r *judge.Result, list []int) string {
+	more := ""
+	if len(list) > manyParts {
+		more = fmt.Sprintf(", and %s more", count(len(list)-manyParts))
+		list = list[:manyParts]
+	}
+	return strings.Join(parts(r, list), ", ") + more
+}

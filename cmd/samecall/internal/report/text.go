@@ -1,0 +1,254 @@
+package report
+
+import (
+	"fmt"
+	"io"
+	"slices"
+	"strings"
+
+	"github.com/jedib0t/go-pretty/v6/text"
+
+	"samecall/agreement"
+	"samecall/cmd/samecall/internal/judge"
+)
+
+// Terminal says what a text is written to.
+type Terminal struct {
+	Width  int  // columns
+	Colour bool // bold heads; never the only sign of anything
+}
+
+func (t Terminal) bold(s string) string {
+	if !t.Colour {
+		return s
+	}
+	return "\x1b[1m" + s + "\x1b[0m"
+}
+
+// Text writes the answer: one screen, or with full everything there is.
+func Text(w io.Writer, r *judge.Result, term Terminal, full bool) error {
+	p := &printer{w: w, term: term}
+	p.head(r)
+	if full {
+		for _, t := range Tables(r) {
+			p.table(t)
+		}
+	} else {
+		p.answer(r)
+	}
+	p.warnings(r)
+	return p.err
+}
+
+// printer keeps the first error of writing.
+type printer struct {
+	w    io.Writer
+	term Terminal
+	err  error
+}
+
+func (p *printer) line(s string) {
+	if p.err == nil {
+		_, p.err = io.WriteString(p.w, strings.TrimRight(s, " ")+"\n")
+	}
+}
+
+// wrap writes a paragraph, its lines after the first behind indent.
+func (p *printer) wrap(s, indent string) {
+	width := max(20, p.term.Width-len(indent))
+	for i, line := range strings.Split(text.WrapSoft(plain(s), width), "\n") {
+		if i > 0 {
+			line = indent + line
+		}
+		p.line(line)
+	}
+}
+
+func (p *printer) table(t Table) {
+	p.line("")
+	if t.Title != "" {
+		p.line(p.term.bold(plain(t.Title)))
+	}
+	for _, l := range strings.Split(t.render(p.term.Width), "\n") {
+		p.line(l)
+	}
+	if t.Note != "" {
+		p.wrap(t.Note, "")
+	}
+}
+
+func (p *printer) head(r *judge.Result) {
+	s := r.Study
+	title := s.Settings.Title
+	if title == "" && len(s.Inputs) > 0 {
+		title = s.Inputs[len(s.Inputs)-1].File
+	}
+	p.line(p.term.bold(plain(title)))
+	p.wrap(facts(r), "")
+}
+
+// facts says in one paragraph what was studied.
+func facts(r *judge.Result) string {
+	s := r.Study
+	var out []string
+	for _, t := range []string{s.Settings.Characteristic, s.Settings.Gauge} {
+		if t != "" {
+			out = append(out, t)
+		}
+	}
+	if l := limitsText(r); l != "" {
+		out = append(out, l)
+	}
+	d := newStudy(r)
+	parts := counted(d.Parts, "part")
+	if d.BadParts != nil {
+		parts += fmt.Sprintf(" (%s bad, %s good)", count(*d.BadParts), count(*d.GoodParts))
+	}
+	out = append(out, parts, counted(len(s.Appraisers), "appraiser")+" × "+counted(d.Trials, "trial"))
+	calls := counted(d.Calls, "call")
+	if d.Missing > 0 {
+		calls += fmt.Sprintf(", %s missing", count(d.Missing))
+	}
+	out = append(out, calls, "reference "+d.Reference)
+	return strings.Join(out, " · ")
+}
+
+func limitsText(r *judge.Result) string {
+	lower, upper, unit := r.Study.Settings.Lower, r.Study.Settings.Upper, r.Study.Settings.Unit
+	if unit != "" {
+		unit = " " + unit
+	}
+	switch {
+	case lower != nil && upper != nil:
+		return number(*lower) + " to " + number(*upper) + unit
+	case lower != nil:
+		return "at least " + number(*lower) + unit
+	case upper != nil:
+		return "at most " + number(*upper) + unit
+	}
+	return ""
+}
+
+// manyAppraisers is how many rows the answer shows; of more, the worst.
+const manyAppraisers = 12
+
+// answer writes the one screen.
+func (p *printer) answer(r *judge.Result) {
+	main := withinTable(r)
+	if r.Agreement.All != nil {
+		main = againstTable(r, true)
+	}
+	p.table(worst(r, main))
+	p.square(r)
+	p.between(r)
+}
+
+// worst cuts a table with a row for each appraiser down to the worst ones.
+func worst(r *judge.Result, t Table) Table {
+	n := len(r.Study.Appraisers)
+	if n <= manyAppraisers {
+		return t
+	}
+	order := worstFirst(r)
+	rows := make([][]Cell, 0, manyAppraisers+1)
+	for _, a := range order[:manyAppraisers] {
+		rows = append(rows, t.Rows[a])
+	}
+	t.Rows = append(rows, t.Rows[n:]...)
+	t.Note = fmt.Sprintf("The %d worst of %d appraisers; --full lists all. %s", manyAppraisers, n, t.Note)
+	return t
+}
+
+// worstFirst orders appraisers by effectiveness or, without a reference, by
+// how often they repeat themselves.
+func worstFirst(r *judge.Result) []int {
+	share := func(a int) agreement.Share {
+		if r.Agreement.All != nil {
+			return r.Agreement.Against[a].Effectiveness
+		}
+		return r.Agreement.Within[a].Share
+	}
+	order := make([]int, len(r.Study.Appraisers))
+	for a := range order {
+		order[a] = a
+	}
+	slices.SortStableFunc(order, func(a, b int) int {
+		switch x, y := share(a).Value, share(b).Value; {
+		case x < y:
+			return -1
+		case x > y:
+			return 1
+		}
+		return 0
+	})
+	return order
+}
+
+// square writes the agreement square, with kappas where they fit, and leaves
+// it to --full where not even the shares do.
+func (p *printer) square(r *judge.Result) {
+	if len(r.Study.Appraisers) < 2 {
+		return
+	}
+	s := newSquare(r)
+	for _, kappas := range []bool{true, false} {
+		t := s.table(kappas)
+		room := t.fit(p.term.Width)
+		full := t.fit(1 << 20)
+		// Names may be cut, figures may not.
+		cut := false
+		for i := 1; i < len(room); i++ {
+			widest := 0
+			for _, row := range t.Rows {
+				widest = max(widest, text.StringWidthWithoutEscSequences(row[i].Text))
+			}
+			cut = cut || room[i] < min(full[i], widest)
+		}
+		if cut {
+			continue
+		}
+		t.Note = squareNote
+		if !kappas {
+			t.Note = strings.Replace(squareNote, " · kappa", "", 1)
+		}
+		if s.ref == nil {
+			t.Note = strings.Replace(t.Note, "; last column, against the reference", "", 1)
+		}
+		p.table(t)
+		return
+	}
+	p.line("")
+	p.wrap(fmt.Sprintf("The agreement square of %d appraisers is too wide for this screen; --full lists each two.", len(s.names)), "")
+}
+
+// between writes one sentence on all appraisers together.
+func (p *printer) between(r *judge.Result) {
+	b := r.Agreement.Between
+	p.line("")
+	if b.Share.Absent != nil {
+		p.wrap("Between appraisers: "+b.Share.Absent.Error()+".", "")
+		return
+	}
+	s := fmt.Sprintf("All calls of all appraisers are alike on %s of %s parts: %s.", count(b.Share.Count), count(b.Share.Of), shareText(b.Share))
+	if b.Fleiss.Absent != nil {
+		s += " Kappa: " + b.Fleiss.Absent.Error() + "."
+	} else {
+		s += fmt.Sprintf(" Fleiss' kappa %s, AC1 %s, alpha %s.", kappaText(b.Fleiss), figure(b.AC1.Value), figure(b.Alpha.Value))
+	}
+	p.wrap(s, "")
+}
+
+func (p *printer) warnings(r *judge.Result) {
+	for _, w := range r.Warnings {
+		p.line("")
+		p.wrap("Note: "+w.Text, "      ")
+	}
+}
+
+func trimLines(s string) string {
+	lines := strings.Split(s, "\n")
+	for i := range lines {
+		lines[i] = strings.TrimRight(lines[i], " ")
+	}
+	return strings.Join(lines, "\n")
+}

@@ -1,0 +1,109 @@
+package main
+
+import (
+	"bufio"
+	"fmt"
+	"io"
+
+	"github.com/spf13/cobra"
+
+	"samecall/agreement"
+	"samecall/cmd/samecall/internal/judge"
+	"samecall/cmd/samecall/internal/output"
+	"samecall/cmd/samecall/internal/report"
+	"samecall/cmd/samecall/internal/study"
+)
+
+func newJudge(s streams) *cobra.Command {
+	var src source
+	opt := agreement.DefaultOptions()
+	var pairing, jsonFile string
+	var full bool
+	cmd := &cobra.Command{
+		Use:   "judge [FILE]",
+		Short: "Calls in, agreement and error rates out",
+		Long: `judge reads a study and tells how far its calls can be trusted: each appraiser
+with itself, appraisers with each other, all against the reference; miss and
+false-alarm rates; kappas; each with an interval for which the part, not the
+call, is the sampled unit.
+
+FILE is a calls file (CSV or .xlsx, long or wide), a study file (TOML) that
+names one, or - for a CSV on standard input. docs/files.md tells the formats.
+
+Exit status: 0 done, 2 the command line is wrong or a file cannot be opened or
+written, 3 the data is wrong.`,
+		Example: `  samecall judge --example bore
+  samecall judge calls.csv
+  samecall judge study.toml --full
+  samecall judge calls.xlsx --sheet "March" --accept go --reject nogo
+  samecall judge calls.csv --lower 12.000 --upper 12.018 --unit mm --json result.json`,
+		Args: oneFile,
+		RunE: func(cmd *cobra.Command, args []string) error {
+			switch pairing {
+			case "matched":
+				opt.Pairing = agreement.Matched
+			case "all":
+				opt.Pairing = agreement.All
+			default:
+				return fmt.Errorf("--pairing is %q; expected matched or all", pairing)
+			}
+			if opt.Resamples < 0 {
+				return fmt.Errorf("--resamples is %d; expected a number of 0 or more", opt.Resamples)
+			}
+			at := newProgress(s.err)
+			at.at("reading the calls")
+			st, err := src.read(cmd, args, s)
+			if err != nil {
+				at.end()
+				return err
+			}
+			opt.Progress = func(done, of int) { at.at(fmt.Sprintf("resampling, %d of %d figures", done, of)) }
+			result, err := judgeStudy(st, opt)
+			at.end()
+			if err != nil {
+				return err
+			}
+			if jsonFile != "" {
+				if err := writeTo(jsonFile, s.out, func(w io.Writer) error { return report.JSON(w, result) }); err != nil {
+					return err
+				}
+				if jsonFile == "-" {
+					return nil
+				}
+			}
+			return buffered(s.out, func(w io.Writer) error { return report.Text(w, result, terminal(s.out), full) })
+		},
+	}
+	f := cmd.Flags()
+	f.SortFlags = false
+	f.BoolVar(&full, "full", false, "every table, not the one screen")
+	f.StringVar(&jsonFile, "json", "", "also write everything as JSON to this `file`; - for standard output, and nothing else")
+	f.StringVar(&pairing, "pairing", "matched", "calls of two appraisers side by side: matched, trial by trial, or all trials with all")
+	f.IntVar(&opt.Resamples, "resamples", opt.Resamples, "resamples of whole parts for the intervals of kappas; 0 for linearised ones")
+	f.Uint64Var(&opt.Seed, "seed", opt.Seed, "of the resampling; the same seed gives the same answer")
+	f.BoolVar(&opt.Independent, "independent", false, "in the JSON, also the intervals that treat calls as independent, which they are not")
+	_ = cmd.RegisterFlagCompletionFunc("pairing", cobra.FixedCompletions([]string{"matched", "all"}, cobra.ShellCompDirectiveNoFileComp))
+	src.addFlags(cmd)
+	return cmd
+}
+
+func judgeStudy(s *study.Study, opt agreement.Options) (*judge.Result, error) {
+	opt.Confidence = s.Settings.Confidence
+	return judge.Run(s, opt)
+}
+
+// writeTo writes to the file named, or to standard output for -.
+func writeTo(name string, out io.Writer, write func(io.Writer) error) error {
+	if name == "-" {
+		return buffered(out, write)
+	}
+	return output.File(name, write)
+}
+
+func buffered(w io.Writer, write func(io.Writer) error) error {
+	b := bufio.NewWriter(w)
+	if err := write(b); err != nil {
+		return err
+	}
+	return b.Flush()
+}

@@ -1,0 +1,110 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"io"
+	"runtime/debug"
+
+	"github.com/spf13/cobra"
+
+	"samecall/cmd/samecall/internal/study"
+)
+
+// Exit statuses, as docs and scripts know them.
+const (
+	exitDone      = 0
+	exitShort     = 1 // done, and the level required was not reached
+	exitUsage     = 2 // the command line is wrong, or a file cannot be opened or written
+	exitWrongData = 3
+)
+
+// streams is what a command reads from and writes to.
+type streams struct {
+	in       io.Reader
+	out, err io.Writer
+}
+
+// run is the whole program: it takes the arguments behind the program's name
+// and returns the exit status.
+func run(args []string, in io.Reader, out, errs io.Writer) int {
+	root := newRoot(streams{in, out, errs})
+	root.SetArgs(args)
+	err := root.Execute()
+	if err == nil {
+		return exitDone
+	}
+	var status statusError
+	if errors.As(err, &status) {
+		if status.err != nil {
+			fmt.Fprintln(errs, "samecall:", status.err)
+		}
+		return status.status
+	}
+	var problems *study.Problems
+	if errors.As(err, &problems) {
+		fmt.Fprintln(errs, problems)
+		return exitWrongData
+	}
+	fmt.Fprintln(errs, "samecall:", err)
+	return exitUsage
+}
+
+// statusError ends the program with a status of its own, and a message
+// unless err is nil.
+type statusError struct {
+	status int
+	err    error
+}
+
+func (e statusError) Error() string {
+	if e.err == nil {
+		return fmt.Sprintf("exit status %d", e.status)
+	}
+	return e.err.Error()
+}
+
+func (e statusError) Unwrap() error { return e.err }
+
+func newRoot(s streams) *cobra.Command {
+	root := &cobra.Command{
+		Use:   "samecall",
+		Short: "Can the yes and no of this inspection be trusted?",
+		Long: `samecall reads the calls of a pass/fail or graded inspection study (several
+appraisers calling the same parts several times) and tells whether the calls
+can be trusted: does each appraiser repeat the own call, do they agree with
+each other, do they agree with the truth, how many bad parts slip through and
+how many good ones are thrown out, and how far the study can show it.`,
+		Example: `  samecall judge --example bore      look at a whole answer, on invented data
+  samecall check calls.csv           is my file read as I mean it?
+  samecall judge calls.csv           the answer for my own calls
+  samecall judge study.toml --full   everything there is`,
+		Version:       version(),
+		SilenceErrors: true,
+		SilenceUsage:  true,
+		Args: func(cmd *cobra.Command, args []string) error {
+			if len(args) > 0 {
+				return fmt.Errorf("there is no command %q; samecall --help lists them", args[0])
+			}
+			return nil
+		},
+		RunE: func(cmd *cobra.Command, args []string) error { return cmd.Help() },
+	}
+	root.SetIn(s.in)
+	root.SetOut(s.out)
+	root.SetErr(s.err)
+	root.SetVersionTemplate("samecall {{.Version}}\n")
+	root.SetFlagErrorFunc(func(cmd *cobra.Command, err error) error {
+		return fmt.Errorf("%w; %s --help lists what there is", err, cmd.CommandPath())
+	})
+	root.AddCommand(newJudge(s), newCheck(s), newExample(s))
+	return root
+}
+
+// version is that of the module, as the Go toolchain recorded it.
+func version() string {
+	if info, ok := debug.ReadBuildInfo(); ok && info.Main.Version != "" {
+		return info.Main.Version
+	}
+	return "(unknown)"
+}

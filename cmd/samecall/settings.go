@@ -1,0 +1,136 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"io/fs"
+	"os"
+
+	"github.com/spf13/cobra"
+
+	"samecall/cmd/samecall/internal/example"
+	"samecall/cmd/samecall/internal/study"
+)
+
+// source is what a command is to read: the file named on the command line or
+// a built-in example, and the settings that flags give.
+type source struct {
+	example, study string
+	settings       study.Settings
+	lower, upper   float64
+	pairs          map[string]*[]float64
+}
+
+// addFlags gives a command a flag for every setting of the study file.
+func (s *source) addFlags(cmd *cobra.Command) {
+	f := cmd.Flags()
+	f.SortFlags = false
+	f.StringVar(&s.example, "example", "", "read a built-in study instead of a file; samecall example lists them")
+	f.StringVar(&s.study, "study", "", "study file (TOML) with the settings, where the calls file is named on its own")
+	f.StringVar(&s.settings.Calls, "calls", "", "calls file, in place of the one that the study file names")
+	f.StringVar(&s.settings.Sheet, "sheet", "", "sheet of a workbook; the first if not given")
+	f.StringVar(&s.settings.Title, "title", "", "what the study is called in the answer")
+	f.StringVar(&s.settings.Characteristic, "characteristic", "", "what is inspected")
+	f.StringVar(&s.settings.Gauge, "gauge", "", "what it is inspected with")
+	f.StringVar(&s.settings.Unit, "unit", "", "unit of values and limits")
+	f.Float64Var(&s.lower, "lower", 0, "lower specification limit")
+	f.Float64Var(&s.upper, "upper", 0, "upper specification limit")
+	f.StringSliceVar(&s.settings.Accept, "accept", nil, "words that accept a part, such as go,pass")
+	f.StringSliceVar(&s.settings.Reject, "reject", nil, "words that reject a part")
+	f.StringSliceVar(&s.settings.Order, "order", nil, "grades from best to worst, where calls are grades")
+	f.StringSliceVar(&s.settings.Categories, "categories", nil, "kinds of calls, where they have no order")
+	f.StringSliceVar(&s.settings.Ignore, "ignore", nil, "columns of the calls file to leave out")
+	f.Float64Var(&s.settings.Confidence, "confidence", 0, "of every interval; 0.95 if not given")
+	s.pairs = make(map[string]*[]float64)
+	for _, c := range []struct{ name, usage string }{
+		{"effectiveness", "accept and conditional level, such as 0.9,0.8"},
+		{"miss", "accept and conditional level of the miss rate, such as 0.02,0.05"},
+		{"false-alarm", "accept and conditional level of the false-alarm rate, such as 0.05,0.10"},
+		{"kappa", "accept and conditional level of kappa against the reference, such as 0.75,0.40"},
+	} {
+		s.pairs[c.name] = f.Float64Slice(c.name, nil, c.usage)
+	}
+	_ = cmd.RegisterFlagCompletionFunc("example", completeExamples)
+}
+
+// read reads the study that the command line names.
+func (s *source) read(cmd *cobra.Command, args []string, in streams) (*study.Study, error) {
+	flags, err := s.flags(cmd)
+	if err != nil {
+		return nil, err
+	}
+	src := study.Source{Stdin: in.in, Study: s.study}
+	switch {
+	case s.example != "" && (len(args) > 0 || s.study != ""):
+		return nil, errors.New("--example and a file are both given; leave one out")
+	case s.example != "":
+		files, err := example.FS(s.example)
+		if err != nil {
+			return nil, err
+		}
+		src.FS, src.Path = files, example.StudyFile
+	case len(args) == 1:
+		src.Path = args[0]
+	case s.study == "":
+		return nil, fmt.Errorf("no study is named; give a calls file, a study file or --example NAME (%s --help)", cmd.CommandPath())
+	}
+	st, err := study.Read(src, flags)
+	if errors.Is(err, fs.ErrNotExist) && src.FS == nil {
+		err = fmt.Errorf("%w; the folder is %s", err, folder())
+	}
+	return st, err
+}
+
+func folder() string {
+	dir, err := os.Getwd()
+	if err != nil {
+		return "unknown"
+	}
+	return dir
+}
+
+// flags returns the settings that were given as flags.
+func (s *source) flags(cmd *cobra.Command) (study.Settings, error) {
+	out := s.settings
+	if cmd.Flags().Changed("lower") {
+		out.Lower = &s.lower
+	}
+	if cmd.Flags().Changed("upper") {
+		out.Upper = &s.upper
+	}
+	for name, to := range map[string]**[2]float64{
+		"effectiveness": &out.Criteria.Effectiveness,
+		"miss":          &out.Criteria.Miss,
+		"false-alarm":   &out.Criteria.FalseAlarm,
+		"kappa":         &out.Criteria.Kappa,
+	} {
+		levels := *s.pairs[name]
+		switch {
+		case !cmd.Flags().Changed(name):
+		case len(levels) != 2:
+			return out, fmt.Errorf("--%s has %d numbers; expected two, the accept and the conditional level", name, len(levels))
+		default:
+			*to = &[2]float64{levels[0], levels[1]}
+		}
+	}
+	if cmd.Flags().Changed("confidence") && out.Confidence == 0 {
+		return out, errors.New("--confidence is 0; expected a number between 0 and 1, such as 0.95")
+	}
+	return out, out.Validate()
+}
+
+func completeExamples(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
+	var names []string
+	for _, e := range example.Names() {
+		names = append(names, e.Name+"\t"+e.About)
+	}
+	return names, cobra.ShellCompDirectiveNoFileComp
+}
+
+// oneFile is the arguments of a command that reads a study.
+func oneFile(cmd *cobra.Command, args []string) error {
+	if len(args) > 1 {
+		return fmt.Errorf("%d files are named; expected one (a calls file, a study file, or - for standard input)", len(args))
+	}
+	return nil
+}
