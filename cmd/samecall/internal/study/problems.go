@@ -85,15 +85,18 @@ func problemsOf(list []Problem, more int) error {
 	if len(list) == 0 {
 		return nil
 	}
-	slices.SortStableFunc(list, func(a, b Problem) int {
-		return cmp.Or(cmp.Compare(a.Line, b.Line), cmp.Compare(a.Column, b.Column),
-			strings.Compare(a.Found, b.Found), strings.Compare(a.Text, b.Text))
-	})
+	slices.SortStableFunc(list, Problem.compare)
 	if len(list) > maxProblems {
 		more += len(list) - maxProblems
 		list = list[:maxProblems]
 	}
 	return &Problems{List: slices.Clone(list), More: more}
+}
+
+// compare puts problems in the order of where they stand.
+func (p Problem) compare(q Problem) int {
+	return cmp.Or(cmp.Compare(p.Line, q.Line), cmp.Compare(p.Column, q.Column),
+		strings.Compare(p.Found, q.Found), strings.Compare(p.Text, q.Text))
 }
 
 // quote shows what was found: in quotes, on one line, not endless.

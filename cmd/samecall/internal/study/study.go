@@ -71,10 +71,3 @@ type Note struct {
 	Code string // one or two words joined by an underscore, for programs
 	Text string // a sentence
 }
-
-// Read reads a study: the study file if there is one, the calls, and flags,
-// which win over the study file key by key. The error is a *Problems where
-// the data is wrong, and another error where a file cannot be read.
-func Read(src Source, flags Settings) (*Study, error) {
-	panic("not yet")
-}

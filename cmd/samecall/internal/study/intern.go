@@ -1,0 +1,218 @@
+package study
+
+import (
+	"bytes"
+	"hash/maphash"
+
+	"golang.org/x/text/unicode/norm"
+)
+
+// The names of a million parts stand in ten million rows. partTable turns
+// them into numbers without an allocation a name: names lie end to end in
+// blocks of bytes, found by an open-addressed table of hashes. Against
+// map[string]uint32 it takes half of the memory and, on shuffled rows, two
+// thirds of the time.
+
+const (
+	blockBits = 20 // names: blocks of 1 MB
+	entryBits = 14 // entries: blocks of 16,384
+	maxName   = 1<<16 - 1
+)
+
+// partEntry is one part as one builder knows it. The text of its value
+// follows its name in the block, where one look at memory finds both.
+type partEntry struct {
+	at       uint32 // of the name: block and place in it
+	row      uint32 // the builder's row in which the part first stands
+	nameLen  uint16
+	valueLen uint16 // 0: no value yet
+	ref      uint16 // word of the reference plus 1; 0: no reference yet
+	late     bool   // reference or value came in a later row; builder.late tells which
+}
+
+type partTable struct {
+	seed    maphash.Seed
+	slots   []uint64 // upper half: hash; lower half: number of the entry plus 1; 0: free
+	entries [][]partEntry
+	n       uint32
+	blocks  [][]byte
+	last    uint32 // the part of the row before
+}
+
+func newPartTable() *partTable {
+	return &partTable{seed: maphash.MakeSeed(), slots: make([]uint64, 1<<10)}
+}
+
+func (t *partTable) entry(id uint32) *partEntry {
+	return &t.entries[id>>entryBits][id&(1<<entryBits-1)]
+}
+
+func (t *partTable) name(e *partEntry) []byte {
+	return t.blocks[e.at>>blockBits][e.at&(1<<blockBits-1):][:e.nameLen]
+}
+
+func (t *partTable) value(e *partEntry) []byte {
+	return t.blocks[e.at>>blockBits][e.at&(1<<blockBits-1)+uint32(e.nameLen):][:e.valueLen]
+}
+
+// find returns the number and the entry of a name; ok is false if the name is
+// new.
+//
+// Rows mostly come part by part, or in the same order of parts trial by
+// trial: the part of the row before, or the one that once came after it, is
+// tried first.
+func (t *partTable) find(name []byte) (id uint32, e *partEntry, ok bool) {
+	if t.n > 0 {
+		e = t.entry(t.last)
+		if bytes.Equal(t.name(e), name) {
+			return t.last, e, true
+		}
+		if next := t.last + 1; next < t.n {
+			e = t.entry(next)
+			if bytes.Equal(t.name(e), name) {
+				t.last = next
+				return next, e, true
+			}
+		}
+	}
+	tag := t.tag(name)
+	mask := uint32(len(t.slots) - 1)
+	for i := tag & mask; ; i = (i + 1) & mask {
+		s := t.slots[i]
+		if s == 0 {
+			return 0, nil, false
+		}
+		if uint32(s>>32) == tag {
+			id = uint32(s) - 1
+			e = t.entry(id)
+			if bytes.Equal(t.name(e), name) {
+				t.last = id
+				return id, e, true
+			}
+		}
+	}
+}
+
+func (t *partTable) tag(name []byte) uint32 { return uint32(maphash.Bytes(t.seed, name)) }
+
+func (t *partTable) insert(tag, id uint32) {
+	mask := uint32(len(t.slots) - 1)
+	i := tag & mask
+	for t.slots[i] != 0 {
+		i = (i + 1) & mask
+	}
+	t.slots[i] = uint64(tag)<<32 | uint64(id+1)
+}
+
+// add enters a new name with the text of its value, which may be empty.
+func (t *partTable) add(name, value []byte, row uint32) (uint32, *partEntry) {
+	if 4*uint64(t.n+1) > 3*uint64(len(t.slots)) {
+		t.grow()
+	}
+	id := t.n
+	t.insert(t.tag(name), id)
+	if id&(1<<entryBits-1) == 0 {
+		t.entries = append(t.entries, make([]partEntry, 0, 1<<entryBits))
+	}
+	b := &t.entries[id>>entryBits]
+	*b = append(*b, partEntry{at: t.store(name, value), row: row, nameLen: uint16(len(name)), valueLen: uint16(len(value))})
+	t.n++
+	t.last = id
+	return id, &(*b)[id&(1<<entryBits-1)]
+}
+
+// setValue gives an entry a value that was not there when it was added.
+func (t *partTable) setValue(e *partEntry, value []byte) {
+	e.at, e.valueLen = t.store(t.name(e), value), uint16(len(value))
+}
+
+func (t *partTable) store(name, value []byte) uint32 {
+	n := len(t.blocks)
+	if n == 0 || len(t.blocks[n-1])+len(name)+len(value) > 1<<blockBits {
+		t.blocks = append(t.blocks, make([]byte, 0, 1<<blockBits))
+		n++
+	}
+	b := &t.blocks[n-1]
+	at := uint32(n-1)<<blockBits | uint32(len(*b))
+	*b = append(append(*b, name...), value...)
+	return at
+}
+
+func (t *partTable) full() bool { return len(t.blocks) == 1<<(32-blockBits) }
+
+// grow doubles the table. A hash has 32 bits, as many as a table can use.
+func (t *partTable) grow() {
+	old := t.slots
+	t.slots = make([]uint64, 2*len(old))
+	for _, s := range old {
+		if s != 0 {
+			t.insert(uint32(s>>32), uint32(s)-1)
+		}
+	}
+}
+
+// composed returns a name in composed Unicode (NFC), which leaves ASCII as it
+// is, and whether that changed it.
+func composed(name []byte) ([]byte, bool) {
+	if beyondASCII(name) < 0 || norm.NFC.IsNormal(name) {
+		return name, false
+	}
+	return norm.NFC.Bytes(name), true
+}
+
+// names turns a small set of words into numbers: appraisers, spellings of
+// calls. Spellings with the same canonical form share a number. A cache in
+// front of the map finds the few that come again and again.
+type names struct {
+	canon     func([]byte) []byte
+	list      []string // canonical form, by number
+	ids       map[string]uint16
+	spellings []spelling
+	known     map[string]uint16 // spelling to its place in spellings
+	cache     [256]uint16       // place in spellings plus 1
+}
+
+type spelling struct {
+	text []byte
+	id   uint16
+}
+
+const maxNames = 1<<16 - 2
+
+func newNames(canon func([]byte) []byte) *names {
+	return &names{canon: canon, ids: make(map[string]uint16), known: make(map[string]uint16)}
+}
+
+func cacheSlot(w []byte) int {
+	return (len(w)*0x1f ^ int(w[0])*0x0b ^ int(w[len(w)-1])*0x35) & 0xff
+}
+
+// id returns the number of a word that is not empty. ok is false if there are
+// more than maxNames.
+func (n *names) id(w []byte) (id uint16, ok bool) {
+	slot := &n.cache[cacheSlot(w)]
+	if c := int(*slot) - 1; c >= 0 {
+		if s := &n.spellings[c]; bytes.Equal(s.text, w) {
+			return s.id, true
+		}
+	}
+	c, ok := n.known[string(w)]
+	if !ok {
+		if len(n.spellings) == maxNames {
+			return 0, false
+		}
+		canon := string(n.canon(w))
+		id, ok := n.ids[canon]
+		if !ok {
+			id = uint16(len(n.list))
+			n.list = append(n.list, canon)
+			n.ids[canon] = id
+		}
+		c = uint16(len(n.spellings))
+		text := bytes.Clone(w)
+		n.spellings = append(n.spellings, spelling{text, id})
+		n.known[string(w)] = c
+	}
+	*slot = c + 1
+	return n.spellings[c].id, true
+}

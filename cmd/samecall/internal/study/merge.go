@@ -1,0 +1,513 @@
+package study
+
+import (
+	"cmp"
+	"fmt"
+	"slices"
+	"sync"
+
+	"samecall/agreement"
+)
+
+// merge makes one Study of what the builders hold.
+type merge struct {
+	*table
+	settings Settings
+	study    *Study
+	words    *vocabulary
+	meaning  [][]agreement.Category // of each builder's words, by number plus 1; [0] is Missing
+	columns  [][]int32              // of each builder's columns, the column in Ratings; −1: none
+	rank     [][]uint32             // of each builder's parts, the part in Ratings
+	values   []valueText
+	suspect  map[uint32]bool // parts of which two rows say different things
+	more     int
+}
+
+// valueText is where the text of a part's value lies.
+type valueText struct {
+	builder uint8 // plus 1; 0: no value
+	local   uint32
+}
+
+// noCategory marks a word without a meaning.
+const noCategory agreement.Category = agreement.Missing - 1
+
+func (t *table) study(s Settings) (*Study, []Problem, int) {
+	m := &merge{table: t, settings: s, study: &Study{Settings: s}, suspect: make(map[uint32]bool)}
+	for _, b := range t.builders {
+		m.problems = append(m.problems, b.problems...)
+		m.more += b.more
+	}
+	m.mergeWords()
+	trials := m.mergeColumns()
+	m.mergeParts()
+	if len(m.study.Parts) == 0 && len(m.problems) == 0 {
+		m.add(Problem{Line: m.line, Text: "no rows stand below the header; lines that begin with # are comments"})
+	}
+	m.readValues()
+	m.contradictions()
+	if trials != nil {
+		m.fill(trials)
+	}
+	if len(m.problems) > 0 {
+		return nil, m.problems, m.more
+	}
+	m.rareWords()
+	m.similarAppraisers()
+	m.setReference()
+	if len(m.problems) > 0 {
+		return nil, m.problems, m.more
+	}
+	return m.study, nil, 0
+}
+
+// add keeps a problem; of very many, the first by line.
+func (m *merge) add(p Problem) {
+	if m.problems = append(m.problems, p); len(m.problems) == 1<<12 {
+		slices.SortFunc(m.problems, Problem.compare)
+		m.more += len(m.problems) - maxProblems
+		m.problems = m.problems[:maxProblems]
+	}
+}
+
+func (m *merge) note(code, format string, args ...any) {
+	m.study.Notes = append(m.study.Notes, Note{code, fmt.Sprintf(format, args...)})
+}
+
+// mergeWords gives the words of all builders their meaning.
+func (m *merge) mergeWords() {
+	spelt := make(map[string]string)
+	for _, b := range m.builders {
+		for _, sp := range b.words.spellings {
+			w, text := b.words.list[sp.id], string(sp.text)
+			if was, ok := spelt[w]; !ok || text < was {
+				spelt[w] = text
+			}
+		}
+	}
+	v := newVocabulary(m.settings, spelt)
+	m.words = v
+	m.study.Categories, m.study.PassFail = v.names, v.passFail
+	if p, ok := v.tooMany(); ok {
+		p.Line = m.line
+		m.add(p)
+	}
+	unknown := make(map[string]*sighting)
+	for _, b := range m.builders {
+		meaning := []agreement.Category{agreement.Missing}
+		for _, w := range b.words.list {
+			c, ok := v.of[w]
+			if !ok {
+				c = noCategory
+				if len(v.names) <= agreement.MaxCategories {
+					unknown[w] = &sighting{}
+				}
+			}
+			meaning = append(meaning, c)
+		}
+		m.meaning = append(m.meaning, meaning)
+	}
+	if len(unknown) == 0 {
+		return
+	}
+	m.sight(unknown)
+	for w, at := range unknown {
+		p := v.unknown(spelt[w])
+		p.Line, p.Column = at.line, at.field+1
+		if at.count > 1 {
+			p.Found += fmt.Sprintf(" (%d times)", at.count)
+		}
+		p.Found += " in " + m.layout.place(at.field)
+		m.add(p)
+	}
+}
+
+// sighting is where a word stands first, and how often it stands anywhere.
+type sighting struct{ line, field, count int }
+
+func (s *sighting) see(line, field int) {
+	if s.count == 0 || line < s.line || line == s.line && field < s.field {
+		s.line, s.field = line, field
+	}
+	s.count++
+}
+
+// sight looks through all calls and references for words.
+func (m *merge) sight(words map[string]*sighting) {
+	for _, b := range m.builders {
+		local := make([]*sighting, len(b.words.list)+1)
+		for i, w := range b.words.list {
+			local[i+1] = words[w]
+		}
+		b.eachRecord(func(row uint32, r record) {
+			if s := local[r.word]; s != nil {
+				s.see(b.line(row), b.field(r))
+			}
+		})
+		for id := range b.parts.n {
+			e := b.parts.entry(id)
+			if s := local[e.ref]; s != nil {
+				s.see(b.line(b.refRow(id, e)), b.layout.reference)
+			}
+		}
+		for _, a := range b.refs {
+			if s := local[a.word+1]; s != nil {
+				s.see(b.line(a.row), b.layout.reference)
+			}
+		}
+	}
+}
+
+func (b *builder) eachRecord(do func(row uint32, r record)) {
+	per, i := b.perRow(), 0
+	for _, block := range b.records {
+		for _, r := range block {
+			do(uint32(i/per), r)
+			i++
+		}
+	}
+}
+
+// mergeColumns puts appraisers in natural order and their trials in the order
+// of their numbers. It returns the number of trials of each appraiser, nil if
+// nobody made a call.
+func (m *merge) mergeColumns() []int {
+	type seen struct {
+		called map[int]bool // by trial: whether there is a call
+		line   int          // where the appraiser stands first
+		field  int
+	}
+	all := make(map[string]*seen)
+	for _, b := range m.builders {
+		for i, key := range b.columns {
+			name := b.appraisers.list[key.appraiser]
+			at := all[name]
+			line, field := m.line, 0
+			if b.layout.long {
+				line, field = b.line(b.first[i]), b.layout.appraiser
+			} else {
+				field = b.layout.cells[i].field
+			}
+			if at == nil {
+				at = &seen{make(map[int]bool), line, field}
+				all[name] = at
+			}
+			if line < at.line {
+				at.line = line
+			}
+			at.called[int(key.trial)] = at.called[int(key.trial)] || b.called[i]
+		}
+	}
+	var appraisers []string
+	for name := range all {
+		appraisers = append(appraisers, name)
+	}
+	slices.SortFunc(appraisers, compareNatural)
+
+	var trials []int
+	var silent []string
+	index := make(map[string]map[int]int32) // column by appraiser and trial
+	n := int32(0)
+	for _, name := range appraisers {
+		at := all[name]
+		var numbers, without []int
+		for t, called := range at.called {
+			if called {
+				numbers = append(numbers, t)
+			} else {
+				without = append(without, t)
+			}
+		}
+		if len(numbers) == 0 {
+			silent = append(silent, name)
+			continue
+		}
+		slices.Sort(numbers)
+		slices.Sort(without)
+		index[name] = make(map[int]int32)
+		for _, t := range numbers {
+			index[name][t] = n
+			n++
+		}
+		trials = append(trials, len(numbers))
+		m.study.Appraisers = append(m.study.Appraisers, name)
+		m.study.TrialNames = append(m.study.TrialNames, numbers)
+		if len(without) > 0 {
+			m.note("empty_trial", "Appraiser %s has no call in trial %s, which is left out.", name, joinInts(without))
+		}
+	}
+	switch {
+	case len(trials) == 0 && len(silent) > 0 && len(m.problems) == 0:
+		m.add(Problem{Line: m.line, Text: "the table holds no call: every field for a call is empty"})
+	case len(trials) > 0:
+		for _, name := range silent {
+			m.add(Problem{Line: all[name].line, Column: all[name].field + 1, Found: "the appraiser " + quote(name) + " without any call",
+				Expected: "one call or more of each appraiser", Text: "take the appraiser out of the table if there are none"})
+		}
+	}
+	for _, b := range m.builders {
+		local := make([]int32, len(b.columns))
+		for i, key := range b.columns {
+			local[i] = -1
+			if c, ok := index[b.appraisers.list[key.appraiser]][int(key.trial)]; ok {
+				local[i] = c
+			}
+		}
+		m.columns = append(m.columns, local)
+	}
+	return trials
+}
+
+func joinInts(n []int) string {
+	var s []string
+	for _, i := range n {
+		s = append(s, fmt.Sprint(i))
+	}
+	return listOf(s, "and")
+}
+
+// mergeParts puts the parts of all builders in one natural order.
+//
+// Each builder's parts are sorted first, side by side; mostly they come
+// sorted. The merge then needs no table.
+func (m *merge) mergeParts() {
+	k := len(m.builders)
+	sorted := make([][]keyed, k)
+	names := make([]func(uint32) string, k)
+	total := 0
+	var wg sync.WaitGroup
+	for i, b := range m.builders {
+		total = max(total, int(b.parts.n))
+		m.rank = append(m.rank, make([]uint32, b.parts.n))
+		wg.Go(func() {
+			names[i] = b.parts.strings()
+			sorted[i] = sortNatural(int(b.parts.n), names[i])
+		})
+	}
+	wg.Wait()
+
+	parts := make([]string, 0, total)
+	var values []valueText
+	if m.layout.value >= 0 {
+		values = make([]valueText, 0, total)
+	}
+	head := make([]int, k)
+	alike := newAlike("parts")
+	var last keyed
+	for {
+		best := -1
+		var bestName string
+		for i := range k {
+			if head[i] == len(sorted[i]) {
+				continue
+			}
+			if best < 0 {
+				best = i
+				continue
+			}
+			c := sorted[i][head[i]].compare(sorted[best][head[best]])
+			if c == 0 {
+				if bestName == "" {
+					bestName = names[best](sorted[best][head[best]].id)
+				}
+				c = compareNatural(names[i](sorted[i][head[i]].id), bestName)
+			}
+			if c < 0 {
+				best, bestName = i, ""
+			}
+		}
+		if best < 0 {
+			break
+		}
+		key := sorted[best][head[best]]
+		name := names[best](key.id)
+		part := uint32(len(parts))
+		if part > 0 && key.compare(last) == 0 {
+			alike.consider(parts[part-1], name)
+		}
+		last = key
+		value, ref := valueText{}, agreement.Missing
+		rows := 0
+		for i := best; i < k; i++ {
+			if head[i] == len(sorted[i]) || i > best && (sorted[i][head[i]].compare(key) != 0 || names[i](sorted[i][head[i]].id) != name) {
+				continue
+			}
+			id := sorted[i][head[i]].id
+			head[i]++
+			m.rank[i][id] = part
+			e := m.builders[i].parts.entry(id)
+			if rows++; rows > 1 && !m.layout.long {
+				m.suspect[part] = true
+			}
+			if e.ref != 0 {
+				c := m.meaning[i][e.ref]
+				if ref != agreement.Missing && c != ref {
+					m.suspect[part] = true
+				}
+				ref = c
+			}
+			if e.valueLen > 0 {
+				if value.builder != 0 && !m.sameValue(value, valueText{uint8(i + 1), id}) {
+					m.suspect[part] = true
+				}
+				if value.builder == 0 {
+					value = valueText{uint8(i + 1), id}
+				}
+			}
+		}
+		parts = append(parts, name)
+		if values != nil {
+			values = append(values, value)
+		}
+	}
+	m.study.Parts, m.values = parts, values
+	m.study.Notes = append(m.study.Notes, alike.notes()...)
+	for i, b := range m.builders {
+		for _, list := range [][]again{b.refs, b.values, b.doubled} {
+			for _, a := range list {
+				m.suspect[m.rank[i][a.part]] = true
+			}
+		}
+	}
+}
+
+func (m *merge) text(v valueText) []byte {
+	p := m.builders[v.builder-1].parts
+	return p.value(p.entry(v.local))
+}
+
+func (m *merge) sameValue(a, b valueText) bool {
+	s, t := m.text(a), m.text(b)
+	if string(s) == string(t) {
+		return true
+	}
+	comma := m.builders[0].comma
+	x, err := parseNumber(s, comma)
+	y, err2 := parseNumber(t, comma)
+	return err == nil && err2 == nil && x == y
+}
+
+// strings returns the names by number, as parts of one string a block.
+func (t *partTable) strings() func(uint32) string {
+	blocks := make([]string, len(t.blocks))
+	for i, b := range t.blocks {
+		blocks[i] = string(b)
+	}
+	return func(id uint32) string {
+		e := t.entry(id)
+		at := e.at & (1<<blockBits - 1)
+		return blocks[e.at>>blockBits][at : at+uint32(e.nameLen)]
+	}
+}
+
+// statement is what one row says of a part.
+type statement struct {
+	line  int
+	ref   agreement.Category
+	word  string
+	value string
+	row   bool // the part has a row of a wide table here
+}
+
+// contradictions looks at the parts of which two rows say different things.
+// What it finds does not depend on which builder read which row: of each part
+// the earliest line counts, and the first line that contradicts it.
+func (m *merge) contradictions() {
+	if len(m.suspect) == 0 {
+		return
+	}
+	said := make(map[uint32][]statement)
+	for i, b := range m.builders {
+		word := func(w uint16) string { return b.words.list[w] }
+		for id := range b.parts.n {
+			part := m.rank[i][id]
+			if !m.suspect[part] {
+				continue
+			}
+			e := b.parts.entry(id)
+			said[part] = append(said[part], statement{line: b.line(e.row), ref: agreement.Missing, row: true})
+			if e.ref != 0 {
+				said[part] = append(said[part], statement{line: b.line(b.refRow(id, e)), ref: m.meaning[i][e.ref], word: word(e.ref - 1)})
+			}
+			if e.valueLen > 0 {
+				said[part] = append(said[part], statement{line: b.line(b.valueRow(id, e)), ref: agreement.Missing, value: string(b.parts.value(e))})
+			}
+		}
+		for _, a := range b.refs {
+			said[m.rank[i][a.part]] = append(said[m.rank[i][a.part]], statement{line: b.line(a.row), ref: m.meaning[i][a.word+1], word: word(a.word)})
+		}
+		for _, a := range b.values {
+			said[m.rank[i][a.part]] = append(said[m.rank[i][a.part]], statement{line: b.line(a.row), ref: agreement.Missing, value: string(a.value)})
+		}
+		for _, a := range b.doubled {
+			said[m.rank[i][a.part]] = append(said[m.rank[i][a.part]], statement{line: a.line, ref: agreement.Missing, row: true})
+		}
+	}
+	for part, list := range said {
+		slices.SortStableFunc(list, func(a, b statement) int { return cmp.Compare(a.line, b.line) })
+		m.contradiction(m.study.Parts[part], list)
+	}
+}
+
+func (m *merge) contradiction(part string, list []statement) {
+	var row, ref, value *statement
+	var refDone, valueDone bool
+	for i := range list {
+		s := &list[i]
+		switch {
+		case s.row && row == nil:
+			row = s
+		case s.row && !m.layout.long:
+			m.add(Problem{Line: s.line, Column: m.layout.part + 1, Found: "the part " + quote(part) + " a second time",
+				Expected: "each part on one line", Text: fmt.Sprintf("it stands on line %d already", row.line)})
+		case s.word != "" && s.ref == noCategory: // is a problem already
+		case s.word != "" && ref == nil:
+			ref = s
+		case s.word != "" && s.ref != ref.ref && !refDone:
+			refDone = true
+			m.add(Problem{Line: s.line, Column: m.layout.reference + 1, Found: fmt.Sprintf("the reference %s of part %s", quote(s.word), quote(part)),
+				Expected: fmt.Sprintf("%s, as on line %d", quote(ref.word), ref.line), Text: "a part has one reference"})
+		case s.value != "":
+			x, err := parseNumber([]byte(s.value), m.builders[0].comma)
+			if valueDone {
+				continue
+			}
+			if err != nil {
+				valueDone = true
+				m.add(Problem{Line: s.line, Column: m.layout.value + 1, Found: quote(s.value) + " as the value of part " + quote(part),
+					Expected: "a number", Text: err.Error()})
+				continue
+			}
+			if value == nil {
+				value = s
+				continue
+			}
+			if y, _ := parseNumber([]byte(value.value), m.builders[0].comma); x != y {
+				valueDone = true
+				m.add(Problem{Line: s.line, Column: m.layout.value + 1, Found: fmt.Sprintf("the value %s of part %s", s.value, quote(part)),
+					Expected: fmt.Sprintf("%s, as on line %d", value.value, value.line), Text: "a part has one value"})
+			}
+		}
+	}
+}
+
+// readValues reads the values as numbers. Those that are none it leaves to
+// contradictions, which knows their lines.
+func (m *merge) readValues() {
+	given := false
+	x := make([]float64, len(m.values))
+	has := make([]bool, len(m.values))
+	for part, v := range m.values {
+		if v.builder == 0 {
+			continue
+		}
+		given, has[part] = true, true
+		var err error
+		if x[part], err = parseNumber(m.text(v), m.builders[0].comma); err != nil {
+			m.suspect[uint32(part)] = true
+		}
+	}
+	if given {
+		m.study.Values, m.study.HasValue = x, has
+	}
+}

@@ -1,0 +1,253 @@
+package study
+
+import (
+	"bytes"
+	"encoding/csv"
+	"errors"
+	"fmt"
+	"io"
+	"slices"
+	"strings"
+	"sync"
+)
+
+// workers is how many builders parse at a time. Two saturate the reader, and
+// each takes the memory of its own table of parts.
+const workers = 2
+
+// readText reads a table of text into builders.
+//
+// As long as no quote has come by, a line is a row and a separator separates:
+// chunks go to the workers, which split them directly. From the first chunk
+// with a quote on, the text goes through encoding/csv.
+func readText(in io.Reader, s Settings) (*table, error) {
+	c, err := newChunker(in)
+	if err != nil {
+		return nil, err
+	}
+	t := &table{}
+	k, comma, err := t.header(c, s)
+	if err != nil || len(t.problems) > 0 {
+		return t, err
+	}
+	var wg sync.WaitGroup
+	jobs := make(chan chunk, 2*workers)
+	for range workers {
+		b := newBuilder(t.layout, comma != ',', false)
+		t.builders = append(t.builders, b)
+		wg.Go(func() {
+			for k := range jobs {
+				b.direct(k, comma)
+				c.release(k)
+			}
+		})
+	}
+	for err == nil && bytes.IndexByte(k.data, '"') < 0 {
+		jobs <- k
+		k, err = c.next()
+	}
+	close(jobs)
+	if err == nil {
+		b := newBuilder(t.layout, comma != ',', false)
+		t.builders = append(t.builders, b)
+		err = b.quoted(&chunkReader{c, k, k.data}, k.line, comma)
+	}
+	wg.Wait()
+	if err == io.EOF {
+		err = nil
+	}
+	if p, ok := problemOf(err); ok {
+		t.problems, err = append(t.problems, p), nil
+	}
+	return t, err
+}
+
+// table is what was read of a table, before it is a study.
+type table struct {
+	layout   *layout
+	line     int    // of the header
+	sheet    string // of a workbook
+	builders []*builder
+	problems []Problem
+}
+
+// header reads the header and returns the rest of the chunk in which it
+// stands, and the separator.
+func (t *table) header(c *chunker, s Settings) (rest chunk, comma byte, err error) {
+	for {
+		k, err := c.next()
+		if err == io.EOF {
+			t.problems = append(t.problems, Problem{Text: "the file holds no table: expected a header line and rows"})
+			return k, 0, nil
+		}
+		if err != nil {
+			if p, ok := problemOf(err); ok {
+				t.problems, err = append(t.problems, p), nil
+			}
+			return k, 0, err
+		}
+		for len(k.data) > 0 {
+			text, n := firstRow(k.data)
+			line := k.line
+			k.data, k.line = k.data[n:], k.line+bytes.Count(k.data[:n], []byte{'\n'})
+			if plain := strings.TrimSpace(text); plain == "" || text[0] == '#' || strings.Trim(plain, ",;\t") == "" {
+				continue
+			} else if sep, ok := strings.CutPrefix(strings.ToLower(plain), "sep="); ok && len(sep) == 1 && strings.Contains(",;\t", sep) {
+				comma = sep[0]
+				continue
+			}
+			if comma == 0 {
+				comma = separator(text)
+			}
+			t.line = line
+			r := newCSV(strings.NewReader(text), comma)
+			fields, err := r.Read()
+			if err != nil {
+				t.problems = append(t.problems, quoteProblem(err, line))
+				return k, comma, nil
+			}
+			var list []Problem
+			t.layout, list = readHeader(fields, s.Ignore)
+			for _, p := range list {
+				p.Line = line
+				t.problems = append(t.problems, p)
+			}
+			return k, comma, nil
+		}
+		c.release(k)
+	}
+}
+
+// firstRow returns the first row of the text, which may have a line end
+// inside quotes, and its length with the line end.
+func firstRow(data []byte) (row string, n int) {
+	inQuotes := false
+	for i, ch := range data {
+		switch {
+		case ch == '"':
+			inQuotes = !inQuotes
+		case ch == '\n' && !inQuotes:
+			return strings.TrimSuffix(string(data[:i]), "\r"), i + 1
+		}
+	}
+	return string(data), len(data)
+}
+
+// separator tells the separator of a table from its header: one that makes
+// "part" a column, then the most frequent one.
+func separator(header string) byte {
+	best, most := byte(','), 0
+	for _, c := range []byte(";\t,") {
+		var b strings.Builder // the header without what stands in quotes
+		inQuotes := false
+		for _, r := range header {
+			if r == '"' {
+				inQuotes = !inQuotes
+			} else if !inQuotes {
+				b.WriteRune(r)
+			}
+		}
+		score := strings.Count(b.String(), string(c))
+		if score == 0 {
+			continue
+		}
+		if fields, err := newCSV(strings.NewReader(header), c).Read(); err == nil &&
+			slices.ContainsFunc(fields, func(f string) bool { return fold(f) == "part" }) {
+			score += len(header)
+		}
+		if score > most {
+			best, most = c, score
+		}
+	}
+	return best
+}
+
+func newCSV(in io.Reader, comma byte) *csv.Reader {
+	r := csv.NewReader(in)
+	r.Comma = rune(comma)
+	r.Comment = '#'
+	r.FieldsPerRecord = -1
+	r.ReuseRecord = true
+	r.TrimLeadingSpace = comma != '\t' // which is itself a space to encoding/csv
+	return r
+}
+
+// direct takes the rows of a chunk that has no quote.
+func (b *builder) direct(k chunk, comma byte) {
+	fields := make([][]byte, 0, len(b.layout.header)+1)
+	line := k.line
+	for data := k.data; len(data) > 0; line++ {
+		row := data
+		if i := bytes.IndexByte(data, '\n'); i >= 0 {
+			row, data = data[:i], data[i+1:]
+		} else {
+			data = nil
+		}
+		if n := len(row); n > 0 && row[n-1] == '\r' {
+			row = row[:n-1]
+		}
+		if len(row) == 0 || row[0] == '#' {
+			continue
+		}
+		fields = fields[:0]
+		for {
+			i := bytes.IndexByte(row, comma)
+			if i < 0 {
+				break
+			}
+			fields = append(fields, row[:i])
+			row = row[i+1:]
+		}
+		b.row(append(fields, row), line)
+	}
+}
+
+// quoted takes rows from encoding/csv. line is the number of the first line.
+func (b *builder) quoted(in io.Reader, line int, comma byte) error {
+	r := newCSV(in, comma)
+	var text []byte
+	var fields [][]byte
+	for {
+		record, err := r.Read()
+		if err != nil {
+			var pe *csv.ParseError
+			if errors.As(err, &pe) {
+				p := quoteProblem(err, line)
+				b.problem(p.Line, -1, p.Found, p.Expected, p.Text)
+				return nil
+			}
+			return err
+		}
+		text, fields = text[:0], fields[:0]
+		for _, f := range record {
+			text = append(text, f...)
+		}
+		at := 0
+		for _, f := range record {
+			fields = append(fields, text[at:at+len(f):at+len(f)])
+			at += len(f)
+		}
+		first, _ := r.FieldPos(0)
+		b.row(fields, line+first-1)
+	}
+}
+
+// quoteProblem explains an error of encoding/csv, whose lines count from the
+// line given.
+func quoteProblem(err error, line int) Problem {
+	var pe *csv.ParseError
+	if !errors.As(err, &pe) {
+		return Problem{Line: line, Text: err.Error()}
+	}
+	p := Problem{Line: line + pe.Line - 1}
+	switch {
+	case errors.Is(err, csv.ErrBareQuote):
+		p.Found = fmt.Sprintf(`a quote (") at character %d, inside a field that does not begin with one`, pe.Column)
+		p.Expected = `the whole field in quotes and each quote in it doubled, as in "12"" pipe"`
+	default:
+		p.Line = line + pe.StartLine - 1
+		p.Found = `a field in quotes (") that does not end, or has a single quote inside`
+		p.Expected = "a closing quote before the separator, and each quote inside doubled"
+	}
+	return p
+}
