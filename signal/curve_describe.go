@@ -119,11 +119,11 @@ func (d *dataset) atLimit(c *Curve, b *block, k int) Estimate {
 		b.m.shift[k] = shift
 		copy(b.s.theta, last)
 		b.s.theta[cut] = t
-		out := b.s.maximise(cut, 1e-12)
+		out := b.s.maximise(cut, profileTolerance)
 		if !out.converged {
 			copy(b.s.theta, b.theta)
 			b.s.theta[cut] = t
-			if out = b.s.maximise(cut, 1e-12); !out.converged {
+			if out = b.s.maximise(cut, profileTolerance); !out.converged {
 				return math.NaN()
 			}
 		}

@@ -96,7 +96,7 @@ func (d *dataset) fit(search bool) (*Curve, error) {
 	}
 	if search {
 		if overlap == 2 {
-			c.SameSigma = d.sameSigma(c, hs)
+			c.SameSigma = d.sameSigma(c)
 		}
 		d.outliers(c, hs)
 	}

@@ -90,9 +90,10 @@ func (d *dataset) robust(hs [2]half) *Curve {
 	b.s.low = math.Log(d.smallestGap())
 	for try := range 2 {
 		d.startAt(b, hs, try)
-		out := b.s.maximise(absent, 1e-9)
-		if out.converged && out.loglik > b.loglik {
+		out := b.s.maximise(absent, 1e-5)
+		if out.converged {
 			b.theta, b.loglik = append(b.theta[:0], b.s.theta...), out.loglik
+			break
 		}
 	}
 	if b.theta == nil {

@@ -52,6 +52,9 @@ type term struct {
 func (t *term) at(link Link, z [2]float64, has [2]bool, accepted, rejected, epsilon float64) {
 	*t = term{possible: true}
 	below, above := [2]float64{1, 0}, [2]float64{0, 1}
+	if has[0] && has[1] {
+		has = relevant(link, z)
+	}
 	for i := range 2 {
 		if has[i] {
 			below[i], above[i], t.densities[i], t.ratio[i] = link.tails(z[i])
@@ -106,6 +109,19 @@ func (t *term) at(link Link, z [2]float64, has [2]bool, accepted, rejected, epsi
 			t.loglik += rejected * math.Log(q)
 		}
 		t.overQ[0], t.overQ[1] = (1-epsilon)*t.densities[0]/q, (1-epsilon)*t.densities[1]/q
+	}
+}
+
+// relevant tells which of two limits matters to a part: one so far away, and so
+// much farther than the other, that its tail is lost in rounding does not.
+func relevant(link Link, z [2]float64) [2]bool {
+	far, farther := 10.0, 5.0
+	if link == Logit {
+		far, farther = 50, 37
+	}
+	return [2]bool{
+		!(z[0] > far && z[0]-math.Abs(z[1]) > farther),
+		!(z[1] < -far && -z[1]-math.Abs(z[0]) > farther),
 	}
 }
 
@@ -180,7 +196,7 @@ func (m *model) eval(theta, grad, hess []float64) float64 {
 		for i := m.first[g]; i < m.first[g+1]; i++ {
 			a, r := m.accepted[i], m.rejected[i]
 			z := c.z(m.x[i])
-			if c.silent(z, a, r, epsilon) {
+			if c.silent(m.link, z, a, r, epsilon) {
 				continue
 			}
 			t.at(m.link, z, c.has, a, r, epsilon)
@@ -287,12 +303,15 @@ func (c *curveAt) z(x float64) [2]float64 {
 }
 
 // silent tells whether a part lies so far from the limits, on the side that
-// its calls say, that it adds exactly nothing.
-func (c *curveAt) silent(z [2]float64, accepted, rejected, epsilon float64) bool {
+// its calls say, that what it adds is lost in rounding: 8e-24 a call.
+func (c *curveAt) silent(link Link, z [2]float64, accepted, rejected, epsilon float64) bool {
 	if epsilon > 0 {
 		return false
 	}
-	const far = 40
+	far := 10.0
+	if link == Logit {
+		far = 53
+	}
 	if rejected == 0 {
 		return (!c.has[0] || z[0] > far) && (!c.has[1] || z[1] < -far)
 	}

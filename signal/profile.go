@@ -69,12 +69,14 @@ func crossing(inside, first, reach, target float64, root func(float64) float64) 
 
 // profiler finds likelihood-ratio limits of one parameter of a fitted model.
 type profiler struct {
-	s      *solver
-	best   []float64 // maximum likelihood, or the point to start from under separation
-	loglik float64   // its supremum
-	slope  []float64 // how the other parameters move with the one held, to first order
-	param  int
-	last   []float64 // previous solution
+	s       *solver
+	best    []float64 // maximum likelihood, or the point to start from under separation
+	loglik  float64   // its supremum
+	slope   []float64 // how the other parameters move with the one held, to first order
+	first   []float64 // slope at the maximum
+	tangent bool      // slope is known and kept up to date
+	param   int
+	last    []float64 // previous solution
 }
 
 // newProfiler returns a profiler of parameter param. covariance may be nil.
@@ -84,7 +86,9 @@ func newProfiler(s *solver, best []float64, loglik float64, covariance func(i, j
 		for i := range p.slope {
 			p.slope[i] = covariance(i, param) / covariance(param, param)
 		}
+		p.tangent = true
 	}
+	p.first = append([]float64(nil), p.slope...)
 	return p
 }
 
@@ -96,17 +100,29 @@ func (p *profiler) root(value float64) float64 {
 		p.s.theta[i] = p.last[i] + p.slope[i]*d
 	}
 	p.s.theta[p.param] = value
-	out := p.s.maximise(p.param, 1e-12)
+	out := p.s.maximise(p.param, profileTolerance)
 	if !out.converged {
 		copy(p.s.theta, p.best)
 		p.s.theta[p.param] = value
-		if out = p.s.maximise(p.param, 1e-12); !out.converged {
+		if out = p.s.maximise(p.param, profileTolerance); !out.converged {
 			return math.NaN()
+		}
+	}
+	if d != 0 && p.tangent {
+		for i := range p.slope {
+			p.slope[i] = (p.s.theta[i] - p.last[i]) / d
 		}
 	}
 	copy(p.last, p.s.theta)
 	return math.Sqrt(2 * math.Max(0, p.loglik-out.loglik))
 }
 
-// restart forgets the previous solution.
-func (p *profiler) restart() { copy(p.last, p.best) }
+// restart goes back to the first point.
+func (p *profiler) restart() {
+	copy(p.last, p.best)
+	copy(p.slope, p.first)
+}
+
+// profileTolerance is the log-likelihood that a constrained fit may leave to be
+// gained before its last Newton step, which squares it.
+const profileTolerance = 1e-8

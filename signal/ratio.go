@@ -36,14 +36,19 @@ func likelihoodRatio(full, restricted float64, df int, fit LackOfFit) Test {
 }
 
 // sameSigma tests whether both limits have one σ, by fitting the other model.
-func (d *dataset) sameSigma(c *Curve, hs [2]half) *Test {
+func (d *dataset) sameSigma(c *Curve) *Test {
 	e := *d
 	e.options.TwoSigmas = !d.options.TwoSigmas
-	b, err := e.maximum(0, len(d.x), d.has, hs)
-	if err != nil {
-		return &Test{Why: err.Error()}
+	s := newSolver(e.model(0, len(d.x), d.has))
+	g := s.m.groups[0]
+	for k := range 2 {
+		s.theta[g.cut[k]], s.theta[g.logSigma[k]] = c.local[2*k], c.local[2*k+1]
 	}
-	one, two := c.blockLogLikelihood, b.loglik
+	out := s.maximise(absent, 1e-11)
+	if !out.converged || out.atBound {
+		return &Test{Why: "the other fit did not converge"}
+	}
+	one, two := c.blockLogLikelihood, out.loglik
 	if d.options.TwoSigmas {
 		one, two = two, one
 	}
