@@ -19,7 +19,7 @@ func Check(w io.Writer, s *study.Study, term Terminal) error {
 	}
 	p.line(term.bold(plain(title)))
 	p.wrap("The study is read without a problem.", "")
-	p.table(Table{Columns: []Column{{Name: "what"}, {Name: "how many"}}, Rows: holds(s, sum)})
+	p.table(Table{Columns: []Column{{Name: "what"}, {Name: "how many", Long: true}}, Rows: holds(s, sum)})
 	p.table(appraisersTable(sum))
 	if sum.Values != nil && (sum.Values.Lower != nil || sum.Values.Upper != nil) {
 		p.table(nearTable(sum.Values, s.Settings.Unit))
@@ -91,7 +91,7 @@ func holds(s *study.Study, sum study.Summary) [][]Cell {
 }
 
 func appraisersTable(sum study.Summary) Table {
-	t := Table{Title: "Appraisers", Columns: []Column{{Name: "appraiser"}, {"trials", true}, {"parts called", true}, {"calls", true}, {"missing", true}}}
+	t := Table{Title: "Appraisers", Columns: []Column{{Name: "appraiser"}, {Name: "trials", Numbers: true}, {Name: "parts called", Numbers: true}, {Name: "calls", Numbers: true}, {Name: "missing", Numbers: true}}}
 	for _, a := range sum.Appraisers {
 		t.Rows = append(t.Rows, []Cell{say(a.Appraiser), say(trialList(a.Trials)), intCell(a.Parts), intCell(a.Calls), intCell(a.Missing)})
 	}
@@ -111,7 +111,7 @@ func trialList(numbers []int) string {
 }
 
 func nearTable(v *study.ValueSummary, unit string) Table {
-	t := Table{Title: "Parts near the limits", Columns: []Column{{Name: "limit"}, {"at", true}, {"near means within", true}, {"near, bad", true}, {"near, good", true}}}
+	t := Table{Title: "Parts near the limits", Columns: []Column{{Name: "limit"}, {Name: "at", Numbers: true}, {Name: "near means within", Numbers: true}, {Name: "near, bad", Numbers: true}, {Name: "near, good", Numbers: true}}}
 	if unit != "" {
 		unit = " " + unit
 	}

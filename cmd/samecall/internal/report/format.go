@@ -12,26 +12,31 @@ import (
 
 // percent writes a share in percent. 0 and 100 are written for none and all
 // only, never for nearly so.
-func percent(share float64) string { return digits(share) + " %" }
+func percent(share float64) string { return digits(share, 19.95) + " %" }
 
-func digits(share float64) string {
+// digits writes a share in percent, with one decimal below the percentage given.
+func digits(share, oneDecimal float64) string {
 	p := 100 * share
+	decimals := func(n int) string {
+		scale := math.Pow10(n)
+		return strconv.FormatFloat(math.Round(p*scale)/scale, 'f', n, 64)
+	}
 	switch {
 	case p == 0 || share == 1:
-		return strconv.FormatFloat(p, 'f', 0, 64)
+		return decimals(0)
 	case p < 0.095:
 		return strconv.FormatFloat(p, 'g', 1, 64)
-	case p < 9.95:
-		return strconv.FormatFloat(p, 'f', 1, 64)
-	case p > 99:
+	case p < oneDecimal:
+		return decimals(1)
+	case p > 99: // never 100.0
 		return strconv.FormatFloat(math.Floor(10*p)/10, 'f', 1, 64)
 	}
-	return strconv.FormatFloat(p, 'f', 0, 64)
+	return decimals(0)
 }
 
-// between writes the limits of an interval of a share, in percent.
+// betweenPercent writes the limits of an interval of a share, in percent.
 func betweenPercent(i interval.Interval) string {
-	return "(" + digits(i.Lower) + "–" + digits(i.Upper) + ")"
+	return "(" + digits(i.Lower, 9.95) + "–" + digits(i.Upper, 9.95) + ")"
 }
 
 // figure writes a kappa: two digits, a true minus, and 1.00 for 1 only.
@@ -87,6 +92,21 @@ func probability(p float64) string {
 // number writes a value of the study as short as it can be read back.
 func number(x float64) string {
 	return strings.Replace(strconv.FormatFloat(x, 'f', -1, 64), "-", "−", 1)
+}
+
+// alike writes values of one kind with the same number of decimals: those of
+// the one that needs most.
+func alike(values ...float64) []string {
+	decimals := 0
+	for _, v := range values {
+		_, after, _ := strings.Cut(strconv.FormatFloat(v, 'f', -1, 64), ".")
+		decimals = max(decimals, len(after))
+	}
+	out := make([]string, len(values))
+	for i, v := range values {
+		out[i] = strings.Replace(strconv.FormatFloat(v, 'f', decimals, 64), "-", "−", 1)
+	}
+	return out
 }
 
 // count writes a number of things, in groups of three digits.

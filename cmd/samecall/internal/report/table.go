@@ -1,8 +1,6 @@
 package report
 
 import (
-	"slices"
-
 	"github.com/jedib0t/go-pretty/v6/table"
 	"github.com/jedib0t/go-pretty/v6/text"
 )
@@ -20,7 +18,8 @@ type Table struct {
 // Column is a column of a Table.
 type Column struct {
 	Name    string
-	Numbers bool // set flush right
+	Numbers bool // set flush right, and never cut
+	Long    bool // text that goes on in further lines where there is no room
 }
 
 // Cell is a cell of a Table: what is read and, for programs, the number
@@ -58,34 +57,59 @@ func (t Table) render(width int) string {
 	for _, row := range t.Rows {
 		var cells table.Row
 		for i, c := range row {
-			cells = append(cells, text.Snip(plain(c.Text), room[i], "…"))
+			cell := plain(c.Text)
+			if t.Columns[i].Long {
+				cell = text.WrapSoft(cell, room[i])
+			} else {
+				cell = text.Snip(cell, room[i], "…")
+			}
+			cells = append(cells, cell)
 		}
 		w.AppendRow(cells)
 	}
 	return trimLines(w.Render())
 }
 
+const gap = 2 // behind each column
+
+// leastRoom is what a column keeps however narrow the terminal is.
+const leastRoom = 8
+
 // fit returns the room of each column: its widest cell, less where the table
-// would be wider than the terminal. The widest columns give way first.
+// would be wider than the terminal. Names and long texts give way, the widest
+// first; figures are never cut, so that a table of many figures may still be
+// too wide.
 func (t Table) fit(width int) []int {
-	const gap = 2
 	room := make([]int, len(t.Columns))
 	total := 0
 	for i, c := range t.Columns {
-		room[i] = text.StringWidthWithoutEscSequences(c.Name)
+		room[i] = text.StringWidthWithoutEscSequences(plain(c.Name))
 		for _, row := range t.Rows {
 			room[i] = max(room[i], text.StringWidthWithoutEscSequences(plain(row[i].Text)))
 		}
 		total += room[i] + gap
 	}
-	const least = 6
 	for total > width {
-		widest := slices.Index(room, slices.Max(room))
-		if room[widest] <= least {
+		widest := -1
+		for i, c := range t.Columns {
+			if !c.Numbers && room[i] > leastRoom && (widest < 0 || room[i] > room[widest]) {
+				widest = i
+			}
+		}
+		if widest < 0 {
 			break
 		}
 		room[widest]--
 		total--
 	}
 	return room
+}
+
+// width returns how many columns of a terminal the table takes in the room given.
+func (t Table) width(room []int) int {
+	total := 0
+	for _, r := range room {
+		total += r + gap
+	}
+	return total
 }

@@ -2,6 +2,7 @@ package report
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"samecall/agreement"
@@ -22,18 +23,10 @@ func Tables(r *judge.Result) []Table {
 		s.Note = squareNote
 		out = append(out, s, pairsTable(r))
 	}
-	out = append(out, coefficientsTable(r))
-	if t := categoriesTable(r); len(t.Rows) > 0 {
-		out = append(out, t)
-	}
+	out = append(out, coefficientsTable(r), weightedTable(r), categoriesTable(r))
 	out = append(out, crossTables(r)...)
-	if t := directionTable(r); len(t.Rows) > 0 {
-		out = append(out, t)
-	}
-	if t := partsTable(r); len(t.Rows) > 0 {
-		out = append(out, t)
-	}
-	return out
+	out = append(out, directionTable(r), partsTable(r))
+	return slices.DeleteFunc(out, func(t Table) bool { return len(t.Rows) == 0 })
 }
 
 const squareNote = "Share of parts on which all calls are alike · kappa. In brackets, each appraiser with itself; last column, against the reference."
@@ -66,7 +59,7 @@ func againstTable(r *judge.Result, all bool) Table {
 	t := Table{
 		Name:    "appraisers",
 		Title:   "Against the reference",
-		Columns: []Column{{Name: "appraiser"}, {"effectiveness", true}, {"miss rate", true}, {"false-alarm rate", true}, {"kappa", true}},
+		Columns: []Column{{Name: "appraiser"}, {Name: "effectiveness", Numbers: true}, {Name: "miss rate", Numbers: true}, {Name: "false-alarm rate", Numbers: true}, {Name: "kappa", Numbers: true}},
 		Note:    fmt.Sprintf("In brackets the %s interval, the part being the sampled unit.", percent(r.Options.Confidence)),
 	}
 	row := func(name string, a agreement.Against) {
@@ -86,9 +79,9 @@ func errorsTable(r *judge.Result) Table {
 	t := Table{
 		Name:  "errors",
 		Title: "Counts behind the rates",
-		Columns: []Column{{Name: "appraiser"}, {"parts right", true}, {"misses, of calls on bad", true}, {"worth, calls", true},
-			{"false alarms, of calls on good", true}, {"worth, calls", true}, {"d′", true}, {"criterion", true}},
-		Note: "Worth: how many independent calls the calls are worth, since calls on one part are alike. d′: how well bad is told from good; criterion: below 0 leans to rejecting, above 0 to accepting.",
+		Columns: []Column{{Name: "appraiser"}, {Name: "parts right", Numbers: true}, {Name: "misses", Numbers: true}, {Name: "worth", Numbers: true},
+			{Name: "false alarms", Numbers: true}, {Name: "worth", Numbers: true}, {Name: "d′", Numbers: true}, {Name: "criterion", Numbers: true}},
+		Note: "Misses of the calls on bad parts, false alarms of those on good parts. Worth: how many independent calls the calls are worth, since calls on one part are alike. d′: how well bad is told from good; criterion: below 0 leans to rejecting, above 0 to accepting.",
 	}
 	worth := func(s agreement.Share) Cell {
 		if s.Absent != nil {
@@ -116,7 +109,7 @@ func withinTable(r *judge.Result) Table {
 	t := Table{
 		Name:    "within",
 		Title:   "Within appraiser: does each repeat its own call?",
-		Columns: []Column{{Name: "appraiser"}, {"parts alike", true}, {"share", true}, {"kappa over trials", true}},
+		Columns: []Column{{Name: "appraiser"}, {Name: "parts alike", Numbers: true}, {Name: "share", Numbers: true}, {Name: "kappa over trials", Numbers: true}},
 	}
 	for a, w := range r.Agreement.Within {
 		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), ofCell(w.Share), shareCell(w.Share), kappaCell(w.Kappa)})
@@ -128,20 +121,38 @@ func pairsTable(r *judge.Result) Table {
 	t := Table{
 		Name:    "pairs",
 		Title:   "Between appraisers: each two",
-		Columns: []Column{{Name: "first"}, {Name: "second"}, {"parts alike", true}, {"share", true}, {"calls alike", true}, {"kappa", true}},
+		Columns: []Column{{Name: "first"}, {Name: "second"}, {Name: "parts alike", Numbers: true}, {Name: "share", Numbers: true}, {Name: "calls alike", Numbers: true}, {Name: "kappa", Numbers: true}},
 		Note:    pairingNote(r.Options.Pairing),
-	}
-	weighted := r.Options.Ordered && len(r.Study.Categories) > 2
-	if weighted {
-		t.Columns = append(t.Columns, Column{"linear", true}, Column{"quadratic", true})
 	}
 	for _, p := range r.Agreement.Between.Pairs {
 		row := []Cell{say(r.Study.Appraisers[p.A]), say(r.Study.Appraisers[p.B]), ofCell(p.Share), shareCell(p.Share),
 			say(count(p.Alike) + " of " + count(p.Pairs)), kappaCell(p.Kappa)}
-		if weighted {
-			row = append(row, kappaCell(*p.Linear), kappaCell(*p.Quadratic))
-		}
 		t.Rows = append(t.Rows, row)
+	}
+	return t
+}
+
+// weightedTable gives the kappas that weigh errors by their steps; empty
+// where categories have no order.
+func weightedTable(r *judge.Result) Table {
+	t := Table{
+		Name:    "weighted",
+		Title:   "Kappa weighted by the steps between grades",
+		Columns: []Column{{Name: "first"}, {Name: "second"}, {Name: "linear", Numbers: true}, {Name: "quadratic", Numbers: true}},
+	}
+	add := func(first, second string, linear, quadratic *agreement.Estimate) {
+		if linear != nil && quadratic != nil {
+			t.Rows = append(t.Rows, []Cell{say(first), say(second), kappaCell(*linear), kappaCell(*quadratic)})
+		}
+	}
+	for _, p := range r.Agreement.Between.Pairs {
+		add(r.Study.Appraisers[p.A], r.Study.Appraisers[p.B], p.Linear, p.Quadratic)
+	}
+	for a, g := range r.Agreement.Against {
+		add(r.Study.Appraisers[a], "reference", g.Linear, g.Quadratic)
+	}
+	if all := r.Agreement.All; all != nil {
+		add(together, "reference", all.Linear, all.Quadratic)
 	}
 	return t
 }
@@ -158,7 +169,7 @@ func coefficientsTable(r *judge.Result) Table {
 	t := Table{
 		Name:    "between",
 		Title:   "All appraisers together",
-		Columns: []Column{{Name: "figure"}, {"value", true}, {Name: "what it tells"}},
+		Columns: []Column{{Name: "figure"}, {Name: "value", Numbers: true}, {Name: "what it tells", Long: true}},
 	}
 	add := func(name string, c Cell, what string) { t.Rows = append(t.Rows, []Cell{say(name), c, say(what)}) }
 	add("parts alike", shareCell(b.Share), "every call of every appraiser is the same")
@@ -167,10 +178,6 @@ func coefficientsTable(r *judge.Result) Table {
 	add("Krippendorff's alpha", kappaCell(b.Alpha), "the same, corrected for few calls")
 	add("same appraiser", kappaCell(b.SameAppraiser), "two calls on a part by one appraiser")
 	add("different appraisers", kappaCell(b.DifferentAppraisers), "two calls on a part by two appraisers")
-	if all := r.Agreement.All; all != nil && all.Linear != nil {
-		add("kappa, linear weights", kappaCell(*all.Linear), "all calls against the reference, by steps")
-		add("kappa, quadratic weights", kappaCell(*all.Quadratic), "the same, by squared steps")
-	}
 	return t
 }
 
@@ -183,12 +190,12 @@ func categoriesTable(r *judge.Result) Table {
 	t := Table{
 		Name:    "categories",
 		Title:   "Kappa of each category against all others",
-		Columns: []Column{{Name: "category"}, {"between", true}},
+		Columns: []Column{{Name: "category"}, {Name: "between", Numbers: true}},
 	}
 	against := r.Agreement.All != nil
 	if against {
 		for _, n := range r.Study.Appraisers {
-			t.Columns = append(t.Columns, Column{n, true})
+			t.Columns = append(t.Columns, Column{Name: n, Numbers: true})
 		}
 	}
 	for k, name := range r.Study.Categories {
@@ -225,9 +232,9 @@ func crossTables(r *judge.Result) []Table {
 func crossTable(r *judge.Result, x agreement.Table) Table {
 	t := Table{Columns: []Column{{Name: "call"}}}
 	for _, c := range r.Study.Categories {
-		t.Columns = append(t.Columns, Column{"truly " + c, true})
+		t.Columns = append(t.Columns, Column{Name: "truly " + c, Numbers: true})
 	}
-	t.Columns = append(t.Columns, Column{"calls", true})
+	t.Columns = append(t.Columns, Column{Name: "calls", Numbers: true})
 	sums := make([]int, len(r.Study.Categories))
 	row := func(name string, counts []int) {
 		cells, sum := []Cell{say(name)}, 0
@@ -252,7 +259,7 @@ func directionTable(r *judge.Result) Table {
 	t := Table{
 		Name:    "direction",
 		Title:   "Do the errors lean one way?",
-		Columns: []Column{{Name: "appraiser"}, {Name: "test"}, {"statistic", true}, {"degrees of freedom", true}, {"p", true}},
+		Columns: []Column{{Name: "appraiser"}, {Name: "test"}, {Name: "statistic", Numbers: true}, {Name: "degrees of freedom", Numbers: true}, {Name: "p", Numbers: true}},
 		Note:    "A small p: the calls differ from the reference more often one way than the other. The tests take calls as independent; with several calls on a part p is too small.",
 	}
 	add := func(a int, name string, test *agreement.Test) {
@@ -278,7 +285,7 @@ const manyParts = 40
 
 // partsTable names the parts that were wrong every time or mixed.
 func partsTable(r *judge.Result) Table {
-	t := Table{Name: "parts", Title: "Parts to look at", Columns: []Column{{Name: "appraiser"}, {Name: "what"}, {"parts", true}, {Name: "which"}}}
+	t := Table{Name: "parts", Title: "Parts to look at", Columns: []Column{{Name: "appraiser"}, {Name: "what"}, {Name: "parts", Numbers: true}, {Name: "which", Long: true}}}
 	add := func(name, what string, list []int) {
 		if len(list) > 0 {
 			t.Rows = append(t.Rows, []Cell{say(name), say(what), intCell(len(list)), say(partList(r, list))})

@@ -120,7 +120,8 @@ func limitsText(r *judge.Result) string {
 	}
 	switch {
 	case lower != nil && upper != nil:
-		return number(*lower) + " to " + number(*upper) + unit
+		limits := alike(*lower, *upper)
+		return limits[0] + " to " + limits[1] + unit
 	case lower != nil:
 		return "at least " + number(*lower) + unit
 	case upper != nil:
@@ -184,6 +185,9 @@ func worstFirst(r *judge.Result) []int {
 	return order
 }
 
+// squareHead is how much of a name heads a column of the square.
+const squareHead = 14
+
 // square writes the agreement square, with kappas where they fit, and leaves
 // it to --full where not even the shares do.
 func (p *printer) square(r *judge.Result) {
@@ -193,18 +197,10 @@ func (p *printer) square(r *judge.Result) {
 	s := newSquare(r)
 	for _, kappas := range []bool{true, false} {
 		t := s.table(kappas)
-		room := t.fit(p.term.Width)
-		full := t.fit(1 << 20)
-		// Names may be cut, figures may not.
-		cut := false
-		for i := 1; i < len(room); i++ {
-			widest := 0
-			for _, row := range t.Rows {
-				widest = max(widest, text.StringWidthWithoutEscSequences(row[i].Text))
-			}
-			cut = cut || room[i] < min(full[i], widest)
+		for i := range t.Columns { // the heads are names
+			t.Columns[i].Name = text.Snip(plain(t.Columns[i].Name), squareHead, "…")
 		}
-		if cut {
+		if t.width(t.fit(p.term.Width)) > p.term.Width {
 			continue
 		}
 		t.Note = squareNote
