@@ -27,11 +27,11 @@ type Example struct {
 
 var examples = []Example{
 	{"bore", "Pivot bore 10 H9 of a gate hinge (invented data)",
-		"plug gauge, two limits with values, three shifts: a worn go member, and one shift that is inconsistent"},
+		"plug gauge, two limits, values, three shifts: a worn go member, one inconsistent shift"},
 	{"surface", "Coating of a meter cover, kinds of defect (invented data)",
-		"visual inspection, four kinds of defect, four stations, some calls missing: one station confuses two kinds"},
+		"four kinds of defect, four stations, missing calls: one station confuses two kinds"},
 	{"shade", "Shade of a stained drawer front, four grades (invented data)",
-		"visual grading from best to worst, three people: one grades more strictly than the reference"},
+		"grades from best to worst, three people: one is stricter than the reference"},
 	{"weld", "Weld seam of a bench frame, camera and inspectors (invented data)",
 		"no reference, a camera and two inspectors: the camera stands apart"},
 }

@@ -26,8 +26,10 @@ func TestNamesAreTheFolders(t *testing.T) {
 			t.Errorf("%s is listed twice, or has no folder", e.Name)
 		}
 		delete(have, e.Name)
-		if e.About == "" || strings.Contains(e.Title+e.About, "\n") {
-			t.Errorf("%s: Title and About take one line each: %q", e.Name, e)
+		for _, line := range []string{e.Title, e.About} { // a listing fits 100 columns
+			if line == "" || len(line) > 90 || strings.Contains(line, "\n") {
+				t.Errorf("%s: %q is not one line of at most 90", e.Name, line)
+			}
 		}
 	}
 	for name := range have {
