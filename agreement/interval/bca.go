@@ -37,7 +37,9 @@ func BCa(estimate float64, resampled []float64, leftOut []LeftOut, confidence fl
 	share = min(max(share, 0.5/B), 1-0.5/B)
 	z0 := distuv.UnitNormal.Quantile(share)
 	a := Acceleration(leftOut)
-	z := normalQuantile(confidence)
+	// The expanded confidence of two parts rounds to 1; 38 standard deviations
+	// out, the normal's tail is the smallest that a float holds.
+	z := min(normalQuantile(confidence), 38)
 	at := func(z float64) float64 {
 		d := 1 - a*(z0+z)
 		if d <= 0 { // past the pole of the correction: the extreme

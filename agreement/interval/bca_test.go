@@ -59,3 +59,13 @@ func TestBCaHoldsTheEstimate(t *testing.T) {
 		}
 	}
 }
+
+// The confidence expanded for two parts rounds to 1.
+func TestBCaOfTwoParts(t *testing.T) {
+	for _, leftOut := range [][]LeftOut{nil, {{0.2, 1}, {0.9, 1}}, {{0.2, 1}, {0.9, 5}}, {{0.2, 5}, {0.9, 1}}} {
+		got := BCa(0.5, []float64{0.1, 0.4, 0.5, 0.6, 0.9}, leftOut, Expanded(0.95, 2))
+		if want := (Interval{0.1, 0.9}); got != want {
+			t.Errorf("%v: %v, want all that was resampled, %v", leftOut, got, want)
+		}
+	}
+}

@@ -73,5 +73,5 @@ func lower(x, n, tail float64) float64 {
 // normalQuantile returns z such that a standard normal lies within ±z with
 // the confidence given.
 func normalQuantile(confidence float64) float64 {
-	return distuv.UnitNormal.Quantile((1 + confidence) / 2)
+	return -distuv.UnitNormal.Quantile((1 - confidence) / 2) // from the tail, where floats are dense
 }
