@@ -42,6 +42,17 @@ func (c contributions) of(pattern int) []float64 {
 	return c.vectors[pattern*c.size : (pattern+1)*c.size : (pattern+1)*c.size]
 }
 
+// contributes reports whether the parts of a pattern bear on the coefficient
+// at all: by a comparison, or by a single call that counts for chance.
+func (c contributions) contributes(pattern int) bool {
+	for _, v := range c.of(pattern) {
+		if v != 0 {
+			return true
+		}
+	}
+	return false
+}
+
 // sums returns the sum over all parts.
 func (c contributions) sums() []float64 {
 	s := make([]float64, c.size)

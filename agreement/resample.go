@@ -71,7 +71,7 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 		e.Unbounded = errOnePart
 		return e
 	}
-	e.StandardError = standardError(c, z, sums, parts)
+	e.StandardError = standardError(c, z, sums)
 	// However many parts there are, an interval is never narrower than the
 	// share of parts that disagree is certain: where few do, resampling sees
 	// too little of what could have been.
@@ -158,12 +158,11 @@ func leaveOneOut(c coefficient, z contributions, sums []float64) []interval.Left
 	left := make([]interval.LeftOut, 0, len(z.parts))
 	rest := make([]float64, z.size)
 	for i, n := range z.parts {
-		v := z.of(i)
-		if v[compared] == 0 {
+		if !z.contributes(i) {
 			continue
 		}
-		for j := range rest {
-			rest[j] = sums[j] - v[j]
+		for j, v := range z.of(i) {
+			rest[j] = sums[j] - v
 		}
 		if k, ok := evaluate(c, rest); ok {
 			left = append(left, interval.LeftOut{Value: k, Parts: n})
@@ -173,25 +172,36 @@ func leaveOneOut(c coefficient, z contributions, sums []float64) []interval.Left
 }
 
 // standardError returns the standard error of a coefficient linearised over
-// parts: its derivative by the sums, times what each part contributes.
-func standardError(c coefficient, z contributions, sums []float64, parts int) float64 {
+// parts: its derivative by the sums, times what each part contributes. Parts
+// with a single call count where they bear on chance.
+func standardError(c coefficient, z contributions, sums []float64) float64 {
 	g := make([]float64, z.size)
 	c.gradient(sums, g)
-	var sum, squares float64
+	influence := make([]float64, len(z.parts))
+	var sum, largest, N float64
 	for i, n := range z.parts {
-		v := z.of(i)
-		if v[compared] == 0 {
+		if !z.contributes(i) {
 			continue
 		}
-		var u float64
-		for j := range g {
-			u += g[j] * v[j]
+		for j, v := range z.of(i) {
+			influence[i] += g[j] * v
+			largest = max(largest, math.Abs(g[j]*v))
 		}
-		sum += float64(n) * u
-		squares += float64(n) * u * u
+		sum += float64(n) * influence[i]
+		N += float64(n)
 	}
-	N := float64(parts)
-	return math.Sqrt(max(0, squares-sum*sum/N) * N / (N - 1))
+	var squares float64
+	for i, n := range z.parts {
+		if z.contributes(i) {
+			d := influence[i] - sum/N
+			squares += float64(n) * d * d
+		}
+	}
+	// What rounding alone leaves is no variance: its root would not be small.
+	if rounding := 1e-13 * largest; squares <= N*rounding*rounding {
+		return 0
+	}
+	return math.Sqrt(squares * N / (N - 1))
 }
 
 // byShareOfParts carries the exact interval of the share of parts that
