@@ -54,6 +54,7 @@ type builder struct {
 	words      *names
 
 	records [][]record
+	block   []record // being filled
 	rows    uint32
 	jumps   []jump // where the line number does not follow from the row before
 
@@ -320,12 +321,19 @@ func (b *builder) call(part uint32, column uint16, word []byte, line, field int)
 		r.word = w + 1
 		b.called[column] = true
 	}
-	n := len(b.records)
-	if n == 0 || len(b.records[n-1]) == 1<<recordBits {
-		b.records = append(b.records, make([]record, 0, 1<<recordBits))
-		n++
+	if len(b.block) == cap(b.block) {
+		b.flush()
+		b.block = make([]record, 0, 1<<recordBits)
 	}
-	b.records[n-1] = append(b.records[n-1], r)
+	b.block = append(b.block, r)
+}
+
+// flush ends the block of records being filled.
+func (b *builder) flush() {
+	if len(b.block) > 0 {
+		b.records = append(b.records, b.block)
+		b.block = nil
+	}
 }
 
 func (b *builder) tooManyWords(line, field int) {

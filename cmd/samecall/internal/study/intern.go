@@ -36,7 +36,10 @@ type partTable struct {
 	entries [][]partEntry
 	n       uint32
 	blocks  [][]byte
-	last    uint32 // the part of the row before
+
+	last      uint32 // the part of the row before, its entry and its name
+	lastEntry *partEntry
+	lastName  []byte
 }
 
 func newPartTable() *partTable {
@@ -62,17 +65,14 @@ func (t *partTable) value(e *partEntry) []byte {
 // trial: the part of the row before, or the one that once came after it, is
 // tried first.
 func (t *partTable) find(name []byte) (id uint32, e *partEntry, ok bool) {
-	if t.n > 0 {
-		e = t.entry(t.last)
+	if bytes.Equal(t.lastName, name) {
+		return t.last, t.lastEntry, true
+	}
+	if next := t.last + 1; next < t.n {
+		e = t.entry(next)
 		if bytes.Equal(t.name(e), name) {
-			return t.last, e, true
-		}
-		if next := t.last + 1; next < t.n {
-			e = t.entry(next)
-			if bytes.Equal(t.name(e), name) {
-				t.last = next
-				return next, e, true
-			}
+			t.setLast(next, e)
+			return next, e, true
 		}
 	}
 	tag := t.tag(name)
@@ -86,11 +86,15 @@ func (t *partTable) find(name []byte) (id uint32, e *partEntry, ok bool) {
 			id = uint32(s) - 1
 			e = t.entry(id)
 			if bytes.Equal(t.name(e), name) {
-				t.last = id
+				t.setLast(id, e)
 				return id, e, true
 			}
 		}
 	}
+}
+
+func (t *partTable) setLast(id uint32, e *partEntry) {
+	t.last, t.lastEntry, t.lastName = id, e, t.name(e)
 }
 
 func (t *partTable) tag(name []byte) uint32 { return uint32(maphash.Bytes(t.seed, name)) }
@@ -117,8 +121,9 @@ func (t *partTable) add(name, value []byte, row uint32) (uint32, *partEntry) {
 	b := &t.entries[id>>entryBits]
 	*b = append(*b, partEntry{at: t.store(name, value), row: row, nameLen: uint16(len(name)), valueLen: uint16(len(value))})
 	t.n++
-	t.last = id
-	return id, &(*b)[id&(1<<entryBits-1)]
+	e := &(*b)[id&(1<<entryBits-1)]
+	t.setLast(id, e)
+	return id, e
 }
 
 // setValue gives an entry a value that was not there when it was added.
@@ -170,6 +175,7 @@ type names struct {
 	spellings []spelling
 	known     map[string]uint16 // spelling to its place in spellings
 	cache     [256]uint16       // place in spellings plus 1
+	single    [256]uint16       // number plus 1 of a spelling of one byte
 }
 
 type spelling struct {
@@ -190,6 +196,11 @@ func cacheSlot(w []byte) int {
 // id returns the number of a word that is not empty. ok is false if there are
 // more than maxNames.
 func (n *names) id(w []byte) (id uint16, ok bool) {
+	if len(w) == 1 {
+		if c := n.single[w[0]]; c != 0 {
+			return c - 1, true
+		}
+	}
 	slot := &n.cache[cacheSlot(w)]
 	if c := int(*slot) - 1; c >= 0 {
 		if s := &n.spellings[c]; bytes.Equal(s.text, w) {
@@ -214,5 +225,9 @@ func (n *names) id(w []byte) (id uint16, ok bool) {
 		n.known[string(w)] = c
 	}
 	*slot = c + 1
-	return n.spellings[c].id, true
+	id = n.spellings[c].id
+	if len(w) == 1 {
+		n.single[w[0]] = id + 1
+	}
+	return id, true
 }

@@ -3,6 +3,7 @@ package study
 import (
 	"cmp"
 	"fmt"
+	"math"
 	"slices"
 	"sync"
 
@@ -18,15 +19,8 @@ type merge struct {
 	meaning  [][]agreement.Category // of each builder's words, by number plus 1; [0] is Missing
 	columns  [][]int32              // of each builder's columns, the column in Ratings; −1: none
 	rank     [][]uint32             // of each builder's parts, the part in Ratings
-	values   []valueText
 	suspect  map[uint32]bool // parts of which two rows say different things
 	more     int
-}
-
-// valueText is where the text of a part's value lies.
-type valueText struct {
-	builder uint8 // plus 1; 0: no value
-	local   uint32
 }
 
 // noCategory marks a word without a meaning.
@@ -35,6 +29,7 @@ const noCategory agreement.Category = agreement.Missing - 1
 func (t *table) study(s Settings) (*Study, []Problem, int) {
 	m := &merge{table: t, settings: s, study: &Study{Settings: s}, suspect: make(map[uint32]bool)}
 	for _, b := range t.builders {
+		b.flush()
 		m.problems = append(m.problems, b.problems...)
 		m.more += b.more
 	}
@@ -44,7 +39,6 @@ func (t *table) study(s Settings) (*Study, []Problem, int) {
 	if len(m.study.Parts) == 0 && len(m.problems) == 0 {
 		m.add(Problem{Line: m.line, Text: "no rows stand below the header; lines that begin with # are comments"})
 	}
-	m.readValues()
 	m.contradictions()
 	if trials != nil {
 		m.fill(trials)
@@ -273,24 +267,27 @@ func joinInts(n []int) string {
 func (m *merge) mergeParts() {
 	k := len(m.builders)
 	sorted := make([][]keyed, k)
+	numbers := make([][]float64, k)
 	names := make([]func(uint32) string, k)
-	total := 0
 	var wg sync.WaitGroup
 	for i, b := range m.builders {
-		total = max(total, int(b.parts.n))
 		m.rank = append(m.rank, make([]uint32, b.parts.n))
 		wg.Go(func() {
 			names[i] = b.parts.strings()
 			sorted[i] = sortNatural(int(b.parts.n), names[i])
+			numbers[i] = b.numbersOf()
 		})
 	}
 	wg.Wait()
 
+	total := countKeys(sorted)
 	parts := make([]string, 0, total)
-	var values []valueText
+	var values []float64
+	var hasValue []bool
 	if m.layout.value >= 0 {
-		values = make([]valueText, 0, total)
+		values, hasValue = make([]float64, 0, total), make([]bool, 0, total)
 	}
+	anyValue := false
 	head := make([]int, k)
 	alike := newAlike("parts")
 	var last keyed
@@ -326,7 +323,7 @@ func (m *merge) mergeParts() {
 			alike.consider(parts[part-1], name)
 		}
 		last = key
-		value, ref := valueText{}, agreement.Missing
+		value, has, ref := 0.0, false, agreement.Missing
 		rows := 0
 		for i := best; i < k; i++ {
 			if head[i] == len(sorted[i]) || i > best && (sorted[i][head[i]].compare(key) != 0 || names[i](sorted[i][head[i]].id) != name) {
@@ -347,20 +344,25 @@ func (m *merge) mergeParts() {
 				ref = c
 			}
 			if e.valueLen > 0 {
-				if value.builder != 0 && !m.sameValue(value, valueText{uint8(i + 1), id}) {
+				x := numbers[i][id]
+				if math.IsNaN(x) || has && x != value {
 					m.suspect[part] = true
 				}
-				if value.builder == 0 {
-					value = valueText{uint8(i + 1), id}
+				if !has {
+					value, has = x, true
 				}
 			}
 		}
 		parts = append(parts, name)
 		if values != nil {
-			values = append(values, value)
+			values, hasValue = append(values, value), append(hasValue, has)
+			anyValue = anyValue || has
 		}
 	}
-	m.study.Parts, m.values = parts, values
+	m.study.Parts = parts
+	if anyValue {
+		m.study.Values, m.study.HasValue = values, hasValue
+	}
 	m.study.Notes = append(m.study.Notes, alike.notes()...)
 	for i, b := range m.builders {
 		for _, list := range [][]again{b.refs, b.values, b.doubled} {
@@ -371,20 +373,43 @@ func (m *merge) mergeParts() {
 	}
 }
 
-func (m *merge) text(v valueText) []byte {
-	p := m.builders[v.builder-1].parts
-	return p.value(p.entry(v.local))
+// countKeys returns how many different keys the sorted lists have: the number
+// of parts, or nearly.
+func countKeys(sorted [][]keyed) int {
+	n, head := 0, make([]int, len(sorted))
+	for {
+		var least *keyed
+		for i, list := range sorted {
+			if head[i] < len(list) && (least == nil || list[head[i]].compare(*least) < 0) {
+				least = &list[head[i]]
+			}
+		}
+		if least == nil {
+			return n
+		}
+		n++
+		for i, list := range sorted {
+			if head[i] < len(list) && list[head[i]].compare(*least) == 0 {
+				head[i]++
+			}
+		}
+	}
 }
 
-func (m *merge) sameValue(a, b valueText) bool {
-	s, t := m.text(a), m.text(b)
-	if string(s) == string(t) {
-		return true
+// numbersOf returns the values of a builder's parts as numbers, NaN where there
+// is none or where it is not a number; nil if the table has no values.
+func (b *builder) numbersOf() []float64 {
+	if b.layout.value < 0 {
+		return nil
 	}
-	comma := m.builders[0].comma
-	x, err := parseNumber(s, comma)
-	y, err2 := parseNumber(t, comma)
-	return err == nil && err2 == nil && x == y
+	x := make([]float64, b.parts.n)
+	for id := range x {
+		var err error
+		if x[id], err = parseNumber(b.parts.value(b.parts.entry(uint32(id))), b.comma); err != nil {
+			x[id] = math.NaN()
+		}
+	}
+	return x
 }
 
 // strings returns the names by number, as parts of one string a block.
@@ -488,26 +513,5 @@ func (m *merge) contradiction(part string, list []statement) {
 					Expected: fmt.Sprintf("%s, as on line %d", value.value, value.line), Text: "a part has one value"})
 			}
 		}
-	}
-}
-
-// readValues reads the values as numbers. Those that are none it leaves to
-// contradictions, which knows their lines.
-func (m *merge) readValues() {
-	given := false
-	x := make([]float64, len(m.values))
-	has := make([]bool, len(m.values))
-	for part, v := range m.values {
-		if v.builder == 0 {
-			continue
-		}
-		given, has[part] = true, true
-		var err error
-		if x[part], err = parseNumber(m.text(v), m.builders[0].comma); err != nil {
-			m.suspect[uint32(part)] = true
-		}
-	}
-	if given {
-		m.study.Values, m.study.HasValue = x, has
 	}
 }

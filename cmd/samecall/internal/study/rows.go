@@ -2,10 +2,12 @@ package study
 
 import (
 	"bytes"
+	"encoding/binary"
 	"encoding/csv"
 	"errors"
 	"fmt"
 	"io"
+	"math/bits"
 	"slices"
 	"strings"
 	"sync"
@@ -172,34 +174,60 @@ func newCSV(in io.Reader, comma byte) *csv.Reader {
 	return r
 }
 
-// direct takes the rows of a chunk that has no quote.
+// direct takes the rows of a chunk that has no quote. It looks for separators
+// and line ends in eight bytes at a time.
 func (b *builder) direct(k chunk, comma byte) {
+	const ones = 0x0101010101010101
+	commas, ends := ones*uint64(comma), ones*uint64('\n')
 	fields := make([][]byte, 0, len(b.layout.header)+1)
-	line := k.line
-	for data := k.data; len(data) > 0; line++ {
-		row := data
-		if i := bytes.IndexByte(data, '\n'); i >= 0 {
-			row, data = data[:i], data[i+1:]
-		} else {
-			data = nil
-		}
-		if n := len(row); n > 0 && row[n-1] == '\r' {
-			row = row[:n-1]
-		}
-		if len(row) == 0 || row[0] == '#' {
-			continue
-		}
-		fields = fields[:0]
-		for {
-			i := bytes.IndexByte(row, comma)
-			if i < 0 {
-				break
+	data, line, start := k.data, k.line, 0
+	i := 0
+	for ; i+8 <= len(data); i += 8 {
+		w := binary.LittleEndian.Uint64(data[i:])
+		for m := zeroBytes(w^commas) | zeroBytes(w^ends); m != 0; m &= m - 1 {
+			end := i + bits.TrailingZeros64(m)/8
+			fields = append(fields, data[start:end])
+			start = end + 1
+			if data[end] == '\n' {
+				b.directRow(fields, line)
+				line++
+				fields = fields[:0]
 			}
-			fields = append(fields, row[:i])
-			row = row[i+1:]
 		}
-		b.row(append(fields, row), line)
 	}
+	for ; i < len(data); i++ {
+		if data[i] == comma || data[i] == '\n' {
+			fields = append(fields, data[start:i])
+			start = i + 1
+			if data[i] == '\n' {
+				b.directRow(fields, line)
+				line++
+				fields = fields[:0]
+			}
+		}
+	}
+	if start < len(data) || len(fields) > 0 { // the last line has no end
+		b.directRow(append(fields, data[start:]), line)
+	}
+}
+
+// zeroBytes returns 0x80 in each byte of the result that is zero in x, and 0
+// in each other.
+func zeroBytes(x uint64) uint64 {
+	const low = 0x7f7f7f7f7f7f7f7f
+	return ^((x&low + low) | x | low)
+}
+
+// directRow takes a row unless it is blank or a comment.
+func (b *builder) directRow(fields [][]byte, line int) {
+	last := len(fields) - 1
+	if f := fields[last]; len(f) > 0 && f[len(f)-1] == '\r' {
+		fields[last] = f[:len(f)-1]
+	}
+	if first := fields[0]; len(first) == 0 && last == 0 || len(first) > 0 && first[0] == '#' {
+		return
+	}
+	b.row(fields, line)
 }
 
 // quoted takes rows from encoding/csv. line is the number of the first line.
