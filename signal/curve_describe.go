@@ -172,7 +172,7 @@ func (d *dataset) describeSeparated(c *Curve, h half, f *firthFit) {
 // describeOneSided gives the bound that a limit without a turn still has.
 func (d *dataset) describeOneSided(c *Curve, h half) {
 	l := c.side(h.k)
-	none := Estimate{Confidence: d.options.Confidence, Why: h.why}
+	none := Estimate{Confidence: d.options.Confidence, Why: h.why, Absent: true}
 	l.Cut, l.Offset, l.Sigma, l.Width, l.AtLimit = none, none, none, none, none
 	if h.reversed || !h.hasAccept || h.hasReject {
 		return

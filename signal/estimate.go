@@ -19,12 +19,16 @@ type Estimate struct {
 	SE         float64 // standard error of Value; 0 if there is none
 	Confidence float64 // of the two-sided interval
 	Method     string  // how the interval was made
-	Why        string  // why a bound is missing; empty if both are there
+	Why        string  // why a bound or the value is missing; empty if all are there
+	Absent     bool    // there is no value either
 }
 
 // map1 returns e carried through f, which must be monotone increasing over
 // the interval. slope is f's derivative at the value, for the standard error.
 func (e Estimate) map1(f func(float64) float64, slope float64) Estimate {
+	if e.Absent {
+		return e
+	}
 	e.Value = f(e.Value)
 	if e.HasLower {
 		e.Lower = f(e.Lower)
