@@ -9,6 +9,9 @@ import "samecall/agreement/interval"
 type Estimate struct {
 	Value    float64
 	Interval interval.Interval
+	// OneSided holds the lower and the upper limit, each for itself at the
+	// confidence: what the data show to be reached, and not to be exceeded.
+	OneSided interval.Interval
 	Method   string // how the interval was found
 	// StandardError is that of a coefficient, linearised over parts; 0 for a
 	// share or a rate.
@@ -39,6 +42,7 @@ func shareOfParts(count, of int, confidence float64, none error) Share {
 	return Share{Count: count, Of: of, Estimate: Estimate{
 		Value:    float64(count) / float64(of),
 		Interval: interval.ClopperPearson(count, of, confidence),
+		OneSided: interval.ClopperPearson(count, of, eachSide(confidence)),
 		Method:   "Clopper-Pearson over parts",
 	}}
 }
@@ -50,7 +54,7 @@ func rateOverCalls(clusters []interval.Cluster, opt Options, none error) Share {
 		return Share{Estimate: absent(none)}
 	}
 	s := Share{Count: r.Events, Of: r.Calls, Effective: r.Effective, Estimate: Estimate{
-		Value: r.Value, Interval: r.Interval, Method: "Korn-Graubard over parts",
+		Value: r.Value, Interval: r.Interval, OneSided: interval.KornGraubard(clusters, eachSide(opt.Confidence)).Interval, Method: "Korn-Graubard over parts",
 	}}
 	if opt.Independent {
 		i := interval.ClopperPearson(r.Events, r.Calls, opt.Confidence)
@@ -58,3 +62,7 @@ func rateOverCalls(clusters []interval.Cluster, opt Options, none error) Share {
 	}
 	return s
 }
+
+// eachSide returns the confidence of the two-sided interval whose limits,
+// each for itself, have the confidence given.
+func eachSide(confidence float64) float64 { return max(0, 2*confidence-1) }

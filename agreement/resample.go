@@ -72,31 +72,49 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 		return e
 	}
 	e.StandardError = standardError(c, z, sums)
-	// However many parts there are, an interval is never narrower than the
-	// share of parts that disagree is certain: where few do, resampling sees
-	// too little of what could have been.
-	e.Method = "exact on the share of disagreeing parts"
-	e.Interval = byShareOfParts(c, sums, disagreeing, parts, r.opt.Confidence)
-	if disagreeing > 0 {
-		method, i := r.interval(c, z, sums, e, parts)
-		e.Method = method + ", no narrower than " + e.Method
-		e.Interval.Lower = min(e.Interval.Lower, i.Lower)
-		e.Interval.Upper = max(e.Interval.Upper, i.Upper)
+	b := basis{c, z, sums, value, e.StandardError, parts, disagreeing, nil, nil}
+	if disagreeing > 0 && r.weights != nil && r.afford(z) {
+		if values := r.resample(c, z); len(values) >= min(fewestResamples, r.opt.Resamples) {
+			b.resampled, b.leftOut = values, leaveOneOut(c, z, sums)
+		}
 	}
-	e.Interval.Lower = max(e.Interval.Lower, min(-1, value))
-	e.Interval.Upper = min(e.Interval.Upper, 1)
+	e.Interval, e.Method = b.interval(r.opt.Confidence)
+	e.OneSided, _ = b.interval(eachSide(r.opt.Confidence))
 	return e
 }
 
-func (r *resampler) interval(c coefficient, z contributions, sums []float64, e Estimate, parts int) (string, interval.Interval) {
-	if r.weights != nil && r.afford(z) {
-		values := r.resample(c, z)
-		if len(values) >= min(fewestResamples, r.opt.Resamples) {
-			confidence := interval.Expanded(r.opt.Confidence, parts)
-			return "BCa over parts", interval.BCa(e.Value, values, leaveOneOut(c, z, sums), confidence)
+// basis is what the interval of a coefficient is made from.
+type basis struct {
+	coefficient
+	z                  contributions
+	sums               []float64
+	value, se          float64
+	parts, disagreeing int
+	resampled          []float64 // nil: linearise
+	leftOut            []interval.LeftOut
+}
+
+// interval returns the interval at a confidence, and its method. However many
+// parts there are, it is never narrower than the share of parts that disagree
+// is certain: where few do, resampling sees too little of what could have
+// been.
+func (b basis) interval(confidence float64) (interval.Interval, string) {
+	const exact = "exact on the share of disagreeing parts"
+	i := byShareOfParts(b, b.sums, b.disagreeing, b.parts, confidence)
+	method := exact
+	if b.disagreeing > 0 {
+		var other interval.Interval
+		if b.resampled != nil {
+			method = "BCa over parts"
+			other = interval.BCa(b.value, b.resampled, b.leftOut, interval.Expanded(confidence, b.parts))
+		} else {
+			method = "linearised over parts"
+			other = interval.Linearised(b.value, b.se, b.parts, confidence)
 		}
+		method += ", no narrower than " + exact
+		i = interval.Interval{Lower: min(i.Lower, other.Lower), Upper: max(i.Upper, other.Upper)}
 	}
-	return "linearised over parts", interval.Linearised(e.Value, e.StandardError, parts, r.opt.Confidence)
+	return interval.Interval{Lower: max(i.Lower, min(-1, b.value)), Upper: min(i.Upper, 1)}, method
 }
 
 func (r *resampler) afford(z contributions) bool {

@@ -218,3 +218,19 @@ func TestGradients(t *testing.T) {
 		}
 	}
 }
+
+// Each limit for itself is the exact one-sided limit, and lies within the
+// two-sided interval. Source of the limits: see interval/binomial_test.go.
+func TestOneSidedLimits(t *testing.T) {
+	a := analyse(t, msaStudy(t), nil)
+	for i, g := range a.Against {
+		e := g.Effectiveness
+		near(t, "lower", e.OneSided.Lower, interval.LowerLimit(e.Count, e.Of, 0.95), closedForm)
+		near(t, "upper", e.OneSided.Upper, interval.UpperLimit(e.Count, e.Of, 0.95), closedForm)
+		for _, e := range []Estimate{e.Estimate, g.Miss.Estimate, g.FalseAlarm.Estimate, g.Kappa, a.Within[i].Kappa} {
+			if !(e.Interval.Lower <= e.OneSided.Lower && e.OneSided.Upper <= e.Interval.Upper && e.OneSided.Contains(e.Value)) {
+				t.Errorf("one-sided %v of %g in two-sided %v", e.OneSided, e.Value, e.Interval)
+			}
+		}
+	}
+}
