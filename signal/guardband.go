@@ -1,0 +1,200 @@
+package signal
+
+import (
+	"errors"
+	"fmt"
+	"math"
+)
+
+// GuardTable returns the risk with each cut moved inwards by each of bands,
+// with intervals.
+func GuardTable(p Process, c *Curve, bands []float64) ([]Risk, error) {
+	rows := make([]Risk, 0, len(bands))
+	for _, b := range bands {
+		r, err := Assess(p, c, b)
+		if err != nil {
+			return nil, err
+		}
+		rows = append(rows, r)
+	}
+	return rows, nil
+}
+
+// GuardForEscapes returns the smallest guard band, 0 or more, at which the
+// share of escapes is at most target (a fraction, not ppm), and the risk there.
+// With shown, the upper bound of its interval is held under the target instead
+// of the estimate.
+//
+// It returns an error in words if no guard band can hold it: between two limits
+// the cuts can move inwards only until they meet, and calls made at random let
+// parts escape whatever the cuts.
+func GuardForEscapes(p Process, c *Curve, target float64, shown bool) (Risk, error) {
+	if !(target > 0 && target < 1) {
+		return Risk{}, fmt.Errorf("escape target %v: want a share between 0 and 1 (10 ppm is 0.00001)", target)
+	}
+	at := func(band float64) (Risk, float64, error) {
+		r, err := Assess(p, c, band)
+		if err != nil {
+			return r, 0, err
+		}
+		if !shown {
+			return r, r.Escape.Value, nil
+		}
+		if !r.Escape.HasUpper {
+			return r, 0, errors.New("the escapes have no upper bound to hold under a target: " + r.Escape.Why)
+		}
+		return r, r.Escape.Upper, nil
+	}
+	r, e, err := at(0)
+	if err != nil || e <= target {
+		return r, err
+	}
+	most, step, err := c.guardRange(p)
+	if err != nil {
+		return Risk{}, err
+	}
+	lo, hi := 0.0, math.Min(step, most)
+	for {
+		if r, e, err = at(hi); err != nil {
+			return Risk{}, err
+		}
+		if e <= target {
+			break
+		}
+		if hi >= most {
+			what := "escapes"
+			if shown {
+				what = "the upper bound of escapes"
+			}
+			return Risk{}, fmt.Errorf("no guard band holds %s under %.4g ppm: with each cut moved inwards by %.6g, as far as it can be, %.4g ppm remain", what, 1e6*target, most, 1e6*e)
+		}
+		lo, hi = hi, math.Min(2*hi, most)
+	}
+	for range 200 {
+		mid := lo + (hi-lo)/2
+		if !(lo < mid && mid < hi) || hi-lo <= 1e-10*step {
+			break
+		}
+		m, e, err := at(mid)
+		if err != nil {
+			return Risk{}, err
+		}
+		if e <= target {
+			hi, r = mid, m
+		} else {
+			lo = mid
+		}
+	}
+	return r, nil
+}
+
+// guardRange returns how far inwards the cuts can move and a step to search
+// by. With one limit they can move until next to nothing of the process is
+// accepted.
+func (c *Curve) guardRange(p Process) (most, step float64, err error) {
+	g, err := c.Gauge()
+	if err != nil {
+		return 0, 0, err
+	}
+	if g.HasLower && g.HasUpper {
+		most = (g.UpperCut - g.LowerCut) / 2
+		step = math.Min(g.LowerSigma, g.UpperSigma)
+	} else {
+		lo, hi := p.Mean-12*p.SD, p.Mean+12*p.SD
+		if len(p.Values) > 0 {
+			lo, hi = p.Values[0], p.Values[0]
+			for _, v := range p.Values {
+				lo, hi = math.Min(lo, v), math.Max(hi, v)
+			}
+		}
+		if g.HasLower {
+			most, step = hi-g.LowerCut, g.LowerSigma
+		} else {
+			most, step = g.UpperCut-lo, g.UpperSigma
+		}
+		most = math.Max(most, 0) + 40*step
+	}
+	if !(most > 0) {
+		return 0, 0, errors.New("the cuts leave no room to move inwards")
+	}
+	return most, math.Min(step, most), nil
+}
+
+// Cost is a guard band that costs least.
+type Cost struct {
+	Risk       Risk
+	PerPart    float64 // expected cost of a part made
+	PerPartNow float64 // the same without a guard band
+	AtEdge     bool    // the least cost lies at the end of what was searched
+}
+
+// GuardForCost returns the guard band that costs least, where an escape costs
+// costEscape and a good part rejected costs costReject. The band may be
+// negative: cuts moved outwards, where false rejects cost more. It is found by
+// a grid and golden sections in the best part of it.
+func GuardForCost(p Process, c *Curve, costEscape, costReject float64) (Cost, error) {
+	if !finite(costEscape, costReject) || costEscape < 0 || costReject < 0 || costEscape+costReject == 0 {
+		return Cost{}, fmt.Errorf("cost of an escape %v and of a false reject %v: want numbers of 0 or more, one of them above 0", costEscape, costReject)
+	}
+	g, err := c.Gauge()
+	if err != nil {
+		return Cost{}, err
+	}
+	if err := checkRisk(p, g, c.Limits); err != nil {
+		return Cost{}, err
+	}
+	most, _, err := c.guardRange(p)
+	if err != nil {
+		return Cost{}, err
+	}
+	cost := func(band float64) float64 {
+		s := p.shares(g.Tighten(band), c.Limits)
+		v := s.values()
+		return costEscape*v[qEscape] + costReject*v[qFalseReject]
+	}
+	// Steps of a fraction of σ near the cuts, coarser farther out.
+	sigma := math.Max(g.LowerSigma, g.UpperSigma)
+	var grid []float64
+	for b := 0.0; b < most; b += math.Max(sigma/4, b/10) {
+		grid = append(grid, b)
+	}
+	grid = append(grid, most)
+	for b := sigma / 4; b < most; b += math.Max(sigma/4, b/10) {
+		grid = append([]float64{-b}, grid...)
+	}
+	best, least := 0, math.Inf(1)
+	for i, b := range grid {
+		if v := cost(b); v < least {
+			best, least = i, v
+		}
+	}
+	out := Cost{PerPartNow: cost(0), AtEdge: best == 0 || best == len(grid)-1}
+	band := grid[best]
+	if !out.AtEdge {
+		band = golden(cost, grid[best-1], grid[best+1])
+	}
+	if out.PerPart = cost(band); out.PerPart > least {
+		band, out.PerPart = grid[best], least
+	}
+	out.Risk, err = Assess(p, c, band)
+	return out, err
+}
+
+// golden returns the minimum of a function with one minimum between a and b.
+func golden(f func(float64) float64, a, b float64) float64 {
+	const phi = 0.6180339887498949
+	x1, x2 := b-phi*(b-a), a+phi*(b-a)
+	f1, f2 := f(x1), f(x2)
+	for range 60 {
+		if f1 <= f2 {
+			b, x2, f2 = x2, x1, f1
+			x1 = b - phi*(b-a)
+			f1 = f(x1)
+		} else {
+			a, x1, f1 = x1, x2, f2
+			x2 = a + phi*(b-a)
+			f2 = f(x2)
+		}
+	}
+	return a + (b-a)/2
+}

@@ -1,0 +1,167 @@
+package signal
+
+import (
+	"errors"
+	"fmt"
+	"math"
+)
+
+// Flaw is one flaw of known size and how often it was looked for and found.
+type Flaw struct {
+	Name   string // rows of one name are one flaw
+	Size   float64
+	Found  int
+	Looked int
+}
+
+// HitMiss is the probability of detection against flaw size.
+type HitMiss struct {
+	A50 Estimate // the size found half of the time
+	A90 Estimate // the size found nine times in ten
+	// A9095 is the upper 95 % confidence bound of A90, one-sided, by likelihood
+	// ratio: a flaw of this size is found at least nine times in ten, with 95 %
+	// confidence. Meaningful if HasA9095.
+	A9095    float64
+	HasA9095 bool
+	Why      string // why A9095 is missing
+
+	Curve *Curve // over the natural logarithm of the size, as a lower limit
+}
+
+// a9095Confidence is that of the a90/95 bound, one-sided.
+const a9095Confidence = 0.95
+
+// FitHitMiss fits the probability that a flaw is found as F((ln a − µ)/σ), the
+// hit/miss model of MIL-HDBK-1823A (2009), to flaws of known size a. The bound
+// a90/95 is where twice the log-likelihood lost by holding a90 reaches the
+// square of the one-sided normal quantile 1.645. Options.Confidence governs the
+// two-sided intervals of A50 and A90. Where found and missed sizes do not
+// overlap the curve is bias-reduced as in Fit, and the bound is measured from
+// the likelihood's supremum.
+//
+// It returns an error if a size is not above 0, a count cannot be, or larger
+// flaws are not found more often.
+func FitHitMiss(flaws []Flaw, options Options) (*HitMiss, error) {
+	parts := make([]Part, len(flaws))
+	for i, f := range flaws {
+		if !(f.Size > 0) || !finite(f.Size) {
+			return nil, fmt.Errorf("flaw %d: size %v: want a number above 0", i+1, f.Size)
+		}
+		if f.Looked < 0 || f.Found < 0 || f.Found > f.Looked {
+			return nil, fmt.Errorf("flaw %d: found %d times of %d", i+1, f.Found, f.Looked)
+		}
+		parts[i] = Part{Name: f.Name, Value: math.Log(f.Size), Accepted: f.Found, Calls: f.Looked}
+	}
+	if options.Lapse {
+		return nil, errors.New("a hit/miss curve has no lapse rate")
+	}
+	d, err := prepare(parts, options)
+	if err != nil {
+		return nil, err
+	}
+	d.has = [2]bool{true, false}
+	c, err := d.fit(!options.SkipIntervals)
+	if err != nil {
+		return nil, err
+	}
+	h := &HitMiss{Curve: c, A50: c.Lower.Cut.map1(math.Exp, math.Exp(c.Lower.Cut.Value))}
+	if err := h.a90(d, c); err != nil {
+		return nil, err
+	}
+	return h, nil
+}
+
+// a90 fills A90 and its bound.
+func (h *HitMiss) a90(d *dataset, c *Curve) error {
+	shift := d.options.Link.quantile(0.9)
+	half := d.halves()[0]
+	sigma := math.Exp(c.local[logSigmaL])
+	value := c.local[cutL] + shift*sigma
+	q := Estimate{Value: value, Confidence: d.options.Confidence, Method: c.Lower.Cut.Method}
+	out := func(t float64) float64 { return math.Exp(d.sc.out(t)) }
+
+	m := d.model(0, len(d.x), d.has)
+	m.shift[0] = shift
+	s := newSolver(m)
+	best := []float64{value, c.local[logSigmaL]}
+	inside, loglik := value, c.blockLogLikelihood
+	var covariance func(i, j int) float64
+	first := sigma
+	if c.hasCov[cutL] {
+		// The covariance of (a90, log σ), from that of (cut, log σ).
+		a, b, v := c.cov[cutL][cutL], c.cov[cutL][logSigmaL], c.cov[logSigmaL][logSigmaL]
+		k := shift * sigma
+		va, vb := a+2*k*b+k*k*v, b+k*v
+		covariance = func(i, j int) float64 {
+			switch {
+			case i == 0 && j == 0:
+				return va
+			case i == 1 && j == 1:
+				return v
+			}
+			return vb
+		}
+		q.SE = math.Sqrt(va * c.factor)
+		first = math.Sqrt(va)
+	} else {
+		// Under separation the supremum is reached with all of the curve's
+		// turn at the smallest size always found.
+		inside, loglik = half.accept, d.supremum(half)
+		first = math.Max(sigma, 1e-6)
+	}
+	if d.options.SkipIntervals {
+		q.Why = whySkipped
+		h.Why = whySkipped
+		h.A90 = q.map1(out, d.sc.scale*out(value))
+		return nil
+	}
+	p := newProfiler(s, best, loglik, covariance, 0)
+	bound := func(target, dir float64) (float64, bool) {
+		p.restart()
+		from := inside
+		if covariance == nil {
+			if dir < 0 {
+				from = half.reject
+			}
+			if r := p.root(from + dir*1e-9); math.IsNaN(r) {
+				return 0, false
+			} else if r >= target {
+				return from, true
+			}
+			from += dir * 1e-9
+		}
+		return crossing(from, dir*target*first, cutReach, target, p.root)
+	}
+	target := math.Sqrt(c.crit)
+	q.Upper, q.HasUpper = bound(target, 1)
+	q.Lower, q.HasLower = bound(target, -1)
+	if q.HasUpper {
+		q.Upper = math.Max(q.Upper, q.Value)
+	}
+	if q.HasLower {
+		q.Lower = math.Min(q.Lower, q.Value)
+	}
+	if !q.HasLower || !q.HasUpper {
+		q.Why = whyFlat
+	}
+	h.A90 = q.map1(out, d.sc.scale*out(value))
+	if h.A90.HasUpper && !finite(h.A90.Upper) {
+		h.A90.Upper, h.A90.HasUpper, h.A90.Why = 0, false, whyFlat
+	}
+	oneSided := normalQuantile(a9095Confidence)
+	if c.LackOfFit.Applied {
+		oneSided *= math.Sqrt(c.crit) / twoSided(d.options.Confidence)
+	}
+	if at, ok := bound(oneSided, 1); ok {
+		if a := out(at); finite(a) {
+			h.A9095, h.HasA9095 = math.Max(a, out(value)), true
+		}
+	}
+	if !h.HasA9095 {
+		h.Why = whyFlat
+	}
+	if !finite(h.A50.Value, h.A50.Lower, h.A50.Upper, h.A50.SE, h.A90.Value, h.A90.Lower, h.A90.Upper, h.A90.SE) {
+		return &NotConvergedError{What: "the hit/miss curve", Reason: "a size is not a finite number"}
+	}
+	return nil
+}

@@ -1,0 +1,78 @@
+package signal
+
+import (
+	"math"
+	"testing"
+)
+
+// Bliss's beetles (1935) as flaws whose size is the dose: 10 to the power of
+// log10_dose. a50 follows from R's 50 % point (expected-r.json, beetles). a90
+// and a90/95 are checked against brute force: for a given a90, the best slope
+// by golden section on the likelihood as written, and bisection for the bound.
+func TestHitMissAgainstBruteForce(t *testing.T) {
+	var flaws []Flaw
+	rows := table(t, "beetles-1935.csv")
+	for _, r := range rows {
+		flaws = append(flaws, Flaw{Size: math.Pow(10, r[0]), Looked: int(r[1]), Found: int(r[2])})
+	}
+	h, err := FitHitMiss(flaws, Options{LackOfFit: WidenNever})
+	if err != nil {
+		t.Fatal(err)
+	}
+	var want glm
+	reference(t, "beetles.probit", &want)
+	nearRel(t, "a50", h.A50.Value, math.Pow(10, want.LD50), 1e-7)
+	q := 1.2815515655446004 // Φ⁻¹(0.9)
+	nearRel(t, "a90", h.A90.Value, math.Pow(10, want.LD50+q/want.Slope), 1e-7)
+
+	loglik := func(x90, slope float64) float64 { // in log10 size
+		var l float64
+		for _, r := range rows {
+			p := normalCDF(q + slope*(r[0]-x90))
+			l += r[2]*math.Log(p) + (r[1]-r[2])*math.Log(normalCDF(-q-slope*(r[0]-x90)))
+		}
+		return l
+	}
+	profile := func(x90 float64) float64 {
+		b := golden(func(b float64) float64 { return -loglik(x90, b) }, 5, 60)
+		return loglik(x90, b)
+	}
+	x90 := want.LD50 + q/want.Slope
+	top := profile(x90)
+	z := 1.6448536269514722
+	lo, hi := x90, x90+0.1
+	for range 100 {
+		mid := (lo + hi) / 2
+		if 2*(top-profile(mid)) < z*z {
+			lo = mid
+		} else {
+			hi = mid
+		}
+	}
+	if !h.HasA9095 {
+		t.Fatal(h.Why)
+	}
+	nearRel(t, "a90/95", h.A9095, math.Pow(10, lo), 1e-6)
+}
+
+func TestHitMissHardCases(t *testing.T) {
+	separated := []Flaw{{Size: 1, Looked: 5}, {Size: 2, Looked: 5}, {Size: 3, Looked: 5, Found: 5}, {Size: 4, Looked: 5, Found: 5}}
+	h, err := FitHitMiss(separated, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if h.Curve.Lower.Status != Separated || !h.HasA9095 || h.A9095 < 3 || !(h.A90.Value <= h.A9095) {
+		t.Errorf("%+v", h)
+	}
+	for name, flaws := range map[string][]Flaw{
+		"no flaw":       nil,
+		"size 0":        {{Size: 0, Looked: 1}},
+		"found > look":  {{Size: 1, Looked: 1, Found: 2}},
+		"all found":     {{Size: 1, Looked: 2, Found: 2}, {Size: 2, Looked: 2, Found: 2}},
+		"the wrong way": {{Size: 1, Looked: 9, Found: 8}, {Size: 2, Looked: 9, Found: 5}, {Size: 3, Looked: 9, Found: 2}},
+	} {
+		if _, err := FitHitMiss(flaws, Options{}); err == nil {
+			t.Errorf("%s: no error", name)
+		}
+	}
+}

@@ -1,0 +1,400 @@
+package signal
+
+import (
+	"errors"
+	"math"
+	"slices"
+
+	"gonum.org/v1/gonum/integrate/quad"
+)
+
+// Risk is what an inspection does to a process, as shares of all parts unless
+// said otherwise. One call decides on each part.
+type Risk struct {
+	Escape            Estimate // bad and accepted
+	EscapeLower       Estimate // thereof below the lower limit
+	EscapeUpper       Estimate // thereof above the upper limit
+	FalseReject       Estimate // good and rejected
+	FalseRejectLower  Estimate // thereof nearer the lower limit
+	FalseRejectUpper  Estimate // thereof nearer the upper limit
+	Bad               Estimate // made bad; depends on the process alone
+	Accepted          Estimate
+	BadAmongAccepted  Estimate // share of the accepted parts; absent if none is
+	GoodAmongRejected Estimate // share of the rejected parts; absent if none is
+	GuardBand         float64  // by which each cut was moved inwards
+	Warnings          []error
+}
+
+// shares holds the parts of a process by region and call.
+type shares struct {
+	accepted, rejected [regions]float64
+	bad                float64
+}
+
+// The regions of values: beyond the lower limit, good and nearer the lower
+// limit, good and nearer the upper one, beyond the upper limit.
+const (
+	badLow = iota
+	goodLow
+	goodHigh
+	badHigh
+	regions
+)
+
+// The quantities of a Risk, in the order of its fields.
+const (
+	qEscape = iota
+	qEscapeLower
+	qEscapeUpper
+	qFalseReject
+	qFalseRejectLower
+	qFalseRejectUpper
+	qBad
+	qAccepted
+	qBadAmongAccepted
+	qGoodAmongRejected
+	quantities
+)
+
+func (r *Risk) fields() [quantities]*Estimate {
+	return [...]*Estimate{&r.Escape, &r.EscapeLower, &r.EscapeUpper, &r.FalseReject, &r.FalseRejectLower, &r.FalseRejectUpper,
+		&r.Bad, &r.Accepted, &r.BadAmongAccepted, &r.GoodAmongRejected}
+}
+
+// values returns the quantities; one that does not exist is −1.
+func (s *shares) values() (v [quantities]float64) {
+	v[qEscapeLower], v[qEscapeUpper] = s.accepted[badLow], s.accepted[badHigh]
+	v[qEscape] = v[qEscapeLower] + v[qEscapeUpper]
+	v[qFalseRejectLower], v[qFalseRejectUpper] = s.rejected[goodLow], s.rejected[goodHigh]
+	v[qFalseReject] = v[qFalseRejectLower] + v[qFalseRejectUpper]
+	v[qBad] = s.bad
+	v[qAccepted] = v[qEscape] + s.accepted[goodLow] + s.accepted[goodHigh]
+	rejected := v[qFalseReject] + s.rejected[badLow] + s.rejected[badHigh]
+	v[qBadAmongAccepted], v[qGoodAmongRejected] = -1, -1
+	if v[qAccepted] > 0 {
+		v[qBadAmongAccepted] = v[qEscape] / v[qAccepted]
+	}
+	if rejected > 0 {
+		v[qGoodAmongRejected] = v[qFalseReject] / rejected
+	}
+	for i := range v {
+		v[i] = math.Min(1, v[i])
+	}
+	return v
+}
+
+// AssessGauge returns the risk of a gauge that is known exactly, without
+// intervals. It returns an error if process, gauge or limits are not usable.
+func AssessGauge(p Process, g Gauge, limits Limits) (Risk, error) {
+	if err := checkRisk(p, g, limits); err != nil {
+		return Risk{}, err
+	}
+	s := p.shares(g, limits)
+	v := s.values()
+	var r Risk
+	for i, e := range r.fields() {
+		*e = Estimate{Value: v[i], Why: "the gauge is taken as known"}
+		if v[i] < 0 {
+			*e = noShare(i)
+		}
+	}
+	return r, nil
+}
+
+func noShare(quantity int) Estimate {
+	if quantity == qBadAmongAccepted {
+		return Estimate{Absent: true, Why: "no part is accepted"}
+	}
+	return Estimate{Absent: true, Why: "no part is rejected"}
+}
+
+func checkRisk(p Process, g Gauge, limits Limits) error {
+	if err := limits.check(); err != nil {
+		return err
+	}
+	if len(p.Values) == 0 {
+		if _, err := NormalProcess(p.Mean, p.SD); err != nil {
+			return err
+		}
+	}
+	return g.check()
+}
+
+// nodes are the points and weights of the 16-point Gauss–Legendre rule on
+// (−1, 1).
+var nodes = func() (n struct{ x, w [16]float64 }) {
+	quad.Legendre{}.FixedLocations(n.x[:], n.w[:], -1, 1)
+	return n
+}()
+
+// shares integrates acceptance over the process. For a normal process the
+// range of ±12 standard deviations is cut at the limits and at multiples of
+// the process's and of each curve's σ, and each piece takes 16 Gauss–Legendre
+// points; the integrand is smooth within a piece however unequal the two σs
+// are.
+func (p Process) shares(g Gauge, limits Limits) (s shares) {
+	middle := 0.0
+	switch {
+	case limits.HasLower && limits.HasUpper:
+		middle = limits.Lower/2 + limits.Upper/2
+	case limits.HasUpper:
+		middle = math.Inf(-1)
+	default:
+		middle = math.Inf(1)
+	}
+	if len(p.Values) > 0 {
+		n := float64(len(p.Values))
+		for _, x := range p.Values {
+			r := goodLow
+			switch {
+			case limits.HasLower && x < limits.Lower:
+				r = badLow
+			case limits.HasUpper && x > limits.Upper:
+				r = badHigh
+			case x >= middle:
+				r = goodHigh
+			}
+			a, q := g.Accept(x)
+			s.accepted[r] += a / n
+			s.rejected[r] += q / n
+			if r == badLow || r == badHigh {
+				s.bad += 1 / n
+			}
+		}
+		return s
+	}
+	// In standard deviations from the mean.
+	in := func(x float64) float64 { return (x - p.Mean) / p.SD }
+	const reach = 12
+	var room [128]float64
+	cuts := room[:0]
+	add := func(t float64) {
+		if t > -reach && t < reach {
+			cuts = append(cuts, t)
+		}
+	}
+	cuts = append(cuts, -reach, reach)
+	for k := -reach + 1; k < reach; k++ {
+		cuts = append(cuts, float64(k))
+	}
+	lower, upper := math.Inf(-1), math.Inf(1)
+	if limits.HasLower {
+		lower = in(limits.Lower)
+		add(lower)
+		s.bad += normalCDF(lower)
+	}
+	if limits.HasUpper {
+		upper = in(limits.Upper)
+		add(upper)
+		s.bad += normalCDF(-upper)
+	}
+	mid := in(middle)
+	add(mid)
+	around := func(cut, sigma float64) {
+		t, w := in(cut), sigma/p.SD
+		add(t)
+		for _, k := range [...]float64{0.5, 1, 1.5, 2, 3, 4, 5, 6, 7, 8, 10, 12, 16, 20, 28, 36} {
+			add(t - k*w)
+			add(t + k*w)
+		}
+	}
+	if g.HasLower {
+		around(g.LowerCut, g.LowerSigma)
+	}
+	if g.HasUpper {
+		around(g.UpperCut, g.UpperSigma)
+	}
+	slices.Sort(cuts)
+	// The gauge in the same unit: 250 mm ± 0.02 µm keeps its digits.
+	scaled := g
+	scaled.LowerCut, scaled.UpperCut, scaled.LowerSigma, scaled.UpperSigma = in(g.LowerCut), in(g.UpperCut), g.LowerSigma/p.SD, g.UpperSigma/p.SD
+	for i := 1; i < len(cuts); i++ {
+		a, b := cuts[i-1], cuts[i]
+		if !(b > a) {
+			continue
+		}
+		half, centre := (b-a)/2, a+(b-a)/2
+		r := goodLow
+		switch {
+		case centre < lower:
+			r = badLow
+		case centre > upper:
+			r = badHigh
+		case centre >= mid:
+			r = goodHigh
+		}
+		var accepted, rejected float64
+		for k, x := range nodes.x {
+			t := centre + half*x
+			w := nodes.w[k] * normalDensity(t)
+			acc, rej := scaled.Accept(t)
+			accepted += w * acc
+			rejected += w * rej
+		}
+		s.accepted[r] += half * accepted
+		s.rejected[r] += half * rejected
+	}
+	return s
+}
+
+// Assess returns the risk of a fitted curve in a process, each cut moved
+// inwards by guard, with intervals that carry the curve's uncertainty (the
+// process is taken as given). They are normal on the logit scale by the delta
+// method, from the covariance of the cuts and log σs, widened where lack of fit
+// widens the rest. Where a limit is separated there is no covariance; the
+// intervals then span the risks at the corners of the intervals of cuts and σs,
+// which is cautious, and a σ without lower bound counts as a step.
+//
+// It returns an error if the curve has no cut at one of its limits, or process
+// or limits are not usable.
+func Assess(p Process, c *Curve, guard float64) (Risk, error) {
+	if c == nil {
+		return Risk{}, errors.New("no curve")
+	}
+	g, err := c.Gauge()
+	if err != nil {
+		return Risk{}, err
+	}
+	if !finite(guard) {
+		return Risk{}, errors.New("the guard band is not a number")
+	}
+	g = g.Tighten(guard)
+	if err := checkRisk(p, g, c.Limits); err != nil {
+		return Risk{}, err
+	}
+	s := p.shares(g, c.Limits)
+	v := s.values()
+	r := Risk{GuardBand: guard}
+	fields := r.fields()
+	for i, e := range fields {
+		*e = Estimate{Value: v[i], Confidence: c.Options.Confidence}
+		if v[i] < 0 {
+			*e = noShare(i)
+		}
+	}
+	*fields[qBad] = Estimate{Value: v[qBad], Lower: v[qBad], Upper: v[qBad], HasLower: true, HasUpper: true, Confidence: c.Options.Confidence, Method: "the process is taken as given"}
+	if c.separatedAnywhere() {
+		c.corners(p, g, &r, v)
+	} else {
+		c.delta(p, g, &r, v)
+	}
+	return r, nil
+}
+
+// perturbed returns g with local parameter i moved by so much, in scaled units.
+func (c *Curve) perturbed(g Gauge, i int, by float64) Gauge {
+	switch i {
+	case cutL:
+		g.LowerCut += c.sc.size(by)
+	case logSigmaL:
+		g.LowerSigma *= math.Exp(by)
+	case cutU:
+		g.UpperCut += c.sc.size(by)
+	case logSigmaU:
+		g.UpperSigma *= math.Exp(by)
+	case logitE:
+		g.Lapse = logistic(c.local[logitE] + by)
+	}
+	return g
+}
+
+// delta fills intervals by the delta method on the logit scale.
+func (c *Curve) delta(p Process, g Gauge, r *Risk, v [quantities]float64) {
+	var gradient [quantities][locals]float64
+	for i := range locals {
+		if !c.hasCov[i] {
+			continue
+		}
+		h := 0.1 * math.Sqrt(c.cov[i][i])
+		su, sd := p.shares(c.perturbed(g, i, h), c.Limits), p.shares(c.perturbed(g, i, -h), c.Limits)
+		up, down := su.values(), sd.values()
+		for q := range quantities {
+			if inUnit(v[q]) && inUnit(up[q]) && inUnit(down[q]) {
+				gradient[q][i] = (logit(up[q]) - logit(down[q])) / (2 * h)
+			}
+		}
+	}
+	for q, e := range r.fields() {
+		if q == qBad || e.Absent {
+			continue
+		}
+		e.Method = "normal on the logit scale, by the delta method"
+		if c.LackOfFit.Applied {
+			e.Method += ", widened for lack of fit"
+		}
+		if !inUnit(v[q]) {
+			e.Lower, e.Upper, e.HasLower, e.HasUpper = v[q], v[q], true, true
+			continue
+		}
+		se := math.Sqrt(math.Max(0, c.quadratic(gradient[q])))
+		half := math.Sqrt(c.crit) * se
+		l := logit(v[q])
+		e.Lower, e.Upper, e.HasLower, e.HasUpper = logistic(l-half), logistic(l+half), true, true
+		e.SE = v[q] * (1 - v[q]) * se * math.Sqrt(c.factor)
+	}
+}
+
+func inUnit(x float64) bool { return x > 1e-300 && x < 1-1e-15 }
+
+func logit(x float64) float64 { return math.Log(x) - math.Log1p(-x) }
+
+// corners fills intervals by the extremes over the corners of the intervals of
+// cuts and σs.
+func (c *Curve) corners(p Process, g Gauge, r *Risk, v [quantities]float64) {
+	lo, hi := v, v
+	const step = 1e-9 // of σ: a curve that is a step
+	type choice struct{ cut, sigma [2]float64 }
+	var ends [2]choice
+	var has [2]bool
+	open := false
+	for k := range 2 {
+		l := c.side(k)
+		if l == nil {
+			continue
+		}
+		has[k] = true
+		ends[k] = choice{cut: [2]float64{l.Cut.Value, l.Cut.Value}, sigma: [2]float64{l.Sigma.Value * step, l.Sigma.Value}}
+		if l.Cut.HasLower {
+			ends[k].cut[0] = l.Cut.Lower
+		}
+		if l.Cut.HasUpper {
+			ends[k].cut[1] = l.Cut.Upper
+		}
+		if l.Sigma.HasLower {
+			ends[k].sigma[0] = l.Sigma.Lower
+		}
+		if l.Sigma.HasUpper {
+			ends[k].sigma[1] = l.Sigma.Upper
+		}
+		open = open || !l.Cut.HasLower || !l.Cut.HasUpper || !l.Sigma.HasUpper
+	}
+	for corner := range 16 {
+		if !has[0] && corner&3 != 0 || !has[1] && corner&12 != 0 {
+			continue
+		}
+		h := g
+		if has[0] {
+			h.LowerCut, h.LowerSigma = ends[0].cut[corner&1]+r.GuardBand, ends[0].sigma[corner>>1&1]
+		}
+		if has[1] {
+			h.UpperCut, h.UpperSigma = ends[1].cut[corner>>2&1]-r.GuardBand, ends[1].sigma[corner>>3&1]
+		}
+		s := p.shares(h, c.Limits)
+		for q, x := range s.values() {
+			if x >= 0 {
+				lo[q], hi[q] = math.Min(lo[q], x), math.Max(hi[q], x)
+			}
+		}
+	}
+	for q, e := range r.fields() {
+		if q == qBad || e.Absent {
+			continue
+		}
+		if open {
+			e.Why = "at a limit without mixed parts the calls do not bound cut and σ"
+			continue
+		}
+		e.Lower, e.Upper, e.HasLower, e.HasUpper = lo[q], hi[q], true, true
+		e.Method = "extremes over the intervals of cuts and σ"
+	}
+}

@@ -1,0 +1,215 @@
+package signal
+
+import (
+	"math"
+	"math/rand/v2"
+	"strings"
+	"testing"
+)
+
+type riskRow struct {
+	Mu                float64 `json:"mu"`
+	SigmaProcess      float64 `json:"sigma_process"`
+	SigmaGauge        float64 `json:"sigma_gauge"`
+	Lower             float64 `json:"lower"`
+	Upper             float64 `json:"upper"`
+	CutLower          float64 `json:"cut_lower"`
+	CutUpper          float64 `json:"cut_upper"`
+	BadShare          float64 `json:"bad_share"`
+	AcceptedShare     float64 `json:"accepted_share"`
+	EscapeShare       float64 `json:"escape_share"`
+	FalseRejectShare  float64 `json:"false_reject_share"`
+	BadAmongAccepted  float64 `json:"bad_among_accepted"`
+	GoodAmongRejected float64 `json:"good_among_rejected"`
+}
+
+// R's integrate and pnorm: expected-r.json, risk.
+func TestRiskAgainstR(t *testing.T) {
+	var rows []riskRow
+	reference(t, "risk", &rows)
+	if len(rows) == 0 {
+		t.Fatal("no rows")
+	}
+	for _, w := range rows {
+		p, err := NormalProcess(w.Mu, w.SigmaProcess)
+		if err != nil {
+			t.Fatal(err)
+		}
+		g := Gauge{LowerCut: w.CutLower, UpperCut: w.CutUpper, LowerSigma: w.SigmaGauge, UpperSigma: w.SigmaGauge, HasLower: true, HasUpper: true}
+		r, err := AssessGauge(p, g, Between(w.Lower, w.Upper))
+		if err != nil {
+			t.Fatal(err)
+		}
+		nearRel(t, "bad", r.Bad.Value, w.BadShare, 1e-8)
+		nearRel(t, "accepted", r.Accepted.Value, w.AcceptedShare, 1e-8)
+		nearRel(t, "escape", r.Escape.Value, w.EscapeShare, 1e-8)
+		nearRel(t, "false reject", r.FalseReject.Value, w.FalseRejectShare, 1e-8)
+		nearRel(t, "bad among accepted", r.BadAmongAccepted.Value, w.BadAmongAccepted, 1e-8)
+		nearRel(t, "good among rejected", r.GoodAmongRejected.Value, w.GoodAmongRejected, 1e-8)
+		near(t, "escapes add up", r.EscapeLower.Value+r.EscapeUpper.Value, r.Escape.Value, 1e-15)
+		near(t, "false rejects add up", r.FalseRejectLower.Value+r.FalseRejectUpper.Value, r.FalseReject.Value, 1e-15)
+	}
+}
+
+// With normal process and probit gauge the accepted share is Φ of the two
+// scaled distances (the sum of two normal variables is normal), and with a cut
+// on a limit at the mean, the escape share is arctan(σ_g/σ_p)/2π (the orthant
+// probability of a bivariate normal, Sheppard 1899). Any ratio of σs.
+func TestRiskClosedForms(t *testing.T) {
+	for _, ratio := range []float64{1e-9, 1e-6, 1e-3, 0.03, 0.5, 1, 3, 100} {
+		p := Process{Mean: 250, SD: 0.02}
+		sg := ratio * p.SD
+		g := Gauge{LowerCut: 249.97, UpperCut: 250.05, LowerSigma: sg, UpperSigma: sg, HasLower: true, HasUpper: true}
+		r, err := AssessGauge(p, g, Between(249.96, 250.04))
+		if err != nil {
+			t.Fatal(err)
+		}
+		s := math.Hypot(p.SD, sg)
+		want := normalCDF(0.05/s) - normalCDF(-0.03/s)
+		near(t, "accepted", r.Accepted.Value, want, 1e-10)
+		one, err := AssessGauge(p, Gauge{LowerCut: 250, LowerSigma: sg, HasLower: true}, AtLeast(250))
+		if err != nil {
+			t.Fatal(err)
+		}
+		want = math.Atan(ratio) / (2 * math.Pi)
+		nearRel(t, "orthant escape", one.Escape.Value, want, 1e-8)
+		nearRel(t, "orthant false reject", one.FalseReject.Value, want, 1e-8)
+	}
+}
+
+// A logit gauge against Monte Carlo, roughly, and the sample form against a
+// direct average.
+func TestRiskOtherForms(t *testing.T) {
+	g := Gauge{Link: Logit, LowerCut: 9.96, UpperCut: 10.04, LowerSigma: 0.004, UpperSigma: 0.006, HasLower: true, HasUpper: true, Lapse: 0.02}
+	limits := Between(9.95, 10.05)
+	rng := rand.New(rand.NewPCG(1, 2))
+	const n = 400000
+	values := make([]float64, n)
+	var escape, falseReject float64
+	for i := range values {
+		values[i] = 10 + 0.03*rng.NormFloat64()
+		x := values[i]
+		f := 1/(1+math.Exp(-(x-9.96)/0.004)) - 1/(1+math.Exp(-(x-10.04)/0.006))
+		f = 0.01 + 0.98*f
+		if limits.Inside(x) {
+			falseReject += (1 - f) / n
+		} else {
+			escape += f / n
+		}
+	}
+	s, err := SampledProcess(values)
+	if err != nil {
+		t.Fatal(err)
+	}
+	a, err := AssessGauge(s, g, limits)
+	if err != nil {
+		t.Fatal(err)
+	}
+	nearRel(t, "escape", a.Escape.Value, escape, 1e-9)
+	nearRel(t, "false reject", a.FalseReject.Value, falseReject, 1e-9)
+	b, err := AssessGauge(Process{Mean: 10, SD: 0.03}, g, limits)
+	if err != nil {
+		t.Fatal(err)
+	}
+	nearRel(t, "escape, normal", b.Escape.Value, escape, 0.03)
+	nearRel(t, "false reject, normal", b.FalseReject.Value, falseReject, 0.03)
+}
+
+func TestCapableProcess(t *testing.T) {
+	p, err := CapableProcess(Between(9.9, 10.1), 1.25, 1, Upper)
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "sd", p.SD, 0.2/7.5, 1e-12)
+	near(t, "mean", p.Mean, 10.1-3*0.2/7.5, 1e-12)
+	for _, c := range []struct {
+		limits  Limits
+		cp, cpk float64
+	}{{AtLeast(1), 1, 1}, {Between(0, 1), 1, 1.2}, {Between(0, 1), 0, 0}, {Between(0, 1), math.NaN(), 0}} {
+		if _, err := CapableProcess(c.limits, c.cp, c.cpk, Lower); err == nil {
+			t.Errorf("%+v: no error", c)
+		}
+	}
+	if _, err := SampledProcess(nil); err == nil {
+		t.Error("no values: no error")
+	}
+	if _, err := NormalProcess(0, 0); err == nil {
+		t.Error("no spread: no error")
+	}
+}
+
+func TestGuardBands(t *testing.T) {
+	c := mustFit(t, study(t), studyLimits, Options{})
+	p := Process{Mean: 0.4975, SD: 0.02}
+	rows, err := GuardTable(p, c, []float64{0, 0.005, 0.01, 0.02})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i, r := range rows {
+		if i > 0 && (r.Escape.Value >= rows[i-1].Escape.Value || r.FalseReject.Value <= rows[i-1].FalseReject.Value) {
+			t.Errorf("row %d: escapes must fall and false rejects rise", i)
+		}
+		if !(r.Escape.Lower < r.Escape.Value && r.Escape.Value < r.Escape.Upper) {
+			t.Errorf("%+v", r.Escape)
+		}
+	}
+	const target = 50e-6
+	for _, shown := range []bool{false, true} {
+		r, err := GuardForEscapes(p, c, target, shown)
+		if err != nil {
+			t.Fatal(err)
+		}
+		held := r.Escape.Value
+		if shown {
+			held = r.Escape.Upper
+		}
+		if held > target || held < target*(1-1e-6) {
+			t.Errorf("escapes %v at %v", held, r.GuardBand)
+		}
+	}
+	if r, err := GuardForEscapes(p, c, 0.5, false); err != nil || r.GuardBand != 0 {
+		t.Errorf("a target already met: band %v, %v", r.GuardBand, err)
+	}
+	// The least cost, by a fine grid over the exact gauge.
+	got, err := GuardForCost(p, c, 100, 1)
+	if err != nil {
+		t.Fatal(err)
+	}
+	g, err := c.Gauge()
+	if err != nil {
+		t.Fatal(err)
+	}
+	best, at := math.Inf(1), 0.0
+	for i := range 2001 {
+		b := -0.02 + 0.00002*float64(i)
+		r, err := AssessGauge(p, g.Tighten(b), studyLimits)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if v := 100*r.Escape.Value + r.FalseReject.Value; v < best {
+			best, at = v, b
+		}
+	}
+	if math.Abs(got.Risk.GuardBand-at) > 0.00004 || got.PerPart > best+1e-12 || got.PerPart > got.PerPartNow {
+		t.Errorf("band %v, cost %v; by the grid %v, %v", got.Risk.GuardBand, got.PerPart, at, best)
+	}
+}
+
+func TestGuardBandOutOfReach(t *testing.T) {
+	c := mustFit(t, study(t), studyLimits, Options{})
+	c.known[logitE], c.local[logitE] = true, logit(0.1) // one call in ten at random
+	_, err := GuardForEscapes(Process{Mean: 0.4975, SD: 0.03}, c, 1e-6, false)
+	if err == nil || !strings.Contains(err.Error(), "no guard band holds escapes under 1 ppm") {
+		t.Errorf("%v", err)
+	}
+}
+
+func BenchmarkAssess(b *testing.B) {
+	c := mustFit(b, study(b), studyLimits, Options{})
+	p := Process{Mean: 0.4975, SD: 0.02}
+	for b.Loop() {
+		if _, err := Assess(p, c, 0); err != nil {
+			b.Fatal(err)
+		}
+	}
+}
