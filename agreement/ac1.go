@@ -8,7 +8,7 @@ package agreement
 func (c Counts) AC1() (float64, error) { return c.evaluate(ac1) }
 
 func ac1(counts [][]int, parts []int) (oneMargin, contributions) {
-	q := float64(len(counts[0]))
+	q := float64(width(counts))
 	return byShares(counts, parts, func(S, _ float64) (expected, byS, byN float64) {
 		return 1 - (1-S)/(q-1), 1 / (q - 1), 0
 	})

@@ -7,7 +7,7 @@ package agreement
 func (c Counts) Alpha() (float64, error) { return c.evaluate(alpha) }
 
 func alpha(counts [][]int, parts []int) (oneMargin, contributions) {
-	m := oneMargin{len(counts[0]), func(S, n float64) (expected, byS, byN float64) {
+	m := oneMargin{width(counts), func(S, n float64) (expected, byS, byN float64) {
 		return (1 - S) * n / (n - 1), -n / (n - 1), -(1 - S) / ((n - 1) * (n - 1))
 	}}
 	z := newContributions(m.size(), parts)

@@ -75,13 +75,21 @@ func total(row []int) (calls, disagree int) {
 	return calls, calls*calls - squares
 }
 
+// width returns the number of categories in counts; 0 where there are no parts.
+func width(counts [][]int) int {
+	if len(counts) == 0 {
+		return 0
+	}
+	return len(counts[0])
+}
+
 // byShares describes a coefficient in which every part weighs the same: the
 // disagreement is the mean over parts with two calls or more of the share of
 // pairs of calls that disagree, and the categories' shares are means over
 // all parts with a call (Gwet, Handbook of Inter-Rater Reliability, 4th ed.
 // 2014, chapter 2: the form for missing calls).
 func byShares(counts [][]int, parts []int, ch chance) (oneMargin, contributions) {
-	m := oneMargin{len(counts[0]), ch}
+	m := oneMargin{width(counts), ch}
 	z := newContributions(m.size(), parts)
 	for i, row := range counts {
 		calls, disagree := total(row)

@@ -63,8 +63,10 @@ func KornGraubard(clusters []Cluster, confidence float64) Rate {
 		r.Effective = min(calls, r.Value*(1-r.Value)/variance)
 	}
 	tail := (1 - confidence) / 2
-	ratio := studentQuantile(tail, calls-1) / studentQuantile(tail, parts-1)
-	r.Effective *= ratio * ratio
+	if t := studentQuantile(tail, parts-1); t < 0 { // with no confidence both are 0, and near it, inexact
+		ratio := min(1, studentQuantile(tail, calls-1)/t)
+		r.Effective *= ratio * ratio
+	}
 	r.Interval = exact(r.Value*r.Effective, r.Effective, confidence).with(r.Value)
 	return r
 }

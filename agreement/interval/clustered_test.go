@@ -108,3 +108,13 @@ func TestKornGraubardWithoutVariance(t *testing.T) {
 		t.Errorf("parts alike: %+v", got)
 	}
 }
+
+// A one-sided limit at 50 % is one of the two of a confidence of 0.
+func TestKornGraubardWithoutConfidence(t *testing.T) {
+	for _, confidence := range []float64{0, 1e-300, 1e-16, 1e-9} {
+		got := KornGraubard([]Cluster{{1, 3, 4}, {0, 3, 6}}, confidence)
+		if !(got.Lower <= got.Value && got.Value <= got.Upper && got.Effective > 0 && got.Effective <= 30) {
+			t.Errorf("confidence %g: %+v", confidence, got)
+		}
+	}
+}
