@@ -123,10 +123,9 @@ func (d *dataset) halves() [2]half {
 	hs := [2]half{{k: 0, to: n}, {k: 1, to: n}}
 	if d.has[0] && d.has[1] {
 		middle := d.sc.in(d.limits.Lower/2 + d.limits.Upper/2)
-		// The split must lie among accepted calls, or one half would have none.
-		if !d.acceptedBeside(middle) {
-			middle = d.acceptedMedian()
-		}
+		// The split must lie among accepted calls, or one half would have none:
+		// where all lie to one side of the middle, at the one nearest to it.
+		middle = d.acceptedNear(middle)
 		hs[0].to, _ = slices.BinarySearchFunc(d.x, middle, func(x, m float64) int {
 			if x <= m {
 				return -1
@@ -143,28 +142,22 @@ func (d *dataset) halves() [2]half {
 	return hs
 }
 
-// acceptedBeside tells whether calls were accepted on both sides of t.
-func (d *dataset) acceptedBeside(t float64) bool {
-	below, above := false, false
+// acceptedNear returns t if calls were accepted on both sides of it (or at
+// none), else the value with an accepted call that is nearest to t.
+func (d *dataset) acceptedNear(t float64) float64 {
+	lo, hi, any := 0.0, 0.0, false
 	for i, a := range d.accepted {
 		if a > 0 {
-			below, above = below || d.x[i] <= t, above || d.x[i] >= t
+			if !any {
+				lo, any = d.x[i], true
+			}
+			hi = d.x[i]
 		}
 	}
-	return below && above
-}
-
-func (d *dataset) acceptedMedian() float64 {
-	var total, so float64
-	for _, a := range d.accepted {
-		total += a
+	if !any {
+		return t
 	}
-	for i, a := range d.accepted {
-		if so += a; so > 0 && 2*so >= total {
-			return d.x[i]
-		}
-	}
-	return 0
+	return math.Min(math.Max(t, lo), hi)
 }
 
 // classify tells whether a half's calls overlap, are separated or one-sided.

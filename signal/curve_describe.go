@@ -28,6 +28,16 @@ func (c *Curve) method(plain, widened string) string {
 // describe fills the limits of a maximum-likelihood block.
 func (d *dataset) describe(c *Curve, b *block) {
 	g := b.m.groups[0]
+	if at := b.m.lapse; at != absent {
+		e := d.profile(c, b, at, logSigmaReach)
+		c.Lapse = e.map1(logistic, logistic(e.Value)*(1-logistic(e.Value)))
+		if !c.Lapse.HasLower && c.Lapse.Why == whyFlat { // a rate is never below 0
+			c.Lapse.Lower, c.Lapse.HasLower = 0, true
+			if c.Lapse.HasUpper {
+				c.Lapse.Why = ""
+			}
+		}
+	}
 	var sigma *Estimate // shared, where both limits have one σ
 	for k := range 2 {
 		if !b.has[k] {

@@ -98,7 +98,9 @@ func (d *dataset) fit(search bool) (*Curve, error) {
 		if overlap == 2 {
 			c.SameSigma = d.sameSigma(c)
 		}
-		d.outliers(c, hs)
+		if !c.known[logitE] { // random calls have their own place in the curve then
+			d.outliers(c, hs)
+		}
 	}
 	c.notes(d)
 	if err := c.sound(); err != nil {
@@ -286,10 +288,10 @@ func (d *dataset) lapse(c *Curve, blocks *[]*block, hs [2]half) {
 		// The best rate is none; only an upper bound can be told.
 		c.Lapse = Estimate{Value: 0, Lower: 0, HasLower: true, Confidence: d.options.Confidence, Method: profileMethod}
 		copy(b.s.theta, plain.theta)
-		b.s.theta[b.m.lapse] = -20
+		b.s.theta[b.m.lapse] = -12
 		start := append([]float64(nil), b.s.theta...)
 		p := newProfiler(b.s, start, plain.loglik, nil, b.m.lapse)
-		if at, ok := crossing(-20, 8, 28, twoSided(d.options.Confidence), p.root); ok {
+		if at, ok := crossing(-12, 3, 19, twoSided(d.options.Confidence), p.root); ok {
 			c.Lapse.Upper, c.Lapse.HasUpper = logistic(at), true
 		} else {
 			c.Lapse.Why = "the likelihood sets no upper bound"

@@ -78,6 +78,9 @@ func (t *term) at(link Link, z [2]float64, has [2]bool, accepted, rejected, epsi
 	}
 	t.plainP = p
 	if epsilon > 0 {
+		if p <= 0 {
+			t.densities = [2]float64{} // clipped at 0, see below
+		}
 		p, q = epsilon/2+(1-epsilon)*math.Max(p, 0), epsilon/2+(1-epsilon)*math.Min(q, 1)
 	}
 	t.p, t.q = p, q

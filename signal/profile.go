@@ -13,9 +13,11 @@ func crossing(inside, first, reach, target float64, root func(float64) float64) 
 	step := first
 	var hi, rhi float64
 	for tries := 0; ; tries++ {
-		hi = lo + step
-		if tries > 60 || math.Abs(hi-inside) > reach {
+		if math.Abs(lo-inside) >= reach || tries > 60 {
 			return 0, false
+		}
+		if hi = lo + step; math.Abs(hi-inside) > reach {
+			hi = inside + math.Copysign(reach, step)
 		}
 		rhi = root(hi)
 		if math.IsNaN(rhi) {
