@@ -12,6 +12,7 @@ import (
 	"samecall/cmd/samecall/internal/output"
 	"samecall/cmd/samecall/internal/report"
 	"samecall/cmd/samecall/internal/study"
+	"samecall/signal"
 )
 
 func newJudge(s streams) *cobra.Command {
@@ -89,7 +90,7 @@ written, 3 the data is wrong.`,
 
 func judgeStudy(s *study.Study, opt agreement.Options) (*judge.Result, error) {
 	opt.Confidence = s.Settings.Confidence
-	return judge.Run(s, opt)
+	return judge.Run(s, opt, signal.Options{})
 }
 
 // writeTo writes to the file named, or to standard output for -.

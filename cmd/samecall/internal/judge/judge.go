@@ -15,6 +15,8 @@ type Result struct {
 	// Detection holds the detection indices of each appraiser; nil entries
 	// where bad or good parts are lacking.
 	Detection []*signal.Detection
+	Zone      *Zone // nil where the study has none
+	NoZone    error // why
 	Warnings  []Warning
 }
 
@@ -24,7 +26,7 @@ type Warning struct {
 }
 
 // Run computes the result of a study.
-func Run(s *study.Study, opt agreement.Options) (*Result, error) {
+func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, error) {
 	opt.Ordered = len(s.Settings.Order) > 0
 	a, err := agreement.Analyse(s.Ratings, opt)
 	if err != nil {
@@ -38,6 +40,8 @@ func Run(s *study.Study, opt agreement.Options) (*Result, error) {
 		r.Warnings = append(r.Warnings, Warning{w.Code, w.Text})
 	}
 	r.Detection = detection(s.Ratings, opt.Confidence)
+	curve.Confidence = opt.Confidence
+	r.Zone, r.NoZone = NewZone(s, curve)
 	return r, nil
 }
 

@@ -6,6 +6,7 @@ import (
 	"strconv"
 	"strings"
 
+	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/study"
 )
 
@@ -17,7 +18,7 @@ func Check(w io.Writer, s *study.Study, term Terminal) error {
 	if title == "" && len(s.Inputs) > 0 {
 		title = s.Inputs[len(s.Inputs)-1].File
 	}
-	p.line(term.bold(plain(title)))
+	p.line(term.bold(format.Plain(title)))
 	p.wrap("The study is read without a problem.", "")
 	p.table(Table{Columns: []Column{{Name: "what"}, {Name: "how many", Long: true}}, Rows: holds(s, sum)})
 	p.table(appraisersTable(sum))
@@ -39,18 +40,18 @@ func Check(w io.Writer, s *study.Study, term Terminal) error {
 func holds(s *study.Study, sum study.Summary) [][]Cell {
 	var rows [][]Cell
 	add := func(what, how string) { rows = append(rows, []Cell{say(what), say(how)}) }
-	parts := count(sum.Parts)
+	parts := format.Count(sum.Parts)
 	if s.Ratings.HasReference() && s.Ratings.HasAccept() {
-		parts += fmt.Sprintf(", of these %s bad, %s good", count(sum.Bad), count(sum.Good))
+		parts += fmt.Sprintf(", of these %s bad, %s good", format.Count(sum.Bad), format.Count(sum.Good))
 		if sum.Unreferenced > 0 {
-			parts += ", " + count(sum.Unreferenced) + " without reference"
+			parts += ", " + format.Count(sum.Unreferenced) + " without reference"
 		}
 	}
 	add("parts", parts)
 	if sum.ByCategory != nil && !s.PassFail {
 		var by []string
 		for k, n := range sum.ByCategory {
-			by = append(by, s.Categories[k]+" "+count(n))
+			by = append(by, s.Categories[k]+" "+format.Count(n))
 		}
 		add("parts by reference", strings.Join(by, ", "))
 	}
@@ -67,9 +68,9 @@ func holds(s *study.Study, sum study.Summary) [][]Cell {
 		}
 	}
 	add("categories", strings.Join(categories, ", "))
-	calls := count(sum.Calls)
+	calls := format.Count(sum.Calls)
 	if sum.Missing > 0 {
-		calls += ", " + count(sum.Missing) + " missing"
+		calls += ", " + format.Count(sum.Missing) + " missing"
 	}
 	add("calls", calls)
 	balance := "yes: every appraiser called every part in every trial"
@@ -82,7 +83,7 @@ func holds(s *study.Study, sum study.Summary) [][]Cell {
 		if unit != "" {
 			unit = " " + unit
 		}
-		add("values", fmt.Sprintf("%s, from %s to %s%s", counted(v.Count, "part"), number(v.Min), number(v.Max), unit))
+		add("values", fmt.Sprintf("%s, from %s to %s%s", format.Counted(v.Count, "part"), format.Number(v.Min), format.Number(v.Max), unit))
 	}
 	for _, in := range s.Inputs {
 		add("read", in.File+", SHA-256 "+in.SHA256[:16]+"…")
@@ -117,7 +118,7 @@ func nearTable(v *study.ValueSummary, unit string) Table {
 	}
 	add := func(name string, l *study.LimitSummary) {
 		if l != nil {
-			t.Rows = append(t.Rows, []Cell{say(name), say(number(l.Limit) + unit), say(strconv.FormatFloat(l.Width, 'g', 3, 64) + unit), intCell(l.NearBad), intCell(l.NearGood)})
+			t.Rows = append(t.Rows, []Cell{say(name), say(format.Number(l.Limit) + unit), say(strconv.FormatFloat(l.Width, 'g', 3, 64) + unit), intCell(l.NearBad), intCell(l.NearGood)})
 		}
 	}
 	add("lower", v.Lower)

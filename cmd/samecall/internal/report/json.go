@@ -28,6 +28,7 @@ type document struct {
 	Within   []withinJSON  `json:"within"`
 	Between  betweenJSON   `json:"between"`
 	Against  againstJSON   `json:"against"`
+	Zone     zoneJSON      `json:"zone"`
 	Warnings []warningJSON `json:"warnings"`
 }
 
@@ -201,6 +202,7 @@ func newDocument(r *judge.Result) document {
 		all := newAgainst(r, r.Agreement.All)
 		d.Against.All = &all
 	}
+	d.Zone = newZone(r)
 	for _, w := range r.Warnings {
 		d.Warnings = append(d.Warnings, warningJSON(w))
 	}

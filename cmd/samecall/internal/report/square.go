@@ -2,6 +2,7 @@ package report
 
 import (
 	"samecall/agreement"
+	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/judge"
 )
 
@@ -69,14 +70,14 @@ func (s square) table(kappas bool) Table {
 }
 
 func squareCell(share agreement.Share, kappa agreement.Estimate, kappas, itself bool) Cell {
-	c := Cell{Text: dash}
+	c := Cell{Text: format.Dash}
 	if share.Absent == nil {
-		c = Cell{Text: percent(share.Value), Value: share.Value}
+		c = Cell{Text: format.Percent(share.Value), Value: share.Value}
 	}
 	if kappas {
-		k := dash
+		k := format.Dash
 		if kappa.Absent == nil {
-			k = figure(kappa.Value)
+			k = format.Figure(kappa.Value)
 		}
 		c.Text += " · " + k
 	}

@@ -3,6 +3,7 @@ package report
 import (
 	"github.com/jedib0t/go-pretty/v6/table"
 	"github.com/jedib0t/go-pretty/v6/text"
+	"samecall/cmd/samecall/internal/format"
 )
 
 // Table is one table of a report, the same for the terminal, the page and
@@ -44,7 +45,7 @@ func (t Table) render(width int) string {
 	var head table.Row
 	var configs []table.ColumnConfig
 	for i, c := range t.Columns {
-		head = append(head, plain(c.Name))
+		head = append(head, format.Plain(c.Name))
 		align := text.AlignLeft
 		if c.Numbers {
 			align = text.AlignRight
@@ -57,7 +58,7 @@ func (t Table) render(width int) string {
 	for _, row := range t.Rows {
 		var cells table.Row
 		for i, c := range row {
-			cell := plain(c.Text)
+			cell := format.Plain(c.Text)
 			if t.Columns[i].Long {
 				cell = text.WrapSoft(cell, room[i])
 			} else {
@@ -83,9 +84,9 @@ func (t Table) fit(width int) []int {
 	room := make([]int, len(t.Columns))
 	total := 0
 	for i, c := range t.Columns {
-		room[i] = text.StringWidthWithoutEscSequences(plain(c.Name))
+		room[i] = text.StringWidthWithoutEscSequences(format.Plain(c.Name))
 		for _, row := range t.Rows {
-			room[i] = max(room[i], text.StringWidthWithoutEscSequences(plain(row[i].Text)))
+			room[i] = max(room[i], text.StringWidthWithoutEscSequences(format.Plain(row[i].Text)))
 		}
 		total += room[i] + gap
 	}

@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"samecall/agreement"
+	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/judge"
 )
 
@@ -17,7 +18,7 @@ func Tables(r *judge.Result) []Table {
 	if r.Agreement.All != nil {
 		out = append(out, againstTable(r, true), errorsTable(r))
 	}
-	out = append(out, withinTable(r))
+	out = append(out, zoneTable(r), cutsTable(r), withinTable(r))
 	if len(r.Study.Appraisers) > 1 {
 		s := newSquare(r).table(true)
 		s.Note = squareNote
@@ -33,26 +34,26 @@ const squareNote = "Share of parts on which all calls are alike · kappa. In bra
 
 func shareCell(s agreement.Share) Cell {
 	if s.Absent != nil {
-		return say(dash)
+		return say(format.Dash)
 	}
-	return Cell{shareText(s), s.Value}
+	return Cell{format.Share(s), s.Value}
 }
 
 func kappaCell(e agreement.Estimate) Cell {
 	if e.Absent != nil {
-		return say(dash)
+		return say(format.Dash)
 	}
-	return Cell{kappaText(e), e.Value}
+	return Cell{format.Kappa(e), e.Value}
 }
 
 func ofCell(s agreement.Share) Cell {
 	if s.Absent != nil {
-		return say(dash)
+		return say(format.Dash)
 	}
-	return say(count(s.Count) + " of " + count(s.Of))
+	return say(format.Count(s.Count) + " of " + format.Count(s.Of))
 }
 
-func intCell(n int) Cell { return Cell{count(n), n} }
+func intCell(n int) Cell { return Cell{format.Count(n), n} }
 
 // againstTable is the table of appraisers against the reference.
 func againstTable(r *judge.Result, all bool) Table {
@@ -60,7 +61,7 @@ func againstTable(r *judge.Result, all bool) Table {
 		Name:    "appraisers",
 		Title:   "Against the reference",
 		Columns: []Column{{Name: "appraiser"}, {Name: "effectiveness", Numbers: true}, {Name: "miss rate", Numbers: true}, {Name: "false-alarm rate", Numbers: true}, {Name: "kappa", Numbers: true}},
-		Note:    fmt.Sprintf("In brackets the %s interval, the part being the sampled unit.", percent(r.Options.Confidence)),
+		Note:    fmt.Sprintf("In brackets the %s interval, the part being the sampled unit.", format.Percent(r.Options.Confidence)),
 	}
 	row := func(name string, a agreement.Against) {
 		t.Rows = append(t.Rows, []Cell{say(name), shareCell(a.Effectiveness), shareCell(a.Miss), shareCell(a.FalseAlarm), kappaCell(a.Kappa)})
@@ -85,7 +86,7 @@ func errorsTable(r *judge.Result) Table {
 	}
 	worth := func(s agreement.Share) Cell {
 		if s.Absent != nil {
-			return say(dash)
+			return say(format.Dash)
 		}
 		return Cell{fmt.Sprintf("%.1f", s.Effective), s.Effective}
 	}
@@ -93,9 +94,9 @@ func errorsTable(r *judge.Result) Table {
 		t.Rows = append(t.Rows, []Cell{say(name), ofCell(a.Effectiveness), ofCell(a.Miss), worth(a.Miss), ofCell(a.FalseAlarm), worth(a.FalseAlarm), dPrime, criterion})
 	}
 	for i, a := range r.Agreement.Against {
-		dPrime, criterion := say(dash), say(dash)
+		dPrime, criterion := say(format.Dash), say(format.Dash)
 		if d := r.Detection[i]; d != nil {
-			dPrime, criterion = Cell{figure(d.DPrime.Value), d.DPrime.Value}, Cell{figure(d.Criterion.Value), d.Criterion.Value}
+			dPrime, criterion = Cell{format.Figure(d.DPrime.Value), d.DPrime.Value}, Cell{format.Figure(d.Criterion.Value), d.Criterion.Value}
 		}
 		row(r.Study.Appraisers[i], a, dPrime, criterion)
 	}
@@ -126,7 +127,7 @@ func pairsTable(r *judge.Result) Table {
 	}
 	for _, p := range r.Agreement.Between.Pairs {
 		row := []Cell{say(r.Study.Appraisers[p.A]), say(r.Study.Appraisers[p.B]), ofCell(p.Share), shareCell(p.Share),
-			say(count(p.Alike) + " of " + count(p.Pairs)), kappaCell(p.Kappa)}
+			say(format.Count(p.Alike) + " of " + format.Count(p.Pairs)), kappaCell(p.Kappa)}
 		t.Rows = append(t.Rows, row)
 	}
 	return t
@@ -203,7 +204,7 @@ func categoriesTable(r *judge.Result) Table {
 		if against {
 			for _, a := range r.Agreement.Against {
 				if len(r.Study.Appraisers) > 3 && a.Categories[k].Absent == nil { // intervals would not fit
-					row = append(row, Cell{figure(a.Categories[k].Value), a.Categories[k].Value})
+					row = append(row, Cell{format.Figure(a.Categories[k].Value), a.Categories[k].Value})
 					continue
 				}
 				row = append(row, kappaCell(a.Categories[k]))
@@ -266,11 +267,11 @@ func directionTable(r *judge.Result) Table {
 		if test == nil {
 			return
 		}
-		df := say(dash)
+		df := say(format.Dash)
 		if test.DF > 0 {
 			df = intCell(test.DF)
 		}
-		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), say(name), {fmt.Sprintf("%.2f", test.Statistic), test.Statistic}, df, {probability(test.P), test.P}})
+		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), say(name), {fmt.Sprintf("%.2f", test.Statistic), test.Statistic}, df, {format.Probability(test.P), test.P}})
 	}
 	for a, g := range r.Agreement.Against {
 		add(a, "McNemar, exact", g.McNemar)
@@ -306,7 +307,7 @@ func partsTable(r *judge.Result) Table {
 func partList(r *judge.Result, list []int) string {
 	more := ""
 	if len(list) > manyParts {
-		more = fmt.Sprintf(", and %s more", count(len(list)-manyParts))
+		more = fmt.Sprintf(", and %s more", format.Count(len(list)-manyParts))
 		list = list[:manyParts]
 	}
 	return strings.Join(parts(r, list), ", ") + more

@@ -9,6 +9,7 @@ import (
 	"github.com/jedib0t/go-pretty/v6/text"
 
 	"samecall/agreement"
+	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/judge"
 )
 
@@ -56,7 +57,7 @@ func (p *printer) line(s string) {
 // wrap writes a paragraph, its lines after the first behind indent.
 func (p *printer) wrap(s, indent string) {
 	width := max(20, p.term.Width-len(indent))
-	for i, line := range strings.Split(text.WrapSoft(plain(s), width), "\n") {
+	for i, line := range strings.Split(text.WrapSoft(format.Plain(s), width), "\n") {
 		if i > 0 {
 			line = indent + line
 		}
@@ -67,7 +68,7 @@ func (p *printer) wrap(s, indent string) {
 func (p *printer) table(t Table) {
 	p.line("")
 	if t.Title != "" {
-		p.line(p.term.bold(plain(t.Title)))
+		p.line(p.term.bold(format.Plain(t.Title)))
 	}
 	for _, l := range strings.Split(t.render(p.term.Width), "\n") {
 		p.line(l)
@@ -83,7 +84,7 @@ func (p *printer) head(r *judge.Result) {
 	if title == "" && len(s.Inputs) > 0 {
 		title = s.Inputs[len(s.Inputs)-1].File
 	}
-	p.line(p.term.bold(plain(title)))
+	p.line(p.term.bold(format.Plain(title)))
 	p.wrap(facts(r), "")
 }
 
@@ -100,14 +101,14 @@ func facts(r *judge.Result) string {
 		out = append(out, l)
 	}
 	d := newStudy(r)
-	parts := counted(d.Parts, "part")
+	parts := format.Counted(d.Parts, "part")
 	if d.BadParts != nil {
-		parts += fmt.Sprintf(" (%s bad, %s good)", count(*d.BadParts), count(*d.GoodParts))
+		parts += fmt.Sprintf(" (%s bad, %s good)", format.Count(*d.BadParts), format.Count(*d.GoodParts))
 	}
-	out = append(out, parts, counted(len(s.Appraisers), "appraiser")+" × "+counted(d.Trials, "trial"))
-	calls := counted(d.Calls, "call")
+	out = append(out, parts, format.Counted(len(s.Appraisers), "appraiser")+" × "+format.Counted(d.Trials, "trial"))
+	calls := format.Counted(d.Calls, "call")
 	if d.Missing > 0 {
-		calls += fmt.Sprintf(", %s missing", count(d.Missing))
+		calls += fmt.Sprintf(", %s missing", format.Count(d.Missing))
 	}
 	out = append(out, calls, "reference "+d.Reference)
 	return strings.Join(out, " · ")
@@ -120,12 +121,12 @@ func limitsText(r *judge.Result) string {
 	}
 	switch {
 	case lower != nil && upper != nil:
-		limits := alike(*lower, *upper)
+		limits := format.Alike(*lower, *upper)
 		return limits[0] + " to " + limits[1] + unit
 	case lower != nil:
-		return "at least " + number(*lower) + unit
+		return "at least " + format.Number(*lower) + unit
 	case upper != nil:
-		return "at most " + number(*upper) + unit
+		return "at most " + format.Number(*upper) + unit
 	}
 	return ""
 }
@@ -142,6 +143,22 @@ func (p *printer) answer(r *judge.Result) {
 	p.table(worst(r, main))
 	p.square(r)
 	p.between(r)
+	p.zone(r)
+}
+
+// zone writes the grey zone, where the study has one.
+func (p *printer) zone(r *judge.Result) {
+	if r.Zone == nil {
+		return
+	}
+	if t := zoneTable(r); len(t.Rows) > 0 {
+		p.table(t)
+	} else {
+		p.line("")
+	}
+	for _, n := range zoneNotes(r) {
+		p.wrap(n, "")
+	}
 }
 
 // worst cuts a table with a row for each appraiser down to the worst ones.
@@ -198,7 +215,7 @@ func (p *printer) square(r *judge.Result) {
 	for _, kappas := range []bool{true, false} {
 		t := s.table(kappas)
 		for i := range t.Columns { // the heads are names
-			t.Columns[i].Name = text.Snip(plain(t.Columns[i].Name), squareHead, "…")
+			t.Columns[i].Name = text.Snip(format.Plain(t.Columns[i].Name), squareHead, "…")
 		}
 		if t.width(t.fit(p.term.Width)) > p.term.Width {
 			continue
@@ -225,11 +242,11 @@ func (p *printer) between(r *judge.Result) {
 		p.wrap("Between appraisers: "+b.Share.Absent.Error()+".", "")
 		return
 	}
-	s := fmt.Sprintf("All calls of all appraisers are alike on %s of %s parts: %s.", count(b.Share.Count), count(b.Share.Of), shareText(b.Share))
+	s := fmt.Sprintf("All calls of all appraisers are alike on %s of %s parts: %s.", format.Count(b.Share.Count), format.Count(b.Share.Of), format.Share(b.Share))
 	if b.Fleiss.Absent != nil {
 		s += " Kappa: " + b.Fleiss.Absent.Error() + "."
 	} else {
-		s += fmt.Sprintf(" Fleiss' kappa %s, AC1 %s, alpha %s.", kappaText(b.Fleiss), figure(b.AC1.Value), figure(b.Alpha.Value))
+		s += fmt.Sprintf(" Fleiss' kappa %s, AC1 %s, alpha %s.", format.Kappa(b.Fleiss), format.Figure(b.AC1.Value), format.Figure(b.Alpha.Value))
 	}
 	p.wrap(s, "")
 }

@@ -1,4 +1,5 @@
-package report
+// Package format writes the figures of a study as people read them.
+package format
 
 import (
 	"math"
@@ -10,9 +11,9 @@ import (
 	"samecall/agreement/interval"
 )
 
-// percent writes a share in percent. 0 and 100 are written for none and all
+// Percent writes a share in percent. 0 and 100 are written for none and all
 // only, never for nearly so.
-func percent(share float64) string { return digits(share, 19.95) + " %" }
+func Percent(share float64) string { return digits(share, 19.95) + " %" }
 
 // digits writes a share in percent, with one decimal below the percentage given.
 func digits(share, oneDecimal float64) string {
@@ -34,13 +35,13 @@ func digits(share, oneDecimal float64) string {
 	return decimals(0)
 }
 
-// betweenPercent writes the limits of an interval of a share, in percent.
-func betweenPercent(i interval.Interval) string {
+// PercentRange writes the limits of an interval of a share, in percent.
+func PercentRange(i interval.Interval) string {
 	return "(" + digits(i.Lower, 9.95) + "–" + digits(i.Upper, 9.95) + ")"
 }
 
-// figure writes a kappa: two digits, a true minus, and 1.00 for 1 only.
-func figure(x float64) string {
+// Figure writes a kappa: two digits, a true minus, and 1.00 for 1 only.
+func Figure(x float64) string {
 	if x < 1 && x > 0.99 {
 		x = 0.99
 	}
@@ -51,52 +52,52 @@ func figure(x float64) string {
 	return s
 }
 
-func betweenFigures(i interval.Interval) string {
+func FigureRange(i interval.Interval) string {
 	to := "–"
 	if i.Lower < 0 {
 		to = " to "
 	}
-	return "(" + figure(i.Lower) + to + figure(i.Upper) + ")"
+	return "(" + Figure(i.Lower) + to + Figure(i.Upper) + ")"
 }
 
-// dash stands for a figure that is absent.
-const dash = "–"
+// Dash stands for a figure that is absent.
+const Dash = "–"
 
-// shareText writes a share with its interval.
-func shareText(s agreement.Share) string {
+// Share writes a share with its interval.
+func Share(s agreement.Share) string {
 	if s.Absent != nil {
-		return dash
+		return Dash
 	}
-	return percent(s.Value) + " " + betweenPercent(s.Interval)
+	return Percent(s.Value) + " " + PercentRange(s.Interval)
 }
 
-// kappaText writes a coefficient with its interval.
-func kappaText(e agreement.Estimate) string {
+// Kappa writes a coefficient with its interval.
+func Kappa(e agreement.Estimate) string {
 	switch {
 	case e.Absent != nil:
-		return dash
+		return Dash
 	case e.Unbounded != nil:
-		return figure(e.Value)
+		return Figure(e.Value)
 	}
-	return figure(e.Value) + " " + betweenFigures(e.Interval)
+	return Figure(e.Value) + " " + FigureRange(e.Interval)
 }
 
-// probability writes a p-value.
-func probability(p float64) string {
+// Probability writes a p-value.
+func Probability(p float64) string {
 	if p < 0.0005 {
 		return "< 0.001"
 	}
 	return strconv.FormatFloat(p, 'f', 3, 64)
 }
 
-// number writes a value of the study as short as it can be read back.
-func number(x float64) string {
+// Number writes a value of the study as short as it can be read back.
+func Number(x float64) string {
 	return strings.Replace(strconv.FormatFloat(x, 'f', -1, 64), "-", "−", 1)
 }
 
-// alike writes values of one kind with the same number of decimals: those of
+// Alike writes values of one kind with the same number of decimals: those of
 // the one that needs most.
-func alike(values ...float64) []string {
+func Alike(values ...float64) []string {
 	decimals := 0
 	for _, v := range values {
 		_, after, _ := strings.Cut(strconv.FormatFloat(v, 'f', -1, 64), ".")
@@ -109,8 +110,8 @@ func alike(values ...float64) []string {
 	return out
 }
 
-// count writes a number of things, in groups of three digits.
-func count(n int) string {
+// Count writes a number of things, in groups of three digits.
+func Count(n int) string {
 	s := strconv.Itoa(n)
 	for i := len(s) - 3; i > 0; i -= 3 {
 		s = s[:i] + "\u00a0" + s[i:]
@@ -118,18 +119,18 @@ func count(n int) string {
 	return s
 }
 
-// counted writes a number with its noun: 1 part, 2 parts.
-func counted(n int, noun string) string {
+// Counted writes a number with its noun: 1 part, 2 parts.
+func Counted(n int, noun string) string {
 	if n != 1 {
 		noun += "s"
 	}
-	return count(n) + " " + noun
+	return Count(n) + " " + noun
 }
 
-// plain makes a text from a user's file safe to print on one line: control
+// Plain makes a text from a user's file safe to print on one line: control
 // characters, which could move the cursor or hide what stands there, and
 // those that turn the direction of what follows, are made visible.
-func plain(s string) string {
+func Plain(s string) string {
 	return strings.Map(func(r rune) rune {
 		switch {
 		case r == '\t' || r == '\n' || r == '\r' || r == '\u2028' || r == '\u2029':

@@ -1,0 +1,140 @@
+package report
+
+import (
+	"fmt"
+	"strings"
+
+	"samecall/cmd/samecall/internal/format"
+	"samecall/cmd/samecall/internal/judge"
+	"samecall/signal"
+)
+
+// zoneTable says at each limit where the calls turn and how wide the band of
+// doubt is.
+func zoneTable(r *judge.Result) Table {
+	t := Table{
+		Name:  "zone",
+		Title: "Grey zone: where the calls of all appraisers turn",
+		Columns: []Column{{Name: "limit"}, {Name: "at", Numbers: true}, {Name: "cut less limit", Numbers: true}, {Name: "σ", Numbers: true},
+			{Name: "grey zone", Numbers: true}, {Name: "of tolerance", Numbers: true}},
+	}
+	if r.Zone == nil || r.Zone.Curves == nil {
+		return t
+	}
+	s := r.Scale()
+	if s.Unit != "" {
+		t.Title += ", in " + s.Unit
+	}
+	c := r.Zone.Curves.Pooled
+	for _, l := range []*signal.LimitFit{c.Lower, c.Upper} {
+		if l == nil || !l.HasLimit {
+			continue
+		}
+		row := []Cell{say(l.Side.String()), {s.Value(l.Limit), l.Limit}}
+		if !l.Known() {
+			for range 4 {
+				row = append(row, say(format.Dash))
+			}
+			t.Rows = append(t.Rows, row)
+			continue
+		}
+		share := say(format.Dash)
+		if l.HasShare {
+			share = Cell{format.Percent(l.Share.Value), l.Share.Value}
+		}
+		t.Rows = append(t.Rows, append(row,
+			Cell{s.Estimate(l.Offset, s.Signed), l.Offset.Value},
+			Cell{s.Value(l.Sigma.Value), l.Sigma.Value},
+			Cell{s.Value(l.Width.Value), l.Width.Value},
+			share))
+	}
+	return t
+}
+
+// zoneNotes says in sentences what the table of the grey zone cannot.
+func zoneNotes(r *judge.Result) []string {
+	z := r.Zone
+	s := r.Scale()
+	var out []string
+	if z.Curves == nil {
+		out = append(out, "No acceptance curve: "+z.NoCurve.Error()+".")
+	} else {
+		c := z.Curves.Pooled
+		for _, l := range []*signal.LimitFit{c.Lower, c.Upper} {
+			if l != nil && l.Status != signal.Fitted && l.Why != "" {
+				out = append(out, "At the "+l.Side.String()+" limit: "+l.Why+".")
+			}
+		}
+		for _, i := range c.Outliers {
+			p := c.Parts[i]
+			out = append(out, fmt.Sprintf("Part %s at %s does not fit the curve: accepted in %d of %d calls where %s is expected. See zone for the fit without it.",
+				p.Name, s.Value(p.Value), p.Accepted, p.Calls, format.Percent(p.Fitted)))
+		}
+		if c.LackOfFit.Applied {
+			out = append(out, fmt.Sprintf("The parts scatter about the curve more than calls by chance would (factor %.1f); the intervals are widened for it.", c.LackOfFit.Factor))
+		}
+	}
+	u := z.Unanimous
+	if u.HasGRR {
+		var widths []string
+		for _, l := range []*signal.Zone{u.Lower, u.Upper} {
+			if l != nil && l.Found {
+				widths = append(widths, s.Value(l.Width)+" at the "+l.Side.String()+" limit")
+			}
+		}
+		out = append(out, fmt.Sprintf("Unanimous zone: %s wide. Taken as %.2f σ it makes %%GRR %.0f %% of the tolerance: %s by common practice (below 10 good, to 30 conditional).",
+			strings.Join(widths, ", "), u.Spread, u.PercentGRR, signal.BandGRR(u.PercentGRR)))
+	}
+	return out
+}
+
+// cutsTable says which appraiser cuts where; empty with one appraiser.
+func cutsTable(r *judge.Result) Table {
+	t := Table{Name: "cuts", Title: "Which appraiser cuts where", Columns: []Column{{Name: "appraiser"}}}
+	if r.Zone == nil || r.Zone.Curves == nil || len(r.Study.Appraisers) < 2 {
+		return t
+	}
+	all := r.Zone.Curves
+	s := r.Scale()
+	sides := []func(c *signal.Curve) *signal.LimitFit{}
+	for _, side := range []func(c *signal.Curve) *signal.LimitFit{
+		func(c *signal.Curve) *signal.LimitFit { return c.Lower },
+		func(c *signal.Curve) *signal.LimitFit { return c.Upper },
+	} {
+		if l := side(all.Pooled); l != nil && l.HasLimit {
+			sides = append(sides, side)
+			t.Columns = append(t.Columns, Column{Name: l.Side.String() + ": cut less limit", Numbers: true})
+		}
+	}
+	for _, side := range sides {
+		t.Columns = append(t.Columns, Column{Name: "σ " + side(all.Pooled).Side.String(), Numbers: true})
+	}
+	for a, own := range all.Each {
+		row := []Cell{say(r.Study.Appraisers[a])}
+		var sigmas []Cell
+		for _, side := range sides {
+			offset, sigma := say(format.Dash), say(format.Dash)
+			if own != nil {
+				if l := side(own); l.Known() {
+					offset = Cell{s.Estimate(l.Offset, s.Signed), l.Offset.Value}
+					sigma = Cell{s.Value(l.Sigma.Value), l.Sigma.Value}
+				}
+			}
+			row, sigmas = append(row, offset), append(sigmas, sigma)
+		}
+		t.Rows = append(t.Rows, append(row, sigmas...))
+	}
+	var tests []string
+	for _, x := range []struct {
+		what string
+		test signal.Test
+	}{{"the same cuts", all.SameCut}, {"the same σ", all.SameSigma}} {
+		if x.test.Done {
+			tests = append(tests, x.what+" p "+format.Probability(x.test.P))
+		}
+	}
+	if len(tests) > 0 {
+		t.Note = "Do all appraisers have " + strings.Join(tests, ", ") + " (likelihood ratio; a small p says they do not)."
+	}
+	return t
+}
