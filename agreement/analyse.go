@@ -35,17 +35,20 @@ func Analyse(r *Ratings, opt Options) (*Analysis, error) {
 	s := &study{Ratings: r, patterns: r.patterns(), opt: opt}
 	s.resampler = newResampler(s.patterns, opt, s.coefficients())
 	var out Analysis
-	for a := range r.Appraisers() {
+	n, K, rows := r.Appraisers(), r.Categories(), len(s.rows)
+	s.begin(n * (K + 3) * rows)
+	for a := range n {
 		out.Within = append(out.Within, s.within(a))
 	}
-	out.Between = s.between()
 	if r.HasReference() {
-		for a := range r.Appraisers() {
+		s.begin(s.ofTables(n+1) + (n+1)*K*6*rows)
+		for a := range n {
 			out.Against = append(out.Against, s.against(func(row []Category) []Category { return s.of(row, a) }))
 		}
 		all := s.against(func(row []Category) []Category { return row })
 		out.All = &all
 	}
+	out.Between = s.between()
 	out.Warnings = s.warnings(&out)
 	return &out, nil
 }
@@ -110,6 +113,17 @@ func (s *study) cross(w Weights, t Table, pairs func(pattern int, add func(j, k 
 		}
 	}
 	return e
+}
+
+// ofTables returns the additions that the kappas of n cross-tables take for
+// each resample.
+func (s *study) ofTables(n int) int {
+	K := s.Categories()
+	additions := n * (2*K + 2) * len(s.rows)
+	if s.weighted() {
+		additions = 3*additions + 2*n*K*K // each two margins
+	}
+	return additions
 }
 
 func (s *study) weighted() bool { return s.opt.Ordered && s.Categories() > 2 }

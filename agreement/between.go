@@ -54,11 +54,22 @@ func (s *study) between() Between {
 		}
 	}
 	b.Share = shareOfParts(alike, parts, s.opt.Confidence, errOneAppraiser)
-	for a := range s.Appraisers() {
-		for c := a + 1; c < s.Appraisers(); c++ {
+	s.overall(&b, counts, parts)
+	n := s.Appraisers()
+	s.begin(s.ofTables(n * (n - 1) / 2))
+	for a := range n {
+		for c := a + 1; c < n; c++ {
 			b.Pairs = append(b.Pairs, s.pair(a, c))
 		}
 	}
+	return b
+}
+
+// overall fills in the coefficients over all calls, given how many parts two
+// or more appraisers called.
+func (s *study) overall(b *Between, counts [][]int, parts int) {
+	K := s.Categories()
+	s.begin((5*(K+3) + K*5) * len(s.rows))
 	if parts == 0 { // one appraiser: its own agreement is Within
 		e := absent(errOneAppraiser)
 		b.Fleiss, b.AC1, b.Alpha, b.DifferentAppraisers = e, e, e, e
@@ -67,7 +78,7 @@ func (s *study) between() Between {
 		for k := range b.Categories {
 			b.Categories[k] = e
 		}
-		return b
+		return
 	}
 	m, z := fleiss(counts, s.times)
 	b.Fleiss = s.estimate(m, z, errSingleCalls, errAlike)
@@ -85,13 +96,12 @@ func (s *study) between() Between {
 	b.DifferentAppraisers = s.byPairs(counts, false)
 	if s.Categories() < 2 {
 		b.AC1, b.Alpha = absent(errOneChoice), absent(errOneChoice)
-		return b
+		return
 	}
 	m, z = ac1(counts, s.times)
 	b.AC1 = s.estimate(m, z, errSingleCalls, errAlike)
 	m, z = alpha(counts, s.times)
 	b.Alpha = s.estimate(m, z, errSingleCalls, errAlike)
-	return b
 }
 
 var errCategoryUnused = errors.New("no call, or every call, is of this category: kappa has nothing to measure")

@@ -17,8 +17,8 @@ const (
 	// be read from them.
 	fewestResamples = 100
 	// resamplingBudget bounds the additions spent on resampling one study.
-	// Beyond it, some two hundred appraisers in pairs, say, the intervals
-	// are linearised.
+	// A group of coefficients that would go beyond it, those of all pairs of
+	// two hundred appraisers, say, is linearised.
 	resamplingBudget = 2e9
 )
 
@@ -31,6 +31,7 @@ type resampler struct {
 	width       int
 	weights     []uint16 // resample after resample, how often each pattern was drawn; nil: linearise
 	budget      float64
+	affordable  bool      // the group of coefficients that was begun
 	resampled   []float64 // reused
 	done, total int       // coefficients, for Options.Progress
 }
@@ -73,7 +74,7 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 	}
 	e.StandardError = standardError(c, z, sums)
 	b := basis{c, z, sums, value, e.StandardError, parts, disagreeing, nil, nil}
-	if disagreeing > 0 && r.weights != nil && r.afford(z) {
+	if disagreeing > 0 && r.affordable {
 		if values := r.resample(c, z); len(values) >= min(fewestResamples, r.opt.Resamples) {
 			b.resampled, b.leftOut = values, leaveOneOut(c, z, sums)
 		}
@@ -117,13 +118,15 @@ func (b basis) interval(confidence float64) (interval.Interval, string) {
 	return interval.Interval{Lower: max(i.Lower, min(-1, b.value)), Upper: min(i.Upper, 1)}, method
 }
 
-func (r *resampler) afford(z contributions) bool {
-	cost := float64(len(z.vectors)) * float64(r.opt.Resamples)
-	if cost > r.budget {
-		return false
+// begin begins a group of coefficients that take so many additions for each
+// resample. All of the group are resampled or, beyond the budget, none: which
+// of two hundred appraisers comes first must not decide how it is treated.
+func (r *resampler) begin(additions int) {
+	cost := float64(additions) * float64(r.opt.Resamples)
+	r.affordable = r.weights != nil && cost <= r.budget
+	if r.affordable {
+		r.budget -= cost
 	}
-	r.budget -= cost
-	return true
 }
 
 // resample returns the coefficient of each resampled study that has one.
