@@ -22,6 +22,10 @@ func File(name string, write func(io.Writer) error) error {
 	switch {
 	case err == nil && info.IsDir():
 		return fmt.Errorf("%s is a folder; name a file to write", name)
+	case descriptor && own(target) != nil:
+		// Opened anew it would have a place of its own to write at, and what
+		// the program writes to the descriptor itself would lie over it.
+		return buffered(own(target), write)
 	case err == nil && (descriptor || !info.Mode().IsRegular()):
 		// Behind a descriptor may be a file that somebody else is writing
 		// to, as with /dev/stdout and a redirection: go on at its end.
@@ -60,6 +64,22 @@ func follow(name string) (target string, descriptor bool) {
 	return name, false
 }
 
+// own returns the standard output or error of this process if the path leads
+// to it, else nil.
+func own(path string) *os.File {
+	dir, err := filepath.EvalSymlinks(filepath.Dir(path))
+	if err != nil || dir != fmt.Sprintf("/proc/%d/fd", os.Getpid()) {
+		return nil
+	}
+	switch filepath.Base(path) {
+	case "1":
+		return os.Stdout
+	case "2":
+		return os.Stderr
+	}
+	return nil
+}
+
 // replace writes beside the target and renames. keep is the mode of the file
 // that is replaced; nil for a new file, which gets the mode that the system
 // gives to any new file.
@@ -87,12 +107,16 @@ func replace(target string, keep *fs.FileMode, write func(io.Writer) error) erro
 	return err
 }
 
-func closeAfter(f *os.File, write func(io.Writer) error) error {
+func buffered(f io.Writer, write func(io.Writer) error) error {
 	w := bufio.NewWriter(f)
-	err := write(w)
-	if err == nil {
-		err = w.Flush()
+	if err := write(w); err != nil {
+		return err
 	}
+	return w.Flush()
+}
+
+func closeAfter(f *os.File, write func(io.Writer) error) error {
+	err := buffered(f, write)
 	if c := f.Close(); err == nil {
 		err = c
 	}
