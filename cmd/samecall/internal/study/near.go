@@ -7,7 +7,7 @@ import "strings"
 func nearest(s string, names []string) string {
 	best, found := 3, ""
 	for _, n := range names {
-		if d := distance(strings.ToLower(s), strings.ToLower(n)); d < best && 2*d <= len(n) {
+		if d := distance(strings.ToLower(s), strings.ToLower(n)); d < best && 2*d < len(n) {
 			best, found = d, n
 		}
 	}

@@ -365,19 +365,20 @@ func parseSettings(name string, data []byte) (Settings, error) {
 	keys := s.keys()
 	take := func(key string, value toml.Primitive) {
 		set, known := keys[key]
+		var why error // the library keeps only the text of it
 		at := keyOf{func(v any) error {
-			if !known {
-				return errUnknownKey
+			if why = errUnknownKey; known {
+				why = set(v)
 			}
-			return set(v)
+			return why
 		}}
 		if err := meta.PrimitiveDecode(value, &at); err != nil {
 			p := Problem{File: name, Line: lineOf(err), Text: err.Error()}
 			var bad badValue
 			switch {
-			case errors.Is(err, errUnknownKey):
+			case errors.Is(why, errUnknownKey):
 				p.Found, p.Text = "the unknown key "+quote(key), knownKeys(key, keys)
-			case errors.As(err, &bad):
+			case errors.As(why, &bad):
 				p.Found, p.Expected, p.Text = bad.found, bad.expected, "the key is "+key
 			}
 			list = append(list, p)
