@@ -26,7 +26,8 @@ func (c *Curve) Band(x float64) Estimate {
 	se := math.Sqrt(math.Max(0, v))
 	half := math.Sqrt(c.crit) * se
 	e.SE = density * se * math.Sqrt(c.factor)
-	e.Lower, e.Upper, e.HasLower, e.HasUpper = c.Options.Link.cdf(z-half), c.Options.Link.cdf(z+half), true, true
+	// p and F(z) may differ by rounding.
+	e.Lower, e.Upper, e.HasLower, e.HasUpper = math.Min(p, c.Options.Link.cdf(z-half)), math.Max(p, c.Options.Link.cdf(z+half)), true, true
 	if !finite(e.SE, e.Lower, e.Upper) {
 		e.SE, e.Lower, e.Upper = 0, p, p
 	}
