@@ -11,7 +11,7 @@ import (
 // independent parts (Clopper & Pearson, Biometrika 26 (1934) 404–413). With
 // n = 0 nothing is known and the interval is [0, 1].
 func ClopperPearson(x, n int, confidence float64) Interval {
-	return exact(float64(x), float64(n), confidence)
+	return Exact(float64(x), float64(n), confidence)
 }
 
 // UpperLimit returns the exact one-sided upper limit of a share, x of n
@@ -43,9 +43,9 @@ func Wilson(x, n int, confidence float64) Interval {
 	return Interval{max(0, centre-half), min(1, centre+half)}.with(p)
 }
 
-// exact is the Clopper–Pearson interval for counts that need not be whole,
-// as an effective number of calls is not.
-func exact(x, n, confidence float64) Interval {
+// Exact returns the Clopper–Pearson interval for counts that need not be
+// whole, as an effective number of calls is not: x events of n.
+func Exact(x, n, confidence float64) Interval {
 	tail := (1 - confidence) / 2
 	return Interval{lower(x, n, tail), upper(x, n, tail)}
 }

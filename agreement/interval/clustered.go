@@ -49,7 +49,7 @@ func KornGraubard(clusters []Cluster, confidence float64) Rate {
 	r.Value = events / calls
 	if r.Events == 0 || r.Events == r.Calls || r.Parts == 1 {
 		r.Effective = parts
-		r.Interval = exact(r.Value*parts, parts, confidence).with(r.Value)
+		r.Interval = Exact(r.Value*parts, parts, confidence).with(r.Value)
 		return r
 	}
 	var variance float64
@@ -67,7 +67,7 @@ func KornGraubard(clusters []Cluster, confidence float64) Rate {
 		ratio := min(1, studentQuantile(tail, calls-1)/t)
 		r.Effective *= ratio * ratio
 	}
-	r.Interval = exact(r.Value*r.Effective, r.Effective, confidence).with(r.Value)
+	r.Interval = Exact(r.Value*r.Effective, r.Effective, confidence).with(r.Value)
 	return r
 }
 

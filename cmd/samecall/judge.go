@@ -12,6 +12,7 @@ import (
 	"samecall/cmd/samecall/internal/output"
 	"samecall/cmd/samecall/internal/report"
 	"samecall/cmd/samecall/internal/study"
+	"samecall/cmd/samecall/internal/verdict"
 	"samecall/signal"
 )
 
@@ -88,9 +89,13 @@ written, 3 the data is wrong.`,
 	return cmd
 }
 
-func judgeStudy(s *study.Study, opt agreement.Options) (*judge.Result, error) {
+func judgeStudy(s *study.Study, opt agreement.Options) (*report.Record, error) {
 	opt.Confidence = s.Settings.Confidence
-	return judge.Run(s, opt, signal.Options{})
+	result, err := judge.Run(s, opt, signal.Options{})
+	if err != nil {
+		return nil, err
+	}
+	return &report.Record{Result: result, Verdict: verdict.Decide(result), Version: version()}, nil
 }
 
 // writeTo writes to the file named, or to standard output for -.

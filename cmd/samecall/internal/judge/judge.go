@@ -2,6 +2,8 @@
 package judge
 
 import (
+	"errors"
+
 	"samecall/agreement"
 	"samecall/cmd/samecall/internal/study"
 	"samecall/signal"
@@ -44,6 +46,9 @@ func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, 
 	r.Zone, r.NoZone = NewZone(s, curve)
 	return r, nil
 }
+
+// ErrNoReference is why a study without a reference has no errors to count.
+var ErrNoReference = errors.New("no part has a reference: nothing is known to be right or wrong")
 
 func detection(r *agreement.Ratings, confidence float64) []*signal.Detection {
 	all := make([]*signal.Detection, r.Appraisers())

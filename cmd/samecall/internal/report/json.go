@@ -14,7 +14,7 @@ import (
 const Schema = "samecall/judge/1"
 
 // JSON writes a result for programs.
-func JSON(w io.Writer, r *judge.Result) error {
+func JSON(w io.Writer, r *Record) error {
 	e := json.NewEncoder(w)
 	e.SetIndent("", "  ")
 	e.SetEscapeHTML(false)
@@ -29,6 +29,7 @@ type document struct {
 	Between  betweenJSON   `json:"between"`
 	Against  againstJSON   `json:"against"`
 	Zone     zoneJSON      `json:"zone"`
+	Verdict  verdictJSON   `json:"verdict"`
 	Warnings []warningJSON `json:"warnings"`
 }
 
@@ -180,7 +181,7 @@ type testJSON struct {
 	P         float64 `json:"p"`
 }
 
-func newDocument(r *judge.Result) document {
+func newDocument(r *Record) document {
 	d := document{
 		Schema:   Schema,
 		Study:    newStudy(r),
@@ -194,7 +195,7 @@ func newDocument(r *judge.Result) document {
 	}
 	d.Against.Appraisers = []againstAppraiserJSON{}
 	if r.Agreement.All == nil {
-		d.Against.Reason = "no part has a reference: nothing is known to be right or wrong"
+		d.Against.Reason = judge.ErrNoReference.Error()
 	} else {
 		for a := range r.Agreement.Against {
 			d.Against.Appraisers = append(d.Against.Appraisers, newAgainstAppraiser(r, a))
@@ -203,13 +204,14 @@ func newDocument(r *judge.Result) document {
 		d.Against.All = &all
 	}
 	d.Zone = newZone(r)
+	d.Verdict = newVerdict(r.Verdict)
 	for _, w := range r.Warnings {
 		d.Warnings = append(d.Warnings, warningJSON(w))
 	}
 	return d
 }
 
-func newStudy(r *judge.Result) studyJSON {
+func newStudy(r *Record) studyJSON {
 	s := r.Study
 	out := studyJSON{
 		Title:          s.Settings.Title,
@@ -253,7 +255,7 @@ func newStudy(r *judge.Result) studyJSON {
 	return out
 }
 
-func newBetween(r *judge.Result) betweenJSON {
+func newBetween(r *Record) betweenJSON {
 	b := r.Agreement.Between
 	out := betweenJSON{
 		Share:               newShare(b.Share),
@@ -285,7 +287,7 @@ func newBetween(r *judge.Result) betweenJSON {
 	return out
 }
 
-func newAgainstAppraiser(r *judge.Result, a int) againstAppraiserJSON {
+func newAgainstAppraiser(r *Record, a int) againstAppraiserJSON {
 	out := againstAppraiserJSON{
 		Appraiser:      r.Study.Appraisers[a],
 		againstAllJSON: newAgainst(r, &r.Agreement.Against[a]),
@@ -298,7 +300,7 @@ func newAgainstAppraiser(r *judge.Result, a int) againstAppraiserJSON {
 	return out
 }
 
-func newAgainst(r *judge.Result, a *agreement.Against) againstAllJSON {
+func newAgainst(r *Record, a *agreement.Against) againstAllJSON {
 	out := againstAllJSON{
 		Effectiveness:  newShare(a.Effectiveness),
 		Table:          a.Table,
@@ -336,7 +338,7 @@ func newWeighted(linear, quadratic *agreement.Estimate) weightedJSON {
 	return w
 }
 
-func newCategories(r *judge.Result, kappas []agreement.Estimate) []categoryJSON {
+func newCategories(r *Record, kappas []agreement.Estimate) []categoryJSON {
 	out := []categoryJSON{}
 	for k, e := range kappas {
 		out = append(out, categoryJSON{r.Study.Categories[k], newEstimate(e)})
@@ -390,7 +392,7 @@ func newSignal(e signal.Estimate) estimateJSON {
 }
 
 // parts names the parts of the numbers given.
-func parts(r *judge.Result, numbers []int) []string {
+func parts(r *Record, numbers []int) []string {
 	names := make([]string, len(numbers))
 	for i, n := range numbers {
 		names[i] = r.Study.Parts[n]

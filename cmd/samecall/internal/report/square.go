@@ -3,7 +3,6 @@ package report
 import (
 	"samecall/agreement"
 	"samecall/cmd/samecall/internal/format"
-	"samecall/cmd/samecall/internal/judge"
 )
 
 // square is the agreement square: appraisers, and the reference, along both
@@ -16,7 +15,7 @@ type square struct {
 	ref    []agreement.Against // nil without a reference
 }
 
-func newSquare(r *judge.Result) square {
+func newSquare(r *Record) square {
 	s := square{
 		names:  r.Study.Appraisers,
 		within: r.Agreement.Within,

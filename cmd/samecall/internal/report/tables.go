@@ -7,13 +7,13 @@ import (
 
 	"samecall/agreement"
 	"samecall/cmd/samecall/internal/format"
-	"samecall/cmd/samecall/internal/judge"
+	"samecall/cmd/samecall/internal/verdict"
 )
 
 const together = "all together"
 
 // Tables returns every table of a result, in the order of reading.
-func Tables(r *judge.Result) []Table {
+func Tables(r *Record) []Table {
 	var out []Table
 	if r.Agreement.All != nil {
 		out = append(out, againstTable(r, true), errorsTable(r))
@@ -56,7 +56,7 @@ func ofCell(s agreement.Share) Cell {
 func intCell(n int) Cell { return Cell{format.Count(n), n} }
 
 // againstTable is the table of appraisers against the reference.
-func againstTable(r *judge.Result, all bool) Table {
+func againstTable(r *Record, all bool) Table {
 	t := Table{
 		Name:    "appraisers",
 		Title:   "Against the reference",
@@ -76,7 +76,7 @@ func againstTable(r *judge.Result, all bool) Table {
 }
 
 // errorsTable gives the counts behind the rates, and the detection indices.
-func errorsTable(r *judge.Result) Table {
+func errorsTable(r *Record) Table {
 	t := Table{
 		Name:  "errors",
 		Title: "Counts behind the rates",
@@ -106,7 +106,7 @@ func errorsTable(r *judge.Result) Table {
 	return t
 }
 
-func withinTable(r *judge.Result) Table {
+func withinTable(r *Record) Table {
 	t := Table{
 		Name:    "within",
 		Title:   "Within appraiser: does each repeat its own call?",
@@ -118,7 +118,7 @@ func withinTable(r *judge.Result) Table {
 	return t
 }
 
-func pairsTable(r *judge.Result) Table {
+func pairsTable(r *Record) Table {
 	t := Table{
 		Name:    "pairs",
 		Title:   "Between appraisers: each two",
@@ -135,7 +135,7 @@ func pairsTable(r *judge.Result) Table {
 
 // weightedTable gives the kappas that weigh errors by their steps; empty
 // where categories have no order.
-func weightedTable(r *judge.Result) Table {
+func weightedTable(r *Record) Table {
 	t := Table{
 		Name:    "weighted",
 		Title:   "Kappa weighted by the steps between grades",
@@ -165,7 +165,7 @@ func pairingNote(p agreement.Pairing) string {
 	return "Trial by trial: the first trial of the one beside the first of the other, and so on."
 }
 
-func coefficientsTable(r *judge.Result) Table {
+func coefficientsTable(r *Record) Table {
 	b := r.Agreement.Between
 	t := Table{
 		Name:    "between",
@@ -184,7 +184,7 @@ func coefficientsTable(r *judge.Result) Table {
 
 // categoriesTable gives the kappa of each category; empty with two
 // categories, whose kappas are those of the whole.
-func categoriesTable(r *judge.Result) Table {
+func categoriesTable(r *Record) Table {
 	if len(r.Study.Categories) < 3 {
 		return Table{}
 	}
@@ -219,7 +219,7 @@ func categoriesTable(r *judge.Result) Table {
 }
 
 // crossTables gives the calls of each appraiser by the reference.
-func crossTables(r *judge.Result) []Table {
+func crossTables(r *Record) []Table {
 	var out []Table
 	for a, g := range r.Agreement.Against {
 		t := crossTable(r, g.Table)
@@ -230,7 +230,7 @@ func crossTables(r *judge.Result) []Table {
 	return out
 }
 
-func crossTable(r *judge.Result, x agreement.Table) Table {
+func crossTable(r *Record, x agreement.Table) Table {
 	t := Table{Columns: []Column{{Name: "call"}}}
 	for _, c := range r.Study.Categories {
 		t.Columns = append(t.Columns, Column{Name: "truly " + c, Numbers: true})
@@ -256,7 +256,7 @@ func crossTable(r *judge.Result, x agreement.Table) Table {
 }
 
 // directionTable gives the tests of direction.
-func directionTable(r *judge.Result) Table {
+func directionTable(r *Record) Table {
 	t := Table{
 		Name:    "direction",
 		Title:   "Do the errors lean one way?",
@@ -285,7 +285,7 @@ func directionTable(r *judge.Result) Table {
 const manyParts = 40
 
 // partsTable names the parts that were wrong every time or mixed.
-func partsTable(r *judge.Result) Table {
+func partsTable(r *Record) Table {
 	t := Table{Name: "parts", Title: "Parts to look at", Columns: []Column{{Name: "appraiser"}, {Name: "what"}, {Name: "parts", Numbers: true}, {Name: "which", Long: true}}}
 	add := func(name, what string, list []int) {
 		if len(list) > 0 {
@@ -304,11 +304,41 @@ func partsTable(r *judge.Result) Table {
 	return t
 }
 
-func partList(r *judge.Result, list []int) string {
+func partList(r *Record, list []int) string {
 	more := ""
 	if len(list) > manyParts {
 		more = fmt.Sprintf(", and %s more", format.Count(len(list)-manyParts))
 		list = list[:manyParts]
 	}
 	return strings.Join(parts(r, list), ", ") + more
+}
+
+// criteriaTable holds each figure of each appraiser against its levels.
+func criteriaTable(r *Record) Table {
+	t := Table{
+		Name:  "criteria",
+		Title: "Criteria",
+		Columns: []Column{{Name: "appraiser"}, {Name: "figure"}, {Name: "found", Numbers: true}, {Name: "accept", Numbers: true},
+			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: "data"}, {Name: "to settle it", Long: true}},
+		Note: fmt.Sprintf("Shown, contradicted or open at %s confidence, one-sided, for the level that the estimate reaches (for a reject, the conditional level).", format.Percent(r.Options.Confidence)),
+	}
+	add := func(name string, c verdict.Criterion) {
+		found, evidence, settle := say(format.Dash), "", ""
+		if c.Met != verdict.NotShown {
+			found, evidence = Cell{c.Number(c.Estimate.Value), c.Estimate.Value}, c.Evidence.String()
+			if c.More > 0 {
+				settle = format.Counted(c.More, c.Kind) + " more"
+			}
+		}
+		t.Rows = append(t.Rows, []Cell{say(name), say(c.Label()), found, {c.Level(c.Levels[0]), c.Levels[0]}, {c.Level(c.Levels[1]), c.Levels[1]}, say(c.Met.String()), say(evidence), say(settle)})
+	}
+	for _, a := range r.Verdict.Appraisers {
+		for _, c := range a.Criteria {
+			add(a.Name, c)
+		}
+	}
+	if b := r.Verdict.Between; b != nil {
+		add("between", *b)
+	}
+	return t
 }

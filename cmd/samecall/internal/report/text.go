@@ -10,7 +10,6 @@ import (
 
 	"samecall/agreement"
 	"samecall/cmd/samecall/internal/format"
-	"samecall/cmd/samecall/internal/judge"
 )
 
 // Terminal says what a text is written to.
@@ -27,18 +26,47 @@ func (t Terminal) bold(s string) string {
 }
 
 // Text writes the answer: one screen, or with full everything there is.
-func Text(w io.Writer, r *judge.Result, term Terminal, full bool) error {
+func Text(w io.Writer, r *Record, term Terminal, full bool) error {
 	p := &printer{w: w, term: term}
 	p.head(r)
+	p.verdict(r)
 	if full {
+		p.table(criteriaTable(r))
 		for _, t := range Tables(r) {
 			p.table(t)
 		}
 	} else {
 		p.answer(r)
 	}
+	p.next(r)
 	p.warnings(r)
 	return p.err
+}
+
+// verdict writes the answer to whether the inspection is fit for use.
+func (p *printer) verdict(r *Record) {
+	v := r.Verdict
+	p.line("")
+	p.line(p.term.bold("Verdict: " + strings.ToUpper(v.Overall.String())))
+	for i, why := range v.Reasons {
+		if i < len(v.Carry) {
+			why += " " + v.Carry[i]
+		}
+		p.wrap("  "+why, "  ")
+	}
+	for _, c := range v.Causes {
+		p.wrap("Cause: "+c.Text, "  ")
+	}
+}
+
+// next writes what to do now.
+func (p *printer) next(r *Record) {
+	p.line("")
+	p.line(p.term.bold("What to do next"))
+	for i, n := range r.Verdict.Next {
+		p.wrap(fmt.Sprintf("%d. %s", i+1, n), "   ")
+	}
+	p.wrap(strings.Join(r.Verdict.Cautions, " "), "")
 }
 
 // printer keeps the first error of writing.
@@ -57,7 +85,11 @@ func (p *printer) line(s string) {
 // wrap writes a paragraph, its lines after the first behind indent.
 func (p *printer) wrap(s, indent string) {
 	width := max(20, p.term.Width-len(indent))
-	for i, line := range strings.Split(text.WrapSoft(format.Plain(s), width), "\n") {
+	lead := s[:len(s)-len(strings.TrimLeft(s, " "))] // which wrapping would eat
+	for i, line := range strings.Split(text.WrapSoft(strings.TrimLeft(format.Plain(s), " "), width), "\n") {
+		if i == 0 {
+			line = lead + line
+		}
 		if i > 0 {
 			line = indent + line
 		}
@@ -78,7 +110,7 @@ func (p *printer) table(t Table) {
 	}
 }
 
-func (p *printer) head(r *judge.Result) {
+func (p *printer) head(r *Record) {
 	s := r.Study
 	title := s.Settings.Title
 	if title == "" && len(s.Inputs) > 0 {
@@ -89,7 +121,7 @@ func (p *printer) head(r *judge.Result) {
 }
 
 // facts says in one paragraph what was studied.
-func facts(r *judge.Result) string {
+func facts(r *Record) string {
 	s := r.Study
 	var out []string
 	for _, t := range []string{s.Settings.Characteristic, s.Settings.Gauge} {
@@ -114,7 +146,7 @@ func facts(r *judge.Result) string {
 	return strings.Join(out, " · ")
 }
 
-func limitsText(r *judge.Result) string {
+func limitsText(r *Record) string {
 	lower, upper, unit := r.Study.Settings.Lower, r.Study.Settings.Upper, r.Study.Settings.Unit
 	if unit != "" {
 		unit = " " + unit
@@ -135,7 +167,7 @@ func limitsText(r *judge.Result) string {
 const manyAppraisers = 12
 
 // answer writes the one screen.
-func (p *printer) answer(r *judge.Result) {
+func (p *printer) answer(r *Record) {
 	main := withinTable(r)
 	if r.Agreement.All != nil {
 		main = againstTable(r, true)
@@ -147,7 +179,7 @@ func (p *printer) answer(r *judge.Result) {
 }
 
 // zone writes the grey zone, where the study has one.
-func (p *printer) zone(r *judge.Result) {
+func (p *printer) zone(r *Record) {
 	if r.Zone == nil {
 		return
 	}
@@ -162,7 +194,7 @@ func (p *printer) zone(r *judge.Result) {
 }
 
 // worst cuts a table with a row for each appraiser down to the worst ones.
-func worst(r *judge.Result, t Table) Table {
+func worst(r *Record, t Table) Table {
 	n := len(r.Study.Appraisers)
 	if n <= manyAppraisers {
 		return t
@@ -179,7 +211,7 @@ func worst(r *judge.Result, t Table) Table {
 
 // worstFirst orders appraisers by effectiveness or, without a reference, by
 // how often they repeat themselves.
-func worstFirst(r *judge.Result) []int {
+func worstFirst(r *Record) []int {
 	share := func(a int) agreement.Share {
 		if r.Agreement.All != nil {
 			return r.Agreement.Against[a].Effectiveness
@@ -207,7 +239,7 @@ const squareHead = 14
 
 // square writes the agreement square, with kappas where they fit, and leaves
 // it to --full where not even the shares do.
-func (p *printer) square(r *judge.Result) {
+func (p *printer) square(r *Record) {
 	if len(r.Study.Appraisers) < 2 {
 		return
 	}
@@ -235,7 +267,7 @@ func (p *printer) square(r *judge.Result) {
 }
 
 // between writes one sentence on all appraisers together.
-func (p *printer) between(r *judge.Result) {
+func (p *printer) between(r *Record) {
 	b := r.Agreement.Between
 	p.line("")
 	if b.Share.Absent != nil {
@@ -251,7 +283,7 @@ func (p *printer) between(r *judge.Result) {
 	p.wrap(s, "")
 }
 
-func (p *printer) warnings(r *judge.Result) {
+func (p *printer) warnings(r *Record) {
 	for _, w := range r.Warnings {
 		p.line("")
 		p.wrap("Note: "+w.Text, "      ")

@@ -5,13 +5,12 @@ import (
 	"strings"
 
 	"samecall/cmd/samecall/internal/format"
-	"samecall/cmd/samecall/internal/judge"
 	"samecall/signal"
 )
 
 // zoneTable says at each limit where the calls turn and how wide the band of
 // doubt is.
-func zoneTable(r *judge.Result) Table {
+func zoneTable(r *Record) Table {
 	t := Table{
 		Name:  "zone",
 		Title: "Grey zone: where the calls of all appraisers turn",
@@ -52,7 +51,7 @@ func zoneTable(r *judge.Result) Table {
 }
 
 // zoneNotes says in sentences what the table of the grey zone cannot.
-func zoneNotes(r *judge.Result) []string {
+func zoneNotes(r *Record) []string {
 	z := r.Zone
 	s := r.Scale()
 	var out []string
@@ -79,17 +78,17 @@ func zoneNotes(r *judge.Result) []string {
 		var widths []string
 		for _, l := range []*signal.Zone{u.Lower, u.Upper} {
 			if l != nil && l.Found {
-				widths = append(widths, s.Value(l.Width)+" at the "+l.Side.String()+" limit")
+				widths = append(widths, s.Value(l.Width)+" wide at the "+l.Side.String()+" limit")
 			}
 		}
-		out = append(out, fmt.Sprintf("Unanimous zone: %s wide. Taken as %.2f σ it makes %%GRR %.0f %% of the tolerance: %s by common practice (below 10 good, to 30 conditional).",
+		out = append(out, fmt.Sprintf("Unanimous zone: %s. Taken as %.2f σ it makes %%GRR %.0f %% of the tolerance: %s by common practice (below 10 good, to 30 conditional).",
 			strings.Join(widths, ", "), u.Spread, u.PercentGRR, signal.BandGRR(u.PercentGRR)))
 	}
 	return out
 }
 
 // cutsTable says which appraiser cuts where; empty with one appraiser.
-func cutsTable(r *judge.Result) Table {
+func cutsTable(r *Record) Table {
 	t := Table{Name: "cuts", Title: "Which appraiser cuts where", Columns: []Column{{Name: "appraiser"}}}
 	if r.Zone == nil || r.Zone.Curves == nil || len(r.Study.Appraisers) < 2 {
 		return t

@@ -1,7 +1,6 @@
 package report
 
 import (
-	"samecall/cmd/samecall/internal/judge"
 	"samecall/signal"
 )
 
@@ -88,7 +87,7 @@ type curveTestsJSON struct {
 	BothLimits *testJSON `json:"same_sigma_at_both_limits,omitempty"`
 }
 
-func newZone(r *judge.Result) zoneJSON {
+func newZone(r *Record) zoneJSON {
 	z := r.Zone
 	if z == nil {
 		return zoneJSON{Reason: r.NoZone.Error()}
@@ -124,7 +123,7 @@ func newUnanimousZone(z *signal.Zone) *unanimousZoneJSON {
 	return &unanimousZoneJSON{Reject: &z.Reject, Accept: &z.Accept, Width: &z.Width, MixedParts: z.Mixed}
 }
 
-func newCurve(r *judge.Result, all *signal.Appraisers) *curveJSON {
+func newCurve(r *Record, all *signal.Appraisers) *curveJSON {
 	c := all.Pooled
 	out := &curveJSON{
 		Link:          c.Options.Link.String(),
