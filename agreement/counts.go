@@ -3,6 +3,7 @@ package agreement
 import (
 	"errors"
 	"fmt"
+	"math"
 )
 
 // Counts tells, for each part, how many calls fell in each category: a row a
@@ -27,10 +28,15 @@ func (c Counts) categories() (int, error) {
 		if len(row) != K {
 			return 0, fmt.Errorf("agreement: row %d has %d categories, row 0 has %d", i, len(row), K)
 		}
+		calls := 0
 		for k, n := range row {
 			if n < 0 {
 				return 0, fmt.Errorf("agreement: row %d counts %d calls in category %d", i, n, k)
 			}
+			if n > math.MaxInt32-calls { // pairs of calls are counted too
+				return 0, fmt.Errorf("agreement: row %d counts more than %d calls", i, math.MaxInt32)
+			}
+			calls += n
 		}
 	}
 	if K < 2 {

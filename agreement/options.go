@@ -33,6 +33,10 @@ type Options struct {
 	Progress func(done, of int)
 }
 
+// MaxResamples is the largest number of resamples that Options may ask for.
+// More would change no limit that is worth printing.
+const MaxResamples = 1_000_000
+
 // DefaultOptions returns 95 % confidence, 2000 resamples, matched trials.
 func DefaultOptions() Options {
 	return Options{Confidence: 0.95, Resamples: 2000, Seed: 1}
@@ -42,8 +46,8 @@ func (o Options) check() error {
 	if !(o.Confidence > 0 && o.Confidence < 1) {
 		return fmt.Errorf("agreement: confidence %v is not between 0 and 1", o.Confidence)
 	}
-	if o.Resamples < 0 {
-		return fmt.Errorf("agreement: %d resamples", o.Resamples)
+	if o.Resamples < 0 || o.Resamples > MaxResamples {
+		return fmt.Errorf("agreement: %d resamples, want 0 to %d", o.Resamples, MaxResamples)
 	}
 	return nil
 }

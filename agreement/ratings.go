@@ -49,6 +49,9 @@ func New(parts, categories int, trials []int) (*Ratings, error) {
 		if n < 1 {
 			return nil, fmt.Errorf("agreement: appraiser %d has %d trials, want 1 or more", a, n)
 		}
+		if n > maxCells-r.first[a] {
+			return nil, fmt.Errorf("agreement: the trials of appraisers 0 to %d are more than %d together", a, maxCells)
+		}
 		r.first[a+1] = r.first[a] + n
 	}
 	cells := float64(parts) * float64(r.columns())

@@ -10,6 +10,7 @@ import (
 type Table [][]int
 
 var (
+	errTooMany     = errors.New("agreement: the table counts more than 2⁵³ pairs of calls")
 	errNoPairs     = errors.New("agreement: the table is empty")
 	errOneCategory = errors.New("both sides used one category only, the same: kappa has nothing to measure")
 )
@@ -23,7 +24,11 @@ func newTable(categories int) Table {
 	return t
 }
 
-// check returns an error unless t is square, not negative and not empty.
+// maxPairs bounds what a table counts: all of it can be told apart as a float.
+const maxPairs = 1 << 53
+
+// check returns an error unless t is square, not negative, not empty and not
+// beyond maxPairs.
 func (t Table) check() error {
 	n := 0
 	for j, row := range t {
@@ -33,6 +38,9 @@ func (t Table) check() error {
 		for k, c := range row {
 			if c < 0 {
 				return fmt.Errorf("agreement: row %d, column %d counts %d", j, k, c)
+			}
+			if c > maxPairs-n {
+				return errTooMany
 			}
 			n += c
 		}

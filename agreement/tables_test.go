@@ -294,3 +294,13 @@ func TestTablesThatSayNothing(t *testing.T) {
 		}
 	}
 }
+
+// Where the exact test passes to the normal, at a million disagreements, the
+// two agree.
+func TestMcNemarOfMillions(t *testing.T) {
+	for _, d := range []int{0, 500, 1000, 2000} { // 0 to 4 standard deviations
+		exact := must[Test](t)(Table{{0, 500_000 - d}, {500_000 + d, 0}}.McNemar())
+		normal := must[Test](t)(Table{{0, 500_001 - d}, {500_001 + d, 0}}.McNemar())
+		near(t, "p", normal.P/exact.P, 1, 1e-4)
+	}
+}
