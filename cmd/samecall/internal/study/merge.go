@@ -19,7 +19,7 @@ type merge struct {
 	meaning  [][]agreement.Category // of each builder's words, by number plus 1; [0] is Missing
 	columns  [][]int32              // of each builder's columns, the column in Ratings; −1: none
 	rank     [][]uint32             // of each builder's parts, the part in Ratings
-	suspect  map[uint32]bool // parts of which two rows say different things
+	suspect  map[uint32]bool        // parts of which two rows say different things
 	more     int
 }
 

@@ -22,8 +22,8 @@ const workers = 2
 // As long as no quote has come by, a line is a row and a separator separates:
 // chunks go to the workers, which split them directly. From the first chunk
 // with a quote on, the text goes through encoding/csv.
-func readText(in io.Reader, s Settings) (*table, error) {
-	c, err := newChunker(in)
+func readText(in io.Reader, s Settings, size int) (*table, error) {
+	c, err := newChunker(in, size)
 	if err != nil {
 		return nil, err
 	}

@@ -2,6 +2,7 @@ package study
 
 import (
 	"bytes"
+	"cmp"
 	"crypto/sha256"
 	"encoding/hex"
 	"errors"
@@ -156,7 +157,7 @@ func (src Source) readCalls(file, name string, s Settings) (*Study, Input, error
 	if string(magic[:n]) == "PK\x03\x04" {
 		t, err = readWorkbook(whole, s)
 	} else {
-		t, err = readText(whole, s)
+		t, err = readText(whole, s, cmp.Or(src.chunk, chunkSize))
 	}
 	if p, ok := problemOf(err); ok {
 		t, err = &table{problems: []Problem{p}}, nil

@@ -13,6 +13,8 @@ type Source struct {
 	Study string    // study file beside Path; may be empty
 	Stdin io.Reader // read where a path is "-"
 	FS    fs.FS     // nil: the files of the machine; else paths are names in it
+
+	chunk int // bytes of text parsed at a time; 0: chunkSize
 }
 
 // Study is what was read, checked and in canonical order: parts and

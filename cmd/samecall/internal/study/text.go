@@ -38,19 +38,20 @@ type chunker struct {
 	utf8  bool   // a character beyond ASCII was valid UTF-8
 	latin bool   // one was not
 	done  bool
+	size  int         // of a chunk, as far as lines allow
 	free  chan []byte // buffers to use again
 }
 
 // newChunker looks at the first bytes of the text for its encoding. The error
 // is a textError where they are no text.
-func newChunker(in io.Reader) (*chunker, error) {
-	head := make([]byte, 4096)
+func newChunker(in io.Reader, size int) (*chunker, error) {
+	head := make([]byte, min(4096, size))
 	n, err := io.ReadFull(in, head)
 	if err != nil && err != io.EOF && err != io.ErrUnexpectedEOF {
 		return nil, err
 	}
 	head = head[:n]
-	c := &chunker{in: in, tail: head, free: make(chan []byte, 8)}
+	c := &chunker{in: in, tail: head, size: size, free: make(chan []byte, 8)}
 	switch order, isUTF16 := utf16Order(head); {
 	case bytes.HasPrefix(head, []byte("\xef\xbb\xbf")):
 		c.tail, c.utf8 = head[3:], true
@@ -119,7 +120,7 @@ func (c *chunker) next() (chunk, error) {
 		if len(buf) >= maxLine {
 			return chunk{}, &textError{Line: c.line + 1, Text: fmt.Sprintf("the line is longer than %d bytes; is this a table of calls?", maxLine)}
 		}
-		buf = append(make([]byte, 0, 2*cap(buf)), buf...)
+		buf = append(make([]byte, 0, c.size+2*cap(buf)), buf...)
 	}
 }
 
@@ -128,12 +129,15 @@ func (c *chunker) buffer() []byte {
 	case b := <-c.free:
 		return b[:0]
 	default:
-		return make([]byte, 0, chunkSize)
+		return make([]byte, 0, c.size)
 	}
 }
 
 // release gives back the memory of a chunk.
 func (c *chunker) release(k chunk) {
+	if cap(k.data) < c.size/2 { // what is left behind a header may be short
+		return
+	}
 	select {
 	case c.free <- k.data:
 	default:
