@@ -19,78 +19,76 @@ const maxUnzipped = 1 << 30
 // taken as they are stored, not as they are shown: 12.004 shown as 12.00 is
 // 12.004.
 func readWorkbook(in io.Reader, s Settings) (*table, error) {
-	f, err := excelize.OpenReader(in, excelize.Options{RawCellValue: true, UnzipSizeLimit: maxUnzipped})
+	f, sheet, err := openSheet(in, s.Sheet)
 	if err != nil {
-		return nil, &textError{Text: "this is no readable .xlsx workbook (" + err.Error() + "); save it as .xlsx or CSV"}
+		return nil, err
 	}
 	defer f.Close()
-	sheets := f.GetSheetList()
-	if len(sheets) == 0 {
-		return nil, &textError{Text: "the workbook has no sheet"}
-	}
-	sheet := sheets[0]
-	if s.Sheet != "" {
-		i := slices.IndexFunc(sheets, func(n string) bool { return n == s.Sheet })
-		if i < 0 {
-			i = slices.IndexFunc(sheets, func(n string) bool { return fold(n) == fold(s.Sheet) })
-		}
-		if i < 0 {
-			var list []string
-			for _, n := range sheets {
-				list = append(list, quote(n))
-			}
-			return nil, &textError{Found: "no sheet " + quote(s.Sheet), Expected: "one of the sheets " + listOf(list, "or")}
-		}
-		sheet = sheets[i]
-	}
 	t := &table{sheet: sheet}
 	if err := t.readSheet(f, s); err != nil {
-		return nil, &textError{Text: fmt.Sprintf("the sheet %s cannot be read (%v)", quote(sheet), err)}
+		return nil, sheetError(sheet, err)
 	}
 	if t.layout == nil && len(t.problems) == 0 {
-		t.problems = append(t.problems, Problem{Text: fmt.Sprintf("the sheet %s holds no table: expected a header row and rows", quote(sheet))})
+		t.problems = append(t.problems, noTable(sheet))
 	}
 	return t, nil
 }
 
+// openSheet opens a workbook and returns the name of the sheet that is
+// wanted, the first if none is.
+func openSheet(in io.Reader, want string) (*excelize.File, string, error) {
+	f, err := excelize.OpenReader(in, excelize.Options{RawCellValue: true, UnzipSizeLimit: maxUnzipped})
+	if err != nil {
+		return nil, "", &textError{Text: "this is no readable .xlsx workbook (" + err.Error() + "); save it as .xlsx or CSV"}
+	}
+	sheets := f.GetSheetList()
+	if len(sheets) == 0 {
+		f.Close()
+		return nil, "", &textError{Text: "the workbook has no sheet"}
+	}
+	if want == "" {
+		return f, sheets[0], nil
+	}
+	i := slices.IndexFunc(sheets, func(n string) bool { return n == want })
+	if i < 0 {
+		i = slices.IndexFunc(sheets, func(n string) bool { return fold(n) == fold(want) })
+	}
+	if i < 0 {
+		f.Close()
+		var list []string
+		for _, n := range sheets {
+			list = append(list, quote(n))
+		}
+		return nil, "", &textError{Found: "no sheet " + quote(want), Expected: "one of the sheets " + listOf(list, "or")}
+	}
+	return f, sheets[i], nil
+}
+
+func sheetError(sheet string, err error) error {
+	return &textError{Text: fmt.Sprintf("the sheet %s cannot be read (%v)", quote(sheet), err)}
+}
+
+func noTable(sheet string) Problem {
+	return Problem{Text: fmt.Sprintf("the sheet %s holds no table: expected a header row and rows", quote(sheet))}
+}
+
 // readSheet reads the header and the rows of t.sheet.
 func (t *table) readSheet(f *excelize.File, s Settings) error {
-	raw, err := newSheetRows(f, t.sheet, true)
+	rows, err := newCellRows(f, t.sheet)
 	if err != nil {
 		return err
 	}
-	defer raw.Close()
-	// Truth values are stored as 1 and 0, which would be calls. Only the
-	// cells as shown tell them from numbers.
-	shown, err := newSheetRows(f, t.sheet, false)
-	if err != nil {
-		return err
-	}
-	defer shown.Close()
+	defer rows.close()
 	var b *builder
 	var text []byte
 	var fields [][]byte
-	for line := 1; ; line++ {
-		cells, err := raw.next()
+	for {
+		cells, line, err := rows.next()
 		if err == io.EOF {
 			return nil
 		}
 		if err != nil {
 			return err
-		}
-		asShown, err := shown.next()
-		if err != nil && err != io.EOF {
-			return err
-		}
-		for i, c := range cells {
-			if (c == "1" || c == "0") && i < len(asShown) && (asShown[i] == "TRUE" || asShown[i] == "FALSE") {
-				cells[i] = asShown[i]
-			} else {
-				cells[i] = shortest(c)
-			}
-		}
-		if !slices.ContainsFunc(cells, func(c string) bool { return strings.TrimSpace(c) != "" }) {
-			continue
 		}
 		if b == nil {
 			var list []Problem
@@ -117,6 +115,57 @@ func (t *table) readSheet(f *excelize.File, s Settings) error {
 			at += len(c)
 		}
 		b.row(fields, line)
+	}
+}
+
+// cellRows hands out the rows of a sheet that are not blank.
+type cellRows struct {
+	raw, shown *sheetRows
+	line       int
+}
+
+func newCellRows(f *excelize.File, sheet string) (*cellRows, error) {
+	raw, err := newSheetRows(f, sheet, true)
+	if err != nil {
+		return nil, err
+	}
+	// Truth values are stored as 1 and 0, which would be calls. Only the
+	// cells as shown tell them from numbers.
+	shown, err := newSheetRows(f, sheet, false)
+	if err != nil {
+		raw.Close()
+		return nil, err
+	}
+	return &cellRows{raw: raw, shown: shown}, nil
+}
+
+func (r *cellRows) close() {
+	r.raw.Close()
+	r.shown.Close()
+}
+
+// next returns the next row and its number, and io.EOF after the last one.
+func (r *cellRows) next() (cells []string, line int, err error) {
+	for {
+		r.line++
+		cells, err := r.raw.next()
+		if err != nil {
+			return nil, r.line, err
+		}
+		asShown, err := r.shown.next()
+		if err != nil && err != io.EOF {
+			return nil, r.line, err
+		}
+		for i, c := range cells {
+			if (c == "1" || c == "0") && i < len(asShown) && (asShown[i] == "TRUE" || asShown[i] == "FALSE") {
+				cells[i] = asShown[i]
+			} else {
+				cells[i] = shortest(c)
+			}
+		}
+		if slices.ContainsFunc(cells, func(c string) bool { return strings.TrimSpace(c) != "" }) {
+			return cells, r.line, nil
+		}
 	}
 }
 
