@@ -230,6 +230,6 @@ func (c *Curve) at() curveAt {
 }
 
 // warn adds a warning.
-func (c *Curve) warn(format string, args ...any) {
-	c.Warnings = append(c.Warnings, fmt.Errorf(format, args...))
+func (c *Curve) warn(code WarningCode, format string, args ...any) {
+	c.Warnings = append(c.Warnings, Warning{code, fmt.Sprintf(format, args...)})
 }

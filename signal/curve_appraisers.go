@@ -105,13 +105,13 @@ func (r *Appraisers) compare(byAppraiser [][]Part, limits Limits) {
 	separated := false
 	for a, c := range r.Each {
 		if c == nil {
-			r.warn("appraiser %d is not compared: %v", a+1, r.Errors[a])
+			r.warn(WarnNotCompared, "appraiser %d is not compared: %v", a+1, r.Errors[a])
 			continue
 		}
 		skip := false
 		for k := range 2 {
 			if l := c.side(k); has[k] && !l.Known() {
-				r.warn("appraiser %d is not compared: %s", a+1, l.Why)
+				r.warn(WarnNotCompared, "appraiser %d is not compared: %s", a+1, l.Why)
 				skip = true
 			} else if has[k] && l.Status != Fitted {
 				separated = true
@@ -134,7 +134,7 @@ func (r *Appraisers) compare(byAppraiser [][]Part, limits Limits) {
 		return
 	}
 	if separated {
-		r.warn("an appraiser has no mixed part at a limit, or only one: the tests between appraisers are rough there")
+		r.warn(WarnRoughTest, "an appraiser has no mixed part at a limit, or only one: the tests between appraisers are rough there")
 	}
 	full, nFull := r.joint(g, has, false, false)
 	cut, nCut := r.joint(g, has, true, false)
@@ -199,6 +199,6 @@ func (r *Appraisers) joint(g *model, has [2]bool, shareCut, shareSigma bool) (lo
 	return best, m.n
 }
 
-func (r *Appraisers) warn(format string, args ...any) {
-	r.Warnings = append(r.Warnings, fmt.Errorf(format, args...))
+func (r *Appraisers) warn(code WarningCode, format string, args ...any) {
+	r.Warnings = append(r.Warnings, Warning{code, fmt.Sprintf(format, args...)})
 }

@@ -75,6 +75,20 @@ func (d *dataset) derive(c *Curve, l *LimitFit) {
 	}
 }
 
+// PercentGRR returns 6 standard deviations of the error at the limit in percent
+// of the tolerance, and whether there is a tolerance and a σ. BandGRR grades it.
+func (l *LimitFit) PercentGRR(limits Limits) (Estimate, bool) {
+	tolerance, ok := limits.Tolerance()
+	if !ok || !l.Known() {
+		return Estimate{}, false
+	}
+	k := 600 / tolerance
+	if l.Sigma.Value > 0 {
+		k *= l.SD / l.Sigma.Value // σ of the logit link is not its standard deviation
+	}
+	return l.Sigma.map1(func(s float64) float64 { return k * s }, k), true
+}
+
 // profile returns a parameter with its profile-likelihood interval.
 func (d *dataset) profile(c *Curve, b *block, param int, reach float64) Estimate {
 	se := math.Sqrt(b.cov(param, param))

@@ -257,7 +257,7 @@ func (c *Curve) take(b *block) {
 // likelihood was reached by one block.
 func (d *dataset) lapse(c *Curve, blocks *[]*block, hs [2]half) {
 	if len(*blocks) != 1 || c.separatedAnywhere() {
-		c.warn("no lapse rate: it cannot be told from the curve where no part at a limit is mixed")
+		c.warn(WarnNoLapse, "no lapse rate: it cannot be told from the curve where no part at a limit is mixed")
 		return
 	}
 	plain := (*blocks)[0]
@@ -279,7 +279,7 @@ func (d *dataset) lapse(c *Curve, blocks *[]*block, hs [2]half) {
 				b.theta, b.loglik, b.covariance = append(b.theta[:0], b.s.theta...), out.loglik, cov
 			}
 		} else if out.converged && out.atBound && out.loglik > b.loglik+1e-3 && out.loglik > plain.loglik+1e-3 {
-			c.warn("no lapse rate: with one, σ is no longer determined; too few mixed parts lie near the limit")
+			c.warn(WarnNoLapse, "no lapse rate: with one, σ is no longer determined; too few mixed parts lie near the limit")
 			return
 		}
 	}
@@ -314,7 +314,11 @@ func (c *Curve) separatedAnywhere() bool {
 func (c *Curve) notes(d *dataset) {
 	c.each(func(l *LimitFit) {
 		if l.Status != Fitted {
-			c.warn("%s limit: %s", l.Side, l.Why)
+			code := WarnSeparated
+			if l.Status == OneSided {
+				code = WarnOneSided
+			}
+			c.warn(code, "%s limit: %s", l.Side, l.Why)
 		}
 	})
 	values := 0
@@ -324,11 +328,11 @@ func (c *Curve) notes(d *dataset) {
 		}
 	}
 	if values < 5 {
-		c.warn("only %d distinct values: the shape of the curve cannot be checked", values)
+		c.warn(WarnFewValues, "only %d distinct values: the shape of the curve cannot be checked", values)
 	}
 	if c.Lower.Known() && c.Upper.Known() {
 		if p, _ := c.probability(c.local[cutL]/2 + c.local[cutU]/2); p < 0.99 {
-			c.warn("the grey zones of the two limits overlap: midway between the cuts only %.3g %% of calls accept", 100*p)
+			c.warn(WarnOverlap, "the grey zones of the two limits overlap: midway between the cuts only %.3g %% of calls accept", 100*p)
 		}
 	}
 }

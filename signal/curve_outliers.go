@@ -1,7 +1,9 @@
 package signal
 
 import (
+	"fmt"
 	"math"
+	"strings"
 )
 
 // Outliers are looked for with a curve that they cannot bend: one in which a
@@ -54,10 +56,19 @@ func (d *dataset) outliers(c *Curve, hs [2]half) {
 		return
 	}
 	c.Without = without
-	for i := range suspects {
+	var names []string
+	for i := range d.parts {
+		if !suspects[i] {
+			continue
+		}
 		c.Parts[i].Outlier = true
+		name := d.parts[i].Name
+		if name == "" {
+			name = fmt.Sprintf("#%d", d.row[i]+1)
+		}
+		names = append(names, fmt.Sprintf("%s (value %.10g, %d of %d accepted)", name, d.parts[i].Value, d.parts[i].Accepted, d.parts[i].Calls))
 	}
-	c.warn("%d part(s) called against all the others: the fit is shown with and without", len(suspects))
+	c.warn(WarnOutliers, "called against all the others: %s; the fit is given with and without", strings.Join(names, ", "))
 }
 
 // refit fits the data anew, scaled to what is left.

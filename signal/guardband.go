@@ -32,22 +32,35 @@ func GuardForEscapes(p Process, c *Curve, target float64, shown bool) (Risk, err
 	if !(target > 0 && target < 1) {
 		return Risk{}, fmt.Errorf("escape target %v: want a share between 0 and 1 (10 ppm is 0.00001)", target)
 	}
-	at := func(band float64) (Risk, float64, error) {
+	r, err := Assess(p, c, 0)
+	if err != nil {
+		return Risk{}, err
+	}
+	g, err := c.Gauge()
+	if err != nil {
+		return Risk{}, err
+	}
+	// at returns what is to be held under the target.
+	at := func(band float64) (float64, error) {
+		if !shown {
+			s := p.shares(g.Tighten(band), c.Limits)
+			return s.values()[qEscape], nil
+		}
 		r, err := Assess(p, c, band)
 		if err != nil {
-			return r, 0, err
-		}
-		if !shown {
-			return r, r.Escape.Value, nil
+			return 0, err
 		}
 		if !r.Escape.HasUpper {
-			return r, 0, errors.New("the escapes have no upper bound to hold under a target: " + r.Escape.Why)
+			return 0, errors.New("the escapes have no upper bound to hold under a target: " + r.Escape.Why)
 		}
-		return r, r.Escape.Upper, nil
+		return r.Escape.Upper, nil
 	}
-	r, e, err := at(0)
-	if err != nil || e <= target {
-		return r, err
+	e, err := at(0)
+	if err != nil {
+		return Risk{}, err
+	}
+	if e <= target {
+		return r, nil
 	}
 	most, step, err := c.guardRange(p)
 	if err != nil {
@@ -55,7 +68,7 @@ func GuardForEscapes(p Process, c *Curve, target float64, shown bool) (Risk, err
 	}
 	lo, hi := 0.0, math.Min(step, most)
 	for {
-		if r, e, err = at(hi); err != nil {
+		if e, err = at(hi); err != nil {
 			return Risk{}, err
 		}
 		if e <= target {
@@ -75,17 +88,16 @@ func GuardForEscapes(p Process, c *Curve, target float64, shown bool) (Risk, err
 		if !(lo < mid && mid < hi) || hi-lo <= 1e-10*step {
 			break
 		}
-		m, e, err := at(mid)
-		if err != nil {
+		if e, err = at(mid); err != nil {
 			return Risk{}, err
 		}
 		if e <= target {
-			hi, r = mid, m
+			hi = mid
 		} else {
 			lo = mid
 		}
 	}
-	return r, nil
+	return Assess(p, c, hi)
 }
 
 // guardRange returns how far inwards the cuts can move and a step to search

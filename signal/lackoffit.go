@@ -89,7 +89,7 @@ func (c *Curve) judgeFit() {
 		c.factor = f.Factor
 		t := distuv.StudentsT{Mu: 0, Sigma: 1, Nu: mean}.Quantile(0.5 + c.Options.Confidence/2)
 		c.crit = f.Factor * t * t
-		c.warn("parts differ by more than their value and chance explain (lack of fit, p = %.2g): intervals are widened by the factor √%.3g", f.P, f.Factor)
+		c.warn(WarnLackOfFit, "parts differ by more than their value and chance explain (lack of fit, p = %.2g): intervals are widened by the factor √%.3g", f.P, f.Factor)
 	}
 }
 

@@ -27,16 +27,16 @@ func NormalProcess(mean, sd float64) (Process, error) {
 func CapableProcess(limits Limits, cp, cpk float64, towards Side) (Process, error) {
 	tolerance, ok := limits.Tolerance()
 	if !ok {
-		return Process{}, errors.New("Cp needs both specification limits; with one, give mean and standard deviation")
+		return Process{}, errors.New("capability Cp needs both specification limits; with one, give mean and standard deviation")
 	}
 	if err := limits.check(); err != nil {
 		return Process{}, err
 	}
 	if !finite(cp, cpk) || !(cp > 0) {
-		return Process{}, fmt.Errorf("Cp %v and Cpk %v: want finite numbers, Cp above 0", cp, cpk)
+		return Process{}, fmt.Errorf("capability Cp %v and Cpk %v: want finite numbers, Cp above 0", cp, cpk)
 	}
 	if cpk > cp {
-		return Process{}, fmt.Errorf("Cpk %v is above Cp %v, which no process can have", cpk, cp)
+		return Process{}, fmt.Errorf("capability Cpk %v is above Cp %v, which no process can have", cpk, cp)
 	}
 	sd := tolerance / (6 * cp)
 	mean := limits.Lower + 3*cpk*sd

@@ -22,7 +22,6 @@ type Risk struct {
 	BadAmongAccepted  Estimate // share of the accepted parts; absent if none is
 	GoodAmongRejected Estimate // share of the rejected parts; absent if none is
 	GuardBand         float64  // by which each cut was moved inwards
-	Warnings          []error
 }
 
 // shares holds the parts of a process by region and call.
