@@ -14,13 +14,14 @@ type Against struct {
 	// Categories is Cohen's kappa of each category against all others;
 	// filled in with more than two categories.
 	Categories        []Estimate
-	Linear, Quadratic *Estimate // weighted kappas, for ordered categories
+	Linear, Quadratic *Estimate // weighted kappas; nil unless Options.Ordered and three categories or more
 	Miss              Share     // bad parts accepted, of calls on bad parts
 	FalseAlarm        Share     // good parts rejected, of calls on good parts
-	WrongEveryTime    []int     // parts with a reference, none of whose calls is right
-	Mixed             []int     // parts whose calls differ
+	WrongEveryTime    []int     // parts with a reference, none of whose calls is right, in order
+	Mixed             []int     // parts whose calls differ, with a reference or not, in order
 	// Tests of direction over Table: McNemar with two categories, the others
-	// with more. Nil where nothing can be tested.
+	// with more. Nil where nothing disagrees. They take the calls as
+	// independent; with several calls on a part p comes out too small.
 	McNemar, Bowker, StuartMaxwell *Test
 }
 

@@ -6,12 +6,14 @@ import (
 	"samecall/agreement/interval"
 )
 
-// Between is the agreement of appraisers with each other.
+// Between is the agreement of appraisers with each other. It is absent where
+// no part was called by two appraisers; where some parts were, the
+// coefficients over all calls take in every part with two calls or more.
 type Between struct {
 	Share      Share      // parts whose calls by all appraisers are alike, of parts that two or more appraisers called
-	Agreement  float64    // mean over parts of the share of pairs of calls that agree; 0 when Fleiss is absent
+	Agreement  float64    // mean over parts of the share of pairs of calls that agree; 0 where Share is absent
 	Pairs      []Pair     // each two appraisers
-	Fleiss     Estimate   // Fleiss' kappa over all calls
+	Fleiss     Estimate   // Fleiss' kappa over all calls, generalised for missing calls (Counts.FleissKappa)
 	Categories []Estimate // Fleiss' kappa of each category against the others
 	// SameAppraiser and DifferentAppraisers are kappas of pairs of calls on
 	// one part by the same and by two different appraisers. Both take chance
@@ -19,24 +21,25 @@ type Between struct {
 	// compared: where the first is well above the second, appraisers are
 	// consistent but different.
 	SameAppraiser, DifferentAppraisers Estimate
-	AC1, Alpha                         Estimate
+	// AC1 is Gwet's coefficient (Counts.AC1), Alpha Krippendorff's (Counts.Alpha).
+	AC1, Alpha Estimate
 }
 
 // Pair is the agreement of two appraisers.
 type Pair struct {
-	A, B              int
-	Table             Table    // rows A, columns B; each pair of calls on a part as Options.Pairing says
-	Pairs, Alike      int      // pairs of calls, and those that agree
-	Share             Share    // parts on which all calls of both are alike, of parts that both called
-	Kappa             Estimate // Cohen's
-	Linear, Quadratic *Estimate
+	A, B              int       // the two appraisers, A before B
+	Table             Table     // rows A, columns B; each pair of calls on a part as Options.Pairing says
+	Pairs, Alike      int       // pairs of calls, and those that agree
+	Share             Share     // parts on which all calls of both are alike, of parts that both called
+	Kappa             Estimate  // Cohen's kappa of Table
+	Linear, Quadratic *Estimate // weighted kappas; nil unless Options.Ordered and three categories or more
 }
 
 var (
 	errOneAppraiser = errors.New("no part was called by two appraisers: there is nobody to compare with")
 	errSingleCalls  = errors.New("no part has two calls")
-	errNoTwoTrials  = errors.New("no part has two calls by the same appraiser")
-	errPairMissed   = errors.New("the two appraisers share no part (or no trial of one)")
+	errNoTwoTrials  = errors.New("no part has two calls by the same appraiser: repeat the trial to see whether the calls repeat")
+	errPairMissed   = errors.New("the two appraisers called no part in common, or none in the same trial")
 	errPairAlike    = errors.New("both appraisers used one category only, the same: kappa has nothing to measure")
 )
 

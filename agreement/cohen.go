@@ -8,9 +8,11 @@ type Weights int
 const (
 	// Nominal: any two categories disagree alike.
 	Nominal Weights = iota
-	// Linear: in proportion to the steps between them (Cicchetti & Allison 1971).
+	// Linear: in proportion to the steps between them (Cicchetti & Allison,
+	// American Journal of EEG Technology 11 (1971) 101–109).
 	Linear
-	// Quadratic: in proportion to the square of the steps (Fleiss & Cohen 1973).
+	// Quadratic: in proportion to the square of the steps (Fleiss & Cohen,
+	// Educational and Psychological Measurement 33 (1973) 613–619).
 	Quadratic
 )
 

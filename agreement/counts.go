@@ -14,7 +14,7 @@ type Counts [][]int
 
 var (
 	errNoCounts  = errors.New("agreement: no part has two calls, so that no call can be compared")
-	errAlike     = errors.New("every call is alike: no disagreement is to be expected, and kappa has nothing to measure")
+	errAlike     = errors.New("all calls are alike, of one category: kappa has nothing to measure")
 	errOneChoice = errors.New("one category only: nothing can be told apart")
 )
 

@@ -2,7 +2,10 @@ package agreement
 
 import "samecall/agreement/interval"
 
-// Estimate is a figure with its interval.
+// Estimate is a figure with its interval: a share or a rate between 0 and 1,
+// or a coefficient, which is 1 for perfect agreement and 0 for that of chance.
+// A coefficient may fall below −1 where chance is taken from calls that are
+// not compared (single calls on a part, trials of unequal number).
 //
 // A figure that cannot be computed is absent: Absent says why, and all else
 // is zero. Unbounded says why a figure has no interval.
@@ -18,8 +21,10 @@ type Estimate struct {
 	StandardError float64
 	Absent        error
 	Unbounded     error
-	// Independent is the asymptotic interval that treats calls as
-	// independent, which they are not; nil unless it was asked for.
+	// Independent is the interval that treats calls as independent, which
+	// they are not: of a kappa, estimate ± z standard errors of 1969 (Cohen)
+	// or 1979 (Fleiss), not cut at ±1; of a rate, Clopper–Pearson over
+	// calls. Nil unless it was asked for, and where it is not defined.
 	Independent *interval.Interval
 }
 

@@ -102,7 +102,7 @@ func TestExtremes(t *testing.T) {
 			name:  "all calls alike",
 			study: filled(t, 10, 2, three, half, always(1)),
 			absent: map[string]string{
-				"within kappa": "all alike", "fleiss": "alike", "pair": "the same", "alpha": "alike", "same": "alike", "different": "alike",
+				"within kappa": "called every part alike", "fleiss": "alike", "pair": "the same", "alpha": "alike", "same": "alike", "different": "alike",
 				"category": "of this category",
 			},
 			shares: map[string][2]int{"within": {10, 10}, "between": {10, 10}, "miss": {15, 15}, "false alarm": {0, 15}},
@@ -127,7 +127,7 @@ func TestExtremes(t *testing.T) {
 			study: filled(t, 0, 2, three, half, asHalf),
 			absent: map[string]string{
 				"within": "repeat the trial", "within kappa": "repeat the trial", "between": "two appraisers", "fleiss": "two appraisers",
-				"pair": "share no part", "same": "same appraiser",
+				"pair": "no part in common", "same": "same appraiser",
 			},
 		}, {
 			name:  "no appraisers",
@@ -139,7 +139,7 @@ func TestExtremes(t *testing.T) {
 			name:  "no calls",
 			study: filled(t, 10, 2, three, half, always(Missing)),
 			absent: map[string]string{
-				"within": "repeat the trial", "between": "two appraisers", "pair": "share no part", "effectiveness": "was called",
+				"within": "repeat the trial", "between": "two appraisers", "pair": "no part in common", "effectiveness": "was called",
 				"miss": "was called", "false alarm": "was called", "against": "was called",
 			},
 		}, {

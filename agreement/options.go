@@ -12,6 +12,7 @@ const (
 	All
 )
 
+// String returns matched or all.
 func (p Pairing) String() string {
 	if p == All {
 		return "all"
@@ -23,11 +24,11 @@ func (p Pairing) String() string {
 // from DefaultOptions.
 type Options struct {
 	Confidence  float64 // of every interval, between 0 and 1
-	Resamples   int     // of whole parts, for the intervals of coefficients; 0: linearised intervals instead
+	Resamples   int     // of whole parts, for the intervals of coefficients, up to MaxResamples; 0: linearised intervals instead
 	Seed        uint64  // of the resampling: the same seed gives the same intervals
 	Pairing     Pairing // of the trials of two appraisers
 	Ordered     bool    // categories are grades in order: weighted kappas too
-	Independent bool    // also the asymptotic intervals that treat calls as independent
+	Independent bool    // also the intervals that treat calls as independent
 	// Progress, if not nil, is told from time to time how much of the
 	// resampling is done.
 	Progress func(done, of int)

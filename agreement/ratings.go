@@ -23,7 +23,8 @@ const maxCells = math.MaxInt32
 // Ratings holds the calls of one study densely: a row for each part and, in
 // it, a column for each trial of each appraiser, appraiser by appraiser.
 // Appraisers may have different numbers of trials and any call may be
-// Missing.
+// Missing. Parts, appraisers, trials and categories are numbered from 0; a
+// number out of range panics, as an index does.
 type Ratings struct {
 	parts      int
 	categories int
@@ -65,11 +66,16 @@ func New(parts, categories int, trials []int) (*Ratings, error) {
 	return r, nil
 }
 
-// Parts, Appraisers and Categories return the size of the study; Trials the
-// number of trials of one appraiser.
-func (r *Ratings) Parts() int               { return r.parts }
-func (r *Ratings) Appraisers() int          { return len(r.first) - 1 }
-func (r *Ratings) Categories() int          { return r.categories }
+// Parts returns the number of parts.
+func (r *Ratings) Parts() int { return r.parts }
+
+// Appraisers returns the number of appraisers.
+func (r *Ratings) Appraisers() int { return len(r.first) - 1 }
+
+// Categories returns the number of categories, used or not.
+func (r *Ratings) Categories() int { return r.categories }
+
+// Trials returns the number of trials of one appraiser.
 func (r *Ratings) Trials(appraiser int) int { return r.first[appraiser+1] - r.first[appraiser] }
 
 func (r *Ratings) columns() int { return r.first[len(r.first)-1] }
@@ -90,7 +96,8 @@ func (r *Ratings) Calls(part, appraiser int) []Category {
 }
 
 // SetReference gives each part the category that it truly belongs to, or
-// Missing. The slice, one entry a part, is kept.
+// Missing. The slice, one entry a part, is kept. It returns an error if there
+// are more or fewer; Analyse returns one if an entry is no category.
 func (r *Ratings) SetReference(reference []Category) error {
 	if len(reference) != r.parts {
 		return fmt.Errorf("agreement: %d references for %d parts", len(reference), r.parts)
@@ -113,7 +120,7 @@ func (r *Ratings) Reference(part int) Category {
 // SetAccept splits the categories into those of a part that may be used
 // (true) and of one that may not (false). Without it there are no bad parts
 // and no good ones, hence no miss and no false alarm. The slice, one entry a
-// category, is kept.
+// category, is kept. It returns an error if there are more or fewer.
 func (r *Ratings) SetAccept(accept []bool) error {
 	if len(accept) != r.categories {
 		return fmt.Errorf("agreement: accept has %d entries for %d categories", len(accept), r.categories)

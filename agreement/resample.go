@@ -22,7 +22,7 @@ const (
 	resamplingBudget = 2e9
 )
 
-var errOnePart = errors.New("a single part: there is no interval")
+var errOnePart = errors.New("only one part counts: an interval wants two or more")
 
 // resampler draws whole parts, once for all coefficients of a study, so that
 // they all see the same resampled studies.

@@ -24,8 +24,9 @@ var (
 
 // McNemar returns the exact test of direction in a table of two categories:
 // whether the two kinds of disagreement are equally frequent (McNemar,
-// Psychometrika 12 (1947) 153–157; exact by the binomial). It returns an
-// error if there are not two categories or nothing disagrees.
+// Psychometrika 12 (1947) 153–157; exact by the binomial, up to a million
+// disagreements). It returns an error if there are not two categories or
+// nothing disagrees.
 func (t Table) McNemar() (Test, error) {
 	if err := t.check(); err != nil {
 		return Test{}, err

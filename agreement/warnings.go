@@ -2,12 +2,13 @@ package agreement
 
 import "fmt"
 
-// Warning is something to be said with the result. Code is fixed, for programs.
+// Warning is something to be said with the result, not a failure.
 type Warning struct {
-	Code string
-	Text string
+	Code string // fixed, for programs: "prevalence"
+	Text string // for people
 }
 
+// Error returns the text.
 func (w Warning) Error() string { return w.Text }
 
 const (

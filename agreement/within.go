@@ -5,13 +5,13 @@ import "errors"
 // Within is the agreement of one appraiser with itself.
 type Within struct {
 	Share Share    // parts whose calls are all alike, of parts with two calls or more
-	Kappa Estimate // Fleiss' kappa over the appraiser's trials
-	Mixed []int    // the parts whose calls differ
+	Kappa Estimate // Fleiss' kappa over the appraiser's trials, generalised for missing calls
+	Mixed []int    // the parts whose calls differ, in order
 }
 
 var (
 	errOneTrial    = errors.New("no part has two calls by the appraiser: repeat the trial to see whether the calls repeat")
-	errWithinAlike = errors.New("the appraiser's calls are all alike: kappa has nothing to measure")
+	errWithinAlike = errors.New("the appraiser called every part alike: kappa has nothing to measure")
 )
 
 func (s *study) within(appraiser int) Within {

@@ -52,8 +52,8 @@ func BCa(estimate float64, resampled []float64, leftOut []LeftOut, confidence fl
 }
 
 // Acceleration returns the acceleration constant of the BCa interval: the
-// skewness of the left-out values over 6 (Efron 1987, section 6; 0 when they
-// are all alike).
+// skewness of the n left-out values, turned about, over 6√n (Efron 1987,
+// section 6; 0 when they are all alike).
 func Acceleration(leftOut []LeftOut) float64 {
 	var n, sum float64
 	for _, l := range leftOut {
