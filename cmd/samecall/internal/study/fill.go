@@ -55,7 +55,7 @@ func (m *merge) fill(trials []int) {
 			}
 		}
 	}
-	if twice {
+	if twice && m.layout.long { // in a wide table the part stands twice, which is said already
 		m.callsGivenTwice(columns)
 	}
 }

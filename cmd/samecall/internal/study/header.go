@@ -58,7 +58,12 @@ func readHeader(header, ignore []string) (*layout, []Problem) {
 		fields["appraiser"], fields["trial"], fields["call"] = &l.appraiser, &l.trial, &l.call
 	}
 
+	if len(l.header) == 1 && !ignored[fold(l.header[0])] {
+		return l, []Problem{{Column: 1, Found: "one column, " + quote(l.header[0]), Expected: "several, separated by comma, semicolon or tab",
+			Text: "the first line that is not blank and no comment is the header"}}
+	}
 	var list []Problem
+	likely := make(map[string]bool) // columns that are there, but misspelt
 	problem := func(field int, found, expected, text string) {
 		list = append(list, Problem{Column: field + 1, Found: found, Expected: expected, Text: text})
 	}
@@ -77,6 +82,9 @@ func readHeader(header, ignore []string) (*layout, []Problem) {
 			}
 			*to = i
 			continue
+		}
+		if near := nearest(h, sortedKeys(fields)); near != "" {
+			likely[near] = true
 		}
 		if h == "" {
 			problem(i, "", "", fmt.Sprintf("column %d has no name; name it, or take it out of the table", i+1))
@@ -102,7 +110,7 @@ func readHeader(header, ignore []string) (*layout, []Problem) {
 			l.cells = append(l.cells, wideCell{i, appraiser, trial})
 		}
 	}
-	return l, append(list, l.missing(fields)...)
+	return l, append(list, l.missing(fields, likely)...)
 }
 
 // isLong tells a long table by a column that only a long table has; where
@@ -136,22 +144,22 @@ func (l *layout) meant(h string, fields map[string]*int) string {
 	return hint
 }
 
-func (l *layout) missing(fields map[string]*int) []Problem {
+// missing returns a problem for each column that is not there. A column that
+// is there but misspelt has its problem already.
+func (l *layout) missing(fields map[string]*int, likely map[string]bool) []Problem {
 	var list []Problem
 	need := []string{"part"}
 	if l.long {
 		need = append(need, longOnly...)
 	}
 	for _, name := range need {
-		if *fields[name] >= 0 {
+		if *fields[name] >= 0 || likely[name] {
 			continue
 		}
 		p := Problem{Found: "no column " + quote(name), Expected: "it in the header line"}
 		switch {
 		case name == "trial":
 			p.Text = "a study of one trial needs it too: 1 in each row"
-		case len(l.header) == 1 && !l.long:
-			p.Text = "the whole header is " + quote(l.header[0]) + "; are the columns separated by comma, semicolon or tab?"
 		case name == "part" && !l.long:
 			p.Text = "the first line that is not blank and no comment is read as the header"
 		}

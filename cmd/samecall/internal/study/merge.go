@@ -36,9 +36,6 @@ func (t *table) study(s Settings) (*Study, []Problem, int) {
 	m.mergeWords()
 	trials := m.mergeColumns()
 	m.mergeParts()
-	if len(m.study.Parts) == 0 && len(m.problems) == 0 {
-		m.add(Problem{Line: m.line, Text: "no rows stand below the header; lines that begin with # are comments"})
-	}
 	m.contradictions()
 	if trials != nil {
 		m.fill(trials)
@@ -231,7 +228,10 @@ func (m *merge) mergeColumns() []int {
 		}
 	}
 	switch {
-	case len(trials) == 0 && len(silent) > 0 && len(m.problems) == 0:
+	case len(trials) == 0 && len(m.problems) > 0: // rows were left out
+	case len(trials) == 0 && !slices.ContainsFunc(m.builders, func(b *builder) bool { return b.rows > 0 }):
+		m.add(Problem{Line: m.line, Text: "no rows stand below the header; lines that begin with # are comments"})
+	case len(trials) == 0:
 		m.add(Problem{Line: m.line, Text: "the table holds no call: every field for a call is empty"})
 	case len(trials) > 0:
 		for _, name := range silent {

@@ -1,17 +1,30 @@
 package study
 
-import "strings"
+import (
+	"slices"
+	"strings"
+)
 
 // nearest returns the name at a distance of at most 2 from s, and less than
-// half of the name's length, or "". The first one wins a tie.
+// half of the name's length, or "". Two letters swapped are near however short
+// the name: og is go. The first one wins a tie.
 func nearest(s string, names []string) string {
 	best, found := 3, ""
 	for _, n := range names {
-		if d := distance(strings.ToLower(s), strings.ToLower(n)); d < best && 2*d < len(n) {
+		a, b := strings.ToLower(s), strings.ToLower(n)
+		if d := distance(a, b); d < best && (2*d < len(n) || d == 1 && isSwap(a, b)) {
 			best, found = d, n
 		}
 	}
 	return found
+}
+
+// isSwap reports whether a and b hold the same letters.
+func isSwap(a, b string) bool {
+	s, t := []rune(a), []rune(b)
+	slices.Sort(s)
+	slices.Sort(t)
+	return slices.Equal(s, t)
 }
 
 // distance returns the number of insertions, deletions, substitutions and

@@ -116,6 +116,9 @@ func listOf(words []string, last string) string {
 	case 1:
 		return words[0]
 	default:
+		if words[n-1] == "…" {
+			return strings.Join(words, ", ")
+		}
 		return strings.Join(words[:n-1], ", ") + " " + last + " " + words[n-1]
 	}
 }

@@ -270,7 +270,7 @@ func quoteProblem(err error, line int) Problem {
 	p := Problem{Line: line + pe.Line - 1}
 	switch {
 	case errors.Is(err, csv.ErrBareQuote):
-		p.Found = fmt.Sprintf(`a quote (") at character %d, inside a field that does not begin with one`, pe.Column)
+		p.Found = fmt.Sprintf(`a quote (") in byte %d of the line, inside a field that does not begin with one`, pe.Column)
 		p.Expected = `the whole field in quotes and each quote in it doubled, as in "12"" pipe"`
 	default:
 		p.Line = line + pe.StartLine - 1
