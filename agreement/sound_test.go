@@ -100,6 +100,10 @@ func soundEstimate(t rapid.TB, path string, e Estimate) {
 	if !(e.Interval.Width() > 0) {
 		t.Errorf("%s: %v has no width", path, e.Interval)
 	}
+	// A limit for itself is no further out than as one of two.
+	if o := e.OneSided; !o.Contains(e.Value) || o.Lower < e.Interval.Lower-rounding || o.Upper > e.Interval.Upper+rounding {
+		t.Errorf("%s: one-sided limits %v of %v in %v", path, o, e.Value, e.Interval)
+	}
 	// A coefficient below −1 can arise only where the chance agreement comes
 	// from calls that the observed one does not (single calls, say).
 	if e.Interval.Lower < min(-1, e.Value) || e.Interval.Upper > 1 {
