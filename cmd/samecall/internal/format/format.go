@@ -25,6 +25,8 @@ func digits(share, oneDecimal float64) string {
 	switch {
 	case p == 0 || share == 1:
 		return decimals(0)
+	case p < 0.005:
+		return "<0.01"
 	case p < 0.095:
 		return strconv.FormatFloat(p, 'g', 1, 64)
 	case p < oneDecimal:
@@ -92,7 +94,18 @@ func Probability(p float64) string {
 
 // Number writes a value of the study as short as it can be read back.
 func Number(x float64) string {
-	return strings.Replace(strconv.FormatFloat(x, 'f', -1, 64), "-", "−", 1)
+	return decimal(x, -1)
+}
+
+// decimal writes a number with so many decimals, −1 for as many as it has.
+// One with more digits than anybody reads is written with a power of ten.
+func decimal(x float64, decimals int) string {
+	const readable = 20
+	s := strconv.FormatFloat(x, 'f', decimals, 64)
+	if len(s) > readable {
+		s = strings.Replace(strconv.FormatFloat(x, 'g', 6, 64), "e+", "e", 1)
+	}
+	return strings.ReplaceAll(s, "-", "−")
 }
 
 // Alike writes values of one kind with the same number of decimals: those of
@@ -105,7 +118,7 @@ func Alike(values ...float64) []string {
 	}
 	out := make([]string, len(values))
 	for i, v := range values {
-		out[i] = strings.Replace(strconv.FormatFloat(v, 'f', decimals, 64), "-", "−", 1)
+		out[i] = decimal(v, decimals)
 	}
 	return out
 }

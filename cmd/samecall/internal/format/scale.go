@@ -36,7 +36,7 @@ func NewScale(unit string, limits []*float64, spreads ...float64) Scale {
 
 // Value writes a value without its unit.
 func (s Scale) Value(x float64) string {
-	text := strconv.FormatFloat(math.Abs(x), 'f', s.Decimals, 64)
+	text := decimal(math.Abs(x), s.Decimals)
 	if x < 0 && strings.Trim(text, "0.") != "" {
 		return "−" + text
 	}
