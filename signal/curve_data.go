@@ -133,6 +133,14 @@ func (d *dataset) halves() [2]half {
 			return 1
 		})
 		hs[1].from, _ = slices.BinarySearch(d.x, middle)
+		// Parts beyond the middle that were always accepted tell of this limit
+		// too, up to the first rejected call, which is the other limit's.
+		for hs[0].to < n && d.rejected[hs[0].to] == 0 {
+			hs[0].to++
+		}
+		for hs[1].from > 0 && d.rejected[hs[1].from-1] == 0 {
+			hs[1].from--
+		}
 	}
 	for k := range hs {
 		if d.has[k] {
@@ -186,6 +194,9 @@ func (d *dataset) classify(h *half) {
 		h.status, h.why = OneSided, "no call was rejected on the side of the "+side+" limit: the study needs parts beyond it"
 	case !h.hasAccept:
 		h.status, h.why = OneSided, "no call was accepted on the side of the "+side+" limit: the study needs parts inside it"
+	case d.x[h.from] == d.x[h.to-1]:
+		h.status, h.reversed = OneSided, true
+		h.why = "all parts on the side of the " + side + " limit have one value: where calls turn needs parts of different value"
 	case h.reject < h.accept:
 		h.status, h.why = Separated, "no part at the "+side+" limit is mixed: the grey zone is narrower than the gap between the neighbouring parts"
 	case h.reject == h.accept:

@@ -67,7 +67,15 @@ func (d *dataset) fit(search bool) (*Curve, error) {
 		if d.has[k] && (h.status == Separated || h.status == QuasiSeparated) {
 			f, err := d.firth(h)
 			if err != nil {
-				return nil, err
+				// So few calls that even their turn is in doubt.
+				turning--
+				if turning == 0 {
+					return nil, err
+				}
+				hs[k].status, hs[k].reversed, hs[k].why = OneSided, true, err.Error()
+				l := c.side(k)
+				l.Status, l.Why = OneSided, err.Error()
+				continue
 			}
 			separated[k] = f
 			c.local[2*k], c.local[2*k+1] = f.cut, f.logSigma

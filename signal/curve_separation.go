@@ -61,6 +61,7 @@ func (d *dataset) firth(h half) (*firthFit, error) {
 		return s0, s1, (i11*s0 - i01*s1) / det, (i00*s1 - i01*s0) / det, true
 	}
 	alpha, beta := 0.0, 0.1
+	gain, lastA, lastB := 1.0, 0.0, 0.0
 	for range 2000 {
 		_, _, da, db, ok := score(alpha, beta)
 		if !ok {
@@ -72,7 +73,16 @@ func (d *dataset) firth(h half) (*firthFit, error) {
 		if most > 1 {
 			da, db = da/most, db/most
 		}
-		alpha, beta = alpha+da, beta+db
+		// Expected information is not the slope of the adjusted score: with few
+		// calls full steps can overshoot for ever. Steps that turn back are
+		// shortened.
+		if da*lastA+db*lastB < 0 {
+			gain = math.Max(gain/2, 0.02)
+		} else {
+			gain = math.Min(1, 1.1*gain)
+		}
+		lastA, lastB = da, db
+		alpha, beta = alpha+gain*da, beta+gain*db
 		if most < 1 && math.Abs(da) < 1e-12*(1+math.Abs(alpha)) && math.Abs(db) < 1e-12*(1+math.Abs(beta)) {
 			if !(beta > 0) {
 				break

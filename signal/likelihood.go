@@ -81,10 +81,11 @@ func (t *term) at(link Link, z [2]float64, has [2]bool, accepted, rejected, epsi
 		if p <= 0 {
 			t.densities = [2]float64{} // clipped at 0, see below
 		}
-		p, q = epsilon/2+(1-epsilon)*math.Max(p, 0), epsilon/2+(1-epsilon)*math.Min(q, 1)
+		p, q = math.Max(p, 0), math.Min(q, 1)
+		t.epsilonGradient = 0.5 - p
+		p, q = epsilon/2+(1-epsilon)*p, epsilon/2+(1-epsilon)*q
 	}
 	t.p, t.q = p, q
-	t.epsilonGradient = 0.5 - math.Min(1, math.Max(0, t.plainP))
 	const tiny = 1e-280
 	if epsilon == 0 && (accepted > 0 && p < tiny || rejected > 0 && q < tiny) {
 		t.logarithmic(link, z, has, accepted, rejected)
