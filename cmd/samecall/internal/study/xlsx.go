@@ -18,13 +18,18 @@ const maxUnzipped = 1 << 30
 // readWorkbook reads a sheet of an .xlsx workbook into a builder. Cells are
 // taken as they are stored, not as they are shown: 12.004 shown as 12.00 is
 // 12.004.
-func readWorkbook(in io.Reader, s Settings) (*table, error) {
+func readWorkbook(in io.Reader, s Settings) (t *table, err error) {
+	defer func() { // a damaged file may be more than the library bears
+		if r := recover(); r != nil {
+			t, err = nil, &textError{Text: "the workbook is damaged; save it again as .xlsx, or as CSV"}
+		}
+	}()
 	f, sheet, err := openSheet(in, s.Sheet)
 	if err != nil {
 		return nil, err
 	}
 	defer f.Close()
-	t := &table{sheet: sheet}
+	t = &table{sheet: sheet}
 	if err := t.readSheet(f, s); err != nil {
 		return nil, sheetError(sheet, err)
 	}
