@@ -1,8 +1,6 @@
 package verdict
 
 import (
-	"math"
-
 	"samecall/agreement"
 	"samecall/agreement/interval"
 	"samecall/cmd/samecall/internal/study"
@@ -94,78 +92,27 @@ func newCriterion(name string, levels Levels, e agreement.Estimate, kind string,
 	default:
 		c.Met = Reject
 	}
-	if e.Unbounded != nil {
-		return c
-	}
-	// The limit on the far side of the level decides, for itself at the
-	// confidence: the worse one that a level met is kept, the better one that
-	// a level missed stays missed.
-	worse, better := e.OneSided.Lower, e.OneSided.Upper
-	if c.atMost() {
-		worse, better = better, worse
-	}
-	switch {
-	case c.Met != Reject && c.meets(worse, c.Against):
+	if e.Unbounded == nil && c.settledBy(c.deciding(e.OneSided)) {
 		c.Evidence = Shown
-	case c.Met == Reject && !c.meets(better, c.Against):
-		c.Evidence = Contradicted
+		if c.Met == Reject {
+			c.Evidence = Contradicted
+		}
 	}
 	return c
 }
 
-// manyTimes is how much larger a study may get before more parts are no
-// answer any longer.
-const manyTimes = 1000
-
-// settle finds how many parts more would settle an open criterion, given the
-// one-sided limit of the figure in a study so many times as large.
-func (c *Criterion) settle(limit func(times float64) float64) {
-	if c.Evidence != Open || c.Estimate.Absent != nil || c.Estimate.Unbounded != nil || c.Parts == 0 {
-		return
+// deciding picks the one-sided limit that settles a criterion. A level that
+// is met is shown by the limit on the worse side; one that is missed is
+// contradicted by the limit on the better side.
+func (c Criterion) deciding(oneSided interval.Interval) float64 {
+	if c.atMost() == (c.Met != Reject) {
+		return oneSided.Upper
 	}
-	settled := func(parts int) bool {
-		at := limit(float64(parts) / float64(c.Parts))
-		return c.meets(at, c.Against) == (c.Met != Reject)
-	}
-	most := manyTimes * c.Parts
-	if !settled(most) {
-		return
-	}
-	lo, hi := c.Parts, most // settled(hi) and, as a rule, not settled(lo)
-	for hi-lo > 1 {
-		if mid := lo + (hi-lo)/2; settled(mid) {
-			hi = mid
-		} else {
-			lo = mid
-		}
-	}
-	c.More = hi - c.Parts
+	return oneSided.Lower
 }
 
-// share gives the one-sided limit of a share of parts, or of a rate worth so
-// many calls, in a larger study of the same rate.
-func (c Criterion) share(worth, confidence float64) func(times float64) float64 {
-	return func(times float64) float64 {
-		i := interval.Exact(c.Estimate.Value*worth*times, worth*times, max(0, 2*confidence-1))
-		if c.wantsUpper() {
-			return i.Upper
-		}
-		return i.Lower
-	}
+// settledBy reports whether the deciding limit lies on the same side of the
+// level as the estimate.
+func (c Criterion) settledBy(limit float64) bool {
+	return c.meets(limit, c.Against) == (c.Met != Reject)
 }
-
-// coefficient gives the one-sided limit of a coefficient in a larger study:
-// its distance from the estimate shrinks with the square root.
-func (c Criterion) coefficient() func(times float64) float64 {
-	limit := c.Estimate.OneSided.Lower
-	if c.wantsUpper() {
-		limit = c.Estimate.OneSided.Upper
-	}
-	return func(times float64) float64 {
-		return c.Estimate.Value + (limit-c.Estimate.Value)/math.Sqrt(times)
-	}
-}
-
-// wantsUpper reports which limit settles the criterion: the upper one for a
-// rate that is low enough, or for a figure that is too low.
-func (c Criterion) wantsUpper() bool { return c.atMost() == (c.Met != Reject) }

@@ -1,7 +1,11 @@
 package verdict
 
 import (
+	"cmp"
+	"slices"
+
 	"samecall/agreement"
+	"samecall/agreement/interval"
 	"samecall/cmd/samecall/internal/judge"
 )
 
@@ -10,8 +14,8 @@ type Verdict struct {
 	Overall    Level
 	Appraisers []Appraiser
 	Between    *Criterion // Fleiss' kappa of all calls against the levels of kappa; nil with one appraiser
-	Reasons    []string   // the one or two that decide
-	Carry      []string   // how far the data carry the reasons
+	Reasons    []string   // the one or two that decide, and what else misses its level
+	Carry      []string   // how far the data carry each of the deciding reasons
 	Causes     []Cause
 	Next       []string
 	Cautions   []string
@@ -42,7 +46,7 @@ func Decide(r *judge.Result) *Verdict {
 	}
 	if b := r.Agreement.Between; b.Share.Absent == nil {
 		c := newCriterion(Kappa, levels[Kappa], b.Fleiss, "part", b.Share.Of, r.Options.Confidence)
-		c.settle(c.coefficient())
+		c.settle(coefficient(b.Fleiss, c.Parts))
 		v.Between = &c
 		// Calls that are all alike have no kappa, and are no fault.
 		if c.Met != NotShown {
@@ -52,7 +56,7 @@ func Decide(r *judge.Result) *Verdict {
 	if len(v.Appraisers) == 0 {
 		v.Overall = NotShown
 	}
-	v.Causes = causes(r, levels)
+	v.Causes = causes(r, levels, v.Overall != Accept)
 	v.Reasons, v.Carry = reasons(r, v)
 	v.Next = next(r, v)
 	return v
@@ -70,45 +74,81 @@ func worst(criteria []Criterion) Level {
 func appraiserCriteria(r *judge.Result, a int, levels map[string]Levels) []Criterion {
 	confidence := r.Options.Confidence
 	if r.Agreement.All == nil {
-		none := func(name string) Criterion {
-			return newCriterion(name, levels[name], agreement.Estimate{Absent: judge.ErrNoReference}, "part", 0, confidence)
+		var out []Criterion
+		for _, name := range []string{Effectiveness, Miss, FalseAlarm, Kappa} {
+			out = append(out, newCriterion(name, levels[name], agreement.Estimate{Absent: judge.ErrNoReference}, "part", 0, confidence))
 		}
-		return []Criterion{none(Effectiveness), none(Miss), none(FalseAlarm), none(Kappa)}
+		return out
 	}
 	g := r.Agreement.Against[a]
-	bad, good := calledParts(r, a)
-	effectiveness := newCriterion(Effectiveness, levels[Effectiveness], g.Effectiveness.Estimate, "part", g.Effectiveness.Of, confidence)
-	effectiveness.settle(effectiveness.share(float64(g.Effectiveness.Of), confidence))
-	miss := newCriterion(Miss, levels[Miss], g.Miss.Estimate, "bad part", bad, confidence)
-	miss.settle(miss.share(g.Miss.Effective, confidence))
-	falseAlarm := newCriterion(FalseAlarm, levels[FalseAlarm], g.FalseAlarm.Estimate, "good part", good, confidence)
-	falseAlarm.settle(falseAlarm.share(g.FalseAlarm.Effective, confidence))
-	kappa := newCriterion(Kappa, levels[Kappa], g.Kappa, "part", g.Effectiveness.Of, confidence)
-	kappa.settle(kappa.coefficient())
+	bad, good := wrongByPart(r, a)
+	parts := g.Effectiveness.Of
+
+	effectiveness := newCriterion(Effectiveness, levels[Effectiveness], g.Effectiveness.Estimate, "part", parts, confidence)
+	effectiveness.settle(shareOfParts(g.Effectiveness.Value, confidence))
+	miss := newCriterion(Miss, levels[Miss], g.Miss.Estimate, "bad part", total(bad), confidence)
+	miss.settle(rateOverCalls(bad, confidence))
+	falseAlarm := newCriterion(FalseAlarm, levels[FalseAlarm], g.FalseAlarm.Estimate, "good part", total(good), confidence)
+	falseAlarm.settle(rateOverCalls(good, confidence))
+	kappa := newCriterion(Kappa, levels[Kappa], g.Kappa, "part", parts, confidence)
+	kappa.settle(coefficient(g.Kappa, parts))
 	return []Criterion{effectiveness, miss, falseAlarm, kappa}
 }
 
-// calledParts counts the bad and the good parts that an appraiser called.
-func calledParts(r *judge.Result, a int) (bad, good int) {
-	for part := range r.Study.Parts {
-		ref := r.Study.Ratings.Reference(part)
-		if ref == agreement.Missing || !called(r.Study.Ratings.Calls(part, a)) {
+// wrongByPart counts the bad and the good parts that an appraiser called, by
+// how many calls it made on them and how many of those accept a bad part or
+// reject a good one. Without accepting categories there are neither bad nor
+// good parts.
+func wrongByPart(r *judge.Result, a int) (bad, good []interval.Cluster) {
+	s := r.Study.Ratings
+	if !s.HasAccept() {
+		return nil, nil
+	}
+	type key struct {
+		good          bool
+		calls, events int
+	}
+	parts := make(map[key]int)
+	for part := range s.Parts() {
+		ref := s.Reference(part)
+		if ref == agreement.Missing {
 			continue
 		}
-		if r.Study.Ratings.Accepts(ref) {
-			good++
-		} else {
-			bad++
+		k := key{good: s.Accepts(ref)}
+		for _, call := range s.Calls(part, a) {
+			if call == agreement.Missing {
+				continue
+			}
+			k.calls++
+			if s.Accepts(call) != k.good {
+				k.events++
+			}
 		}
+		if k.calls > 0 {
+			parts[k]++
+		}
+	}
+	for k, n := range parts {
+		c := interval.Cluster{Calls: k.calls, Events: k.events, Parts: n}
+		if k.good {
+			good = append(good, c)
+		} else {
+			bad = append(bad, c)
+		}
+	}
+	for _, clusters := range [][]interval.Cluster{bad, good} { // sums depend on the order
+		slices.SortFunc(clusters, func(x, y interval.Cluster) int {
+			return cmp.Or(cmp.Compare(x.Calls, y.Calls), cmp.Compare(x.Events, y.Events))
+		})
 	}
 	return bad, good
 }
 
-func called(calls []agreement.Category) bool {
-	for _, c := range calls {
-		if c != agreement.Missing {
-			return true
-		}
+// total is the number of parts in clusters.
+func total(clusters []interval.Cluster) int {
+	n := 0
+	for _, c := range clusters {
+		n += c.Parts
 	}
-	return false
+	return n
 }

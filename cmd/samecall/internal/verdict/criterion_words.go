@@ -1,0 +1,144 @@
+package verdict
+
+import (
+	"fmt"
+	"strconv"
+
+	"samecall/cmd/samecall/internal/format"
+)
+
+// Label is the criterion's name as people read it.
+func (c Criterion) Label() string {
+	switch c.Name {
+	case Miss:
+		return "miss rate"
+	case FalseAlarm:
+		return "false-alarm rate"
+	}
+	return c.Name
+}
+
+// Number writes a value of the criterion's kind.
+func (c Criterion) Number(x float64) string {
+	if c.Name == Kappa {
+		return format.Figure(x)
+	}
+	return format.Percent(x)
+}
+
+// Level writes a level as it was set.
+func (c Criterion) Level(x float64) string {
+	if c.Name == Kappa {
+		if s := strconv.FormatFloat(x, 'g', 4, 64); len(s) > len("0.00") {
+			return s
+		}
+		return format.Figure(x)
+	}
+	return strconv.FormatFloat(100*x, 'g', 4, 64) + " %"
+}
+
+// found writes the estimate, with more digits where it would read like a
+// level that it misses.
+func (c Criterion) found() string {
+	x := c.Estimate.Value
+	text := c.Number(x)
+	for _, level := range c.Levels {
+		if x == level || (text != c.Number(level) && text != c.Level(level)) {
+			continue
+		}
+		if c.Name == Kappa {
+			return strconv.FormatFloat(x, 'g', 4, 64)
+		}
+		return strconv.FormatFloat(100*x, 'g', 4, 64) + " %"
+	}
+	return text
+}
+
+// Text says what was found against what was asked: "miss rate 6.3 %, more
+// than the 5 % allowed".
+func (c Criterion) Text() string {
+	if c.Met == NotShown {
+		return c.Label() + " not known: " + c.Estimate.Absent.Error()
+	}
+	short, enough, asked := "less than", "at least", "required"
+	if c.atMost() {
+		short, enough, asked = "more than", "at most", "allowed"
+	}
+	text := c.Label() + " " + c.found() + ", "
+	switch c.Met {
+	case Accept:
+		return text + enough + " " + c.Level(c.Levels[0])
+	case Conditional:
+		return fmt.Sprintf("%s%s the %s to accept, but %s %s", text, short, c.Level(c.Levels[0]), enough, c.Level(c.Levels[1]))
+	}
+	return fmt.Sprintf("%s%s the %s %s", text, short, c.Level(c.Levels[1]), asked)
+}
+
+// claim is what Evidence speaks of: "at most 5 %".
+func (c Criterion) claim() string {
+	met, missed := "at least", "below"
+	if c.atMost() {
+		met, missed = "at most", "above"
+	}
+	if c.Met == Reject {
+		return missed + " " + c.Level(c.Against)
+	}
+	return met + " " + c.Level(c.Against)
+}
+
+// EvidenceText says what the data show of it and, where that is open, what
+// would settle it.
+func (c Criterion) EvidenceText() string {
+	switch {
+	case c.Met == NotShown:
+		return ""
+	case c.Evidence != Open:
+		return "The data show that it is " + c.claim() + "."
+	}
+	return "Open: " + c.open() + "."
+}
+
+// open says why a criterion is open and what would settle it.
+func (c Criterion) open() string {
+	if c.Estimate.Unbounded != nil {
+		return c.Estimate.Unbounded.Error()
+	}
+	text := ""
+	if c.Name != Kappa && !c.meets(c.Best, c.Against) {
+		than := "more"
+		if c.atMost() {
+			than = "less"
+		}
+		text = fmt.Sprintf("%s cannot show %s than %s; ", format.Counted(c.Parts, c.Kind), than, c.Number(c.Best))
+	}
+	switch {
+	case c.More > 0 && c.errorFree():
+		return text + fmt.Sprintf("%s more without an error would show that it is %s", format.Counted(c.More, c.Kind), c.claim())
+	case c.More > 0:
+		return text + fmt.Sprintf("%s more at this %s would show that it is %s", format.Counted(c.More, c.Kind), c.measure(), c.claim())
+	case c.errorFree(): // and the level leaves no room for an error
+		return text + "no number of parts can show that it is " + c.claim()
+	case c.Estimate.Value == c.Against:
+		return text + "it lies on its level, which more parts would not settle"
+	}
+	return text + fmt.Sprintf("it lies so close to its level that not even %s times the parts would settle it", format.Count(manyTimes))
+}
+
+// errorFree reports whether not one error was found.
+func (c Criterion) errorFree() bool {
+	if c.atMost() {
+		return c.Estimate.Value == 0
+	}
+	return c.Estimate.Value == 1
+}
+
+// measure is what stays the same in a larger study.
+func (c Criterion) measure() string {
+	switch c.Name {
+	case Kappa:
+		return "kappa"
+	case Effectiveness:
+		return "share"
+	}
+	return "rate"
+}

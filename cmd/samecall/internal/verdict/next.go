@@ -1,0 +1,237 @@
+package verdict
+
+import (
+	"errors"
+	"fmt"
+	"slices"
+
+	"samecall/agreement"
+	"samecall/cmd/samecall/internal/format"
+	"samecall/cmd/samecall/internal/judge"
+)
+
+// largerStudy is how many times the present number of parts may be asked for.
+const largerStudy = 3
+
+// next returns what to do now: what may be wrong with the reference, what the
+// causes ask for, then what the study lacks.
+func next(r *judge.Result, v *Verdict) []string {
+	var out []string
+	add := func(s string) {
+		if s != "" && !slices.Contains(out, s) {
+			out = append(out, s)
+		}
+	}
+	add(doubtfulReference(r, v))
+	for _, c := range v.Causes {
+		add(c.Do)
+	}
+	if len(v.Causes) == 0 {
+		add(noPattern(r, v))
+	}
+	if s := lacks(r, v); len(s) > 0 {
+		for _, text := range s {
+			add(text)
+		}
+	} else {
+		add(moreParts(r, v))
+	}
+	add(repeatTrials(r))
+	if len(out) == 0 {
+		add("Nothing is to be fixed. Repeat the study when the gauge, the people or the parts change.")
+	}
+	return out
+}
+
+// doubtfulReference names parts on which every call of all appraisers was
+// wrong, other than those that a shifted gauge or standard explains.
+func doubtfulReference(r *judge.Result, v *Verdict) string {
+	if r.Agreement.All == nil || len(r.Study.Appraisers) < 2 || has(v.Causes, Everyone, codeStandard, codeKinds, codeGrades) {
+		return ""
+	}
+	parts := slices.DeleteFunc(slices.Clone(r.Agreement.All.WrongEveryTime), func(part int) bool { return expected(r, part) })
+	if len(parts) == 0 {
+		return ""
+	}
+	return fmt.Sprintf("Every call on %s was wrong: check the reference of %s before anything else.", list(r.Study.Parts, parts), this(len(parts), "part"))
+}
+
+// expected reports whether the acceptance curve expects the wrong calls on a
+// part: its value lies between limit and cut.
+func expected(r *judge.Result, part int) bool {
+	if r.Zone == nil || r.Zone.Curves == nil || !r.Study.HasValue[part] {
+		return false
+	}
+	x := r.Study.Values[part]
+	return (plain(r.Zone.Curves.Pooled).Accept(x) > 0.5) != r.Zone.Limits.Inside(x)
+}
+
+// noPattern names the wrong calls of those who miss a level where no cause was
+// found.
+func noPattern(r *judge.Result, v *Verdict) string {
+	if r.Agreement.All == nil || v.Overall != Conditional && v.Overall != Reject {
+		return ""
+	}
+	var who []string
+	var parts []int
+	for a, ap := range v.Appraisers {
+		if ap.Verdict != Conditional && ap.Verdict != Reject {
+			continue
+		}
+		found := false
+		for part := range r.Study.Parts {
+			ref := r.Study.Ratings.Reference(part)
+			if ref == agreement.Missing {
+				continue
+			}
+			if count(r.Study.Ratings, r.Study.Ratings.Calls(part, a), ref).wrong > 0 {
+				found = true
+				parts = append(parts, part)
+			}
+		}
+		if found {
+			who = append(who, ap.Name)
+		}
+	}
+	if len(who) == 0 {
+		return ""
+	}
+	slices.Sort(parts)
+	return stop(fmt.Sprintf("No pattern tells what is behind the wrong calls. Go through them with %s, part by part: %s", some(who), list(r.Study.Parts, slices.Compact(parts))))
+}
+
+// lacks says what the study lacks for its figures to be known.
+func lacks(r *judge.Result, v *Verdict) []string {
+	if r.Agreement.All == nil {
+		return []string{"Give each part a reference (a column reference, or values and limits): without one, nobody knows whether the calls are right."}
+	}
+	if !r.Study.Ratings.HasAccept() {
+		return []string{"Say which categories a part may have to be used (accept): without them there are no misses and no false alarms."}
+	}
+	var out []string
+	for _, name := range []string{Miss, FalseAlarm} {
+		for _, a := range v.Appraisers {
+			c := a.criterion(name)
+			if c.Met != NotShown {
+				continue
+			}
+			kind := "bad part"
+			if name == FalseAlarm {
+				kind = "good part"
+			}
+			out = append(out, stop(fmt.Sprintf("Add %ss, close to the limits: %s called none, so that nothing is known of its %s%s", kind, a.Name, c.Label(), shows(c, kind, r.Options.Confidence))))
+			break
+		}
+	}
+	return out
+}
+
+// shows says how many parts without an error show the levels of a criterion.
+func shows(c Criterion, kind string, confidence float64) string {
+	n := withoutError(c.Levels[0], confidence)
+	if n == 0 {
+		return ""
+	}
+	return fmt.Sprintf(". %s without an error show a %s of at most %s", format.Counted(n, kind), c.Label(), c.Level(c.Levels[0]))
+}
+
+// moreParts says how many parts more would settle what is open.
+func moreParts(r *judge.Result, v *Verdict) string {
+	if v.Overall == Reject {
+		return settleReject(r, v)
+	}
+	need := make(map[string]Criterion)
+	who := make(map[string]string)
+	for _, a := range v.Appraisers {
+		for _, c := range a.Criteria {
+			if c.Evidence == Open && c.More > need[c.Kind].More {
+				need[c.Kind], who[c.Kind] = c, a.Name
+			}
+		}
+	}
+	for _, kind := range []string{"bad part", "good part", "part"} {
+		c := need[kind]
+		switch {
+		case c.More == 0:
+			continue
+		case c.errorFree():
+			return fmt.Sprintf("To show that the %s of %s is %s, add %s, some of them close to the limits; all must be called right.", c.Label(), who[kind], c.claim(), format.Counted(c.More, kind))
+		case c.More > largerStudy*c.Parts:
+			return fmt.Sprintf("To show that the %s of %s is %s would take %s more: rather than enlarge the study, bring the errors down.", c.Label(), who[kind], c.claim(), format.Counted(c.More, kind))
+		}
+		return fmt.Sprintf("To show that the %s of %s is %s, add %s like those of the study.", c.Label(), who[kind], c.claim(), format.Counted(c.More, kind))
+	}
+	return ""
+}
+
+// settleReject says what would settle a rejection that the data leave open,
+// and what a study after the correction takes.
+func settleReject(r *judge.Result, v *Verdict) string {
+	var best Criterion
+	who := ""
+	for _, g := range v.grounds() {
+		if g.c.Evidence == Contradicted {
+			return repeatStudy(r, v)
+		}
+		if g.c.More > 0 && (who == "" || g.c.More < best.More) {
+			best, who = g.c, some(g.who)
+		}
+	}
+	if who == "" || best.More > largerStudy*best.Parts {
+		return repeatStudy(r, v)
+	}
+	return fmt.Sprintf("The rejection itself is open: with %s more at the same %s, the %s of %s would settle it.", format.Counted(best.More, best.Kind), best.measure(), best.Label(), who)
+}
+
+// repeatStudy says what a new study takes to show the miss rate, where the
+// present one has too few bad parts for that.
+func repeatStudy(r *judge.Result, v *Verdict) string {
+	const again = "Then repeat the study."
+	c := v.Appraisers[0].criterion(Miss)
+	for _, a := range v.Appraisers {
+		if other := a.criterion(Miss); other.Parts < c.Parts {
+			c = other
+		}
+	}
+	accept, conditional := withoutError(c.Levels[0], r.Options.Confidence), withoutError(c.Levels[1], r.Options.Confidence)
+	switch {
+	case accept == 0 || c.meets(c.Best, c.Levels[0]):
+		return again
+	case conditional == 0 || conditional == accept:
+		return fmt.Sprintf("%s It takes %s without a miss to show a miss rate of at most %s.", again, format.Counted(accept, "bad part"), c.Level(c.Levels[0]))
+	}
+	return fmt.Sprintf("%s It takes %s without a miss to show a miss rate of at most %s, and %s for %s.", again,
+		format.Counted(conditional, "bad part"), c.Level(c.Levels[1]), format.Count(accept), c.Level(c.Levels[0]))
+}
+
+// repeatTrials names the appraisers with one trial.
+func repeatTrials(r *judge.Result) string {
+	var who []string
+	for a, w := range r.Agreement.Within {
+		if w.Share.Absent != nil {
+			who = append(who, r.Study.Appraisers[a])
+		}
+	}
+	if len(who) == 0 {
+		return ""
+	}
+	return fmt.Sprintf("Let %s call the parts a second and a third time: with one trial nobody knows whether the calls repeat.", some(who))
+}
+
+// criterion returns one criterion of an appraiser by its name.
+func (a Appraiser) criterion(name string) Criterion {
+	for _, c := range a.Criteria {
+		if c.Name == name {
+			return c
+		}
+	}
+	return Criterion{Name: name, Met: NotShown, Estimate: agreement.Estimate{Absent: errors.New("no such criterion")}}
+}
+
+// this points at one or several things that were named.
+func this(n int, noun string) string {
+	if n == 1 {
+		return "this " + noun
+	}
+	return "these " + noun + "s"
+}

@@ -1,0 +1,127 @@
+package verdict
+
+import (
+	"samecall/agreement"
+	"samecall/cmd/samecall/internal/judge"
+)
+
+// pattern is how the wrong calls of one appraiser, or of all, fall.
+type pattern struct {
+	wrong int // wrong calls
+	// repeats is how many wrong calls one would find if, for each wrong call,
+	// one more call on the same part were looked at: the sum over parts with
+	// n ≥ 2 calls, w of them wrong, of w(w−1)/(n−1). repeatable is the sum of
+	// w over the same parts.
+	repeats, repeatable float64
+	steady              []int // parts called twice or more and wrong every time
+	steadyCalls         ways  // the calls on those
+}
+
+// ways counts wrong calls by the way they go.
+type ways struct {
+	misses, falseAlarms, others int // others: the wrong kind or grade, on the right side
+}
+
+func (w ways) total() int { return w.misses + w.falseAlarms + w.others }
+
+func (w ways) String() string {
+	switch w.total() {
+	case w.misses:
+		return "bad parts accepted"
+	case w.falseAlarms:
+		return "good parts rejected"
+	case w.misses + w.falseAlarms:
+		return "bad parts accepted and good ones rejected"
+	}
+	return "given the wrong category"
+}
+
+// repeat is the share of wrong calls that another call on the same part
+// repeats.
+func (p pattern) repeat() float64 {
+	if p.repeatable == 0 {
+		return 0
+	}
+	return p.repeats / p.repeatable
+}
+
+// patterns returns the pattern of each appraiser and that of all calls
+// together, leaving out parts that have a cause of their own.
+func patterns(r *judge.Result, without []farPart) (each []pattern, together pattern) {
+	s := r.Study.Ratings
+	if r.Agreement.All == nil {
+		return nil, together
+	}
+	leave := make(map[int]bool)
+	for _, f := range without {
+		leave[f.part] = true
+	}
+	each = make([]pattern, s.Appraisers())
+	for part := range s.Parts() {
+		ref := s.Reference(part)
+		if ref == agreement.Missing || leave[part] {
+			continue
+		}
+		var all tally
+		for a := range each {
+			t := count(s, s.Calls(part, a), ref)
+			each[a].add(part, t)
+			all.add(t)
+		}
+		together.add(part, all)
+	}
+	return each, together
+}
+
+// tally counts the calls on one part, and the wrong ones.
+type tally struct {
+	calls, wrong int
+	ways         ways
+}
+
+func count(s *agreement.Ratings, calls []agreement.Category, ref agreement.Category) (t tally) {
+	for _, c := range calls {
+		if c == agreement.Missing {
+			continue
+		}
+		t.calls++
+		if c == ref {
+			continue
+		}
+		t.wrong++
+		switch accepted, good := s.Accepts(c), s.Accepts(ref); {
+		case accepted && !good:
+			t.ways.misses++
+		case good && !accepted:
+			t.ways.falseAlarms++
+		default:
+			t.ways.others++
+		}
+	}
+	return t
+}
+
+func (t *tally) add(o tally) {
+	t.calls += o.calls
+	t.wrong += o.wrong
+	t.ways.add(o.ways)
+}
+
+func (w *ways) add(o ways) {
+	w.misses += o.misses
+	w.falseAlarms += o.falseAlarms
+	w.others += o.others
+}
+
+func (p *pattern) add(part int, t tally) {
+	p.wrong += t.wrong
+	if t.calls < 2 {
+		return
+	}
+	p.repeats += float64(t.wrong*(t.wrong-1)) / float64(t.calls-1)
+	p.repeatable += float64(t.wrong)
+	if t.wrong == t.calls {
+		p.steady = append(p.steady, part)
+		p.steadyCalls.add(t.ways)
+	}
+}

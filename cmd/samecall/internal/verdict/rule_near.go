@@ -1,0 +1,68 @@
+package verdict
+
+import (
+	"strings"
+
+	"samecall/cmd/samecall/internal/format"
+)
+
+// wideZone is the share of the tolerance above which the grey zone at a limit
+// is wide. Our own choice, after the 30 % of %GRR (common practice, no source).
+const wideZone = 0.30
+
+// nearLimits: no other cause, figures that miss their level, and every wrong
+// call where the curve expects it: near the limits.
+func nearLimits(f *finder) []Cause {
+	if len(f.found) > 0 || !f.missed || f.together.wrong == 0 {
+		return nil
+	}
+	width := f.zoneWidth()
+	if width == "" {
+		return nil
+	}
+	cause := Cause{
+		Code: codeWide, Appraiser: Everyone,
+		Text: "The wrong calls lie near the limits only, and no shift explains them." + width,
+		Do:   "Make the call surer: a better gauge or fixture, a measured value for parts near the limits, or cuts moved inwards by a guard band.",
+	}
+	if share, known := f.zoneShare(); known && share <= wideZone {
+		cause.Code = codeNear
+		cause.Text += " That is not wide for this tolerance: the study holds many parts in it."
+		cause.Do = "Measure the parts that fall into the grey zone, or move the cuts inwards by a guard band."
+	} else if known {
+		cause.Text += " That is wide for this tolerance."
+	}
+	return []Cause{cause}
+}
+
+// zoneWidth tells the width of the grey zone in a sentence with a space
+// before it; nothing where no curve is known.
+func (f *finder) zoneWidth() string {
+	if f.Zone == nil || f.Zone.Curves == nil {
+		return ""
+	}
+	s := f.Scale()
+	var widths []string
+	for _, l := range sides(plain(f.Zone.Curves.Pooled)) {
+		text := s.WithUnit(s.Value(l.Width.Value))
+		if l.HasShare {
+			text += " (" + format.Percent(l.Share.Value) + " of the tolerance)"
+		}
+		widths = append(widths, text+" wide at the "+l.Side.String()+" limit")
+	}
+	if len(widths) == 0 {
+		return ""
+	}
+	return " The grey zone is " + strings.Join(widths, " and ") + "."
+}
+
+// zoneShare is the larger share of the tolerance that the grey zone takes,
+// and whether it is known.
+func (f *finder) zoneShare() (share float64, known bool) {
+	for _, l := range sides(plain(f.Zone.Curves.Pooled)) {
+		if l.HasShare {
+			share, known = max(share, l.Share.Value), true
+		}
+	}
+	return share, known
+}
