@@ -19,6 +19,7 @@ type source struct {
 	settings       study.Settings
 	lower, upper   float64
 	pairs          map[string]*[]float64
+	members        [2]string // of the gauge, at the lower and the upper limit
 }
 
 // addFlags gives a command a flag for every setting of the study file.
@@ -50,6 +51,8 @@ func (s *source) addFlags(cmd *cobra.Command) {
 	} {
 		s.pairs[c.name] = f.Float64Slice(c.name, nil, c.usage)
 	}
+	f.StringVar(&s.members[0], "gauge-sizes-lower", "", "calibrated gauge member at the lower limit, such as size=9.997,uncertainty=0.0008,wear_limit=9.999")
+	f.StringVar(&s.members[1], "gauge-sizes-upper", "", "calibrated gauge member at the upper limit, likewise")
 	_ = cmd.RegisterFlagCompletionFunc("example", completeExamples)
 }
 
@@ -112,6 +115,17 @@ func (s *source) flags(cmd *cobra.Command) (study.Settings, error) {
 		default:
 			*to = &[2]float64{levels[0], levels[1]}
 		}
+	}
+	for i, to := range []**study.GaugeMember{&out.GaugeSizes.Lower, &out.GaugeSizes.Upper} {
+		flag := [...]string{"gauge-sizes-lower", "gauge-sizes-upper"}[i]
+		if !cmd.Flags().Changed(flag) {
+			continue
+		}
+		m, err := study.ParseGaugeMember(s.members[i], i == 1)
+		if err != nil {
+			return out, fmt.Errorf("--%s: %w", flag, err)
+		}
+		*to = m
 	}
 	if cmd.Flags().Changed("confidence") && out.Confidence == 0 {
 		return out, errors.New("--confidence is 0; expected a number between 0 and 1, such as 0.95")

@@ -36,6 +36,8 @@ type Settings struct {
 
 	Confidence float64 // of intervals, between 0 and 1
 	Criteria   Criteria
+
+	GaugeSizes GaugeSizes // as calibrated, where they are known
 }
 
 // Criteria holds the accept and the conditional level of each criterion; nil
@@ -89,6 +91,7 @@ func (s Settings) Merge(over Settings) Settings {
 	pair(&s.Criteria.Miss, over.Criteria.Miss)
 	pair(&s.Criteria.FalseAlarm, over.Criteria.FalseAlarm)
 	pair(&s.Criteria.Kappa, over.Criteria.Kappa)
+	s.GaugeSizes = s.GaugeSizes.merge(over.GaugeSizes)
 	return s
 }
 
@@ -148,6 +151,7 @@ func (s Settings) faults() []fault {
 			add(key, "%s is [%v, %v]; the accept level stands first and must not be above the conditional level", key, accept, conditional)
 		}
 	}
+	out = append(out, s.GaugeSizes.faults()...)
 	return append(out, s.wordFaults()...)
 }
 
@@ -222,6 +226,8 @@ func (s *Settings) keys() map[string]func(any) error {
 		"criteria.miss":          pairKey(&s.Criteria.Miss),
 		"criteria.false_alarm":   pairKey(&s.Criteria.FalseAlarm),
 		"criteria.kappa":         pairKey(&s.Criteria.Kappa),
+		"gauge_sizes.lower":      memberKey(&s.GaugeSizes.Lower, false),
+		"gauge_sizes.upper":      memberKey(&s.GaugeSizes.Upper, true),
 	}
 }
 
@@ -386,18 +392,19 @@ func parseSettings(name string, data []byte) (Settings, error) {
 		lines[key] = keyLine(meta, value)
 	}
 	for _, key := range sortedKeys(top) {
-		if key != "criteria" {
+		what, isTable := tables[key]
+		if !isTable {
 			take(key, top[key])
 			continue
 		}
 		var table map[string]toml.Primitive
-		if err := meta.PrimitiveDecode(top[key], &table); err != nil {
-			list = append(list, Problem{File: name, Line: keyLine(meta, top[key]), Found: "the key criteria with a value",
-				Expected: "a table", Text: "write [criteria] on its own line and the levels below it"})
+		if err := meta.PrimitiveDecode(top[key], &table); err != nil || meta.Type(key) != "Hash" && meta.Type(key) != "" { // "": only [table.table] stand there
+			list = append(list, Problem{File: name, Line: keyLine(meta, top[key]), Found: "the key " + key + " with a value",
+				Expected: "a table", Text: "write [" + key + "] on its own line and " + what + " below it"})
 			continue
 		}
 		for _, k := range sortedKeys(table) {
-			take("criteria."+k, table[k])
+			take(key+"."+k, table[k])
 		}
 	}
 	if len(list) == 0 {
@@ -408,6 +415,9 @@ func parseSettings(name string, data []byte) (Settings, error) {
 	return s, problemsOf(list, 0)
 }
 
+// tables are the keys that hold further keys, and what these are.
+var tables = map[string]string{"criteria": "the levels", "gauge_sizes": "the members lower and upper"}
+
 var errUnknownKey = errors.New("unknown key")
 
 // knownKeys says which key may have been meant.
@@ -416,12 +426,14 @@ func knownKeys(key string, keys map[string]func(any) error) string {
 	if near := nearest(key, names); near != "" {
 		return "did you mean " + near + "?"
 	}
+	if tail := key[strings.LastIndexByte(key, '.')+1:]; tail != key && keys[tail] != nil {
+		return tail + " belongs above the first [table]"
+	}
 	for _, n := range names { // a key that is known, in the wrong table
 		if tail := n[strings.LastIndexByte(n, '.')+1:]; tail == key[strings.LastIndexByte(key, '.')+1:] {
 			if i := strings.IndexByte(n, '.'); i >= 0 {
 				return tail + " belongs under [" + n[:i] + "]"
 			}
-			return tail + " belongs above the first [table]"
 		}
 	}
 	return "known keys are " + listOf(names, "and")
