@@ -16,7 +16,11 @@ type record struct {
 	word   uint16 // number in the builder's words plus 1; 0: missing call
 }
 
-const recordBits = 16 // records: blocks of 65,536
+// Blocks of records double in size, up to maxBlock: most studies are small.
+const (
+	minBlock = 1 << 8
+	maxBlock = 1 << 16
+)
 
 // columnKey is one trial of one appraiser.
 type columnKey struct {
@@ -322,8 +326,9 @@ func (b *builder) call(part uint32, column uint16, word []byte, line, field int)
 		b.called[column] = true
 	}
 	if len(b.block) == cap(b.block) {
+		size := min(max(2*cap(b.block), minBlock), maxBlock)
 		b.flush()
-		b.block = make([]record, 0, 1<<recordBits)
+		b.block = make([]record, 0, size)
 	}
 	b.block = append(b.block, r)
 }

@@ -15,7 +15,7 @@ import (
 
 const (
 	blockBits = 20 // names: blocks of 1 MB
-	entryBits = 14 // entries: blocks of 16,384
+	entryBits = 12 // entries: blocks of 4,096
 	maxName   = 1<<16 - 1
 )
 
@@ -134,7 +134,11 @@ func (t *partTable) setValue(e *partEntry, value []byte) {
 func (t *partTable) store(name, value []byte) uint32 {
 	n := len(t.blocks)
 	if n == 0 || len(t.blocks[n-1])+len(name)+len(value) > 1<<blockBits {
-		t.blocks = append(t.blocks, make([]byte, 0, 1<<blockBits))
+		size := 1 << blockBits
+		if n == 0 { // most studies are small
+			size = 1 << 12
+		}
+		t.blocks = append(t.blocks, make([]byte, 0, size))
 		n++
 	}
 	b := &t.blocks[n-1]

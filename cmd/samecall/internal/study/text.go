@@ -45,23 +45,26 @@ type chunker struct {
 // newChunker looks at the first bytes of the text for its encoding. The error
 // is a textError where they are no text.
 func newChunker(in io.Reader, size int) (*chunker, error) {
-	head := make([]byte, min(4096, size))
+	head := make([]byte, 4096)
 	n, err := io.ReadFull(in, head)
 	if err != nil && err != io.EOF && err != io.ErrUnexpectedEOF {
 		return nil, err
 	}
 	head = head[:n]
-	c := &chunker{in: in, tail: head, size: size, free: make(chan []byte, 8)}
-	switch order, isUTF16 := utf16Order(head); {
-	case bytes.HasPrefix(head, []byte("\xef\xbb\xbf")):
-		c.tail, c.utf8 = head[3:], true
+	c := &chunker{size: size, free: make(chan []byte, 8)}
+	order, isUTF16 := utf16Order(head)
+	switch {
 	case isUTF16:
-		dec := unicode.UTF16(order, unicode.UseBOM).NewDecoder()
-		c.in, c.tail = transform.NewReader(io.MultiReader(bytes.NewReader(head), in), dec), nil
+	case bytes.HasPrefix(head, []byte("\xef\xbb\xbf")):
+		head, c.utf8 = head[3:], true
 	case bytes.HasPrefix(head, []byte("\xd0\xcf\x11\xe0")):
 		return nil, &textError{Text: "this is an old .xls workbook or one with a password; save it as .xlsx without a password, or as CSV"}
 	case bytes.IndexByte(head, 0) >= 0:
 		return nil, &textError{Text: "this is no text file; expected calls as CSV or .xlsx"}
+	}
+	c.in = io.MultiReader(bytes.NewReader(head), in)
+	if isUTF16 {
+		c.in = transform.NewReader(c.in, unicode.UTF16(order, unicode.UseBOM).NewDecoder())
 	}
 	return c, nil
 }
