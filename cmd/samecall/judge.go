@@ -9,7 +9,6 @@ import (
 
 	"samecall/agreement"
 	"samecall/cmd/samecall/internal/judge"
-	"samecall/cmd/samecall/internal/output"
 	"samecall/cmd/samecall/internal/report"
 	"samecall/cmd/samecall/internal/study"
 	"samecall/cmd/samecall/internal/verdict"
@@ -19,8 +18,9 @@ import (
 func newJudge(s streams) *cobra.Command {
 	var src source
 	opt := agreement.DefaultOptions()
-	var pairing, jsonFile string
+	var pairing, require string
 	var full bool
+	var out outputs
 	cmd := &cobra.Command{
 		Use:   "judge [FILE]",
 		Short: "Calls in, agreement and error rates out",
@@ -32,13 +32,14 @@ call, is the sampled unit.
 FILE is a calls file (CSV or .xlsx, long or wide), a study file (TOML) that
 names one, or - for a CSV on standard input. docs/files.md tells the formats.
 
-Exit status: 0 done, 2 the command line is wrong or a file cannot be opened or
+Exit status: 0 done, 1 done but --require was not reached, 2 the command line is wrong or a file cannot be opened or
 written, 3 the data is wrong.`,
 		Example: `  samecall judge --example bore
   samecall judge calls.csv
   samecall judge study.toml --full
   samecall judge calls.xlsx --sheet "March" --accept go --reject nogo
-  samecall judge calls.csv --lower 12.000 --upper 12.018 --unit mm --json result.json`,
+  samecall judge calls.csv --lower 12.000 --upper 12.018 --unit mm --json result.json
+  samecall judge study.toml --html record.html --require conditional`,
 		Args: oneFile,
 		RunE: func(cmd *cobra.Command, args []string) error {
 			switch pairing {
@@ -51,6 +52,13 @@ written, 3 the data is wrong.`,
 			}
 			if opt.Resamples < 0 {
 				return fmt.Errorf("--resamples is %d; expected a number of 0 or more", opt.Resamples)
+			}
+			level, err := parseRequirement(require)
+			if err != nil {
+				return err
+			}
+			if err := out.check(); err != nil {
+				return err
 			}
 			at := newProgress(s.err)
 			at.at("reading the calls")
@@ -65,25 +73,32 @@ written, 3 the data is wrong.`,
 			if err != nil {
 				return err
 			}
-			if jsonFile != "" {
-				if err := writeTo(jsonFile, s.out, func(w io.Writer) error { return report.JSON(w, result) }); err != nil {
+			result.Command = commandLine(cmd, args)
+			if err := out.write(s.out, result); err != nil {
+				return err
+			}
+			if !out.toStandardOutput() {
+				err := buffered(s.out, func(w io.Writer) error { return report.Text(w, result, terminal(s.out), full) })
+				if err != nil {
 					return err
 				}
-				if jsonFile == "-" {
-					return nil
-				}
 			}
-			return buffered(s.out, func(w io.Writer) error { return report.Text(w, result, terminal(s.out), full) })
+			if level.reached(result.Verdict.Overall) {
+				return nil
+			}
+			return statusError{status: exitShort}
 		},
 	}
 	f := cmd.Flags()
 	f.SortFlags = false
 	f.BoolVar(&full, "full", false, "every table, not the one screen")
-	f.StringVar(&jsonFile, "json", "", "also write everything as JSON to this `file`; - for standard output, and nothing else")
+	out.addFlags(f)
+	f.StringVar(&require, "require", "", "end with status 1 unless the verdict is at least this good: accept or conditional")
 	f.StringVar(&pairing, "pairing", "matched", "calls of two appraisers side by side: matched, trial by trial, or all trials with all")
 	f.IntVar(&opt.Resamples, "resamples", opt.Resamples, "resamples of whole parts for the intervals of kappas; 0 for linearised ones")
 	f.Uint64Var(&opt.Seed, "seed", opt.Seed, "of the resampling; the same seed gives the same answer")
 	f.BoolVar(&opt.Independent, "independent", false, "in the JSON, also the intervals that treat calls as independent, which they are not")
+	_ = cmd.RegisterFlagCompletionFunc("require", cobra.FixedCompletions([]string{"accept", "conditional"}, cobra.ShellCompDirectiveNoFileComp))
 	_ = cmd.RegisterFlagCompletionFunc("pairing", cobra.FixedCompletions([]string{"matched", "all"}, cobra.ShellCompDirectiveNoFileComp))
 	src.addFlags(cmd)
 	return cmd
@@ -96,14 +111,6 @@ func judgeStudy(s *study.Study, opt agreement.Options) (*report.Record, error) {
 		return nil, err
 	}
 	return &report.Record{Result: result, Verdict: verdict.Decide(result), Version: version()}, nil
-}
-
-// writeTo writes to the file named, or to standard output for -.
-func writeTo(name string, out io.Writer, write func(io.Writer) error) error {
-	if name == "-" {
-		return buffered(out, write)
-	}
-	return output.File(name, write)
 }
 
 func buffered(w io.Writer, write func(io.Writer) error) error {

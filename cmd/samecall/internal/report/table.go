@@ -24,10 +24,12 @@ type Column struct {
 }
 
 // Cell is a cell of a Table: what is read and, for programs, the number
-// behind it (int, float64) or nil.
+// behind it (int, float64) or nil, and its interval where it has one.
 type Cell struct {
-	Text  string
-	Value any
+	Text         string
+	Value        any
+	Bounded      bool
+	Lower, Upper any // float64, or nil for a limit that does not exist
 }
 
 func say(s string) Cell { return Cell{Text: s} }

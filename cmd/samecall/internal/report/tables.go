@@ -14,7 +14,7 @@ const together = "all together"
 
 // Tables returns every table of a result, in the order of reading.
 func Tables(r *Record) []Table {
-	var out []Table
+	out := []Table{criteriaTable(r)}
 	if r.Agreement.All != nil {
 		out = append(out, againstTable(r, true), errorsTable(r))
 	}
@@ -30,20 +30,111 @@ func Tables(r *Record) []Table {
 	return slices.DeleteFunc(out, func(t Table) bool { return len(t.Rows) == 0 })
 }
 
+// allTables are those of the whole record: what was studied first.
+func allTables(r *Record) []Table {
+	return append([]Table{studyTable(r), causesTable(r)}, Tables(r)...)
+}
+
+// studyTable says what was studied and decided, and how it came about.
+func studyTable(r *Record) Table {
+	t := Table{Name: "study", Title: "What was studied", Columns: []Column{{Name: "what"}, {Name: "value", Long: true}}}
+	add := func(what, value string) {
+		if value != "" {
+			t.Rows = append(t.Rows, []Cell{say(what), say(value)})
+		}
+	}
+	d := newStudy(r)
+	set := r.Study.Settings
+	add("title", title(r))
+	add("characteristic", set.Characteristic)
+	add("gauge", set.Gauge)
+	add("limits", limitsText(r))
+	parts := format.Count(d.Parts)
+	if d.BadParts != nil {
+		parts += fmt.Sprintf(": %s bad, %s good", format.Count(*d.BadParts), format.Count(*d.GoodParts))
+	}
+	add("parts", parts)
+	add("appraisers", strings.Join(r.Study.Appraisers, ", "))
+	add("trials", format.Count(d.Trials))
+	calls := format.Count(d.Calls)
+	if d.Missing > 0 {
+		calls += ", " + format.Count(d.Missing) + " missing"
+	}
+	add("calls", calls)
+	add("categories", strings.Join(r.Study.Categories, ", "))
+	add("accepted", strings.Join(d.Accept, ", "))
+	add("reference", d.Reference)
+	add("verdict", r.Verdict.Overall.String())
+	add("confidence", format.Percent(r.Options.Confidence))
+	add("resamples", fmt.Sprintf("%d, seed %d", r.Options.Resamples, r.Options.Seed))
+	add("pairing of trials", r.Options.Pairing.String())
+	for _, in := range r.Study.Inputs {
+		add("SHA-256 of "+in.File, in.SHA256)
+	}
+	add("samecall", r.Version)
+	add("computed by", r.Command)
+	return t
+}
+
+// causesTable lists causes and what to do next.
+func causesTable(r *Record) Table {
+	t := Table{Name: "findings", Title: "Findings", Columns: []Column{{Name: "kind"}, {Name: "text", Long: true}}}
+	add := func(kind, text string) { t.Rows = append(t.Rows, []Cell{say(kind), say(text)}) }
+	for _, why := range reasonLines(r) {
+		add("reason", why)
+	}
+	for _, c := range r.Verdict.Causes {
+		add("cause", c.Text)
+	}
+	for _, n := range r.Verdict.Next {
+		add("next", n)
+	}
+	for _, n := range allNotes(r) {
+		add("note", n)
+	}
+	for _, c := range r.Verdict.Cautions {
+		add("caution", c)
+	}
+	return t
+}
+
+// allNotes are the sentences to be said with the result.
+func allNotes(r *Record) []string {
+	var out []string
+	if r.Zone != nil {
+		out = append(out, zoneNotes(r)...)
+	}
+	for _, w := range r.Warnings {
+		out = append(out, w.Text)
+	}
+	return out
+}
+
 const squareNote = "Share of parts on which all calls are alike · kappa. In brackets, each appraiser with itself; last column, against the reference."
 
 func shareCell(s agreement.Share) Cell {
 	if s.Absent != nil {
 		return say(format.Dash)
 	}
-	return Cell{format.Share(s), s.Value}
+	return bounded(format.Share(s), s.Estimate)
 }
+
+func bounded(text string, e agreement.Estimate) Cell {
+	c := Cell{Text: text, Value: e.Value}
+	if e.Unbounded == nil {
+		c.Bounded, c.Lower, c.Upper = true, e.Interval.Lower, e.Interval.Upper
+	}
+	return c
+}
+
+// valueCell is a cell with a number behind it.
+func valueCell(text string, value any) Cell { return Cell{Text: text, Value: value} }
 
 func kappaCell(e agreement.Estimate) Cell {
 	if e.Absent != nil {
 		return say(format.Dash)
 	}
-	return Cell{format.Kappa(e), e.Value}
+	return bounded(format.Kappa(e), e)
 }
 
 func ofCell(s agreement.Share) Cell {
@@ -53,7 +144,7 @@ func ofCell(s agreement.Share) Cell {
 	return say(format.Count(s.Count) + " of " + format.Count(s.Of))
 }
 
-func intCell(n int) Cell { return Cell{format.Count(n), n} }
+func intCell(n int) Cell { return valueCell(format.Count(n), n) }
 
 // againstTable is the table of appraisers against the reference.
 func againstTable(r *Record, all bool) Table {
@@ -88,7 +179,7 @@ func errorsTable(r *Record) Table {
 		if s.Absent != nil {
 			return say(format.Dash)
 		}
-		return Cell{fmt.Sprintf("%.1f", s.Effective), s.Effective}
+		return valueCell(fmt.Sprintf("%.1f", s.Effective), s.Effective)
 	}
 	row := func(name string, a agreement.Against, dPrime, criterion Cell) {
 		t.Rows = append(t.Rows, []Cell{say(name), ofCell(a.Effectiveness), ofCell(a.Miss), worth(a.Miss), ofCell(a.FalseAlarm), worth(a.FalseAlarm), dPrime, criterion})
@@ -96,7 +187,7 @@ func errorsTable(r *Record) Table {
 	for i, a := range r.Agreement.Against {
 		dPrime, criterion := say(format.Dash), say(format.Dash)
 		if d := r.Detection[i]; d != nil {
-			dPrime, criterion = Cell{format.Figure(d.DPrime.Value), d.DPrime.Value}, Cell{format.Figure(d.Criterion.Value), d.Criterion.Value}
+			dPrime, criterion = valueCell(format.Figure(d.DPrime.Value), d.DPrime.Value), valueCell(format.Figure(d.Criterion.Value), d.Criterion.Value)
 		}
 		row(r.Study.Appraisers[i], a, dPrime, criterion)
 	}
@@ -204,7 +295,7 @@ func categoriesTable(r *Record) Table {
 		if against {
 			for _, a := range r.Agreement.Against {
 				if len(r.Study.Appraisers) > 3 && a.Categories[k].Absent == nil { // intervals would not fit
-					row = append(row, Cell{format.Figure(a.Categories[k].Value), a.Categories[k].Value})
+					row = append(row, valueCell(format.Figure(a.Categories[k].Value), a.Categories[k].Value))
 					continue
 				}
 				row = append(row, kappaCell(a.Categories[k]))
@@ -271,7 +362,7 @@ func directionTable(r *Record) Table {
 		if test.DF > 0 {
 			df = intCell(test.DF)
 		}
-		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), say(name), {fmt.Sprintf("%.2f", test.Statistic), test.Statistic}, df, {format.Probability(test.P), test.P}})
+		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), say(name), valueCell(fmt.Sprintf("%.2f", test.Statistic), test.Statistic), df, valueCell(format.Probability(test.P), test.P)})
 	}
 	for a, g := range r.Agreement.Against {
 		add(a, "McNemar, exact", g.McNemar)
@@ -325,12 +416,12 @@ func criteriaTable(r *Record) Table {
 	add := func(name string, c verdict.Criterion) {
 		found, evidence, settle := say(format.Dash), "", ""
 		if c.Met != verdict.NotShown {
-			found, evidence = Cell{c.Number(c.Estimate.Value), c.Estimate.Value}, c.Evidence.String()
+			found, evidence = valueCell(c.Number(c.Estimate.Value), c.Estimate.Value), c.Evidence.String()
 			if c.More > 0 {
 				settle = format.Counted(c.More, c.Kind) + " more"
 			}
 		}
-		t.Rows = append(t.Rows, []Cell{say(name), say(c.Label()), found, {c.Level(c.Levels[0]), c.Levels[0]}, {c.Level(c.Levels[1]), c.Levels[1]}, say(c.Met.String()), say(evidence), say(settle)})
+		t.Rows = append(t.Rows, []Cell{say(name), say(c.Label()), found, valueCell(c.Level(c.Levels[0]), c.Levels[0]), valueCell(c.Level(c.Levels[1]), c.Levels[1]), say(c.Met.String()), say(evidence), say(settle)})
 	}
 	for _, a := range r.Verdict.Appraisers {
 		for _, c := range a.Criteria {

@@ -10,6 +10,7 @@ import (
 
 	"samecall/agreement"
 	"samecall/cmd/samecall/internal/format"
+	"samecall/cmd/samecall/internal/study"
 )
 
 // Terminal says what a text is written to.
@@ -31,7 +32,6 @@ func Text(w io.Writer, r *Record, term Terminal, full bool) error {
 	p.head(r)
 	p.verdict(r)
 	if full {
-		p.table(criteriaTable(r))
 		for _, t := range Tables(r) {
 			p.table(t)
 		}
@@ -48,15 +48,24 @@ func (p *printer) verdict(r *Record) {
 	v := r.Verdict
 	p.line("")
 	p.line(p.term.bold("Verdict: " + strings.ToUpper(v.Overall.String())))
-	for i, why := range v.Reasons {
-		if i < len(v.Carry) {
-			why += " " + v.Carry[i]
-		}
+	for _, why := range reasonLines(r) {
 		p.wrap("  "+why, "  ")
 	}
 	for _, c := range v.Causes {
 		p.wrap("Cause: "+c.Text, "  ")
 	}
+}
+
+// reasonLines are the reasons, each with how far the data carry it.
+func reasonLines(r *Record) []string {
+	var out []string
+	for i, why := range r.Verdict.Reasons {
+		if i < len(r.Verdict.Carry) {
+			why += " " + r.Verdict.Carry[i]
+		}
+		out = append(out, why)
+	}
+	return out
 }
 
 // next writes what to do now.
@@ -111,13 +120,18 @@ func (p *printer) table(t Table) {
 }
 
 func (p *printer) head(r *Record) {
-	s := r.Study
-	title := s.Settings.Title
-	if title == "" && len(s.Inputs) > 0 {
-		title = s.Inputs[len(s.Inputs)-1].File
-	}
-	p.line(p.term.bold(format.Plain(title)))
+	p.line(p.term.bold(format.Plain(title(r))))
 	p.wrap(facts(r), "")
+}
+
+// title is what the study is called: its title, or the file of its calls.
+func title(r *Record) string { return studyTitle(r.Study) }
+
+func studyTitle(s *study.Study) string {
+	if t := s.Settings.Title; t != "" || len(s.Inputs) == 0 {
+		return t
+	}
+	return s.Inputs[len(s.Inputs)-1].File
 }
 
 // facts says in one paragraph what was studied.
@@ -284,9 +298,9 @@ func (p *printer) between(r *Record) {
 }
 
 func (p *printer) warnings(r *Record) {
-	for _, w := range r.Warnings {
+	for _, n := range r.Warnings {
 		p.line("")
-		p.wrap("Note: "+w.Text, "      ")
+		p.wrap("Note: "+n.Text, "      ")
 	}
 }
 

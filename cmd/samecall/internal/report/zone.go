@@ -29,7 +29,7 @@ func zoneTable(r *Record) Table {
 		if l == nil || !l.HasLimit {
 			continue
 		}
-		row := []Cell{say(l.Side.String()), {s.Value(l.Limit), l.Limit}}
+		row := []Cell{say(l.Side.String()), valueCell(s.Value(l.Limit), l.Limit)}
 		if !l.Known() {
 			for range 4 {
 				row = append(row, say(format.Dash))
@@ -39,12 +39,12 @@ func zoneTable(r *Record) Table {
 		}
 		share := say(format.Dash)
 		if l.HasShare {
-			share = Cell{format.Percent(l.Share.Value), l.Share.Value}
+			share = valueCell(format.Percent(l.Share.Value), l.Share.Value)
 		}
 		t.Rows = append(t.Rows, append(row,
-			Cell{s.Estimate(l.Offset, s.Signed), l.Offset.Value},
-			Cell{s.Value(l.Sigma.Value), l.Sigma.Value},
-			Cell{s.Value(l.Width.Value), l.Width.Value},
+			offsetCell(s, l.Offset),
+			valueCell(s.Value(l.Sigma.Value), l.Sigma.Value),
+			valueCell(s.Value(l.Width.Value), l.Width.Value),
 			share))
 	}
 	return t
@@ -115,8 +115,8 @@ func cutsTable(r *Record) Table {
 			offset, sigma := say(format.Dash), say(format.Dash)
 			if own != nil {
 				if l := side(own); l.Known() {
-					offset = Cell{s.Estimate(l.Offset, s.Signed), l.Offset.Value}
-					sigma = Cell{s.Value(l.Sigma.Value), l.Sigma.Value}
+					offset = offsetCell(s, l.Offset)
+					sigma = valueCell(s.Value(l.Sigma.Value), l.Sigma.Value)
 				}
 			}
 			row, sigmas = append(row, offset), append(sigmas, sigma)
@@ -136,4 +136,15 @@ func cutsTable(r *Record) Table {
 		t.Note = "Do all appraisers have " + strings.Join(tests, ", ") + " (likelihood ratio; a small p says they do not)."
 	}
 	return t
+}
+
+func offsetCell(s format.Scale, e signal.Estimate) Cell {
+	c := Cell{Text: s.Estimate(e, s.Signed), Value: e.Value, Bounded: true}
+	if e.HasLower {
+		c.Lower = e.Lower
+	}
+	if e.HasUpper {
+		c.Upper = e.Upper
+	}
+	return c
 }

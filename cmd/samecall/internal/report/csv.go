@@ -1,0 +1,57 @@
+package report
+
+import (
+	"encoding/csv"
+	"fmt"
+	"io"
+	"strconv"
+
+	"samecall/cmd/samecall/internal/format"
+)
+
+// CSV writes every table one below the other, each under its title, with a
+// blank line between. Numbers have a decimal point; shares are fractions.
+func CSV(w io.Writer, r *Record) error {
+	c := csv.NewWriter(w)
+	for i, t := range allTables(r) {
+		if i > 0 {
+			if err := c.Write([]string{""}); err != nil {
+				return err
+			}
+		}
+		heads, rows := t.flat()
+		lines := [][]string{{harmless(format.Plain(t.Title))}, texts(heads)}
+		for _, row := range rows {
+			lines = append(lines, record(row))
+		}
+		if err := c.WriteAll(lines); err != nil {
+			return err
+		}
+	}
+	c.Flush()
+	return c.Error()
+}
+
+func texts(s []string) []string {
+	out := make([]string, len(s))
+	for i, x := range s {
+		out[i] = harmless(format.Plain(x))
+	}
+	return out
+}
+
+func record(row []any) []string {
+	out := make([]string, len(row))
+	for i, x := range row {
+		switch x := x.(type) {
+		case nil:
+		case string:
+			out[i] = harmless(format.Plain(x))
+		case float64:
+			out[i] = strconv.FormatFloat(x, 'g', -1, 64)
+		default:
+			out[i] = fmt.Sprint(x)
+		}
+	}
+	return out
+}

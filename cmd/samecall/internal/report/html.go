@@ -1,0 +1,190 @@
+package report
+
+import (
+	_ "embed"
+	"fmt"
+	"html/template"
+	"io"
+	"strings"
+
+	"samecall/cmd/samecall/internal/figure"
+	"samecall/cmd/samecall/internal/format"
+)
+
+var (
+	//go:embed record.html.tmpl
+	pageSource string
+	//go:embed record.css
+	pageStyle string
+)
+
+// HTML writes the record for the file: one page that needs nothing else.
+func HTML(w io.Writer, r *Record) error {
+	t, err := template.New("record").Parse(pageSource)
+	if err != nil {
+		return err
+	}
+	return t.Execute(w, newPage(r))
+}
+
+type page struct {
+	Version, Title, Facts string
+	Style                 template.CSS
+	Verdict, VerdictClass string
+	Reasons, Causes       []string
+	Next, Notes, Cautions []string
+	Study                 pageTable
+	Sections              []pageSection
+	Methods               []string
+}
+
+type pageSection struct {
+	ID, Title string
+	Figures   []pageFigure
+	Tables    []pageTable
+}
+
+type pageFigure struct {
+	Label, Caption string
+	Markup         template.HTML
+}
+
+type pageTable struct {
+	Label, Title, Note string
+	Heads              []Column
+	Rows               [][]pageCell
+}
+
+type pageCell struct {
+	Text, Class string
+	Head        bool
+}
+
+func newPage(r *Record) page {
+	v := r.Verdict
+	p := page{
+		Version:      format.Plain(r.Version),
+		Title:        format.Plain(title(r)),
+		Facts:        format.Plain(facts(r)),
+		Style:        template.CSS(pageStyle + figure.Style()),
+		Verdict:      strings.ToUpper(v.Overall.String()),
+		VerdictClass: strings.ReplaceAll(v.Overall.String(), " ", "-"),
+		Reasons:      plainLines(reasonLines(r)),
+		Next:         plainLines(v.Next),
+		Notes:        plainLines(allNotes(r)),
+		Cautions:     v.Cautions,
+		Methods:      methods(r),
+	}
+	p.Study = newPageTable(studyTable(r))
+	p.Study.Title = "" // it has a heading of its own
+	for _, c := range v.Causes {
+		p.Causes = append(p.Causes, format.Plain(c.Text))
+	}
+	p.Sections = sections(r)
+	return p
+}
+
+// sections puts figures beside the tables that say the same in numbers.
+func sections(r *Record) []pageSection {
+	figures := make(map[string]*figure.Figure)
+	for _, f := range Figures(r) {
+		figures[f.Name] = f
+	}
+	captions := map[string]string{
+		"square": "The share of parts on which all calls are alike, as a number and as the length of the bar, and kappa. Framed: each appraiser with itself. Last column: each against the reference.",
+		"errors": "A point for each appraiser with its intervals. The solid box is the accept level of both rates, the dashed box the conditional level.",
+		"calls":  "Every call on every part, a row for each trial. Wrong calls are marked: a stroke where a bad part was accepted, a cross where a good part was rejected.",
+		"curve":  "Each ring is a part. The heavy curve is fitted to all calls, in its band; the grey zone reaches from 0.5 to 99.5 % acceptance.",
+	}
+	var out []pageSection
+	add := func(id, title string, pictures []string, tables ...Table) {
+		s := pageSection{ID: id, Title: title}
+		for _, name := range pictures {
+			if f := figures[name]; f != nil {
+				// The markup is made by package figure, which escapes every text.
+				s.Figures = append(s.Figures, pageFigure{f.Title, captions[name], template.HTML(f.Inline())})
+			}
+		}
+		for _, t := range tables {
+			if len(t.Rows) > 0 {
+				if t.Title == title { // the heading says it
+					t.Title = ""
+				}
+				s.Tables = append(s.Tables, newPageTable(t))
+			}
+		}
+		if len(s.Figures)+len(s.Tables) > 0 {
+			out = append(out, s)
+		}
+	}
+	appraisers := []Table{criteriaTable(r)}
+	if r.Agreement.All != nil {
+		appraisers = []Table{againstTable(r, true), criteriaTable(r), errorsTable(r)}
+	}
+	add("appraisers", "Appraisers", []string{"errors"}, appraisers...)
+	square := []Table{withinTable(r)}
+	if len(r.Study.Appraisers) > 1 {
+		square = append(square, pairsTable(r))
+	}
+	square = append(square, coefficientsTable(r), weightedTable(r), categoriesTable(r))
+	add("agreement", "Agreement", []string{"square"}, square...)
+	add("map", "Calls", []string{"calls"}, append(crossTables(r), directionTable(r))...)
+	add("zone", "Grey zone", []string{"curve"}, zoneTable(r), cutsTable(r))
+	add("parts", "Parts to look at", nil, partsTable(r))
+	return out
+}
+
+func newPageTable(t Table) pageTable {
+	out := pageTable{Label: "Table of " + t.Name, Title: format.Plain(t.Title), Note: format.Plain(t.Note)}
+	for _, c := range t.Columns {
+		c.Name = format.Plain(c.Name)
+		out.Heads = append(out.Heads, c)
+	}
+	for _, row := range t.Rows {
+		var cells []pageCell
+		for i, c := range row {
+			cell := pageCell{Text: format.Plain(c.Text), Head: i == 0}
+			switch {
+			case t.Columns[i].Numbers:
+				cell.Class = "n"
+			case t.Columns[i].Long:
+				cell.Class = "long"
+			case i > 0:
+				cell.Class = "t"
+			}
+			cells = append(cells, cell)
+		}
+		out.Rows = append(out.Rows, cells)
+	}
+	return out
+}
+
+func plainLines(lines []string) []string {
+	out := make([]string, len(lines))
+	for i, l := range lines {
+		out[i] = format.Plain(l)
+	}
+	return out
+}
+
+// methods says in short how the figures of a record are found.
+func methods(r *Record) []string {
+	out := []string{
+		fmt.Sprintf("The part is the sampled unit: several calls on one part are not several parts. All intervals are at %s confidence.", format.Percent(r.Options.Confidence)),
+		"Shares of parts: exact binomial limits (Clopper & Pearson, Biometrika 26, 1934).",
+		"Miss and false-alarm rates: exact limits on the effective number of calls (Korn & Graubard, Survey Methodology 24, 1998); without an event, on the number of parts.",
+		"Kappa: Cohen (1960) for pairs and against the reference, Fleiss (1971) for more calls, in Gwet's form (2014) where calls are missing; AC1: Gwet (2008); alpha: Krippendorff.",
+	}
+	if r.Options.Resamples > 0 {
+		out = append(out, fmt.Sprintf("Intervals of kappas: %d resamples of whole parts, bias-corrected and accelerated (Efron, 1987), never narrower than the exact limits of the share of parts that disagree. The seed is %d.", r.Options.Resamples, r.Options.Seed))
+	} else {
+		out = append(out, "Intervals of kappas: standard errors linearised over parts, never narrower than the exact limits of the share of parts that disagree.")
+	}
+	if r.Agreement.All != nil {
+		out = append(out, "Direction of errors: exact test of McNemar (1947) with two categories; Bowker (1948), Stuart (1955) and Maxwell (1970) with more. Detection indices with the log-linear correction of Hautus (1995).")
+	}
+	if r.Zone != nil {
+		out = append(out, "Grey zone: unanimous zone and signal detection as in the Measurement Systems Analysis reference manual, 4th ed. 2010, chapter III C; acceptance curve by maximum likelihood with profile-likelihood intervals; where calls are separated, bias-reduced (Firth, 1993).")
+	}
+	return append(out, "Criteria: those of the study file; where it says nothing, those of the Measurement Systems Analysis reference manual, 4th ed. 2010. Causes are read from the pattern of the errors by fixed rules; they are leads, not proofs.")
+}

@@ -1,0 +1,143 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+	"strings"
+
+	"github.com/spf13/cobra"
+	"github.com/spf13/pflag"
+
+	"samecall/cmd/samecall/internal/output"
+	"samecall/cmd/samecall/internal/report"
+)
+
+// outputs are the files that a record is written to beside the terminal.
+type outputs struct {
+	json, html, markdown, csv, xlsx string
+	figures                         string
+}
+
+func (o *outputs) addFlags(f *pflag.FlagSet) {
+	f.StringVar(&o.html, "html", "", "write the record as one page to this `file`, for the auditor; - for standard output")
+	f.StringVar(&o.json, "json", "", "write everything as JSON to this `file`, for programs; - for standard output")
+	f.StringVar(&o.markdown, "markdown", "", "write the record as Markdown to this `file`; - for standard output")
+	f.StringVar(&o.csv, "csv", "", "write every table as CSV to this `file`; - for standard output")
+	f.StringVar(&o.xlsx, "xlsx", "", "write every table to a workbook, this `file`, a sheet each")
+	f.StringVar(&o.figures, "figures", "", "write every figure as SVG and PNG into this `folder`")
+}
+
+type writer struct {
+	flag, file string
+	write      func(io.Writer, *report.Record) error
+}
+
+func (o *outputs) writers() []writer {
+	return []writer{
+		{"--html", o.html, report.HTML},
+		{"--json", o.json, report.JSON},
+		{"--markdown", o.markdown, report.Markdown},
+		{"--csv", o.csv, report.CSV},
+		{"--xlsx", o.xlsx, report.XLSX},
+	}
+}
+
+// toStandardOutput reports whether a file goes to standard output, which
+// then holds nothing else.
+func (o *outputs) toStandardOutput() bool {
+	for _, w := range o.writers() {
+		if w.file == "-" {
+			return true
+		}
+	}
+	return false
+}
+
+// check finds what cannot be before any work is done.
+func (o *outputs) check() error {
+	var to []string
+	for _, w := range o.writers() {
+		if w.file == "-" {
+			to = append(to, w.flag)
+		}
+	}
+	if len(to) > 1 {
+		return fmt.Errorf("%s both go to standard output; give all but one a file", strings.Join(to, " and "))
+	}
+	if o.xlsx == "-" {
+		return errors.New("--xlsx writes a workbook, not text; give it a file")
+	}
+	return nil
+}
+
+// write writes every file that was asked for.
+func (o *outputs) write(standard io.Writer, r *report.Record) error {
+	for _, w := range o.writers() {
+		write := func(to io.Writer) error { return w.write(to, r) }
+		var err error
+		switch w.file {
+		case "":
+		case "-":
+			err = buffered(standard, write)
+		default:
+			err = output.File(w.file, write)
+		}
+		if err != nil {
+			return fmt.Errorf("%s: %w", w.flag, err)
+		}
+	}
+	if o.figures == "" {
+		return nil
+	}
+	return writeFigures(o.figures, r)
+}
+
+func writeFigures(dir string, r *report.Record) error {
+	if err := os.MkdirAll(dir, 0o777); err != nil {
+		return fmt.Errorf("--figures: %w", err)
+	}
+	for _, f := range report.Figures(r) {
+		for ending, write := range map[string]func(io.Writer) error{".svg": f.SVG, ".png": f.PNG} {
+			if err := output.File(filepath.Join(dir, f.Name+ending), write); err != nil {
+				return fmt.Errorf("--figures: %w", err)
+			}
+		}
+	}
+	return nil
+}
+
+// commandLine is the line that computes a record again: the command with
+// every flag that bears on the figures.
+func commandLine(cmd *cobra.Command, args []string) string {
+	words := strings.Fields(cmd.CommandPath())
+	words = append(words, args...)
+	cmd.Flags().Visit(func(f *pflag.Flag) {
+		switch f.Name {
+		case "html", "json", "markdown", "csv", "xlsx", "figures", "full", "require":
+			return
+		}
+		value := f.Value.String()
+		if list, ok := f.Value.(pflag.SliceValue); ok {
+			value = strings.Join(list.GetSlice(), ",")
+		}
+		words = append(words, "--"+f.Name+"="+value)
+	})
+	for i, w := range words {
+		words[i] = quoted(w)
+	}
+	return strings.Join(words, " ")
+}
+
+// quoted makes a word safe for a shell.
+func quoted(s string) string {
+	plain := func(r rune) bool {
+		return r >= 'a' && r <= 'z' || r >= 'A' && r <= 'Z' || r >= '0' && r <= '9' || strings.ContainsRune("-_=./,:+@%", r)
+	}
+	if s != "" && strings.IndexFunc(s, func(r rune) bool { return !plain(r) }) < 0 {
+		return s
+	}
+	return "'" + strings.ReplaceAll(s, "'", `'\''`) + "'"
+}
