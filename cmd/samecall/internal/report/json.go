@@ -378,6 +378,9 @@ func newShare(s agreement.Share) shareJSON {
 // newSignal is an estimate of package signal; a bound that does not exist is
 // left out, with its reason.
 func newSignal(e signal.Estimate) estimateJSON {
+	if e.Absent {
+		return estimateJSON{Reason: e.Why}
+	}
 	out := estimateJSON{Estimate: &e.Value, Method: e.Method, Reason: e.Why}
 	if e.HasLower {
 		out.Lower = &e.Lower
