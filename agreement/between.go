@@ -161,6 +161,7 @@ func (s *study) fleissIndependent(counts [][]int, kappa float64) *interval.Inter
 }
 
 func (s *study) pair(a, b int) Pair {
+	trials := s.trialPairs(a, b)
 	p := Pair{A: a, B: b, Table: newTable(s.Categories())}
 	alike, parts := 0, 0
 	both := make([]int, s.Categories())
@@ -174,13 +175,13 @@ func (s *study) pair(a, b int) Pair {
 		if oneCategory(both) {
 			alike += s.times[i]
 		}
-		s.eachPair(x, y, func(j, k Category) { p.Table[j][k] += s.times[i] })
+		trials.each(x, y, func(j, k Category) { p.Table[j][k] += s.times[i] })
 	}
 	p.Pairs, p.Alike = p.Table.Total()
 	p.Share = shareOfParts(alike, parts, s.opt.Confidence, errPairMissed)
 	kappa := func(w Weights) Estimate {
 		return s.cross(w, p.Table, func(i int, add func(j, k Category)) {
-			s.eachPair(s.of(s.rows[i], a), s.of(s.rows[i], b), add)
+			trials.each(s.of(s.rows[i], a), s.of(s.rows[i], b), add)
 		}, errPairMissed, errPairAlike)
 	}
 	p.Kappa = kappa(Nominal)
@@ -191,20 +192,26 @@ func (s *study) pair(a, b int) Pair {
 	return p
 }
 
-// eachPair calls f for each pair of calls that the pairing puts side by side.
-func (s *study) eachPair(x, y []Category, f func(j, k Category)) {
-	for t, j := range x {
-		if j == Missing {
-			continue
-		}
-		if s.opt.Pairing == All {
-			for _, k := range y {
-				if k != Missing {
-					f(j, k)
-				}
+// trialPairs are the trials of two appraisers that are put side by side.
+type trialPairs [][2]int
+
+func (s *study) trialPairs(a, b int) trialPairs {
+	var pairs trialPairs
+	for t := range s.Trials(a) {
+		for u := range s.Trials(b) {
+			if s.opt.Pairing == All || s.trialNumber(a, t) == s.trialNumber(b, u) {
+				pairs = append(pairs, [2]int{t, u})
 			}
-		} else if t < len(y) && y[t] != Missing {
-			f(j, y[t])
+		}
+	}
+	return pairs
+}
+
+// each calls f for each pair of calls that were both made.
+func (p trialPairs) each(x, y []Category, f func(j, k Category)) {
+	for _, t := range p {
+		if j, k := x[t[0]], y[t[1]]; j != Missing && k != Missing {
+			f(j, k)
 		}
 	}
 }

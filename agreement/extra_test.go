@@ -98,7 +98,7 @@ func TestBCaAgainstBoot(t *testing.T) {
 		"C-reference": func() (coefficient, contributions) { return against(2) },
 		"A-C": func() (coefficient, contributions) {
 			return cohen(func(row []Category, _ Category, add func(j, k Category)) {
-				s.eachPair(s.of(row, 0), s.of(row, 2), add)
+				s.trialPairs(0, 2).each(s.of(row, 0), s.of(row, 2), add)
 			})
 		},
 		"Fleiss": func() (coefficient, contributions) {

@@ -6,7 +6,8 @@ import "fmt"
 type Pairing int
 
 const (
-	// Matched pairs trial t of the one with trial t of the other.
+	// Matched pairs trial t of the one with trial t of the other, by their
+	// numbers (Ratings.SetTrialNumbers).
 	Matched Pairing = iota
 	// All pairs every trial of the one with every trial of the other.
 	All

@@ -32,6 +32,7 @@ type Ratings struct {
 	calls      []Category
 	reference  []Category // nil: the study has none
 	accept     []bool     // nil: the categories are not split into accept and reject
+	numbers    [][]int    // of each appraiser's trials; nil: counted from 0
 }
 
 // New returns Ratings in which every call is Missing, for so many parts and
@@ -127,6 +128,39 @@ func (r *Ratings) SetAccept(accept []bool) error {
 	}
 	r.accept = accept
 	return nil
+}
+
+// SetTrialNumbers gives the trials of each appraiser their numbers, for
+// studies in which appraisers took part in different trials: trials of the
+// same number are then matched (Options.Pairing). Without it the first trial
+// of each appraiser is matched, the second, and so on. It wants as many
+// numbers for each appraiser as trials, no number twice; the slices are kept.
+func (r *Ratings) SetTrialNumbers(numbers [][]int) error {
+	if len(numbers) != r.Appraisers() {
+		return fmt.Errorf("agreement: trial numbers of %d appraisers, want %d", len(numbers), r.Appraisers())
+	}
+	for a, own := range numbers {
+		if len(own) != r.Trials(a) {
+			return fmt.Errorf("agreement: appraiser %d has %d trials and %d trial numbers", a, r.Trials(a), len(own))
+		}
+		seen := make(map[int]bool, len(own))
+		for _, n := range own {
+			if seen[n] {
+				return fmt.Errorf("agreement: appraiser %d has trial number %d twice", a, n)
+			}
+			seen[n] = true
+		}
+	}
+	r.numbers = numbers
+	return nil
+}
+
+// trialNumber returns the number of a trial.
+func (r *Ratings) trialNumber(appraiser, trial int) int {
+	if r.numbers == nil {
+		return trial
+	}
+	return r.numbers[appraiser][trial]
 }
 
 // HasAccept reports whether the categories are split into accept and reject.

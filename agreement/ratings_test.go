@@ -86,3 +86,32 @@ func TestRatingsHoldCalls(t *testing.T) {
 		t.Error("size")
 	}
 }
+
+// Appraisers that took part in different trials are matched by the numbers of
+// the trials, not by their places.
+func TestTrialNumbers(t *testing.T) {
+	r, err := New(2, 2, []int{2, 2})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := r.SetTrialNumbers([][]int{{1, 2}, {2, 3}}); err != nil {
+		t.Fatal(err)
+	}
+	copy(r.Row(0), []Category{0, 1, 1, 0})
+	copy(r.Row(1), []Category{1, 0, 1, 1})
+	a, err := Analyse(r, DefaultOptions())
+	if err != nil {
+		t.Fatal(err)
+	}
+	// Only trial 2: 1 beside 1 on the first part, 0 beside 1 on the second.
+	sameTable(t, "matched", a.Between.Pairs[0].Table, Table{{0, 1}, {0, 1}})
+	for name, numbers := range map[string][][]int{
+		"too few appraisers": {{1, 2}},
+		"too few trials":     {{1}, {1, 2}},
+		"twice":              {{1, 1}, {1, 2}},
+	} {
+		if r.SetTrialNumbers(numbers) == nil {
+			t.Errorf("%s: no error", name)
+		}
+	}
+}

@@ -33,9 +33,11 @@ prints.
 `, studies, resamples, floor)
 	write(w, rows, []int{0, 1, 2, 3, 4, 5})
 	fmt.Fprint(w, `
-Shares of parts are exact, and cover by construction. Rates over calls fall short where nearly all errors
-sit on very few difficult parts (1 % wrong calls at a correlation of 0.3): a study then often holds none
-of those parts, and what the study does not contain no interval can see. The answer is more bad parts, not
+Shares of parts are exact, and cover by construction. Rates that pool the calls of all appraisers fall
+short where nearly all errors sit on very few difficult parts (1 % wrong calls, or 20 parts, at a
+correlation of 0.3): a study then often holds too few of those parts, and what the study does not contain
+no interval can see. The rates of single appraisers do not suffer from it. The answer is more bad parts,
+not
 more trials. Intervals that treat calls as independent fall short wherever calls on a part are correlated,
 and the more so the more calls there are on each part.
 

@@ -33,6 +33,11 @@ func (m *merge) fill(trials []int) {
 		m.add(Problem{Line: m.line, Text: "the study is too large: " + err.Error()})
 		return
 	}
+	// Matched by their numbers: appraisers may have taken part in different trials.
+	if err := ratings.SetTrialNumbers(m.study.TrialNames); err != nil {
+		m.add(Problem{Text: err.Error()})
+		return
+	}
 	m.study.Ratings = ratings
 	if m.words.accept != nil && len(m.words.names) <= agreement.MaxCategories {
 		if err := ratings.SetAccept(m.words.accept); err != nil {
@@ -115,7 +120,7 @@ func (m *merge) rareWords() {
 			continue
 		}
 		if m.study.PassFail {
-			for w := range m.words.own {
+			for _, w := range m.words.own { // there is one
 				name = w
 			}
 		}
