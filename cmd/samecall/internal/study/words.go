@@ -34,7 +34,7 @@ type vocabulary struct {
 
 	expected, hint string // for a word that has no meaning
 	candidates     []string
-	own            map[string]bool // words that are a category only because they occur
+	own            map[string]string // words that are a category only because they occur, as spelt
 }
 
 // newVocabulary gives the words seen their meaning. spelt holds, for each
@@ -134,13 +134,13 @@ func passFail(s Settings) *vocabulary {
 // acceptOnly is a study in which each word that is not accepted is a kind of
 // bad part.
 func acceptOnly(s Settings, spelt map[string]string) *vocabulary {
-	v := &vocabulary{of: make(map[string]agreement.Category), own: make(map[string]bool)}
+	v := &vocabulary{of: make(map[string]agreement.Category), own: make(map[string]string)}
 	accept := folded(s.Accept)
 	var bad []string
 	for w := range spelt {
 		if !accept[w] {
 			bad = append(bad, w)
-			v.own[w] = true
+			v.own[w] = spelt[w]
 		}
 	}
 	slices.SortFunc(bad, compareNatural)
