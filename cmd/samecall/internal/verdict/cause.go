@@ -47,7 +47,7 @@ func causes(r *judge.Result, levels map[string]Levels, missed bool) []Cause {
 	f.far = farParts(r)
 	f.patterns, f.together = patterns(r, f.far)
 	for _, rule := range []func(*finder) []Cause{
-		inconsistent, farErrors, shiftedCut, confusedKinds, leaningGrades, steadyErrors, apart, nearLimits,
+		confusedKinds, leaningGrades, inconsistent, farErrors, shiftedCut, steadyErrors, apart, nearLimits,
 	} {
 		f.found = append(f.found, rule(f)...)
 	}

@@ -2,6 +2,7 @@ package verdict
 
 import (
 	"fmt"
+	"math"
 	"slices"
 	"strings"
 
@@ -19,7 +20,9 @@ type farPart struct {
 	wrong []int // the appraisers with a wrong call on it
 }
 
-// farParts returns the outliers of the pooled curve that were called wrong.
+// farParts returns the outliers of the pooled curve that were called wrong and
+// lie farther from each cut than the grey zone, at its widest, is wide. (With
+// few mixed parts the curve without an outlier can be too steep.)
 func farParts(r *judge.Result) []farPart {
 	if r.Zone == nil || r.Zone.Curves == nil {
 		return nil
@@ -35,6 +38,9 @@ func farParts(r *judge.Result) []farPart {
 	var out []farPart
 	for _, i := range c.Outliers {
 		f := farPart{part: byName[c.Parts[i].Name], fit: c.Parts[i]}
+		if !farFromCuts(plain(c), f.fit.Value) {
+			continue
+		}
 		inside := r.Zone.Limits.Inside(f.fit.Value)
 		for a := range r.Study.Appraisers {
 			if slices.ContainsFunc(r.Study.Ratings.Calls(f.part, a), func(c agreement.Category) bool {
@@ -48,6 +54,15 @@ func farParts(r *judge.Result) []farPart {
 		}
 	}
 	return out
+}
+
+func farFromCuts(c *signal.Curve, x float64) bool {
+	for _, l := range sides(c) {
+		if math.Abs(x-l.Cut.Value) <= max(l.Width.Value, l.Width.Upper) {
+			return false
+		}
+	}
+	return true
 }
 
 // farErrors: wrong calls on parts where nobody should be in doubt. Those of

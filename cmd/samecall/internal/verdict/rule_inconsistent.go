@@ -5,6 +5,7 @@ import (
 	"slices"
 
 	"samecall/cmd/samecall/internal/format"
+	"samecall/signal"
 )
 
 // mostOf is the share of the appraisers, and at least two, from which on a
@@ -16,13 +17,22 @@ func (f *finder) most(n int) bool {
 	return n > 1 && float64(n) >= mostOf*float64(len(f.Study.Appraisers))
 }
 
+// widerSigma is how many times the σ of the others an appraiser's must be
+// for its doubt to be its own, where σ is known. Our own choice, no source.
+const widerSigma = 1.5
+
 // inconsistent: kappa over an appraiser's own trials is below the accept
-// level of kappa. If that goes for most, it is not the person.
+// level of kappa. If that goes for most, it is not the person; nor is it
+// where all are in doubt over the same width.
 func inconsistent(f *finder) []Cause {
 	var out []Cause
+	n := 0
 	level := f.levels[Kappa][0]
 	for a, w := range f.Agreement.Within {
-		if w.Kappa.Absent != nil || w.Kappa.Value >= level {
+		if w.Kappa.Absent != nil || w.Kappa.Value >= level || f.has(a, codeKinds, codeGrades) {
+			continue
+		}
+		if n++; f.asSureAsOthers(a) {
 			continue
 		}
 		out = append(out, Cause{
@@ -33,15 +43,47 @@ func inconsistent(f *finder) []Cause {
 				f.name(a), f.list(w.Mixed))),
 		})
 	}
-	if !f.most(len(out)) {
+	if !f.most(n) {
 		return out
 	}
 	return []Cause{{
 		Code: codeInconsistent, Appraiser: Everyone,
 		Text: fmt.Sprintf("%d of %d appraisers do not repeat their own calls (kappa over their trials is less than %s). That points to the method or the gauge, not to one person.%s",
-			len(out), len(f.Study.Appraisers), format.Figure(level), f.zoneWidth()),
+			n, len(f.Study.Appraisers), format.Figure(level), f.zoneWidth()),
 		Do: stop("Look at the method first: gauge and fixture, lighting, the written standard for the call. Mixed for at least half of the appraisers: " + f.list(f.commonMixed())),
 	}}
+}
+
+// asSureAsOthers reports whether an appraiser is in doubt over a width of
+// values no larger than that of the others.
+func (f *finder) asSureAsOthers(a int) bool {
+	if f.Zone == nil || f.Zone.Curves == nil {
+		return false
+	}
+	own, known := sigma(f.Zone.Curves.Each[a])
+	var others []float64
+	for b, c := range f.Zone.Curves.Each {
+		if s, ok := sigma(c); ok && b != a {
+			others = append(others, s)
+		}
+	}
+	if !known || len(others) == 0 {
+		return false
+	}
+	slices.Sort(others)
+	median := (others[(len(others)-1)/2] + others[len(others)/2]) / 2
+	return own < widerSigma*median
+}
+
+// sigma is the larger σ of a curve, where it has one.
+func sigma(c *signal.Curve) (s float64, known bool) {
+	if c == nil {
+		return 0, false
+	}
+	for _, l := range sides(c) {
+		s, known = max(s, l.Sigma.Value), true
+	}
+	return s, known
 }
 
 // commonMixed returns the parts that are mixed for at least half of the
