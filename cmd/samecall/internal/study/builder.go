@@ -8,20 +8,6 @@ import (
 	"sort"
 )
 
-// record is one call: 8 bytes without a pointer, so that ten million of them
-// take 80 MB and no work of the garbage collector.
-type record struct {
-	part   uint32 // number in the builder's partTable
-	column uint16 // number in the builder's columns
-	word   uint16 // number in the builder's words plus 1; 0: missing call
-}
-
-// Blocks of records double in size, up to maxBlock: most studies are small.
-const (
-	minBlock = 1 << 8
-	maxBlock = 1 << 16
-)
-
 // columnKey is one trial of one appraiser.
 type columnKey struct {
 	appraiser uint16 // number in the builder's appraisers
@@ -57,8 +43,7 @@ type builder struct {
 	appraisers *names
 	words      *names
 
-	records [][]record
-	block   []record // being filled
+	records recordLog
 	rows    uint32
 	jumps   []jump // where the line number does not follow from the row before
 
@@ -325,20 +310,7 @@ func (b *builder) call(part uint32, column uint16, word []byte, line, field int)
 		r.word = w + 1
 		b.called[column] = true
 	}
-	if len(b.block) == cap(b.block) {
-		size := min(max(2*cap(b.block), minBlock), maxBlock)
-		b.flush()
-		b.block = make([]record, 0, size)
-	}
-	b.block = append(b.block, r)
-}
-
-// flush ends the block of records being filled.
-func (b *builder) flush() {
-	if len(b.block) > 0 {
-		b.records = append(b.records, b.block)
-		b.block = nil
-	}
+	b.records.add(r)
 }
 
 func (b *builder) tooManyWords(line, field int) {

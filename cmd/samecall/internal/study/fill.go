@@ -18,9 +18,7 @@ func (m *merge) fill(trials []int) {
 		columns += n
 	}
 	for _, b := range m.builders {
-		for _, block := range b.records {
-			calls += len(block)
-		}
+		calls += b.records.n
 	}
 	parts := len(m.study.Parts)
 	if cells := parts * columns; cells > roomyCells && calls < cells/100 {
@@ -47,18 +45,16 @@ func (m *merge) fill(trials []int) {
 	twice := false
 	for i, b := range m.builders {
 		rank, column, meaning := m.rank[i], m.columns[i], m.meaning[i]
-		for _, block := range b.records {
-			for _, r := range block {
-				if r.word == 0 {
-					continue
-				}
-				cell := &ratings.Row(int(rank[r.part]))[column[r.column]]
-				if *cell != agreement.Missing {
-					twice = true
-				}
-				*cell = meaning[r.word]
+		b.records.each(func(r record) {
+			if r.word == 0 {
+				return
 			}
-		}
+			cell := &ratings.Row(int(rank[r.part]))[column[r.column]]
+			if *cell != agreement.Missing {
+				twice = true
+			}
+			*cell = meaning[r.word]
+		})
 	}
 	if twice && m.layout.long { // in a wide table the part stands twice, which is said already
 		m.callsGivenTwice(columns)

@@ -29,7 +29,6 @@ const noCategory agreement.Category = agreement.Missing - 1
 func (t *table) study(s Settings) (*Study, []Problem, int) {
 	m := &merge{table: t, settings: s, study: &Study{Settings: s}, suspect: make(map[uint32]bool)}
 	for _, b := range t.builders {
-		b.flush()
 		m.problems = append(m.problems, b.problems...)
 		m.more += b.more
 	}
@@ -151,12 +150,10 @@ func (m *merge) sight(words map[string]*sighting) {
 
 func (b *builder) eachRecord(do func(row uint32, r record)) {
 	per, i := b.perRow(), 0
-	for _, block := range b.records {
-		for _, r := range block {
-			do(uint32(i/per), r)
-			i++
-		}
-	}
+	b.records.each(func(r record) {
+		do(uint32(i/per), r)
+		i++
+	})
 }
 
 // mergeColumns puts appraisers in natural order and their trials in the order
