@@ -174,7 +174,7 @@ value or a single one. The likelihood-ratio interval with chi-square's cut-off a
 less than it claims in those studies (about 91 % for the cut and 87 % for σ), so there the cut-off is that of two
 degrees of freedom: cut and σ are not determined apart.
 
-Those are coverages over all studies, which is what an interval promises. Looked at alone, the few studies of 45 parts
+The first table's coverages are over all studies, which is what an interval promises. Looked at alone, the few studies of 45 parts
 in which a limit happens to be separated are the ones whose calls came out sharper than the truth, and the upper bound
 of σ is too low in about a third of them.
 
