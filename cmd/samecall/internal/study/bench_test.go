@@ -124,3 +124,40 @@ func cpuSeconds() float64 {
 	}
 	return float64(use.Utime.Nano()+use.Stime.Nano()) / 1e9
 }
+
+// BenchmarkNames compares partTable with a map on a million names that come
+// ten times each, in the two orders that the prediction does not help or
+// helps.
+func BenchmarkNames(b *testing.B) {
+	const parts, rows = 1_000_000, 10_000_000
+	names := make([][]byte, parts)
+	for i := range names {
+		names[i] = strconv.AppendInt(nil, int64(i), 10)
+	}
+	for _, o := range rowOrders {
+		b.Run("table "+o.name, func(b *testing.B) {
+			b.ReportAllocs()
+			for b.Loop() {
+				t := newPartTable()
+				for i := range rows {
+					name := names[o.order(i, rows)/10]
+					if _, _, ok := t.find(name); !ok {
+						t.add(name, nil, uint32(i))
+					}
+				}
+			}
+		})
+		b.Run("map "+o.name, func(b *testing.B) {
+			b.ReportAllocs()
+			for b.Loop() {
+				t := make(map[string]uint32)
+				for i := range rows {
+					name := names[o.order(i, rows)/10]
+					if _, ok := t[string(name)]; !ok {
+						t[string(name)] = uint32(len(t))
+					}
+				}
+			}
+		})
+	}
+}

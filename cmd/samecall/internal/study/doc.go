@@ -13,8 +13,12 @@
 //	rows.go      a chunk into rows of fields, directly or through encoding/csv
 //	xlsx.go      a sheet into rows of fields
 //	header.go    the header into a layout, long or wide
-//	builder.go   rows into compact records, one builder for each worker
+//	builder.go   rows into numbers, one builder for each worker
+//	records.go   the calls, packed
 //	intern.go    part names into numbers
 //	merge.go     what the builders hold into one Study
 //	words.go     spellings of calls into categories
+//	fill.go      calls into agreement.Ratings; calls given twice
+//	reference.go the reference, given or derived
+//	check.go     what a study holds and can show
 package study
