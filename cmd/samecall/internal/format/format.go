@@ -97,6 +97,14 @@ func Number(x float64) string {
 	return decimal(x, -1)
 }
 
+// Short writes a value with three digits.
+func Short(x float64) string {
+	if rounded, err := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 3, 64), 64); err == nil {
+		x = rounded
+	}
+	return Number(x)
+}
+
 // decimal writes a number with so many decimals, −1 for as many as it has.
 // One with more digits than anybody reads is written with a power of ten.
 func decimal(x float64, decimals int) string {

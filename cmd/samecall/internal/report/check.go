@@ -112,13 +112,19 @@ func nearTable(v *study.ValueSummary, unit string) Table {
 	if unit != "" {
 		unit = " " + unit
 	}
-	add := func(name string, l *study.LimitSummary) {
-		if l != nil {
-			t.Rows = append(t.Rows, []Cell{say(name), say(format.Number(l.Limit) + unit), say(strconv.FormatFloat(l.Width, 'g', 3, 64) + unit), intCell(l.NearBad), intCell(l.NearGood)})
-		}
+	add := func(name, at string, l *study.LimitSummary) {
+		t.Rows = append(t.Rows, []Cell{say(name), say(at + unit), say(format.Short(l.Width) + unit), intCell(l.NearBad), intCell(l.NearGood)})
 	}
-	add("lower", v.Lower)
-	add("upper", v.Upper)
+	switch lower, upper := v.Lower, v.Upper; {
+	case lower != nil && upper != nil:
+		at := format.Alike(lower.Limit, upper.Limit)
+		add("lower", at[0], lower)
+		add("upper", at[1], upper)
+	case lower != nil:
+		add("lower", format.Number(lower.Limit), lower)
+	case upper != nil:
+		add("upper", format.Number(upper.Limit), upper)
+	}
 	t.Note = "Only parts near a limit show where the calls turn; parts far away are called alike by anybody."
 	return t
 }

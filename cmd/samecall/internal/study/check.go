@@ -274,9 +274,19 @@ func (s *Study) zoneShown(sum *Summary) []Showing {
 			continue
 		}
 		list = append(list, Showing{Code: "far_from_" + l.name, Parts: l.NearBad + l.NearGood,
-			Text: missing + " (within " + strconv.FormatFloat(l.Width, 'g', 3, 64) + " of it): the study says little about the calls that are hard there."})
+			Text: missing + " (within " + short(l.Width) + " of it): the study says little about the calls that are hard there."})
 	}
 	return list
+}
+
+// short writes a width with three digits, and a small one without a power of
+// ten.
+func short(x float64) string {
+	s := strconv.FormatFloat(x, 'g', 3, 64)
+	if rounded, err := strconv.ParseFloat(s, 64); err == nil && x < 1 {
+		s = strconv.FormatFloat(rounded, 'f', -1, 64)
+	}
+	return s
 }
 
 func percent(x float64) string {
