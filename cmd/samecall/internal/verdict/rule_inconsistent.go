@@ -50,7 +50,7 @@ func inconsistent(f *finder) []Cause {
 		Code: codeInconsistent, Appraiser: Everyone,
 		Text: fmt.Sprintf("%d of %d appraisers do not repeat their own calls (kappa over their trials is less than %s). That points to the method or the gauge, not to one person.%s",
 			n, len(f.Study.Appraisers), format.Figure(level), f.zoneWidth()),
-		Do: stop("Look at the method first: gauge and fixture, lighting, the written standard for the call. Mixed for at least half of the appraisers: " + f.list(f.commonMixed())),
+		Do: stop("Look at the method first: gauge and fixture, lighting, the written standard for the call. " + f.mixedForMany()),
 	}}
 }
 
@@ -86,9 +86,18 @@ func sigma(c *signal.Curve) (s float64, known bool) {
 	return s, known
 }
 
-// commonMixed returns the parts that are mixed for at least half of the
-// appraisers.
-func (f *finder) commonMixed() []int {
+// mixedForMany names the parts that are mixed for at least half of the
+// appraisers or, if there are none, for any.
+func (f *finder) mixedForMany() string {
+	half := (len(f.Agreement.Within) + 1) / 2
+	if parts := f.mixedFor(half); len(parts) > 0 {
+		return "Mixed for at least half of the appraisers: " + f.list(parts)
+	}
+	return "Mixed for one of them or more: " + f.list(f.mixedFor(1))
+}
+
+// mixedFor returns the parts that are mixed for so many appraisers or more.
+func (f *finder) mixedFor(least int) []int {
 	times := make(map[int]int)
 	for _, w := range f.Agreement.Within {
 		for _, part := range w.Mixed {
@@ -97,7 +106,7 @@ func (f *finder) commonMixed() []int {
 	}
 	var out []int
 	for part, n := range times {
-		if 2*n >= len(f.Agreement.Within) {
+		if n >= least {
 			out = append(out, part)
 		}
 	}

@@ -1,6 +1,7 @@
 package verdict
 
 import (
+	"fmt"
 	"strings"
 
 	"samecall/cmd/samecall/internal/format"
@@ -23,12 +24,12 @@ func nearLimits(f *finder) []Cause {
 	cause := Cause{
 		Code: codeWide, Appraiser: Everyone,
 		Text: "The wrong calls lie near the limits only, and no shift explains them." + width,
-		Do:   "Make the call surer: a better gauge or fixture, a measured value for parts near the limits, or cuts moved inwards by a guard band.",
+		Do:   fmt.Sprintf("Make the call surer with a better gauge or fixture; or measure the parts in the grey zone (%s); or move the cuts inwards by a guard band.", f.zoneRanges()),
 	}
 	if share, known := f.zoneShare(); known && share <= wideZone {
 		cause.Code = codeNear
 		cause.Text += " That is not wide for this tolerance: the study holds many parts in it."
-		cause.Do = "Measure the parts that fall into the grey zone, or move the cuts inwards by a guard band."
+		cause.Do = fmt.Sprintf("Measure the parts in the grey zone (%s), or move the cuts inwards by a guard band.", f.zoneRanges())
 	} else if known {
 		cause.Text += " That is wide for this tolerance."
 	}
@@ -54,6 +55,16 @@ func (f *finder) zoneWidth() string {
 		return ""
 	}
 	return " The grey zone is " + strings.Join(widths, " and ") + "."
+}
+
+// zoneRanges tells from where to where the grey zone reaches.
+func (f *finder) zoneRanges() string {
+	s := f.Scale()
+	var out []string
+	for _, l := range sides(plain(f.Zone.Curves.Pooled)) {
+		out = append(out, s.WithUnit(s.Value(l.From)+" to "+s.Value(l.To))+" at the "+l.Side.String()+" limit")
+	}
+	return and(out)
 }
 
 // zoneShare is the larger share of the tolerance that the grey zone takes,

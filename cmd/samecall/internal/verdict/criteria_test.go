@@ -1,0 +1,139 @@
+package verdict
+
+import (
+	"encoding/json"
+	"errors"
+	"fmt"
+	"os"
+	"regexp"
+	"strings"
+	"testing"
+
+	"samecall/agreement"
+	"samecall/agreement/interval"
+)
+
+// one is a figure with its one-sided limits.
+func one(value, lower, upper float64) agreement.Estimate {
+	return agreement.Estimate{Value: value, OneSided: interval.Interval{Lower: lower, Upper: upper}}
+}
+
+func TestLevels(t *testing.T) {
+	for _, c := range []struct {
+		name     string
+		e        agreement.Estimate
+		met      Level
+		evidence Evidence
+		against  float64
+		text     string
+	}{
+		{Effectiveness, one(0.95, 0.92, 0.98), Accept, Shown, 0.90, "effectiveness 95 %, at least 90 %"},
+		{Effectiveness, one(0.90, 0.90, 0.98), Accept, Shown, 0.90, "effectiveness 90 %, at least 90 %"},
+		{Effectiveness, one(0.90, 0.89, 0.98), Accept, Open, 0.90, "effectiveness 90 %, at least 90 %"},
+		{Effectiveness, one(0.8999, 0.82, 0.95), Conditional, Shown, 0.80, "effectiveness 89.99 %, less than the 90 % to accept, but at least 80 %"},
+		{Effectiveness, one(0.80, 0.70, 0.95), Conditional, Open, 0.80, "effectiveness 80 %, less than the 90 % to accept, but at least 80 %"},
+		{Effectiveness, one(0.7999, 0.70, 0.81), Reject, Open, 0.80, "effectiveness 79.99 %, less than the 80 % required"},
+		{Effectiveness, one(0.70, 0.60, 0.79), Reject, Contradicted, 0.80, "effectiveness 70 %, less than the 80 % required"},
+		{Effectiveness, one(0.70, 0.60, 0.80), Reject, Open, 0.80, "effectiveness 70 %, less than the 80 % required"},
+		{Miss, one(0, 0, 0.02), Accept, Shown, 0.02, "miss rate 0 %, at most 2 %"},
+		{Miss, one(0.02, 0, 0.021), Accept, Open, 0.02, "miss rate 2.0 %, at most 2 %"},
+		{Miss, one(0.021, 0, 0.05), Conditional, Shown, 0.05, "miss rate 2.1 %, more than the 2 % to accept, but at most 5 %"},
+		{Miss, one(0.05, 0.01, 0.06), Conditional, Open, 0.05, "miss rate 5.0 %, more than the 2 % to accept, but at most 5 %"},
+		{Miss, one(0.06, 0.05, 0.08), Reject, Open, 0.05, "miss rate 6.0 %, more than the 5 % allowed"},
+		{Miss, one(0.07, 0.051, 0.08), Reject, Contradicted, 0.05, "miss rate 7.0 %, more than the 5 % allowed"},
+		{FalseAlarm, one(0.05, 0.03, 0.05), Accept, Shown, 0.05, "false-alarm rate 5.0 %, at most 5 %"},
+		{FalseAlarm, one(0.10, 0.03, 0.15), Conditional, Open, 0.10, "false-alarm rate 10.0 %, more than the 5 % to accept, but at most 10 %"},
+		{FalseAlarm, one(0.11, 0.101, 0.2), Reject, Contradicted, 0.10, "false-alarm rate 11.0 %, more than the 10 % allowed"},
+		{Kappa, one(0.75, 0.75, 0.9), Accept, Shown, 0.75, "kappa 0.75, at least 0.75"},
+		{Kappa, one(0.7499, 0.5, 0.9), Conditional, Shown, 0.40, "kappa 0.7499, less than the 0.75 to accept, but at least 0.40"},
+		{Kappa, one(0.39, 0.1, 0.5), Reject, Open, 0.40, "kappa 0.39, less than the 0.40 required"},
+		{Kappa, one(-0.1, -0.3, 0.2), Reject, Contradicted, 0.40, "kappa −0.10, less than the 0.40 required"},
+	} {
+		got := newCriterion(c.name, Default[c.name], c.e, "part", 50, 0.95)
+		if got.Met != c.met || got.Evidence != c.evidence || got.Against != c.against {
+			t.Errorf("%s %v: %v, %v of %v; want %v, %v of %v", c.name, c.e.Value, got.Met, got.Evidence, got.Against, c.met, c.evidence, c.against)
+		}
+		if got.Text() != c.text {
+			t.Errorf("%s %v: %q, want %q", c.name, c.e.Value, got.Text(), c.text)
+		}
+	}
+}
+
+func TestAbsentAndUnbounded(t *testing.T) {
+	why := errors.New("no bad part was called")
+	c := newCriterion(Miss, Default[Miss], agreement.Estimate{Absent: why}, "bad part", 0, 0.95)
+	if c.Met != NotShown || c.EvidenceText() != "" || c.Text() != "miss rate not known: no bad part was called" {
+		t.Errorf("%v, %q, %q", c.Met, c.EvidenceText(), c.Text())
+	}
+	e := one(0.5, 0, 0)
+	e.Unbounded = errors.New("a single part")
+	c = newCriterion(Kappa, Default[Kappa], e, "part", 1, 0.95)
+	c.settle(coefficient(e, 1))
+	if c.Evidence != Open || c.More != 0 || c.EvidenceText() != "Open: a single part." {
+		t.Errorf("%v, %d more, %q", c.Evidence, c.More, c.EvidenceText())
+	}
+}
+
+// rates reads numbers out of "rate 0.10, confidence 0.95".
+var rates = regexp.MustCompile(`rate ([\d.]+), confidence ([\d.]+)`)
+
+// How many parts without an error show a rate: sizes by R (expected-r.json,
+// zero_failure) and by scipy (expected-py.json, demonstration).
+func TestPartsWithoutError(t *testing.T) {
+	var r struct {
+		Sizes map[string]int `json:"zero_failure"`
+	}
+	var py struct {
+		Sizes []struct {
+			Rate, Confidence float64
+			Allowed          int `json:"failures_allowed"`
+			N                int
+		} `json:"demonstration"`
+	}
+	for name, into := range map[string]any{"expected-r.json": &r, "expected-py.json": &py} {
+		data, err := os.ReadFile("../../../../testdata/reference/" + name)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := json.Unmarshal(data, into); err != nil {
+			t.Fatal(err)
+		}
+	}
+	check := func(rate, confidence float64, want int) {
+		t.Helper()
+		if got := withoutError(rate, confidence); got != want {
+			t.Errorf("rate %v at %v: %d parts, want %d", rate, confidence, got, want)
+		}
+		// The same from a study with ten parts and no miss.
+		c := newCriterion(Miss, Levels{rate, 2 * rate}, one(0, 0, interval.UpperLimit(0, 10, confidence)), "bad part", 10, confidence)
+		c.settle(rateOverCalls([]interval.Cluster{{Events: 0, Calls: 3, Parts: 10}}, confidence))
+		if 10+c.More != want {
+			t.Errorf("rate %v at %v: %d more than 10, want %d in all", rate, confidence, c.More, want)
+		}
+		if say := fmt.Sprintf("%d bad parts more without an error would show that it is at most", c.More); !strings.Contains(c.open(), say) {
+			t.Errorf("%q lacks %q", c.open(), say)
+		}
+	}
+	n := 0
+	for key, want := range r.Sizes {
+		var rate, confidence float64
+		m := rates.FindStringSubmatch(key)
+		if _, err := fmt.Sscan(m[1]+" "+m[2], &rate, &confidence); err != nil {
+			t.Fatal(err)
+		}
+		check(rate, confidence, want)
+		n++
+	}
+	for _, s := range py.Sizes {
+		if s.Allowed == 0 {
+			check(s.Rate, s.Confidence, s.N)
+			n++
+		}
+	}
+	if n < 12 {
+		t.Errorf("only %d sizes were checked", n)
+	}
+	if withoutError(0, 0.95) != 0 || withoutError(1, 0.95) != 0 {
+		t.Error("a rate of 0 or 1 is shown by some number of parts")
+	}
+}
