@@ -10,14 +10,14 @@ import (
 // fixed share of calls is made at random, so that no part's log-likelihood can
 // outweigh the rest. Parts whose calls have next to no chance under it are left
 // out, and the plain curve is fitted to the rest; those that have next to no
-// chance under that, too, even with σ at its upper 95 % bound, are outliers.
+// chance under that, too, even with σ and cuts at the ends of their intervals that
+// favour them, are outliers.
 const (
 	robustLapse    = 0.05
 	outlierAlpha   = 1e-3 // over all parts (Bonferroni)
 	outlierScreen  = 0.05
 	mostOutliers   = 0.2 // of the parts: more are no outliers but another pattern
-	outlierSpread  = 1.96
-	outlierMinimum = 5 // parts
+	outlierMinimum = 5   // parts
 )
 
 func (d *dataset) outliers(c *Curve, hs [2]half) {
@@ -33,7 +33,7 @@ func (d *dataset) outliers(c *Curve, hs [2]half) {
 		screen = r
 	}
 	for i := range d.parts {
-		if d.tailUnder(screen, i, 0)*float64(n) < outlierScreen {
+		if d.tailUnder(screen, i, false)*float64(n) < outlierScreen {
 			suspects[i] = true
 		}
 	}
@@ -45,7 +45,7 @@ func (d *dataset) outliers(c *Curve, hs [2]half) {
 		return
 	}
 	for i := range suspects {
-		if d.tailUnder(without, i, outlierSpread)*float64(n) >= outlierAlpha {
+		if d.tailUnder(without, i, true)*float64(n) >= outlierAlpha {
 			delete(suspects, i)
 		}
 	}
@@ -131,20 +131,35 @@ func (d *dataset) smallestGap() float64 {
 	return math.Max(least, 1e-6)
 }
 
-// tailUnder is the two-sided tail of part i's calls under curve c, with every σ
-// widened by so many standard errors of its logarithm.
-func (d *dataset) tailUnder(c *Curve, i int, spread float64) float64 {
+// tailUnder is the two-sided tail of part i's calls under curve c. With lenient
+// every σ is taken at the upper end of its interval, and every cut at the end
+// that favours the calls: a curve of few mixed parts is itself uncertain, and
+// an outlier must be one under all that it may be.
+func (d *dataset) tailUnder(c *Curve, i int, lenient bool) float64 {
 	w := *c
-	for k := range 2 {
-		if w.hasCov[2*k+1] {
-			w.local[2*k+1] += spread * math.Sqrt(math.Max(0, w.cov[2*k+1][2*k+1]))
+	a, r := d.accepted[i], d.rejected[i]
+	t := w.sc.in(d.parts[i].Value)
+	if lenient {
+		p, _ := c.probability(t)
+		fewer := a < (a+r)*p
+		for k := range 2 {
+			l := c.side(k)
+			if !l.Known() {
+				continue
+			}
+			if l.Sigma.HasUpper {
+				w.local[2*k+1] = math.Log(l.Sigma.Upper / w.sc.scale)
+			}
+			if up := fewer == (k == 0); up && l.Cut.HasUpper {
+				w.local[2*k] = w.sc.in(l.Cut.Upper)
+			} else if !up && l.Cut.HasLower {
+				w.local[2*k] = w.sc.in(l.Cut.Lower)
+			}
 		}
 	}
 	at := w.at()
-	a, r := d.accepted[i], d.rejected[i]
-	z := at.z(w.sc.in(d.parts[i].Value))
 	var tm term
-	tm.at(w.Options.Link, z, at.has, a, r, 0)
+	tm.at(w.Options.Link, at.z(t), at.has, a, r, 0)
 	if !tm.possible {
 		return 0
 	}
