@@ -97,7 +97,7 @@ how many good ones are thrown out, and how far the study can show it.`,
 	root.SetFlagErrorFunc(func(cmd *cobra.Command, err error) error {
 		return fmt.Errorf("%w; %s --help lists what there is", err, cmd.CommandPath())
 	})
-	root.AddCommand(newJudge(s), newCheck(s), newExample(s))
+	root.AddCommand(newJudge(s), newCheck(s), newZone(s), newRisk(s), newShort(s), newFlaw(s), newExample(s))
 	return root
 }
 

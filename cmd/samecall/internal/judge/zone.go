@@ -26,6 +26,22 @@ var (
 // NewZone computes the grey zone of a study. The error says why a study has
 // none.
 func NewZone(s *study.Study, opt signal.Options) (*Zone, error) {
+	limits, err := zoneLimits(s)
+	if err != nil {
+		return nil, err
+	}
+	byAppraiser := AcceptedByAppraiser(s)
+	z := &Zone{Limits: limits}
+	if z.Unanimous, err = signal.Unanimous(pool(byAppraiser), limits, 0); err != nil {
+		return nil, err
+	}
+	z.Curves, z.NoCurve = signal.FitAppraisers(byAppraiser, limits, opt)
+	return z, nil
+}
+
+// zoneLimits returns the limits of a study, and an error that says why it has
+// no grey zone.
+func zoneLimits(s *study.Study) (signal.Limits, error) {
 	limits := signal.Limits{}
 	if l := s.Settings.Lower; l != nil {
 		limits.Lower, limits.HasLower = *l, true
@@ -35,20 +51,13 @@ func NewZone(s *study.Study, opt signal.Options) (*Zone, error) {
 	}
 	switch {
 	case s.Values == nil:
-		return nil, errNoValues
+		return limits, errNoValues
 	case !limits.HasLower && !limits.HasUpper:
-		return nil, errNoLimits
+		return limits, errNoLimits
 	case !s.Ratings.HasAccept():
-		return nil, errZoneAccept
+		return limits, errZoneAccept
 	}
-	byAppraiser := AcceptedByAppraiser(s)
-	z := &Zone{Limits: limits}
-	var err error
-	if z.Unanimous, err = signal.Unanimous(pool(byAppraiser), limits, 0); err != nil {
-		return nil, err
-	}
-	z.Curves, z.NoCurve = signal.FitAppraisers(byAppraiser, limits, opt)
-	return z, nil
+	return limits, nil
 }
 
 // AcceptedByAppraiser counts, for each appraiser, the accepted calls on each

@@ -1,0 +1,50 @@
+package main
+
+import (
+	"fmt"
+
+	"github.com/spf13/cobra"
+
+	"samecall/signal"
+)
+
+// curve is how an acceptance curve is to be fitted.
+type curve struct {
+	link             string
+	twoSigmas, lapse bool
+}
+
+// addFlags gives a command the flags of a curve over two limits.
+func (c *curve) addFlags(cmd *cobra.Command) {
+	f := cmd.Flags()
+	c.addLink(cmd)
+	f.BoolVar(&c.twoSigmas, "two-sigmas", false, "a σ for each limit instead of one for both")
+	f.BoolVar(&c.lapse, "lapse", false, "estimate the share of calls made at random too")
+}
+
+func (c *curve) addLink(cmd *cobra.Command) {
+	cmd.Flags().StringVar(&c.link, "link", "probit", "shape of the curve: probit (normal) or logit (heavier tails)")
+	_ = cmd.RegisterFlagCompletionFunc("link", cobra.FixedCompletions([]string{"probit", "logit"}, cobra.ShellCompDirectiveNoFileComp))
+}
+
+// options returns what signal is to do; confidence may be 0 for the usual one.
+func (c *curve) options(confidence float64) (signal.Options, error) {
+	o := signal.Options{TwoSigmas: c.twoSigmas, Lapse: c.lapse, Confidence: confidence}
+	switch c.link {
+	case "probit":
+		o.Link = signal.Probit
+	case "logit":
+		o.Link = signal.Logit
+	default:
+		return o, fmt.Errorf("--link is %q; expected probit or logit", c.link)
+	}
+	return o, nil
+}
+
+// wantConfidence checks --confidence of a command that reads no study file.
+func wantConfidence(c float64) error {
+	if !(c > 0 && c < 1) {
+		return fmt.Errorf("--confidence is %v; expected a number between 0 and 1, such as 0.95", c)
+	}
+	return nil
+}

@@ -1,0 +1,212 @@
+package judge
+
+import (
+	"errors"
+	"fmt"
+	"math"
+	"slices"
+	"strings"
+
+	"gonum.org/v1/gonum/stat"
+
+	"samecall/cmd/samecall/internal/format"
+	"samecall/cmd/samecall/internal/study"
+	"samecall/signal"
+)
+
+// RiskAsk says what risk is to find.
+type RiskAsk struct {
+	Process signal.Process
+	Guards  []float64 // guard bands of the table; nil: multiples of σ
+
+	Target     float64 // escapes as a share of all parts; meaningful if HasTarget
+	HasTarget  bool
+	Shown      bool // hold the upper bound of the escapes under the target
+	CostEscape float64
+	CostReject float64
+	HasCosts   bool
+}
+
+// Risks is what an inspection does to a process.
+type Risks struct {
+	Ask     RiskAsk
+	Limits  signal.Limits
+	Gauge   signal.Gauge
+	Curve   *signal.Curve // nil where the gauge is taken as known
+	Scale   format.Scale
+	Process ProcessFacts
+
+	Appraiser  string      // whose curve it is; empty: of all together
+	ValuesFile study.Input // the values of the process; empty for a normal one
+
+	Now    signal.Risk // without a guard band
+	Guards []GuardRow
+
+	Target      *signal.Risk // with the guard band found; nil if not asked for or not reachable
+	Unreachable error
+	Cost        *signal.Cost
+	NoCost      error
+}
+
+// ProcessFacts describes a process for people.
+type ProcessFacts struct {
+	N        int // values; 0: a normal process
+	Mean, SD float64
+	HasSD    bool
+	Cp, Cpk  float64 // meaningful with HasCp and HasCpk; for values, of their mean and standard deviation
+	HasCp    bool
+	HasCpk   bool
+}
+
+// GuardRow is the risk at a guard band.
+type GuardRow struct {
+	Band  float64
+	Sigma float64 // the band in σ, the mean σ of the limits
+	Risk  signal.Risk
+	Error error // where the cuts would cross, or the like
+}
+
+var guardSigmas = []float64{0, 0.25, 0.5, 1, 1.5, 2, 3}
+
+// NewRisks assesses a fitted curve in a process.
+func NewRisks(c *signal.Curve, ask RiskAsk, unit string) (*Risks, error) {
+	g, err := c.Gauge()
+	if err != nil {
+		return nil, err
+	}
+	r := &Risks{Ask: ask, Limits: c.Limits, Gauge: g, Curve: c}
+	return r, r.assess(unit)
+}
+
+// NewKnownRisks assesses a gauge that is taken as known, without intervals.
+func NewKnownRisks(g signal.Gauge, limits signal.Limits, ask RiskAsk, unit string) (*Risks, error) {
+	if ask.HasTarget || ask.HasCosts {
+		return nil, errors.New("a guard band is searched with the curve of a study; with --cut-lower, --cut-upper and --sigma the table of --guard shows what each band does")
+	}
+	r := &Risks{Ask: ask, Limits: limits, Gauge: g}
+	return r, r.assess(unit)
+}
+
+func (r *Risks) at(band float64) (signal.Risk, error) {
+	if band != 0 && r.Gauge.HasLower && r.Gauge.HasUpper && r.Gauge.LowerCut+band >= r.Gauge.UpperCut-band {
+		return signal.Risk{}, errors.New("the cuts would meet: nothing is left to accept")
+	}
+	if r.Curve != nil {
+		return signal.Assess(r.Ask.Process, r.Curve, band)
+	}
+	out, err := signal.AssessGauge(r.Ask.Process, r.Gauge.Tighten(band), r.Limits)
+	out.GuardBand = band
+	return out, err
+}
+
+func (r *Risks) assess(unit string) (err error) {
+	r.Process = facts(r.Ask.Process, r.Limits)
+	r.Scale = r.scale(unit)
+	if r.Now, err = r.at(0); err != nil {
+		return err
+	}
+	sigma := r.sigma()
+	bands := slices.Clone(r.Ask.Guards)
+	if bands == nil {
+		for _, k := range guardSigmas {
+			bands = append(bands, k*sigma)
+		}
+	}
+	for _, b := range bands {
+		row := GuardRow{Band: b, Sigma: b / sigma}
+		row.Risk, row.Error = r.at(b)
+		r.Guards = append(r.Guards, row)
+	}
+	if r.Ask.HasTarget {
+		found, err := signal.GuardForEscapes(r.Ask.Process, r.Curve, r.Ask.Target, r.Ask.Shown)
+		if err != nil {
+			r.Unreachable = err
+		} else {
+			r.Target = &found
+		}
+	}
+	if r.Ask.HasCosts {
+		cost, err := signal.GuardForCost(r.Ask.Process, r.Curve, r.Ask.CostEscape, r.Ask.CostReject)
+		if err != nil {
+			r.NoCost = err
+		} else {
+			r.Cost = &cost
+		}
+	}
+	return nil
+}
+
+// sigma is the σ of the limits, the mean where each has its own.
+func (r *Risks) sigma() float64 {
+	switch g := r.Gauge; {
+	case g.HasLower && g.HasUpper:
+		return (g.LowerSigma + g.UpperSigma) / 2
+	case g.HasLower:
+		return g.LowerSigma
+	default:
+		return g.UpperSigma
+	}
+}
+
+func (r *Risks) scale(unit string) format.Scale {
+	var limits []*float64
+	if r.Limits.HasLower {
+		limits = append(limits, &r.Limits.Lower)
+	}
+	if r.Limits.HasUpper {
+		limits = append(limits, &r.Limits.Upper)
+	}
+	spreads := []float64{r.sigma()}
+	if r.Process.HasSD {
+		spreads = append(spreads, r.Process.SD)
+	}
+	return format.NewScale(unit, limits, spreads...)
+}
+
+// facts describes a process; capabilities are (upper−lower)/(6 sd) and the
+// distance of the mean from the nearer limit over 3 sd.
+func facts(p signal.Process, limits signal.Limits) ProcessFacts {
+	f := ProcessFacts{N: len(p.Values), Mean: p.Mean, SD: p.SD, HasSD: true}
+	if f.N > 0 {
+		f.Mean, f.SD = stat.MeanStdDev(p.Values, nil)
+		if f.HasSD = f.N > 1 && f.SD > 0; !f.HasSD {
+			f.SD = 0
+			return f
+		}
+	}
+	if tolerance, ok := limits.Tolerance(); ok {
+		f.Cp, f.HasCp = tolerance/(6*f.SD), true
+	}
+	f.Cpk = math.Inf(1)
+	if limits.HasLower {
+		f.Cpk = (f.Mean - limits.Lower) / (3 * f.SD)
+	}
+	if limits.HasUpper {
+		f.Cpk = math.Min(f.Cpk, (limits.Upper-f.Mean)/(3*f.SD))
+	}
+	f.HasCpk = !math.IsInf(f.Cpk, 0)
+	return f
+}
+
+// PooledCurve fits the curve of all appraisers together or, with a name, that
+// of one. The error says why there is none.
+func PooledCurve(s *study.Study, opt signal.Options, appraiser string) (*signal.Curve, error) {
+	limits, err := zoneLimits(s)
+	if err != nil {
+		return nil, err
+	}
+	by := AcceptedByAppraiser(s)
+	parts := pool(by)
+	if appraiser != "" {
+		a := slices.Index(s.Appraisers, appraiser)
+		if a < 0 {
+			return nil, fmt.Errorf("no appraiser is named %q; there are %s", appraiser, strings.Join(s.Appraisers, ", "))
+		}
+		parts = by[a]
+	}
+	c, err := signal.Fit(parts, limits, opt)
+	if err != nil {
+		return nil, fmt.Errorf("the calls give no acceptance curve: %w", err)
+	}
+	return c, nil
+}

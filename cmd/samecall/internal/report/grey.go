@@ -1,0 +1,459 @@
+package report
+
+import (
+	"errors"
+	"fmt"
+	"io"
+	"math"
+	"slices"
+	"strings"
+	"unicode"
+	"unicode/utf8"
+
+	"samecall/cmd/samecall/internal/format"
+	"samecall/cmd/samecall/internal/judge"
+	"samecall/signal"
+)
+
+// Grey writes the grey zone in full. With every, each part is listed, not
+// only those near the limits.
+func Grey(w io.Writer, g *judge.Grey, term Terminal, every bool) error {
+	p := &printer{w: w, term: term}
+	r := &Record{Result: g.Result}
+	p.head(r)
+	some := func(t Table) {
+		if len(t.Rows) > 0 {
+			p.table(t)
+		}
+	}
+	sentences := func(list []string) {
+		for _, s := range list {
+			p.wrap(s, "")
+		}
+	}
+	some(greyLimitsTable(g))
+	some(greyMembersTable(g))
+	sentences(greyMembers(g))
+	some(greyMethodsTable(g))
+	sentences(WhyTheyDiffer(g))
+	some(cutsTable(r))
+	some(greyPartsTable(g, every))
+	some(greyWithoutTable(g))
+	p.line("")
+	sentences(greyFit(g))
+	p.line("")
+	sentences(greyCautions)
+	p.warnings(r)
+	return p.err
+}
+
+var greyCautions = []string{
+	"Customer requirements, local rules and licensed practice come first. The grey zone of an attribute study alone should not release a safety characteristic.",
+}
+
+// boundedCell is an estimate with its interval, each number by write.
+func boundedCell(s format.Scale, e signal.Estimate, write func(float64) string) Cell {
+	if e.Absent {
+		return say(format.Dash)
+	}
+	c := Cell{Text: s.Estimate(e, write), Value: e.Value, Bounded: true}
+	if !e.HasLower && !e.HasUpper {
+		c.Text = write(e.Value)
+	}
+	if e.HasLower {
+		c.Lower = e.Lower
+	}
+	if e.HasUpper {
+		c.Upper = e.Upper
+	}
+	return c
+}
+
+func inUnit(title string, s format.Scale) string {
+	if s.Unit == "" {
+		return title
+	}
+	return title + ", in " + s.Unit
+}
+
+// greyLimitsTable gives every figure of the curve at each limit.
+func greyLimitsTable(g *judge.Grey) Table {
+	s := g.Result.Scale()
+	t := Table{Name: "limits", Title: inUnit("Acceptance curve at each limit, calls of all appraisers", s), Columns: []Column{{Name: "figure", Long: true}}}
+	if g.Result.Zone.Curves == nil {
+		return Table{}
+	}
+	rows := []struct {
+		name string
+		cell func(judge.GreyLimit) Cell
+	}{
+		{"limit", func(l judge.GreyLimit) Cell { return valueCell(s.Value(l.Limit), l.Limit) }},
+		{"cut: accepted half of the time", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Cut, s.Value) }},
+		{"cut less limit", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Offset, s.Signed) }},
+		{"σ", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Sigma, s.Value) }},
+		{"grey zone from (0.5 %)", func(l judge.GreyLimit) Cell { return valueCell(s.Value(l.Curve.From), l.Curve.From) }},
+		{"to (99.5 %)", func(l judge.GreyLimit) Cell { return valueCell(s.Value(l.Curve.To), l.Curve.To) }},
+		{"wide", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Width, s.Value) }},
+		{"of tolerance", func(l judge.GreyLimit) Cell {
+			if !l.Curve.HasShare {
+				return say(format.Dash)
+			}
+			return boundedCell(s, l.Curve.Share, format.Percent)
+		}},
+		{"accepted at the limit itself", func(l judge.GreyLimit) Cell {
+			if !l.Curve.HasAtLimit {
+				return say(format.Dash)
+			}
+			return boundedCell(s, l.Curve.AtLimit, format.Percent)
+		}},
+	}
+	for _, row := range rows {
+		cells := []Cell{say(row.name)}
+		for _, l := range g.Limits {
+			switch {
+			case row.name == "limit" || l.Curve.Known():
+				cells = append(cells, row.cell(l))
+			default:
+				cells = append(cells, say(format.Dash))
+			}
+		}
+		t.Rows = append(t.Rows, cells)
+	}
+	for _, l := range g.Limits {
+		t.Columns = append(t.Columns, Column{Name: l.Side.String(), Numbers: true})
+	}
+	t.Note = fmt.Sprintf("In brackets the %s interval, by profile likelihood.", format.Percent(g.Result.Options.Confidence))
+	return t
+}
+
+// greyMethodsTable sets the unanimous zone beside that of the curve.
+func greyMethodsTable(g *judge.Grey) Table {
+	s := g.Result.Scale()
+	u := g.Result.Zone.Unanimous
+	t := Table{
+		Name: "methods", Title: inUnit("Both methods side by side", s),
+		Columns: []Column{{Name: "limit"}, {Name: "method"}, {Name: "rejected to", Numbers: true}, {Name: "accepted from", Numbers: true},
+			{Name: "wide", Numbers: true}, {Name: "σ", Numbers: true}, {Name: "%GRR", Numbers: true}},
+	}
+	add := func(limit, method string, cells ...Cell) {
+		t.Rows = append(t.Rows, append([]Cell{say(limit), say(method)}, cells...))
+	}
+	value := func(x float64) Cell { return valueCell(s.Value(x), x) }
+	grr := func(has bool, x float64) Cell {
+		if !has {
+			return say(format.Dash)
+		}
+		return valueCell(fmt.Sprintf("%.0f %%", x), x)
+	}
+	none := say(format.Dash)
+	for _, l := range g.Limits {
+		if z := l.Unanimous; z.Found {
+			add(l.Side.String(), "unanimous", value(z.Reject), value(z.Accept), value(z.Width), value(l.Sigma), grr(l.HasTolerance, l.PercentGRR[0]))
+		} else {
+			add(l.Side.String(), "unanimous", none, none, none, none, none)
+		}
+		if c := l.Curve; c.Known() {
+			from, to := c.From, c.To
+			if l.Side == signal.Upper {
+				from, to = to, from
+			}
+			add(l.Side.String(), "curve", value(from), value(to), value(c.Width.Value), value(c.SD), grr(l.HasTolerance, l.PercentGRR[1]))
+		} else {
+			add(l.Side.String(), "curve", none, none, none, none, none)
+		}
+	}
+	if u.Found && len(g.Limits) > 1 {
+		add("mean", "unanimous", say(""), say(""), value(u.MeanWidth), value(u.Sigma), grr(u.HasGRR, u.PercentGRR))
+	}
+	note := []string{fmt.Sprintf("Unanimous: from the last part always rejected to the first always accepted, taken as %s σ. Curve: from 0.5 to 99.5 %% acceptance.", format.Number(u.Spread))}
+	if u.HasGRR {
+		note = append(note, fmt.Sprintf("%%GRR is 6 σ over the tolerance; the mean, %.0f %%, is %s by common practice (below 10 good, to 30 conditional).", u.PercentGRR, signal.BandGRR(u.PercentGRR)))
+	}
+	t.Note = strings.Join(note, " ")
+	return t
+}
+
+// WhyTheyDiffer says at each limit why the two methods give different widths.
+func WhyTheyDiffer(g *judge.Grey) []string {
+	const alike = 0.1 // of the curve's width
+	s := g.Result.Scale()
+	var out []string
+	for _, l := range g.Limits {
+		at := "At the " + l.Side.String() + " limit "
+		z := l.Unanimous
+		switch {
+		case !z.Found:
+			out = append(out, at+"there is no unanimous zone: "+z.Why+".")
+			continue
+		case !l.Curve.Known():
+			continue
+		case z.Mixed == 0:
+			out = append(out, at+"no part is mixed: the unanimous zone is only the gap between two neighbouring parts, and the true zone is narrower.")
+			continue
+		}
+		switch ratio := z.Width / l.Curve.Width.Value; {
+		case ratio > 1+alike && l.Outermost >= 0:
+			p := g.Parts[l.Outermost]
+			out = append(out, fmt.Sprintf("%sthe unanimous zone is the wider one: it reaches beyond the farthest mixed part, %s at %s (accepted in %d of %d calls), to the next unanimous one, however rare such a call is.",
+				at, p.Name, s.Value(p.Value), p.Accepted, p.Calls))
+		case ratio > 1+alike:
+			out = append(out, at+"the unanimous zone is the wider one: it runs between two parts, however far they lie apart.")
+		case ratio < 1-alike:
+			out = append(out, at+"the unanimous zone is the narrower one: it ends where the parts of this study happen to be called alike, the curve where 1 call in 200 still differs.")
+		default:
+			out = append(out, at+"the two agree.")
+		}
+	}
+	if len(out) > 0 && g.Result.Zone.Curves != nil {
+		out = append(out, "The unanimous zone rests on two parts at a limit and grows with every call made; the curve uses all calls and has an interval.")
+	}
+	return out
+}
+
+// manyRows is how many parts are listed near the limits.
+const manyRows = 60
+
+// greyPartsTable lists the parts beside the curve.
+func greyPartsTable(g *judge.Grey, every bool) Table {
+	s := g.Result.Scale()
+	t := Table{
+		Name: "fit", Title: "Parts beside the curve",
+		Columns: []Column{{Name: "part"}, {Name: "value", Numbers: true}, {Name: "accepted", Numbers: true}, {Name: "fitted", Numbers: true},
+			{Name: "residual", Numbers: true}, {Name: "without it: cut", Numbers: true}, {Name: "σ", Numbers: true}, {Name: "note", Long: true}},
+	}
+	if len(g.Rows) == 0 {
+		return Table{}
+	}
+	var values []float64
+	for _, r := range g.Rows {
+		values = append(values, r.Value)
+	}
+	limits := g.Result.Zone.Limits
+	finer := s
+	finer.Decimals++
+	written := format.Alike(values...)
+	left, cut := 0, 0
+	for i, r := range g.Rows {
+		switch {
+		case every || r.Matters && len(t.Rows) < manyRows:
+		case r.Matters:
+			cut++
+			continue
+		default:
+			left++
+			continue
+		}
+		var notes []string
+		if r.Outlier {
+			notes = append(notes, "does not fit the curve")
+		}
+		if r.Drives {
+			notes = append(notes, "drives the fit")
+		}
+		if !limits.Inside(r.Value) {
+			notes = append(notes, "bad")
+		}
+		t.Rows = append(t.Rows, []Cell{say(r.Name), valueCell(written[i], r.Value), valueCell(fmt.Sprintf("%d of %d", r.Accepted, r.Calls), r.Accepted),
+			valueCell(format.Percent(r.Fitted), r.Fitted), valueCell(signedFigure(r.Residual), r.Residual),
+			valueCell(finer.Signed(r.CutChange[r.Side]), r.CutChange[r.Side]), valueCell(changePercent(r.LogSigmaChange[r.Side]), math.Expm1(r.LogSigmaChange[r.Side])),
+			say(strings.Join(notes, ", "))})
+	}
+	notes := []string{"Residual: how far the calls lie from the fitted share, beyond ±2 is much. Without it: by how much cut and σ would change if the part were left out."}
+	if cut > 0 {
+		notes = append(notes, fmt.Sprintf("%s more are near the limits too; --every-part lists all.", format.Counted(cut, "part")))
+	}
+	if left > 0 {
+		notes = append(notes, fmt.Sprintf("%s far from the limits, called as the curve expects, left out; --every-part lists them.", format.Counted(left, "part")))
+	}
+	t.Note = strings.Join(notes, " ")
+	return t
+}
+
+// signedFigure writes a figure with two digits and its sign.
+func signedFigure(x float64) string {
+	s := format.Figure(x)
+	if x > 0 && s != "0.00" {
+		s = "+" + s
+	}
+	return s
+}
+
+// changePercent writes a change of a logarithm as a change in percent.
+func changePercent(log float64) string {
+	s := fmt.Sprintf("%+.0f %%", 100*math.Expm1(log))
+	switch s {
+	case "+0 %", "-0 %":
+		return "0 %"
+	}
+	return strings.Replace(s, "-", "−", 1)
+}
+
+// greyWithoutTable sets the fit without its outliers beside it.
+func greyWithoutTable(g *judge.Grey) Table {
+	c := curveOf(g)
+	if c == nil || c.Without == nil {
+		return Table{}
+	}
+	s := g.Result.Scale()
+	var names []string
+	for _, i := range c.Outliers {
+		names = append(names, c.Parts[i].Name)
+	}
+	t := Table{
+		Name: "without", Title: inUnit("The fit without "+strings.Join(names, ", "), s),
+		Columns: []Column{{Name: "limit"}, {Name: "cut", Numbers: true}, {Name: "cut without", Numbers: true}, {Name: "σ", Numbers: true}, {Name: "σ without", Numbers: true}},
+		Note:    "These parts were called against all the others. Look at them first: a wrong value or reference, parts mixed up, or a far error that the curve cannot describe.",
+	}
+	for _, l := range g.Limits {
+		row := []Cell{say(l.Side.String())}
+		without := c.Without.Lower
+		if l.Side == signal.Upper {
+			without = c.Without.Upper
+		}
+		for _, figure := range []func(*signal.LimitFit) float64{
+			func(f *signal.LimitFit) float64 { return f.Cut.Value }, func(f *signal.LimitFit) float64 { return f.Sigma.Value },
+		} {
+			for _, f := range []*signal.LimitFit{l.Curve, without} {
+				if !f.Known() {
+					row = append(row, say(format.Dash))
+					continue
+				}
+				row = append(row, valueCell(s.Value(figure(f)), figure(f)))
+			}
+		}
+		t.Rows = append(t.Rows, row)
+	}
+	return t
+}
+
+func curveOf(g *judge.Grey) *signal.Curve {
+	if g.Result.Zone.Curves == nil {
+		return nil
+	}
+	return g.Result.Zone.Curves.Pooled
+}
+
+// greyFit says in sentences how the curve was fitted and how well it fits.
+func greyFit(g *judge.Grey) []string {
+	c := curveOf(g)
+	if c == nil {
+		return []string{"No acceptance curve: " + g.Result.Zone.NoCurve.Error() + "."}
+	}
+	s := g.Result.Scale()
+	var out []string
+	for _, l := range g.Limits {
+		if l.Curve == nil || l.Curve.Status == signal.Fitted || l.Curve.Why == "" {
+			continue
+		}
+		text := "At the " + l.Side.String() + " limit: " + l.Curve.Why + "."
+		if gap := l.Curve.Gap; gap != nil && gap.HasReject && gap.HasAccept {
+			text += fmt.Sprintf(" The gap runs from %s (always rejected) to %s (always accepted); the grey zone is narrower. Cut and σ above are the bias-reduced ones, and say little: parts inside the gap would tell more.",
+				s.Value(gap.Reject), s.Value(gap.Accept))
+		}
+		out = append(out, text)
+	}
+	fit := fmt.Sprintf("Fit: %s link, log-likelihood %s of the parts' counts (%s of the single calls), %s, %s.",
+		c.Options.Link, minusFigure(c.LogLikelihood), minusFigure(c.CallLogLikelihood), format.Counted(c.Parameters, "parameter"), format.Counted(c.Calls, "call"))
+	switch {
+	case c.SameSigma != nil && c.SameSigma.Done && c.Options.TwoSigmas:
+		fit += fmt.Sprintf(" Each limit has its own σ; one σ for both would do as well with p %s.", format.Probability(c.SameSigma.P))
+	case c.SameSigma != nil && c.SameSigma.Done:
+		fit += fmt.Sprintf(" Both limits have one σ (p %s that it is the same; --two-sigmas gives each its own).", format.Probability(c.SameSigma.P))
+	}
+	out = append(out, fit)
+	if c.HasLapse {
+		out = append(out, "Calls made at random, whatever the part: "+boundedCell(s, c.Lapse, format.Percent).Text+".")
+	}
+	switch l := c.LackOfFit; {
+	case !l.Tested:
+		out = append(out, "Lack of fit is not tested: "+l.Why+".")
+	case l.Applied:
+		out = append(out, fmt.Sprintf("The parts scatter about the curve more than calls by chance would (X² %.1f on %d degrees of freedom, p %s): parts differ by more than their value. The intervals are widened by the factor %.2f.", l.X2, l.DF, format.Probability(l.P), l.Factor))
+	default:
+		out = append(out, fmt.Sprintf("The parts scatter about the curve as calls by chance would (X² %.1f on %d degrees of freedom, p %s).", l.X2, l.DF, format.Probability(l.P)))
+	}
+	out = append(out, curveWarnings(append(slices.Clone(c.Warnings), g.Result.Zone.Curves.Warnings...))...)
+	for a, err := range g.Result.Zone.Curves.Errors {
+		if err != nil {
+			out = append(out, fmt.Sprintf("%s has no curve of its own: %s.", g.Result.Study.Appraisers[a], err))
+		}
+	}
+	return out
+}
+
+// curveWarnings are those that nothing else in the text says.
+func curveWarnings(list []error) []string {
+	var out []string
+	for _, err := range list {
+		var w signal.Warning
+		if !errors.As(err, &w) {
+			continue
+		}
+		switch w.Code {
+		case signal.WarnNoLapse, signal.WarnFewValues, signal.WarnOverlap, signal.WarnRoughTest:
+			out = append(out, sentence(w.Text))
+		}
+	}
+	return out
+}
+
+// sentence makes a sentence of a text.
+func sentence(s string) string {
+	first, size := utf8.DecodeRuneInString(s)
+	return string(unicode.ToUpper(first)) + s[size:] + "."
+}
+
+func minusFigure(x float64) string { return strings.Replace(fmt.Sprintf("%.2f", x), "-", "−", 1) }
+
+// greyMembersTable sets the gauge's calibrated sizes beside the offsets.
+func greyMembersTable(g *judge.Grey) Table {
+	s := g.Result.Scale()
+	t := Table{
+		Name: "gauge", Title: inUnit("The gauge's own sizes, as calibrated", s),
+		Columns: []Column{{Name: "limit"}, {Name: "member", Numbers: true}, {Name: "less limit", Numbers: true}, {Name: "cut less member", Numbers: true}},
+	}
+	for _, m := range g.Members {
+		row := []Cell{say(m.Member.Side.String()), valueCell(s.Value(m.Member.Size)+" ± "+s.Value(m.Member.Uncertainty), m.Member.Size)}
+		if e := m.Explanation; e != nil {
+			row = append(row, valueCell(s.Signed(e.Deviation), e.Deviation), boundedCell(s, e.Remainder, s.Signed))
+		} else {
+			row = append(row, say(format.Dash), say(format.Dash))
+		}
+		t.Rows = append(t.Rows, row)
+	}
+	return t
+}
+
+// greyMembers says whether the gauge's sizes explain the offsets.
+func greyMembers(g *judge.Grey) []string {
+	s := g.Result.Scale()
+	var out []string
+	if len(g.Members) == 0 && curveOf(g) != nil {
+		return []string{"With the gauge's calibrated sizes (gauge_sizes in the study file, or --gauge-sizes-lower and --gauge-sizes-upper) zone says whether they explain where the cuts lie."}
+	}
+	for _, m := range g.Members {
+		at := "At the " + m.Member.Side.String() + " limit "
+		if m.Error != nil {
+			out = append(out, at+"the gauge cannot be compared: "+m.Error.Error()+".")
+			continue
+		}
+		e := m.Explanation
+		text := ""
+		switch e.Finding {
+		case signal.Explained:
+			text = "the gauge's size explains where the cut lies: the offset is within the uncertainty of its calibration."
+		case signal.PartlyExplained:
+			text = "the gauge's size explains the offset in part: the two intervals overlap."
+		default:
+			text = "the gauge's size does not explain where the cut lies: " + s.WithUnit(s.Signed(e.Remainder.Value)) + " is left over. Look at how the gauge is used, at its form and at the reference values."
+		}
+		switch {
+		case e.Worn && !e.PerhapsWorn:
+			text += fmt.Sprintf(" The member is worn beyond its limit of %s: take it out of use.", s.WithUnit(s.Value(m.Member.WearLimit)))
+		case e.Worn || e.PerhapsWorn:
+			text += fmt.Sprintf(" The member is at its wear limit of %s within the uncertainty.", s.WithUnit(s.Value(m.Member.WearLimit)))
+		}
+		out = append(out, at+text)
+	}
+	return out
+}
