@@ -62,7 +62,7 @@ func (t Table) render(width int) string {
 		for i, c := range row {
 			cell := format.Plain(c.Text)
 			if t.Columns[i].Long {
-				cell = text.WrapSoft(cell, room[i])
+				cell = wrapped(cell, room[i])
 			} else {
 				cell = text.Snip(cell, room[i], "…")
 			}

@@ -91,11 +91,18 @@ func (p *printer) line(s string) {
 	}
 }
 
+// wrapped breaks a text into lines, but never between a number and its sign.
+func wrapped(s string, width int) string {
+	const joint = "\ue000" // private use: a space that wrapping does not see
+	s = strings.NewReplacer(" %", joint+"%", " σ", joint+"σ").Replace(s)
+	return strings.ReplaceAll(text.WrapSoft(s, width), joint, " ")
+}
+
 // wrap writes a paragraph, its lines after the first behind indent.
 func (p *printer) wrap(s, indent string) {
 	width := max(20, p.term.Width-len(indent))
 	lead := s[:len(s)-len(strings.TrimLeft(s, " "))] // which wrapping would eat
-	for i, line := range strings.Split(text.WrapSoft(strings.TrimLeft(format.Plain(s), " "), width), "\n") {
+	for i, line := range strings.Split(wrapped(strings.TrimLeft(format.Plain(s), " "), width), "\n") {
 		if i == 0 {
 			line = lead + line
 		}
