@@ -86,6 +86,14 @@ func (c Criterion) claim() string {
 	return met + " " + c.Level(c.Against)
 }
 
+// shown is what the data show or would show: what Text says last.
+func (c Criterion) shown() string {
+	if c.Met == Conditional {
+		return "that it is " + c.claim()
+	}
+	return "it"
+}
+
 // EvidenceText says what the data show of it and, where that is open, what
 // would settle it.
 func (c Criterion) EvidenceText() string {
@@ -93,7 +101,7 @@ func (c Criterion) EvidenceText() string {
 	case c.Met == NotShown:
 		return ""
 	case c.Evidence != Open:
-		return "The data show that it is " + c.claim() + "."
+		return "The data show " + c.shown() + "."
 	}
 	return "Open: " + c.open() + "."
 }
@@ -113,9 +121,9 @@ func (c Criterion) open() string {
 	}
 	switch {
 	case c.More > 0 && c.errorFree():
-		return text + fmt.Sprintf("%s more without an error would show that it is %s", format.Counted(c.More, c.Kind), c.claim())
+		return text + fmt.Sprintf("%s more without an error would show %s", format.Counted(c.More, c.Kind), c.shown())
 	case c.More > 0:
-		return text + fmt.Sprintf("%s more at this %s would show that it is %s", format.Counted(c.More, c.Kind), c.measure(), c.claim())
+		return text + fmt.Sprintf("%s more at this %s would show %s", format.Counted(c.More, c.Kind), c.measure(), c.shown())
 	case c.errorFree(): // and the level leaves no room for an error
 		return text + "no number of parts can show that it is " + c.claim()
 	case c.Estimate.Value == c.Against:

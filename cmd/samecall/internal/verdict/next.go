@@ -141,25 +141,29 @@ func moreParts(r *judge.Result, v *Verdict) string {
 		return settleReject(r, v)
 	}
 	need := make(map[string]Criterion)
-	who := make(map[string]string)
+	whose := make(map[string][]string)
 	for _, a := range v.Appraisers {
 		for _, c := range a.Criteria {
-			if c.Evidence == Open && c.More > need[c.Kind].More {
-				need[c.Kind], who[c.Kind] = c, a.Name
+			switch most := need[c.Kind]; {
+			case c.Evidence != Open || c.More == 0:
+			case c.More > most.More:
+				need[c.Kind], whose[c.Kind] = c, []string{a.Name}
+			case c.More == most.More && c.Name == most.Name:
+				whose[c.Kind] = append(whose[c.Kind], a.Name)
 			}
 		}
 	}
 	for _, kind := range []string{"bad part", "good part", "part"} {
-		c := need[kind]
+		c, who := need[kind], some(whose[kind])
 		switch {
 		case c.More == 0:
 			continue
 		case c.errorFree():
-			return fmt.Sprintf("To show that the %s of %s is %s, add %s, some of them close to the limits; all must be called right.", c.Label(), who[kind], c.claim(), format.Counted(c.More, kind))
+			return fmt.Sprintf("To show that the %s of %s is %s, add %s, some of them close to the limits; all must be called right.", c.Label(), who, c.claim(), format.Counted(c.More, kind))
 		case c.More > largerStudy*c.Parts:
-			return fmt.Sprintf("To show that the %s of %s is %s would take %s more: rather than enlarge the study, bring the errors down.", c.Label(), who[kind], c.claim(), format.Counted(c.More, kind))
+			return fmt.Sprintf("To show that the %s of %s is %s would take %s more: rather than enlarge the study, bring the errors down.", c.Label(), who, c.claim(), format.Counted(c.More, kind))
 		}
-		return fmt.Sprintf("To show that the %s of %s is %s, add %s like those of the study.", c.Label(), who[kind], c.claim(), format.Counted(c.More, kind))
+		return fmt.Sprintf("To show that the %s of %s is %s, add %s like those of the study.", c.Label(), who, c.claim(), format.Counted(c.More, kind))
 	}
 	return ""
 }
@@ -186,7 +190,7 @@ func settleReject(r *judge.Result, v *Verdict) string {
 // repeatStudy says what a new study takes to show the miss rate, where the
 // present one has too few bad parts for that.
 func repeatStudy(r *judge.Result, v *Verdict) string {
-	const again = "Then repeat the study."
+	const again = "After the correction, repeat the study."
 	c := v.Appraisers[0].criterion(Miss)
 	for _, a := range v.Appraisers {
 		if other := a.criterion(Miss); other.Parts < c.Parts {

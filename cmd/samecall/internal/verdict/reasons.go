@@ -141,7 +141,7 @@ func shownOf(v *Verdict) string {
 }
 
 func (g ground) say() string {
-	return stop(fmt.Sprintf("Furthest from it, the %s of %s: %s", g.c.Label(), some(g.who), g.c.open()))
+	return stop(fmt.Sprintf("Furthest from being shown is that the %s of %s is %s: %s", g.c.Label(), some(g.who), g.c.claim(), g.c.open()))
 }
 
 // needsMore reports whether a takes more parts than b to be shown; a figure

@@ -2,7 +2,6 @@ package verdict
 
 import (
 	"fmt"
-	"strings"
 
 	"samecall/cmd/samecall/internal/format"
 )
@@ -43,18 +42,29 @@ func (f *finder) zoneWidth() string {
 		return ""
 	}
 	s := f.Scale()
-	var widths []string
+	var widths, at []string
 	for _, l := range sides(plain(f.Zone.Curves.Pooled)) {
-		text := s.WithUnit(s.Value(l.Width.Value))
+		text := s.WithUnit(s.Value(l.Width.Value)) + " wide"
 		if l.HasShare {
-			text += " (" + format.Percent(l.Share.Value) + " of the tolerance)"
+			text += " (" + percent(l.Share.Value) + " of the tolerance)"
 		}
-		widths = append(widths, text+" wide at the "+l.Side.String()+" limit")
+		widths, at = append(widths, text), append(at, text+" at the "+l.Side.String()+" limit")
 	}
-	if len(widths) == 0 {
+	switch {
+	case len(widths) == 0:
 		return ""
+	case len(widths) == 2 && widths[0] == widths[1]:
+		return " The grey zone is " + widths[0] + " at each limit."
 	}
-	return " The grey zone is " + strings.Join(widths, " and ") + "."
+	return " The grey zone is " + and(at) + "."
+}
+
+// percent writes a share that may be above 1.
+func percent(share float64) string {
+	if share > 1 {
+		return fmt.Sprintf("%.0f %%", 100*share)
+	}
+	return format.Percent(share)
 }
 
 // zoneRanges tells from where to where the grey zone reaches.

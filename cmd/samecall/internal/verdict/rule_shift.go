@@ -48,7 +48,7 @@ func shiftedCut(f *finder) []Cause {
 			if f.shifted(l, looks) {
 				out = append(out, Cause{
 					Code: codeGauge, Appraiser: Everyone,
-					Text: f.shift("All appraisers cut", l, "That points to a worn or mis-set gauge, or a shifted standard"),
+					Text: f.shift("All appraisers cut", l, "That points to a worn or mis-set gauge, or a shifted standard") + f.calibrated(l),
 					Do:   fmt.Sprintf("Check the %s limit of the gauge or the standard: calibrated size, wear, setting. Correct it, then repeat the parts near that limit.", l.Side),
 				})
 			}

@@ -76,7 +76,7 @@ func TestSentences(t *testing.T) {
 // A cause of one appraiser names it in what to do; one of a limit names the
 // limit; one of parts names parts.
 func TestCausesNameNames(t *testing.T) {
-	limit := regexp.MustCompile(`\b(lower|upper) limit`)
+	limit := regexp.MustCompile(`\b(lower|upper|each) limit`)
 	part := regexp.MustCompile(`\bP\d\d\b`)
 	for _, c := range causeTests {
 		_, v := decide(t, c.files(1))
@@ -164,5 +164,24 @@ func TestLists(t *testing.T) {
 	}
 	if stop("at No.") != "at No." || stop("done") != "done." {
 		t.Error("one full stop")
+	}
+}
+
+// With calibrated sizes in the study file, the cause says whether they
+// explain the shift. (The model's cut is at 9.9, the drawn one near it.)
+func TestCalibratedSizes(t *testing.T) {
+	for _, c := range []struct {
+		sizes, says string
+	}{
+		{"lower = {size = 9.9, uncertainty = 0.02, wear_limit = 9.95}", "calibrated at 9.900 mm, explains it; it is worn beyond its limit."},
+		{"lower = {size = 10.0, uncertainty = 0.002}", "calibrated at 10.000 mm, does not explain it."},
+		{"upper = {size = 11.0, uncertainty = 0.002}", "or a shifted standard."},
+	} {
+		d := causeTest(t, "gauge shifted, lower limit outside")
+		d.settings = "[gauge_sizes]\n" + c.sizes + "\n"
+		_, v := decide(t, d.files(1))
+		if len(v.Causes) != 1 || !strings.HasSuffix(v.Causes[0].Text, c.says) {
+			t.Errorf("%s: %+v", c.sizes, v.Causes)
+		}
 	}
 }
