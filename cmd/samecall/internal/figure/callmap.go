@@ -8,32 +8,35 @@ import (
 // Call is a cell of the call map.
 type Call int
 
-// Calls of a cell.
+// Calls of a cell. Where calls are kinds or grades without an acceptable one,
+// Kind and more is one of MapData.Kinds.
 const (
 	NoCall Call = iota
 	Accepted
 	Rejected
 	WronglyAccepted
 	WronglyRejected
-	OtherWrong // a wrong kind or grade on the right side
+	OtherWrong // a wrong kind or grade, on the right side if there are sides
+	Kind
 )
 
 // MapData is what a call map shows, the parts in the order of the axis.
 type MapData struct {
-	Order      string // how the parts are ordered, in words
+	Order      string   // how the parts are ordered, in words
+	Kinds      []string // names of kinds or grades; nil in a pass/fail study
 	Parts      []string
 	Appraisers []MapAppraiser
 	Limits     []MapLimit
+	Groups     []MapGroup
 	Zones      [][2]int // first and last part in a grey zone
-	Left       int      // parts left out for want of room
+	Left       string   // what is left out for want of room, in words
 }
 
 // MapAppraiser is the band of one appraiser: Calls[trial][part].
 type MapAppraiser struct {
 	Name  string
 	Calls [][]Call
-	Wrong int // how many calls are wrong
-	Mixed int // how many parts are mixed
+	Text  string // wrong calls and mixed parts, in words
 }
 
 // MapLimit is a line between two parts: before the part of this index.
@@ -42,106 +45,151 @@ type MapLimit struct {
 	Before int
 }
 
+// MapGroup is a name over parts: from the one index to before the other.
+type MapGroup struct {
+	Name       string
+	From, Till int
+}
+
+const (
+	mapSize = 12.0 // of texts
+	mapTop  = 26.0 // above the cells
+	mapGap  = 10.0 // between bands
+	// mapWidth is what all cells together take, where there are not too many.
+	mapWidth = 860.0
+)
+
 // CallMap draws the call map: parts along the axis, a band for each
 // appraiser, a cell for each trial. An accepted call is a light cell, a
-// rejected one a dark one; a wrong call is orange with a mark, ⁄ for a wrong
-// accept and × for a wrong reject. It returns nil without parts.
+// rejected one a dark one; a wrong call is orange with a mark, a stroke for a
+// wrong accept and a cross for a wrong reject. It returns nil without parts.
 func CallMap(d MapData) *Figure {
 	if len(d.Parts) == 0 || len(d.Appraisers) == 0 {
 		return nil
 	}
 	const (
-		size     = 12.0
 		nameMost = 150.0
-		top      = 26.0
-		gap      = 10.0
-		usual    = 860.0 // width of all parts together, where they are not too many
+		size     = mapSize
 	)
-	nameW := 40.0
+	nameW := 44.0
 	for _, a := range d.Appraisers {
 		nameW = max(nameW, min(nameMost, textWidth(a.Name, size)+14))
 	}
 	n := float64(len(d.Parts))
-	cellW := min(max(usual/n, 4), 22)
+	cellW := min(max(mapWidth/n, 4), 22)
 	cellH := min(max(cellW, 9), 15)
-	height := top
+	bottom := mapTop
 	for _, a := range d.Appraisers {
-		height += float64(len(a.Calls))*cellH + gap
+		bottom += float64(len(a.Calls))*cellH + mapGap
 	}
-	height += 24
-	legendY := height + 4
-	f := &Figure{Name: "calls", Title: "Call map: every call on every part", Width: max(nameW+n*cellW+14, 560), Height: height + 24}
+	f := &Figure{Name: "calls", Title: "Call map: every call on every part", Width: max(nameW+n*cellW+14, 560)}
 	left := func(part int) float64 { return nameW + float64(part)*cellW }
 
-	bottom := height - 24
 	for _, z := range d.Zones {
-		f.rect(Zone, left(z[0]), top-6, float64(z[1]-z[0]+1)*cellW, bottom-top+4)
+		f.rect(Zone, left(z[0]), mapTop-6, float64(z[1]-z[0]+1)*cellW, bottom-mapTop+4)
 	}
-	y := top
+	y := mapTop
+	seen := make(map[Call]bool)
 	var alt []string
 	for _, a := range d.Appraisers {
 		h := float64(len(a.Calls)) * cellH
-		f.text(Ink, nameW-10, y+h/2+size/3, size, End, shorten(a.Name, size, nameW-10))
+		f.text(Ink, nameW-10, y+h/2+size/3, size, End, shorten(a.Name, size, nameW-12))
 		for t, calls := range a.Calls {
 			for part, c := range calls {
+				seen[c] = true
 				f.call(c, left(part), y+float64(t)*cellH, cellW, cellH)
 			}
 		}
-		y += h + gap
-		alt = append(alt, fmt.Sprintf("%s: %d wrong calls, %d mixed parts", a.Name, a.Wrong, a.Mixed))
+		y += h + mapGap
+		alt = append(alt, a.Name+": "+a.Text)
 	}
-	end := -1e9
+	var named []span
 	for _, l := range d.Limits {
 		x := left(l.Before)
-		f.Marks = append(f.Marks, Mark{Role: Limit, Line: &Line{x, top - 10, x, bottom}, Heavy: true})
-		w := textWidth(l.Name, size)
-		start := min(max(x-w/2, 2, end+8), f.Width-w-2)
-		f.text(Ink, start, top-14, size, Start, l.Name)
-		end = start + w
+		f.Marks = append(f.Marks, Mark{Role: Limit, Line: &Line{x, mapTop - 10, x, bottom}, Heavy: true})
+		if l.Name != "" {
+			named = append(named, span{x, textWidth(l.Name, size)})
+		}
 	}
-	order := d.Order
-	if d.Left > 0 {
-		order += fmt.Sprintf("; %d parts without a wrong or mixed call are left out", d.Left)
+	starts := spread(named, 2, f.Width-2, 8)
+	for _, l := range d.Limits {
+		if l.Name != "" {
+			f.text(Ink, starts[0], mapTop-14, size, Start, l.Name)
+			starts = starts[1:]
+		}
 	}
-	f.text(Muted, nameW, bottom+18, size, Start, shorten(order, size, f.Width-nameW))
-
-	x := 4.0
-	legend := func(c Call, s string) {
-		f.call(c, x, legendY, 13, 13)
-		f.text(Muted, x+18, legendY+11, size, Start, s)
-		x += 18 + textWidth(s, size) + 10
+	for _, g := range d.Groups {
+		from, till := left(g.From)+2, left(g.Till)-2
+		f.text(Ink, (from+till)/2, mapTop-14, size, Middle, shorten(g.Name, size, till-from))
 	}
-	legend(Accepted, "accepted")
-	legend(Rejected, "rejected")
-	legend(WronglyAccepted, "wrongly accepted")
-	legend(WronglyRejected, "wrongly rejected")
-	if d.has(OtherWrong) {
-		legend(OtherWrong, "wrong kind")
+	words := d.Order
+	if d.Left != "" {
+		words += "; " + d.Left
 	}
-	f.Width = max(f.Width, x)
-	f.Alt = fmt.Sprintf("%d parts %s. %s.", len(d.Parts), d.Order, strings.Join(alt, "; "))
+	y = bottom + 16
+	for _, line := range wrap(words, size, f.Width-nameW-4, 2) {
+		f.text(Muted, nameW, y, size, Start, line)
+		y += 15
+	}
+	f.Height = f.legend(d, seen, y+2)
+	f.Alt = fmt.Sprintf("%d parts, %s. %s.", len(d.Parts), words, strings.Join(alt, "; "))
 	return f
 }
 
-func (d MapData) has(c Call) bool {
-	for _, a := range d.Appraisers {
-		for _, calls := range a.Calls {
-			for _, x := range calls {
-				if x == c {
-					return true
-				}
-			}
+// legend explains the calls that are there, and returns where it ends.
+func (f *Figure) legend(d MapData, seen map[Call]bool, y float64) float64 {
+	const (
+		side    = 13.0
+		longest = 180.0
+		margin  = 4.0
+	)
+	x := margin
+	add := func(c Call, s string) {
+		if !seen[c] {
+			return
 		}
+		s = shorten(s, mapSize, longest)
+		w := side + 5 + textWidth(s, mapSize)
+		if x > margin && x+w > f.Width {
+			x, y = margin, y+side+8
+		}
+		f.call(c, x, y, side, side)
+		f.text(Muted, x+side+5, y+11, mapSize, Start, s)
+		x += w + 14
 	}
-	return false
+	add(Accepted, "accepted")
+	add(Rejected, "rejected")
+	add(WronglyAccepted, "wrongly accepted")
+	add(WronglyRejected, "wrongly rejected")
+	for k, name := range d.Kinds {
+		if k >= len(kindRoles)-1 && len(d.Kinds) > len(kindRoles) {
+			for more := k; more < len(d.Kinds); more++ {
+				seen[Kind+Call(k)] = seen[Kind+Call(k)] || seen[Kind+Call(more)]
+			}
+			add(Kind+Call(k), "any other")
+			break
+		}
+		add(Kind+Call(k), name)
+	}
+	add(OtherWrong, "not as the reference")
+	add(NoCall, "no call")
+	return y + side + 4
 }
 
 func (f *Figure) call(c Call, x, y, w, h float64) {
 	const seam = 0.75
-	role := map[Call]Role{Accepted: Accept, Rejected: Reject, WronglyAccepted: Wrong, WronglyRejected: Wrong, OtherWrong: Wrong}[c]
 	if c == NoCall {
-		f.rect(Rule, x+w/2-0.75, y+h/2-0.75, 1.5, 1.5)
+		f.rect(Muted, x+w/2-1, y+h/2-1, 2, 2)
 		return
+	}
+	role := Wrong
+	switch {
+	case c == Accepted:
+		role = Accept
+	case c == Rejected:
+		role = Reject
+	case c >= Kind:
+		role = kindRoles[min(int(c-Kind), len(kindRoles)-1)]
 	}
 	f.rect(role, x+seam/2, y+seam/2, w-seam, h-seam)
 	cross := func(x1, y1, x2, y2 float64) {

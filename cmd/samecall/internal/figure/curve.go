@@ -1,23 +1,25 @@
 package figure
 
 import (
+	"cmp"
 	"fmt"
+	"slices"
 	"strings"
 )
 
 // CurveData is what an acceptance curve shows, in the unit of the values.
 type CurveData struct {
-	Unit     string
-	Decimals int
-	Points   []CurvePoint // a part each
-	Grid     []float64    // values at which the curves are known
-	Fit      []float64    // share accepted by the fitted curve; nil without one
-	Low      []float64    // its band
-	High     []float64
-	Own      []OwnCurve
-	Limits   []CurveLimit
-	Zones    [][2]float64
-	Text     string // the fit in words, with its numbers
+	Unit   string
+	Points []CurvePoint // a part each
+	Grid   []float64    // values at which the curves are known
+	Fit    []float64    // share accepted by the fitted curve; nil without one
+	Low    []float64    // its band; nil without one
+	High   []float64
+	Known  []bool // where the band is bounded
+	Own    []OwnCurve
+	Limits []CurveLimit
+	Zones  [][2]float64
+	Text   string // the fit in words, with its numbers
 }
 
 // CurvePoint is a part: its value and the share of calls that accepted it.
@@ -60,16 +62,9 @@ func AcceptanceCurve(d CurveData) *Figure {
 	}
 	for v := 0.0; v <= 1; v += 0.25 {
 		f.line(Rule, x.from, y.at(v), x.to, y.at(v))
-		f.text(Muted, x.from-8, y.at(v)+4, size, End, fixed(100*v, 0))
+		f.text(Muted, x.from-8, y.at(v)+4, size, End, decimal(100*v, 0))
 	}
-	if d.Low != nil {
-		var area []Point
-		for i, v := range d.Grid {
-			area = append(area, Point{x.at(v), y.at(d.High[i])})
-		}
-		for i := len(d.Grid) - 1; i >= 0; i-- {
-			area = append(area, Point{x.at(d.Grid[i]), y.at(d.Low[i])})
-		}
+	for _, area := range d.bands(x, y) {
 		f.Marks = append(f.Marks, Mark{Role: Band, Area: area})
 	}
 	path := func(share []float64) []Point {
@@ -85,16 +80,18 @@ func AcceptanceCurve(d CurveData) *Figure {
 	if d.Fit != nil {
 		f.Marks = append(f.Marks, Mark{Role: Right, Path: path(d.Fit), Heavy: true})
 	}
-	end := -1e9
-	for _, l := range d.Limits {
+	names := make([]span, len(d.Limits))
+	for i, l := range d.Limits {
 		at := x.clamp(l.Value)
 		f.Marks = append(f.Marks, Mark{Role: Limit, Line: &Line{at, y.from, at, y.to - 6}, Heavy: true})
-		w := textWidth(l.Name, size)
-		start := min(max(at-w/2, x.from, end+8), width-w-2)
-		f.text(Ink, start, y.to-12, size, Start, l.Name)
-		end = start + w
+		d.Limits[i].Name = shorten(l.Name, size, width/2-10)
+		names[i] = span{at, textWidth(d.Limits[i].Name, size)}
 	}
-	for _, p := range d.Points {
+	for i, start := range spread(names, 2, width-2, 8) {
+		f.text(Ink, start, y.to-12, size, Start, d.Limits[i].Name)
+	}
+	shown := gather(d.Points)
+	for _, p := range shown {
 		role := Ink
 		if p.Outlier {
 			role = Wrong
@@ -102,28 +99,45 @@ func AcceptanceCurve(d CurveData) *Figure {
 		f.Marks = append(f.Marks, Mark{Role: role, Dot: &Dot{X: x.clamp(p.Value), Y: y.at(p.Share), R: 3.5, Outline: true}, Heavy: p.Outlier})
 	}
 	f.line(Ink, x.from, y.from, x.to, y.from)
-	at, decimals := ticks(x.low, x.high, 6)
-	for _, v := range at {
+	at, labels := x.ticksThatFit(x.low, x.high, size)
+	for i, v := range at {
 		f.line(Ink, x.at(v), y.from, x.at(v), y.from+4)
-		f.text(Muted, x.at(v), y.from+18, size, Middle, fixed(v, decimals))
+		half := textWidth(labels[i], size) / 2
+		f.text(Muted, min(max(x.at(v), half+2), width-half-2), y.from+18, size, Middle, labels[i])
 	}
 	unit := "value"
 	if d.Unit != "" {
 		unit += ", " + d.Unit
 	}
-	f.text(Ink, (x.from+x.to)/2, y.from+36, size, Middle, unit)
+	f.text(Ink, (x.from+x.to)/2, y.from+36, size, Middle, shorten(unit, size, x.to-x.from))
 	f.turned(Ink, 16, (y.from+y.to)/2, size, Middle, "share accepted, %")
-	legendY := height - 6.0
-	f.Marks = append(f.Marks, Mark{Role: Right, Line: &Line{leftW, legendY - 4, leftW + 22, legendY - 4}, Heavy: true})
-	f.text(Muted, leftW+28, legendY, size, Start, "all appraisers")
-	if len(d.Own) > 1 {
-		f.line(Thin, leftW+140, legendY-4, leftW+162, legendY-4)
-		f.text(Muted, leftW+168, legendY, size, Start, "each appraiser")
+	key := keyLine{f: f, x: leftW, y: height - 10, size: size}
+	if d.Fit != nil {
+		key.add("all appraisers", func(x, y float64) {
+			f.Marks = append(f.Marks, Mark{Role: Right, Line: &Line{x, y, x + 22, y}, Heavy: true})
+		})
 	}
-	f.Marks = append(f.Marks, Mark{Role: Ink, Dot: &Dot{X: leftW + 291, Y: legendY - 4, R: 3.5, Outline: true}})
-	f.text(Muted, leftW+302, legendY, size, Start, "a part")
-	f.rect(Zone, leftW+370, legendY-10, 22, 12)
-	f.text(Muted, leftW+398, legendY, size, Start, "grey zone")
+	if len(d.Own) > 1 {
+		key.add("each appraiser", func(x, y float64) { f.line(Thin, x, y, x+22, y) })
+	}
+	part, outlier := "a part", false
+	if len(shown) < len(d.Points) {
+		part = "parts of like value"
+	}
+	for _, p := range shown {
+		outlier = outlier || p.Outlier
+	}
+	key.add(part, func(x, y float64) {
+		f.Marks = append(f.Marks, Mark{Role: Ink, Dot: &Dot{X: x + 11, Y: y, R: 3.5, Outline: true}})
+	})
+	if outlier {
+		key.add("does not fit the curve", func(x, y float64) {
+			f.Marks = append(f.Marks, Mark{Role: Wrong, Dot: &Dot{X: x + 11, Y: y, R: 3.5, Outline: true}, Heavy: true})
+		})
+	}
+	if len(d.Zones) > 0 {
+		key.add("grey zone", func(x, y float64) { f.rect(Zone, x, y-6, 22, 12) })
+	}
 
 	mixed := 0
 	for _, p := range d.Points {
@@ -133,4 +147,77 @@ func AcceptanceCurve(d CurveData) *Figure {
 	}
 	f.Alt = strings.TrimSpace(fmt.Sprintf("%d parts, %d of them mixed. %s", len(d.Points), mixed, d.Text))
 	return f
+}
+
+// keyLine explains marks in one line.
+type keyLine struct {
+	f          *Figure
+	x, y, size float64
+}
+
+func (k *keyLine) add(what string, draw func(x, y float64)) {
+	const sample = 28.0
+	draw(k.x, k.y-4)
+	k.f.text(Muted, k.x+sample, k.y, k.size, Start, what)
+	k.x += sample + textWidth(what, k.size) + 14
+}
+
+// bands are the outlines of the band, where there is one.
+func (d CurveData) bands(x, y axis) [][]Point {
+	var out [][]Point
+	var upper, lower []Point
+	end := func() {
+		if len(upper) > 1 {
+			for i := len(lower) - 1; i >= 0; i-- {
+				upper = append(upper, lower[i])
+			}
+			out = append(out, upper)
+		}
+		upper, lower = nil, nil
+	}
+	for i := range d.Low {
+		if !d.Known[i] {
+			end()
+			continue
+		}
+		at := x.at(d.Grid[i])
+		upper, lower = append(upper, Point{at, y.at(d.High[i])}), append(lower, Point{at, y.at(d.Low[i])})
+	}
+	end()
+	return out
+}
+
+// gather puts neighbouring parts together where there are too many to see
+// each. Outliers stay what they are.
+func gather(points []CurvePoint) []CurvePoint {
+	const (
+		most = 150
+		bins = 60
+	)
+	if len(points) <= most {
+		return points
+	}
+	var plain, out []CurvePoint
+	for _, p := range points {
+		if p.Outlier {
+			out = append(out, p)
+		} else {
+			plain = append(plain, p)
+		}
+	}
+	slices.SortStableFunc(plain, func(a, b CurvePoint) int { return cmp.Compare(a.Value, b.Value) })
+	for i := range bins {
+		some := plain[i*len(plain)/bins : (i+1)*len(plain)/bins]
+		if len(some) == 0 {
+			continue
+		}
+		var mean CurvePoint
+		for _, p := range some {
+			mean.Value += p.Value / float64(len(some))
+			mean.Share += p.Share / float64(len(some))
+		}
+		mean.Share = min(mean.Share, 1)
+		out = append(out, mean)
+	}
+	return out
 }

@@ -20,6 +20,7 @@ type Role string
 
 // Roles of marks.
 const (
+	Paper  Role = "paper"  // what it is drawn on
 	Ink    Role = "ink"    // text and axes
 	Muted  Role = "muted"  // lesser text, ticks
 	Rule   Role = "rule"   // thin lines of a grid
@@ -33,6 +34,10 @@ const (
 	Accept Role = "accept" // an accepted call
 	Reject Role = "reject" // a rejected call
 )
+
+// kindRoles are the shades of calls that are kinds or grades, from light to
+// dark.
+var kindRoles = [...]Role{"kind-1", "kind-2", "kind-3", "kind-4", "kind-5", "kind-6"}
 
 // Mark is one thing drawn; exactly one of its shapes is set.
 type Mark struct {
@@ -81,6 +86,7 @@ type Text struct {
 	Size   float64
 	Anchor Anchor
 	Turn   bool // read upwards
+	Halo   bool // on a thin ground of paper, where it lies over lines
 	Text   string
 }
 
@@ -94,10 +100,6 @@ func (f *Figure) outline(role Role, x, y, w, h float64, heavy, dash bool) {
 
 func (f *Figure) line(role Role, x1, y1, x2, y2 float64) {
 	f.Marks = append(f.Marks, Mark{Role: role, Line: &Line{x1, y1, x2, y2}})
-}
-
-func (f *Figure) dashed(role Role, x1, y1, x2, y2 float64) {
-	f.Marks = append(f.Marks, Mark{Role: role, Line: &Line{x1, y1, x2, y2}, Dash: true})
 }
 
 func (f *Figure) dot(role Role, x, y, r float64) {

@@ -1,65 +1,126 @@
 package figure
 
 import (
-	"math"
-	"strconv"
 	"strings"
+	"sync"
 
-	"github.com/jedib0t/go-pretty/v6/text"
+	"codeberg.org/go-fonts/liberation/liberationsansregular"
+	"github.com/rivo/uniseg"
+	"golang.org/x/image/font"
+	"golang.org/x/image/font/sfnt"
+	"golang.org/x/image/math/fixed"
 )
 
-// textWidth bounds the width of a text from above, without knowing the font.
+// typeface is the font that figures are set in: that of the PNG, and the
+// first choice of the SVG, where one with the same or nearly the same widths
+// takes its place.
+var typeface = sync.OnceValue(func() *sfnt.Font {
+	f, err := sfnt.Parse(liberationsansregular.TTF)
+	if err != nil {
+		panic(err) // the font is part of the program
+	}
+	return f
+})
+
+// spare is how much wider than the typeface another sans-serif may run.
+const spare = 1.15
+
+// textWidth bounds the width of a text from above.
 func textWidth(s string, size float64) float64 {
-	const perCell = 0.6 // of the size: Latin letters of a sans-serif are narrower on average
-	return float64(text.StringWidthWithoutEscSequences(s)) * perCell * size
+	w := 0.0
+	for g := uniseg.NewGraphemes(s); g.Next(); {
+		w += clusterWidth(g) * size
+	}
+	return w
+}
+
+// clusterWidth bounds the width of what is read as one character, in ems.
+func clusterWidth(g *uniseg.Graphemes) float64 {
+	w := 0.0
+	for _, r := range g.Runes() {
+		advance, ok := advance(r)
+		if !ok {
+			// Another font sets it: an ideograph fills an em, an emoji some more.
+			return 0.7 * max(1, float64(g.Width()))
+		}
+		w += advance
+	}
+	return w * spare
+}
+
+// advance is the width of a character of the typeface, in ems; false if it
+// has none.
+func advance(r rune) (float64, bool) {
+	const em = 2048
+	var b sfnt.Buffer
+	f := typeface()
+	i, err := f.GlyphIndex(&b, r)
+	if err != nil || i == 0 {
+		return 0, false
+	}
+	a, err := f.GlyphAdvance(&b, i, fixed.I(em), font.HintingNone)
+	if err != nil {
+		return 0, false
+	}
+	return float64(a) / 64 / em, true
 }
 
 // shorten cuts a text to a width, an ellipsis at its end.
 func shorten(s string, size, width float64) string {
-	cells := int(width / (0.6 * size))
-	if cells < 1 {
+	if textWidth(s, size) <= width {
+		return s
+	}
+	const ellipsis = "…"
+	room := width - textWidth(ellipsis, size)
+	if room < 0 {
 		return ""
 	}
-	return text.Snip(s, cells, "…")
-}
-
-// ticks returns round values within a range, some n of them, and the decimals
-// that tell them apart.
-func ticks(low, high float64, n int) (at []float64, decimals int) {
-	if !(high > low) || n < 1 {
-		return nil, 0
-	}
-	raw := (high - low) / float64(n)
-	power := math.Pow(10, math.Floor(math.Log10(raw)))
-	step := 10 * power
-	for _, m := range []float64{1, 2, 5} {
-		if m*power >= raw {
-			step = m * power
+	var out strings.Builder
+	for g := uniseg.NewGraphemes(s); g.Next(); {
+		room -= clusterWidth(g) * size
+		if room < 0 {
 			break
 		}
+		out.WriteString(g.Str())
 	}
-	decimals = max(0, -int(math.Floor(math.Log10(step)+1e-9)))
-	const slack = 1e-9
-	for i := math.Ceil(low/step - slack); i*step <= high+slack*step; i++ {
-		at = append(at, i*step)
-	}
-	return at, decimals
+	return strings.TrimRight(out.String(), " ") + ellipsis
 }
 
-// fixed writes a number with so many decimals and a true minus.
-func fixed(x float64, decimals int) string {
-	if x == 0 {
-		x = 0 // not −0
+// wrap breaks a text into at most so many lines of a width, the last one
+// shortened. A word wider than a line is broken.
+func wrap(s string, size, width float64, lines int) []string {
+	var out []string
+	rest := s
+	for len(out) < lines-1 && textWidth(rest, size) > width {
+		n := lineBreak(rest, size, width)
+		out = append(out, strings.TrimSpace(rest[:n]))
+		rest = strings.TrimSpace(rest[n:])
 	}
-	return strings.Replace(strconv.FormatFloat(x, 'f', decimals, 64), "-", "−", 1)
+	return append(out, shorten(rest, size, width))
 }
 
-// axis maps values to pixels, on a straight line.
-type axis struct{ low, high, from, to float64 }
-
-func (a axis) at(x float64) float64 {
-	return a.from + (x-a.low)/(a.high-a.low)*(a.to-a.from)
+// lineBreak returns how many bytes of a text go on a line: up to where it may
+// be broken last, else as many characters as there is room for, at least one.
+func lineBreak(s string, size, width float64) int {
+	fits, at, may := 0, 0, 0
+	room, state := width, -1
+	for rest := s; len(rest) > 0; {
+		cluster, after, boundaries, next := uniseg.StepString(rest, state)
+		g := uniseg.NewGraphemes(cluster)
+		g.Next()
+		room -= clusterWidth(g) * size
+		if room < 0 && at > 0 && strings.TrimSpace(cluster) != "" {
+			break
+		}
+		at += len(cluster)
+		fits = at
+		if boundaries&uniseg.MaskLine != uniseg.LineDontBreak {
+			may = at
+		}
+		rest, state = after, next
+	}
+	if may > 0 {
+		return may
+	}
+	return fits
 }
-
-// clamp is at for values that may lie beyond the axis.
-func (a axis) clamp(x float64) float64 { return a.at(min(max(x, a.low), a.high)) }

@@ -3,8 +3,12 @@ package figure
 import (
 	"image/color"
 	"io"
+	"math"
 	"strconv"
+	"strings"
 
+	"github.com/rivo/uniseg"
+	"golang.org/x/text/unicode/bidi"
 	"gonum.org/v1/plot/font"
 	"gonum.org/v1/plot/font/liberation"
 	"gonum.org/v1/plot/vg"
@@ -65,7 +69,7 @@ func (c canvas) mark(m Mark) {
 		centre := c.at(m.Dot.X, m.Dot.Y)
 		r := length(m.Dot.R)
 		path.Move(vg.Point{X: centre.X + r, Y: centre.Y})
-		path.Arc(centre, r, 0, 2*3.141592653589793)
+		path.Arc(centre, r, 0, 2*math.Pi)
 		path.Close()
 		if m.Dot.Outline {
 			c.Stroke(path)
@@ -85,14 +89,55 @@ func (c canvas) writing(m Mark) {
 	}
 	face := c.fonts.Lookup(f, f.Size)
 	at := c.at(t.X, t.Y)
-	shift := [...]vg.Length{0, -0.5, -1}[t.Anchor] * face.Width(t.Text)
+	text := visual(t.Text)
+	shift := [...]vg.Length{0, -0.5, -1}[t.Anchor] * face.Width(text)
 	c.Push()
 	c.Translate(at)
 	if t.Turn {
-		c.Rotate(3.141592653589793 / 2)
+		c.Rotate(math.Pi / 2)
 	}
-	c.FillString(face, vg.Point{X: shift}, t.Text)
+	if t.Halo {
+		const wide = 1.2
+		c.SetColor(light(Paper))
+		for i := range 8 {
+			sin, cos := math.Sincos(float64(i) * math.Pi / 4)
+			c.FillString(face, vg.Point{X: shift + length(wide*cos), Y: length(wide * sin)}, text)
+		}
+		c.SetColor(light(m.Role))
+	}
+	c.FillString(face, vg.Point{X: shift}, text)
 	c.Pop()
+}
+
+// visual puts a text in the order in which it is drawn from left to right,
+// and a sign in the place of what the typeface has no letter for.
+func visual(s string) string {
+	var known strings.Builder
+	for g := uniseg.NewGraphemes(s); g.Next(); {
+		if _, ok := advance(g.Runes()[0]); ok {
+			known.WriteString(g.Str())
+		} else {
+			known.WriteString("□")
+		}
+	}
+	var p bidi.Paragraph
+	if _, err := p.SetString(known.String()); err != nil {
+		return known.String()
+	}
+	order, err := p.Order()
+	if err != nil {
+		return known.String()
+	}
+	var out strings.Builder
+	for i := range order.NumRuns() {
+		run := order.Run(i)
+		if run.Direction() == bidi.RightToLeft {
+			out.WriteString(bidi.ReverseString(run.String()))
+		} else {
+			out.WriteString(run.String())
+		}
+	}
+	return out.String()
 }
 
 func (c canvas) polygon(points []Point, closed bool) vg.Path {

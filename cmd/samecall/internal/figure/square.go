@@ -39,13 +39,22 @@ func Square(d SquareData) *Figure {
 		gap          = 3.0
 		split        = 14.0 // before the reference
 		size         = 13.0
-		headH        = 30.0
+		line         = 15.0
 		nameMost     = 150.0
 	)
-	nameW := 40.0
-	for _, name := range d.Names {
-		nameW = max(nameW, min(nameMost, textWidth(name, size)+14))
+	// A row's name stands beside its cell on the diagonal; only that of the
+	// first row needs room at the side, those below have more and more.
+	nameW := 0.0
+	for a, name := range d.Names {
+		nameW = max(nameW, min(nameMost, textWidth(name, size)+14)-float64(a)*(cellW+gap))
 	}
+	headLines := 1
+	heads := make([][]string, n)
+	for a, name := range d.Names {
+		heads[a] = wrap(name, size, cellW, 3)
+		headLines = max(headLines, len(heads[a]))
+	}
+	headH := 14 + line*float64(headLines)
 	columns := n
 	width := nameW + float64(n)*(cellW+gap)
 	if d.Reference != nil {
@@ -61,16 +70,19 @@ func Square(d SquareData) *Figure {
 		return x
 	}
 	for b := range columns {
-		head := "reference"
+		head := []string{"reference"}
 		if b < n {
-			head = d.Names[b]
+			head = heads[b]
 		}
-		f.text(Muted, left(b)+cellW/2, headH-10, size, Middle, shorten(head, size, cellW))
+		for i, s := range head {
+			f.text(Muted, left(b)+cellW/2, headH-10-line*float64(len(head)-1-i), size, Middle, s)
+		}
 	}
 	var alt []string
 	for a, name := range d.Names {
 		top := headH + float64(a)*(cellH+gap)
-		f.text(Ink, nameW-10, top+cellH/2+size/3, size, End, shorten(name, size, nameW-10))
+		end := left(a) - 10
+		f.text(Ink, end, top+cellH/2+size/3, size, End, shorten(name, size, end-2))
 		for b := a; b < columns; b++ {
 			c := Cell{}
 			what := name + " with itself"

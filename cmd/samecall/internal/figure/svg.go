@@ -6,6 +6,7 @@ import (
 	"io"
 	"strconv"
 	"strings"
+	"unicode"
 )
 
 // palette gives each role its fill or stroke, in light and in dark.
@@ -13,6 +14,7 @@ var palette = []struct {
 	role        Role
 	light, dark string
 }{
+	{Paper, "#ffffff", "#15181d"},
 	{Ink, "#1b1f24", "#e8eaed"},
 	{Muted, "#57606a", "#a8b0b9"},
 	{Rule, "#d0d7de", "#3d444d"},
@@ -25,6 +27,12 @@ var palette = []struct {
 	{Thin, "#7aa7cc", "#4f86b3"},
 	{Accept, "#d6e6f4", "#2b4963"},
 	{Reject, "#6d7b88", "#8a97a5"},
+	{kindRoles[0], "#dfeaf4", "#22384b"},
+	{kindRoles[1], "#bdd2e4", "#2f5070"},
+	{kindRoles[2], "#97b4cc", "#4a6d8c"},
+	{kindRoles[3], "#7592ad", "#6f8da8"},
+	{kindRoles[4], "#56708a", "#97aec2"},
+	{kindRoles[5], "#3b4f62", "#c3d0db"},
 }
 
 // Style is the style sheet of figures, for a page that holds them.
@@ -36,7 +44,9 @@ func Style() string {
 	}
 	var s strings.Builder
 	fmt.Fprintf(&s, ":root{%s}\n@media screen and (prefers-color-scheme:dark){:root{%s}}\n", light.String(), dark.String())
-	s.WriteString("svg.figure{font-family:system-ui,'Liberation Sans',Arial,sans-serif}\n")
+	// Fonts as wide as the one that places were measured with come first.
+	s.WriteString("svg.figure{font-family:'Liberation Sans',Arimo,Arial,Helvetica,system-ui,sans-serif}\n")
+	fmt.Fprintf(&s, "svg.figure .halo{paint-order:stroke;stroke:var(--f-%s);stroke-width:3px;stroke-linejoin:round}\n", Paper)
 	for _, p := range palette {
 		fmt.Fprintf(&s, ".f-%s{fill:var(--f-%s)}.s-%s{stroke:var(--f-%s);fill:none}\n", p.role, p.role, p.role, p.role)
 	}
@@ -60,6 +70,9 @@ func (f *Figure) markup(alone bool) string {
 	fmt.Fprintf(&s, "\n<title id=\"%s-title\">%s</title>\n<desc id=\"%s-desc\">%s</desc>\n", id, escape(f.Title), id, escape(f.Alt))
 	if alone {
 		fmt.Fprintf(&s, "<style>%s</style>\n", Style())
+		// A viewer's own ground may be light or dark; the texts are not for both.
+		Mark{Role: Paper, Rect: &Rect{W: f.Width, H: f.Height}}.markup(&s)
+		s.WriteByte('\n')
 	}
 	for _, m := range f.Marks {
 		m.markup(&s)
@@ -103,8 +116,12 @@ func (m Mark) markup(s *strings.Builder) {
 		if m.Heavy {
 			weight = ` font-weight="600"`
 		}
-		fmt.Fprintf(s, `<text %s x="%s" y="%s" font-size="%s" text-anchor="%s"%s%s>%s</text>`,
-			fill, num(t.X), num(t.Y), num(t.Size), [...]string{"start", "middle", "end"}[t.Anchor], weight, turn, escape(t.Text))
+		class := "f-" + string(m.Role)
+		if t.Halo {
+			class += " halo"
+		}
+		fmt.Fprintf(s, `<text class="%s" x="%s" y="%s" font-size="%s" text-anchor="%s"%s%s>%s</text>`,
+			class, num(t.X), num(t.Y), num(t.Size), [...]string{"start", "middle", "end"}[t.Anchor], weight, turn, escape(t.Text))
 	}
 }
 
@@ -136,4 +153,14 @@ func num(x float64) string {
 	return s
 }
 
-func escape(s string) string { return html.EscapeString(s) }
+// escape makes a text safe for SVG alone and in a page: markup is text, and
+// characters that XML does not have are made visible.
+func escape(s string) string {
+	return html.EscapeString(strings.Map(func(r rune) rune {
+		switch {
+		case r < ' ' && r != '\t' && r != '\n' && r != '\r', r == '\ufffe', r == '\uffff':
+			return unicode.ReplacementChar
+		}
+		return r
+	}, s))
+}

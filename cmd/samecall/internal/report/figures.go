@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"samecall/agreement"
 	"samecall/cmd/samecall/internal/figure"
@@ -80,64 +81,128 @@ func planeFigure(r *Record) *figure.Figure {
 	return figure.Plane(d)
 }
 
-// mostMapParts is how many parts a call map shows; of more, those with a
-// wrong or mixed call, up to as many.
-const mostMapParts = 300
+// How much a call map shows: of more parts those with most wrong or mixed
+// calls, of more appraisers those with most wrong calls.
+const (
+	mostMapParts      = 300
+	mostMapAppraisers = 24
+)
 
 func mapFigure(r *Record) *figure.Figure {
 	order, how := mapOrder(r)
-	left := 0
-	if len(order) > mostMapParts {
-		kept := slices.DeleteFunc(slices.Clone(order), func(part int) bool { return !doubtful(r, part) })
-		if len(kept) > mostMapParts {
-			kept = kept[:mostMapParts]
+	shown := chosenParts(r, order)
+	who := chosenAppraisers(r)
+	d := figure.MapData{Order: how, Left: leftOut(r, len(shown), len(who))}
+	if !r.Study.Ratings.HasAccept() {
+		for _, k := range r.Study.Categories {
+			d.Kinds = append(d.Kinds, format.Plain(k))
 		}
-		left = len(order) - len(kept)
-		order = kept
 	}
-	d := figure.MapData{Order: how, Left: left}
-	for _, part := range order {
+	for _, part := range shown {
 		d.Parts = append(d.Parts, format.Plain(r.Study.Parts[part]))
 	}
 	s := r.Study.Ratings
-	for a, name := range r.Study.Appraisers {
-		m := figure.MapAppraiser{Name: format.Plain(name), Mixed: len(r.Agreement.Within[a].Mixed)}
+	for _, a := range who {
+		m := figure.MapAppraiser{Name: format.Plain(r.Study.Appraisers[a]), Text: format.Counted(len(r.Agreement.Within[a].Mixed), "mixed part")}
+		if r.Agreement.All != nil {
+			m.Text = format.Counted(wrongCalls(r, a), "wrong call") + ", " + m.Text
+		}
 		for t := range s.Trials(a) {
-			row := make([]figure.Call, len(order))
-			for i, part := range order {
+			row := make([]figure.Call, len(shown))
+			for i, part := range shown {
 				row[i] = mapCall(r, s.Calls(part, a)[t], s.Reference(part))
 			}
 			m.Calls = append(m.Calls, row)
 		}
-		if r.Agreement.All != nil {
-			calls, right := r.Agreement.Against[a].Table.Total()
-			m.Wrong = calls - right
-		}
 		d.Appraisers = append(d.Appraisers, m)
 	}
-	d.Limits, d.Zones = mapLimits(r, order, left > 0)
+	d.Groups = mapGroups(r, shown)
+	d.Limits, d.Zones = mapLimits(r, shown, len(shown) < len(order))
 	return figure.CallMap(d)
+}
+
+// chosenParts are the parts that a call map shows, in the order given.
+func chosenParts(r *Record, order []int) []int {
+	if len(order) <= mostMapParts {
+		return order
+	}
+	worst := slices.Clone(order)
+	doubt := make([]int, len(r.Study.Parts))
+	for _, part := range order {
+		doubt[part] = doubtful(r, part)
+	}
+	slices.SortStableFunc(worst, func(a, b int) int { return cmp.Compare(doubt[b], doubt[a]) })
+	keep := make(map[int]bool, mostMapParts)
+	for _, part := range worst[:mostMapParts] {
+		keep[part] = true
+	}
+	return slices.DeleteFunc(slices.Clone(order), func(part int) bool { return !keep[part] })
+}
+
+// chosenAppraisers are the appraisers that a call map shows.
+func chosenAppraisers(r *Record) []int {
+	all := make([]int, len(r.Study.Appraisers))
+	for a := range all {
+		all[a] = a
+	}
+	if len(all) <= mostMapAppraisers {
+		return all
+	}
+	slices.SortStableFunc(all, func(a, b int) int { return cmp.Compare(mapDoubt(r, b), mapDoubt(r, a)) })
+	all = all[:mostMapAppraisers]
+	slices.Sort(all)
+	return all
+}
+
+// mapDoubt counts wrong calls or, without a reference, mixed parts.
+func mapDoubt(r *Record, a int) int {
+	if r.Agreement.All != nil {
+		return wrongCalls(r, a)
+	}
+	return len(r.Agreement.Within[a].Mixed)
+}
+
+func wrongCalls(r *Record, a int) int {
+	calls, right := r.Agreement.Against[a].Table.Total()
+	return calls - right
+}
+
+// leftOut says what a call map does not show; empty if it shows everything.
+func leftOut(r *Record, parts, appraisers int) string {
+	var out []string
+	if parts < len(r.Study.Parts) {
+		out = append(out, fmt.Sprintf("the %s with most wrong or mixed calls of %s", format.Counted(parts, "part"), format.Count(len(r.Study.Parts))))
+	}
+	if appraisers < len(r.Study.Appraisers) {
+		out = append(out, fmt.Sprintf("the %s with most of them of %s", format.Counted(appraisers, "appraiser"), format.Count(len(r.Study.Appraisers))))
+	}
+	return strings.Join(out, "; ")
 }
 
 func mapCall(r *Record, call, ref agreement.Category) figure.Call {
 	s := r.Study.Ratings
+	wrong := ref != agreement.Missing && call != ref
 	switch {
 	case call == agreement.Missing:
 		return figure.NoCall
-	case ref != agreement.Missing && call != ref && s.HasAccept() && s.Accepts(call) && !s.Accepts(ref):
+	case wrong && s.HasAccept() && s.Accepts(call) && !s.Accepts(ref):
 		return figure.WronglyAccepted
-	case ref != agreement.Missing && call != ref && s.HasAccept() && !s.Accepts(call) && s.Accepts(ref):
+	case wrong && s.HasAccept() && !s.Accepts(call) && s.Accepts(ref):
 		return figure.WronglyRejected
-	case ref != agreement.Missing && call != ref:
+	case wrong:
 		return figure.OtherWrong
-	case s.Accepts(call) || !s.HasAccept():
+	case !s.HasAccept():
+		return figure.Kind + figure.Call(call)
+	case s.Accepts(call):
 		return figure.Accepted
 	}
 	return figure.Rejected
 }
 
-// doubtful reports whether a call on a part is wrong or differs from another.
-func doubtful(r *Record, part int) bool {
+// doubtful counts the calls on a part that are wrong or, without a reference,
+// differ from the first.
+func doubtful(r *Record, part int) int {
+	n := 0
 	ref := r.Study.Ratings.Reference(part)
 	for _, c := range r.Study.Ratings.Row(part) {
 		if c == agreement.Missing {
@@ -147,24 +212,34 @@ func doubtful(r *Record, part int) bool {
 			ref = c
 		}
 		if c != ref {
-			return true
+			n++
 		}
 	}
-	return false
+	return n
 }
 
 // mapOrder orders the parts: by value, else bad ones before good ones, each
-// by the share of accepted calls.
+// by the share of accepted calls, else by kind, each by how mixed.
 func mapOrder(r *Record) (order []int, how string) {
 	order = make([]int, len(r.Study.Parts))
 	for i := range order {
 		order[i] = i
 	}
-	if r.Study.Values != nil {
+	s := r.Study.Ratings
+	switch {
+	case r.Study.Values != nil:
 		slices.SortStableFunc(order, func(a, b int) int { return cmp.Compare(sortValue(r, a), sortValue(r, b)) })
 		return order, "in order of value, from low to high"
+	case !s.HasAccept():
+		how = "by their most frequent call, each by how many calls differ"
+		if r.Agreement.All != nil {
+			how = "by what they truly are, each by how many calls are wrong"
+		}
+		slices.SortStableFunc(order, func(a, b int) int {
+			return cmp.Or(cmp.Compare(kindOf(r, a), kindOf(r, b)), cmp.Compare(differing(r, a), differing(r, b)))
+		})
+		return order, how
 	}
-	s := r.Study.Ratings
 	accepted := make([]float64, len(order))
 	for part := range order {
 		n, yes := 0, 0
@@ -183,10 +258,64 @@ func mapOrder(r *Record) (order []int, how string) {
 	slices.SortStableFunc(order, func(a, b int) int {
 		return cmp.Or(cmp.Compare(rank(r, a), rank(r, b)), cmp.Compare(accepted[a], accepted[b]))
 	})
-	if r.Agreement.All != nil && s.HasAccept() {
+	if r.Agreement.All != nil {
 		return order, "bad ones, then good ones, each by how often they were accepted"
 	}
 	return order, "by how often they were accepted"
+}
+
+// kindOf is the reference of a part or, without one, its most frequent call.
+func kindOf(r *Record, part int) int {
+	s := r.Study.Ratings
+	if ref := s.Reference(part); ref != agreement.Missing {
+		return int(ref)
+	}
+	if r.Agreement.All != nil {
+		return len(r.Study.Categories) // parts without a reference last
+	}
+	counts := make([]int, len(r.Study.Categories)+1)
+	best := len(r.Study.Categories) // of a part without calls
+	for _, c := range s.Row(part) {
+		if c != agreement.Missing {
+			counts[c]++
+			if counts[c] > counts[best] || counts[c] == counts[best] && int(c) < best {
+				best = int(c)
+			}
+		}
+	}
+	return best
+}
+
+// differing counts the calls on a part that are not of its kind.
+func differing(r *Record, part int) int {
+	n, kind := 0, kindOf(r, part)
+	for _, c := range r.Study.Ratings.Row(part) {
+		if c != agreement.Missing && int(c) != kind {
+			n++
+		}
+	}
+	return n
+}
+
+// mapGroups names the kinds over parts that are ordered by them; nil where
+// parts are ordered otherwise.
+func mapGroups(r *Record, order []int) []figure.MapGroup {
+	if r.Study.Values != nil || r.Study.Ratings.HasAccept() {
+		return nil
+	}
+	var out []figure.MapGroup
+	for i, part := range order {
+		kind := kindOf(r, part)
+		if i == 0 || kind != kindOf(r, order[i-1]) {
+			name := ""
+			if kind < len(r.Study.Categories) {
+				name = format.Plain(r.Study.Categories[kind])
+			}
+			out = append(out, figure.MapGroup{Name: name, From: i})
+		}
+		out[len(out)-1].Till = i + 1
+	}
+	return out
 }
 
 // sortValue puts parts without a value last.
@@ -220,6 +349,11 @@ func mapLimits(r *Record, order []int, cut bool) (limits []figure.MapLimit, zone
 		return i
 	}
 	if r.Study.Values == nil {
+		for i, g := range mapGroups(r, order) {
+			if i > 0 {
+				limits = append(limits, figure.MapLimit{Before: g.From})
+			}
+		}
 		if r.Agreement.All != nil && r.Study.Ratings.HasAccept() {
 			limits = append(limits, figure.MapLimit{Name: "bad | good", Before: first(func(p int) bool { return rank(r, p) > 0 })})
 		}
@@ -267,7 +401,7 @@ func curveFigure(r *Record) *figure.Figure {
 	}
 	all := r.Zone.Curves
 	scale := r.Scale()
-	d := figure.CurveData{Unit: format.Plain(scale.Unit), Decimals: scale.Decimals, Text: curveText(r)}
+	d := figure.CurveData{Unit: format.Plain(scale.Unit), Text: curveText(r)}
 	low, high := math.Inf(1), math.Inf(-1)
 	for _, p := range all.Pooled.Parts {
 		low, high = min(low, p.Value), max(high, p.Value)
@@ -285,6 +419,7 @@ func curveFigure(r *Record) *figure.Figure {
 		band := all.Pooled.Band(x)
 		d.Grid = append(d.Grid, x)
 		d.Fit = append(d.Fit, all.Pooled.Accept(x))
+		d.Known = append(d.Known, band.HasLower || band.HasUpper)
 		lower, upper := 0.0, 1.0
 		if band.HasLower {
 			lower = band.Lower
