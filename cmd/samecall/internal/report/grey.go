@@ -91,11 +91,11 @@ func greyLimitsTable(g *judge.Grey) Table {
 		{"cut: accepted half of the time", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Cut, s.Value) }},
 		{"cut less limit", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Offset, s.Signed) }},
 		{"σ", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Sigma, s.Value) }},
-		{"grey zone from (0.5 %)", func(l judge.GreyLimit) Cell { return valueCell(s.Value(l.Curve.From), l.Curve.From) }},
-		{"to (99.5 %)", func(l judge.GreyLimit) Cell { return valueCell(s.Value(l.Curve.To), l.Curve.To) }},
-		{"wide", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Width, s.Value) }},
+		{"grey zone from", func(l judge.GreyLimit) Cell { return zoneEnd(s, l.Curve, l.Curve.From) }},
+		{"grey zone to", func(l judge.GreyLimit) Cell { return zoneEnd(s, l.Curve, l.Curve.To) }},
+		{"wide", func(l judge.GreyLimit) Cell { return zoneWidth(s, l.Curve, true) }},
 		{"of tolerance", func(l judge.GreyLimit) Cell {
-			if !l.Curve.HasShare {
+			if !l.Curve.HasShare || l.Curve.Status != signal.Fitted {
 				return say(format.Dash)
 			}
 			return boundedCell(s, l.Curve.Share, format.Percent)
@@ -120,10 +120,36 @@ func greyLimitsTable(g *judge.Grey) Table {
 		t.Rows = append(t.Rows, cells)
 	}
 	for _, l := range g.Limits {
-		t.Columns = append(t.Columns, Column{Name: l.Side.String(), Numbers: true})
+		name := l.Side.String()
+		if l.Curve.Known() && l.Curve.Status != signal.Fitted {
+			name += ", bias-reduced"
+		}
+		t.Columns = append(t.Columns, Column{Name: name, Numbers: true})
 	}
-	t.Note = fmt.Sprintf("In brackets the %s interval, by profile likelihood.", format.Percent(g.Result.Options.Confidence))
+	t.Note = fmt.Sprintf("The grey zone runs from 0.5 to 99.5 %% acceptance. In brackets the %s interval, by profile likelihood.", format.Percent(g.Result.Options.Confidence))
 	return t
+}
+
+// zoneEnd is an end of the grey zone; without mixed parts it is not known.
+func zoneEnd(s format.Scale, l *signal.LimitFit, x float64) Cell {
+	if l.Status != signal.Fitted {
+		return say(format.Dash)
+	}
+	return valueCell(s.Value(x), x)
+}
+
+// zoneWidth is the width of the grey zone; without mixed parts, the gap that
+// it is narrower than.
+func zoneWidth(s format.Scale, l *signal.LimitFit, interval bool) Cell {
+	switch gap := l.Gap; {
+	case l.Status != signal.Fitted && gap != nil && gap.HasReject && gap.HasAccept:
+		return say("under " + s.Value(math.Abs(gap.Accept-gap.Reject)))
+	case l.Status != signal.Fitted:
+		return say(format.Dash)
+	case interval:
+		return boundedCell(s, l.Width, s.Value)
+	}
+	return valueCell(s.Value(l.Width.Value), l.Width.Value)
 }
 
 // greyMethodsTable sets the unanimous zone beside that of the curve.
@@ -157,7 +183,7 @@ func greyMethodsTable(g *judge.Grey) Table {
 			if l.Side == signal.Upper {
 				from, to = to, from
 			}
-			add(l.Side.String(), "curve", value(from), value(to), value(c.Width.Value), value(c.SD), grr(l.HasTolerance, l.PercentGRR[1]))
+			add(l.Side.String(), "curve", zoneEnd(s, c, from), zoneEnd(s, c, to), zoneWidth(s, c, false), value(c.SD), grr(l.HasTolerance, l.PercentGRR[1]))
 		} else {
 			add(l.Side.String(), "curve", none, none, none, none, none)
 		}
@@ -178,6 +204,7 @@ func WhyTheyDiffer(g *judge.Grey) []string {
 	const alike = 0.1 // of the curve's width
 	s := g.Result.Scale()
 	var out []string
+	compared := false
 	for _, l := range g.Limits {
 		at := "At the " + l.Side.String() + " limit "
 		z := l.Unanimous
@@ -186,11 +213,13 @@ func WhyTheyDiffer(g *judge.Grey) []string {
 			out = append(out, at+"there is no unanimous zone: "+z.Why+".")
 			continue
 		case !l.Curve.Known():
+			out = append(out, at+"the curve has no cut: "+whyNoCut(g, l)+".")
 			continue
 		case z.Mixed == 0:
 			out = append(out, at+"no part is mixed: the unanimous zone is only the gap between two neighbouring parts, and the true zone is narrower.")
 			continue
 		}
+		compared = true
 		switch ratio := z.Width / l.Curve.Width.Value; {
 		case ratio > 1+alike && l.Outermost >= 0:
 			p := g.Parts[l.Outermost]
@@ -204,10 +233,17 @@ func WhyTheyDiffer(g *judge.Grey) []string {
 			out = append(out, at+"the two agree.")
 		}
 	}
-	if len(out) > 0 && g.Result.Zone.Curves != nil {
+	if compared {
 		out = append(out, "The unanimous zone rests on two parts at a limit and grows with every call made; the curve uses all calls and has an interval.")
 	}
 	return out
+}
+
+func whyNoCut(g *judge.Grey, l judge.GreyLimit) string {
+	if l.Curve == nil {
+		return g.Result.Zone.NoCurve.Error()
+	}
+	return l.Curve.Why
 }
 
 // manyRows is how many parts are listed near the limits.
@@ -232,12 +268,12 @@ func greyPartsTable(g *judge.Grey, every bool) Table {
 	finer := s
 	finer.Decimals++
 	written := format.Alike(values...)
-	left, cut := 0, 0
+	left, more := 0, 0
 	for i, r := range g.Rows {
 		switch {
 		case every || r.Matters && len(t.Rows) < manyRows:
 		case r.Matters:
-			cut++
+			more++
 			continue
 		default:
 			left++
@@ -253,14 +289,18 @@ func greyPartsTable(g *judge.Grey, every bool) Table {
 		if !limits.Inside(r.Value) {
 			notes = append(notes, "bad")
 		}
+		change, log := r.CutChange[r.Side], r.LogSigmaChange[r.Side]
+		cut, sigma := say(format.Dash), say(format.Dash)
+		if change != 0 || log != 0 { // a limit without mixed parts has no such fit
+			cut, sigma = valueCell(finer.Signed(change), change), valueCell(changePercent(log), math.Expm1(log))
+		}
 		t.Rows = append(t.Rows, []Cell{say(r.Name), valueCell(written[i], r.Value), valueCell(fmt.Sprintf("%d of %d", r.Accepted, r.Calls), r.Accepted),
 			valueCell(format.Percent(r.Fitted), r.Fitted), valueCell(signedFigure(r.Residual), r.Residual),
-			valueCell(finer.Signed(r.CutChange[r.Side]), r.CutChange[r.Side]), valueCell(changePercent(r.LogSigmaChange[r.Side]), math.Expm1(r.LogSigmaChange[r.Side])),
-			say(strings.Join(notes, ", "))})
+			cut, sigma, say(strings.Join(notes, ", "))})
 	}
 	notes := []string{"Residual: how far the calls lie from the fitted share, beyond ±2 is much. Without it: by how much cut and σ would change if the part were left out."}
-	if cut > 0 {
-		notes = append(notes, fmt.Sprintf("%s more are near the limits too; --every-part lists all.", format.Counted(cut, "part")))
+	if more > 0 {
+		notes = append(notes, fmt.Sprintf("%s more near the limits; --every-part lists all.", format.Counted(more, "part")))
 	}
 	if left > 0 {
 		notes = append(notes, fmt.Sprintf("%s far from the limits, called as the curve expects, left out; --every-part lists them.", format.Counted(left, "part")))
@@ -345,9 +385,9 @@ func greyFit(g *judge.Grey) []string {
 		if l.Curve == nil || l.Curve.Status == signal.Fitted || l.Curve.Why == "" {
 			continue
 		}
-		text := "At the " + l.Side.String() + " limit: " + l.Curve.Why + "."
+		text := sentence(l.Curve.Why)
 		if gap := l.Curve.Gap; gap != nil && gap.HasReject && gap.HasAccept {
-			text += fmt.Sprintf(" The gap runs from %s (always rejected) to %s (always accepted); the grey zone is narrower. Cut and σ above are the bias-reduced ones, and say little: parts inside the gap would tell more.",
+			text += fmt.Sprintf(" The gap runs from %s (always rejected) to %s (always accepted). Cut and σ there are bias-reduced and say little; parts inside the gap would tell more.",
 				s.Value(gap.Reject), s.Value(gap.Accept))
 		}
 		out = append(out, text)
@@ -368,7 +408,7 @@ func greyFit(g *judge.Grey) []string {
 	case !l.Tested:
 		out = append(out, "Lack of fit is not tested: "+l.Why+".")
 	case l.Applied:
-		out = append(out, fmt.Sprintf("The parts scatter about the curve more than calls by chance would (X² %.1f on %d degrees of freedom, p %s): parts differ by more than their value. The intervals are widened by the factor %.2f.", l.X2, l.DF, format.Probability(l.P), l.Factor))
+		out = append(out, fmt.Sprintf("The parts scatter about the curve more than calls by chance would (X² %.1f on %d degrees of freedom, p %s): parts differ by more than their value. The intervals are widened by the root of the factor %.2f.", l.X2, l.DF, format.Probability(l.P), l.Factor))
 	default:
 		out = append(out, fmt.Sprintf("The parts scatter about the curve as calls by chance would (X² %.1f on %d degrees of freedom, p %s).", l.X2, l.DF, format.Probability(l.P)))
 	}
@@ -377,6 +417,9 @@ func greyFit(g *judge.Grey) []string {
 		if err != nil {
 			out = append(out, fmt.Sprintf("%s has no curve of its own: %s.", g.Result.Study.Appraisers[a], err))
 		}
+	}
+	if len(g.Members) == 0 {
+		out = append(out, "With the gauge's calibrated sizes (gauge_sizes in the study file, or --gauge-sizes-lower and --gauge-sizes-upper) zone says whether they explain where the cuts lie.")
 	}
 	return out
 }
@@ -428,9 +471,6 @@ func greyMembersTable(g *judge.Grey) Table {
 func greyMembers(g *judge.Grey) []string {
 	s := g.Result.Scale()
 	var out []string
-	if len(g.Members) == 0 && curveOf(g) != nil {
-		return []string{"With the gauge's calibrated sizes (gauge_sizes in the study file, or --gauge-sizes-lower and --gauge-sizes-upper) zone says whether they explain where the cuts lie."}
-	}
 	for _, m := range g.Members {
 		at := "At the " + m.Member.Side.String() + " limit "
 		if m.Error != nil {

@@ -25,7 +25,14 @@ func Risk(w io.Writer, r *judge.Risks, of *Record, term Terminal) error {
 	p.wrap("Process, assumed: "+processText(r)+".", "  ")
 	p.wrap("Inspection: "+gaugeText(r)+".", "  ")
 	p.table(riskTable(r))
-	p.table(guardTable(r))
+	guards := guardTable(r)
+	if guards.width(guards.fit(term.Width)) > term.Width { // the least needed column gives way
+		guards.Columns = guards.Columns[:len(guards.Columns)-1]
+		for i, row := range guards.Rows {
+			guards.Rows[i] = row[:len(guards.Columns)]
+		}
+	}
+	p.table(guards)
 	if found := riskFound(r); len(found) > 0 {
 		p.line("")
 		for _, f := range found {
@@ -93,7 +100,7 @@ func riskTable(r *judge.Risks) Table {
 	t := Table{Name: "risk", Title: "What the inspection does to this process", Columns: []Column{{Name: "share", Long: true}, {Name: "in all", Numbers: true}}}
 	both := r.Limits.HasLower && r.Limits.HasUpper
 	if both {
-		t.Columns = append(t.Columns, Column{Name: "at the lower limit", Numbers: true}, Column{Name: "at the upper limit", Numbers: true})
+		t.Columns = append(t.Columns, Column{Name: "at lower limit", Numbers: true}, Column{Name: "at upper limit", Numbers: true})
 	}
 	add := func(name string, cells ...Cell) {
 		for len(cells) < len(t.Columns)-1 {
@@ -227,7 +234,7 @@ func riskWarnings(r *judge.Risks) []string {
 	out = append(out, curveWarnings(c.Warnings)...)
 	for _, l := range []*signal.LimitFit{c.Lower, c.Upper} {
 		if l != nil && l.Status != signal.Fitted && l.Why != "" {
-			out = append(out, "At the "+l.Side.String()+" limit: "+l.Why+". The risk there rests on a bias-reduced curve.")
+			out = append(out, sentence(l.Why)+" The risk there rests on a bias-reduced curve.")
 		}
 	}
 	for _, i := range c.Outliers {
