@@ -110,7 +110,7 @@ func TestPartsWithoutError(t *testing.T) {
 		if 10+c.More != want {
 			t.Errorf("rate %v at %v: %d more than 10, want %d in all", rate, confidence, c.More, want)
 		}
-		if say := fmt.Sprintf("%d bad parts more without an error would show it", c.More); !strings.Contains(c.open(), say) {
+		if say := fmt.Sprintf("%d bad parts more without an error would settle it", c.More); !strings.Contains(c.open(), say) {
 			t.Errorf("%q lacks %q", c.open(), say)
 		}
 	}

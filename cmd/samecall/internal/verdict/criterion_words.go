@@ -86,22 +86,16 @@ func (c Criterion) claim() string {
 	return met + " " + c.Level(c.Against)
 }
 
-// shown is what the data show or would show: what Text says last.
-func (c Criterion) shown() string {
-	if c.Met == Conditional {
-		return "that it is " + c.claim()
-	}
-	return "it"
-}
-
 // EvidenceText says what the data show of it and, where that is open, what
 // would settle it.
 func (c Criterion) EvidenceText() string {
 	switch {
 	case c.Met == NotShown:
 		return ""
+	case c.Evidence != Open && c.Met == Conditional:
+		return "The data show that it is " + c.claim() + "."
 	case c.Evidence != Open:
-		return "The data show " + c.shown() + "."
+		return "The data show it."
 	}
 	return "Open: " + c.open() + "."
 }
@@ -121,9 +115,9 @@ func (c Criterion) open() string {
 	}
 	switch {
 	case c.More > 0 && c.errorFree():
-		return text + fmt.Sprintf("%s more without an error would show %s", format.Counted(c.More, c.Kind), c.shown())
+		return text + fmt.Sprintf("%s more without an error would settle it", format.Counted(c.More, c.Kind))
 	case c.More > 0:
-		return text + fmt.Sprintf("%s more at this %s would show %s", format.Counted(c.More, c.Kind), c.measure(), c.shown())
+		return text + fmt.Sprintf("%s more at this %s would settle it", format.Counted(c.More, c.Kind), c.measure())
 	case c.errorFree(): // and the level leaves no room for an error
 		return text + "no number of parts can show that it is " + c.claim()
 	case c.Estimate.Value == c.Against:

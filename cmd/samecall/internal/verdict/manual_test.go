@@ -62,7 +62,7 @@ func TestManualsEvidence(t *testing.T) {
 		if want := 1 - math.Pow(0.05, 1.0/16); math.Abs(miss.Best-want) > 1e-12 {
 			t.Errorf("%s: 16 bad parts can show %v, want %v", a.Name, miss.Best, want)
 		}
-		for _, want := range []string{"Open: 16 bad parts cannot show less than 17.1 %", " would show it."} {
+		for _, want := range []string{"Open: 16 bad parts cannot show less than 17.1 %", " would settle it."} {
 			if got := miss.EvidenceText(); !strings.Contains(got, want) {
 				t.Errorf("%s: %q lacks %q", a.Name, got, want)
 			}

@@ -65,10 +65,16 @@ func patterns(r *judge.Result, without []farPart) (each []pattern, together patt
 		var all tally
 		for a := range each {
 			t := count(s, s.Calls(part, a), ref)
+			if all.calls += t.calls; t.wrong == 0 { // most parts, in a large study
+				continue
+			}
 			each[a].add(part, t)
-			all.add(t)
+			all.wrong += t.wrong
+			all.ways.add(t.ways)
 		}
-		together.add(part, all)
+		if all.wrong > 0 {
+			together.add(part, all)
+		}
 	}
 	return each, together
 }
@@ -99,12 +105,6 @@ func count(s *agreement.Ratings, calls []agreement.Category, ref agreement.Categ
 		}
 	}
 	return t
-}
-
-func (t *tally) add(o tally) {
-	t.calls += o.calls
-	t.wrong += o.wrong
-	t.ways.add(o.ways)
 }
 
 func (w *ways) add(o ways) {

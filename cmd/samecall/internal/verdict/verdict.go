@@ -1,9 +1,6 @@
 package verdict
 
 import (
-	"cmp"
-	"slices"
-
 	"samecall/agreement"
 	"samecall/agreement/interval"
 	"samecall/cmd/samecall/internal/judge"
@@ -104,44 +101,54 @@ func wrongByPart(r *judge.Result, a int) (bad, good []interval.Cluster) {
 	if !s.HasAccept() {
 		return nil, nil
 	}
-	type key struct {
-		good          bool
-		calls, events int
-	}
-	parts := make(map[key]int)
+	// parts[good or bad][calls][events], made as they occur
+	var parts [2][][]int
 	for part := range s.Parts() {
 		ref := s.Reference(part)
 		if ref == agreement.Missing {
 			continue
 		}
-		k := key{good: s.Accepts(ref)}
+		accept := s.Accepts(ref)
+		calls, events := 0, 0
 		for _, call := range s.Calls(part, a) {
 			if call == agreement.Missing {
 				continue
 			}
-			k.calls++
-			if s.Accepts(call) != k.good {
-				k.events++
+			calls++
+			if call != ref && s.Accepts(call) != accept {
+				events++
 			}
 		}
-		if k.calls > 0 {
-			parts[k]++
+		if calls == 0 {
+			continue
+		}
+		kind := 0
+		if accept {
+			kind = 1
+		}
+		if parts[kind] == nil {
+			parts[kind] = make([][]int, s.Trials(a)+1)
+		}
+		if parts[kind][calls] == nil {
+			parts[kind][calls] = make([]int, calls+1)
+		}
+		parts[kind][calls][events]++
+	}
+	return clusters(parts[0]), clusters(parts[1])
+}
+
+// clusters lists how many parts had so many events in so many calls, fewest
+// calls first: sums over them depend on the order.
+func clusters(parts [][]int) []interval.Cluster {
+	var out []interval.Cluster
+	for calls, byEvents := range parts {
+		for events, n := range byEvents {
+			if n > 0 {
+				out = append(out, interval.Cluster{Events: events, Calls: calls, Parts: n})
+			}
 		}
 	}
-	for k, n := range parts {
-		c := interval.Cluster{Calls: k.calls, Events: k.events, Parts: n}
-		if k.good {
-			good = append(good, c)
-		} else {
-			bad = append(bad, c)
-		}
-	}
-	for _, clusters := range [][]interval.Cluster{bad, good} { // sums depend on the order
-		slices.SortFunc(clusters, func(x, y interval.Cluster) int {
-			return cmp.Or(cmp.Compare(x.Calls, y.Calls), cmp.Compare(x.Events, y.Events))
-		})
-	}
-	return bad, good
+	return out
 }
 
 // total is the number of parts in clusters.
