@@ -258,3 +258,60 @@ func TestZoneAndRiskOfExtremes(t *testing.T) {
 		}
 	}
 }
+
+// The keys that docs/json.md promises of the four schemas.
+func TestZoneAndRiskContractKeys(t *testing.T) {
+	estimate := []string{"estimate", "lower", "upper", "method"}
+	bore := []string{"--example", "bore"}
+	short := filepath.Join(reference, "short-study-one-limit.csv")
+	flaws := filepath.Join(t.TempDir(), "flaws.csv")
+	if err := os.WriteFile(flaws, []byte("size,found,looks\n1,0,5\n2,1,5\n3,3,5\n4,4,5\n5,5,5\n"), 0o666); err != nil {
+		t.Fatal(err)
+	}
+	for _, c := range []struct {
+		schema string
+		args   []string
+		paths  [][]any
+		E      [][]any // estimates with an interval
+	}{
+		{"samecall/zone/1", append([]string{"zone"}, bore...), [][]any{
+			{"study", "parts"}, {"settings", "confidence"}, {"settings", "link"}, {"settings", "two_sigmas"}, {"settings", "lapse"}, {"settings", "spread"},
+			{"unanimous", "lower", "width"}, {"unanimous", "percent_grr"}, {"curve", "loglik"}, {"curve", "loglik_of_calls"}, {"curve", "parameters"},
+			{"curve", "deviance"}, {"curve", "lack_of_fit", "p"}, {"curve", "appraisers", 2, "upper", "cut"}, {"curve", "tests", "same_cut", "p"},
+			{"methods", 1, "limit"}, {"methods", 0, "unanimous", "sigma"}, {"methods", 0, "curve", "percent_grr"}, {"why_they_differ", 0},
+			{"parts", 59, "part"}, {"parts", 0, "value"}, {"parts", 0, "accepted"}, {"parts", 0, "calls"}, {"parts", 0, "fitted"}, {"parts", 0, "residual"},
+			{"parts", 0, "tail"}, {"parts", 0, "leverage"}, {"parts", 0, "limit"}, {"parts", 0, "cut_change"}, {"parts", 0, "sigma_change"},
+			{"parts", 0, "drives_the_fit"}, {"parts", 0, "outlier"}, {"gauge_sizes", 0, "finding"}, {"gauge_sizes", 0, "worn"}, {"gauge_sizes", 1, "deviation"},
+			{"cautions", 0}, {"warnings"},
+		}, [][]any{{"curve", "lower", "offset"}, {"curve", "upper", "share_of_tolerance"}, {"curve", "upper", "accepted_at_limit"}, {"methods", 0, "curve", "width"},
+			{"gauge_sizes", 0, "offset"}, {"gauge_sizes", 0, "remainder"}}},
+		{"samecall/risk/1", append([]string{"risk", "--mean", "10.018", "--sd", "0.006", "--escape-target", "50", "--cost-escape", "9", "--cost-reject", "1"}, bore...), [][]any{
+			{"study", "title"}, {"limits", "unit"}, {"process", "kind"}, {"process", "sd"}, {"process", "cp"}, {"process", "cpk"}, {"gauge", "known"}, {"gauge", "link"},
+			{"gauge", "upper", "cut"}, {"gauge", "lower", "sigma"}, {"gauge", "lapse"}, {"guard_bands", 6, "sigmas"}, {"guard_bands", 0, "guard_band"},
+			{"escape_target", "target"}, {"escape_target", "guard_band"}, {"cost", "per_part"}, {"cost", "per_part_now"}, {"cost", "at_edge"}, {"cautions", 0}, {"warnings"},
+		}, [][]any{{"risk", "escape"}, {"risk", "escape_lower"}, {"risk", "false_reject_upper"}, {"risk", "accepted"}, {"risk", "bad"}, {"risk", "bad_among_accepted"},
+			{"risk", "good_among_rejected"}, {"guard_bands", 3, "risk", "escape"}, {"escape_target", "risk", "escape"}, {"cost", "risk", "false_reject"}}},
+		{"samecall/short/1", []string{"short", short, "--limit", "-0.010", "--side", "lower"}, [][]any{
+			{"input", "sha256"}, {"limit"}, {"side"}, {"preconditions", 4, "met"}, {"preconditions", 0, "need"}, {"preconditions", 0, "have"}, {"preconditions", 0, "name"},
+			{"analytic", "intercept"}, {"analytic", "slope"}, {"analytic", "sigma"}, {"maximum_likelihood", "loglik"}, {"maximum_likelihood", "link"},
+			{"maximum_likelihood", "curve", "status"}, {"parts", 8, "used"}, {"parts", 0, "adjusted"}, {"parts", 0, "z"}, {"parts", 0, "fitted"}, {"conclusion", 0}, {"cautions", 0},
+		}, [][]any{{"maximum_likelihood", "bias"}, {"maximum_likelihood", "curve", "cut"}}},
+		{"samecall/flaw/1", []string{"flaw", flaws}, [][]any{
+			{"input", "file"}, {"flaws"}, {"looks"}, {"found"}, {"a90_95", "estimate"}, {"a90_95", "method"}, {"maximum_likelihood", "loglik"}, {"sizes", 4, "fitted"},
+			{"outliers"}, {"notes", 0}, {"assumes", 0}, {"cautions", 0},
+		}, [][]any{{"a50"}, {"a90"}, {"sigma_log"}}},
+	} {
+		got := answer(t, c.args...)
+		same(t, "schema", at(t, got, "schema"), c.schema, 0)
+		for _, p := range c.paths {
+			if at(t, got, p...) == nil {
+				t.Errorf("%s: %v is null", c.schema, p)
+			}
+		}
+		for _, p := range c.E {
+			for _, key := range estimate {
+				at(t, got, append(append([]any{}, p...), key)...)
+			}
+		}
+	}
+}
