@@ -32,8 +32,8 @@ call, is the sampled unit.
 FILE is a calls file (CSV or .xlsx, long or wide), a study file (TOML) that
 names one, or - for a CSV on standard input. docs/files.md tells the formats.
 
-Exit status: 0 done, 1 done but --require was not reached, 2 the command line is wrong or a file cannot be opened or
-written, 3 the data is wrong.`,
+Exit status: 0 done, 1 done but --require was not reached, 2 the command line
+is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 		Example: `  samecall judge --example bore
   samecall judge calls.csv
   samecall judge study.toml --full

@@ -52,7 +52,8 @@ written, 3 the data is wrong or gives no curve.`,
   samecall risk study.toml --cp 1.33 --cpk 1.0 --towards lower
   samecall risk study.toml --process-values measured.csv --escape-target 10
   samecall risk study.toml --mean 12.009 --sd 0.003 --cost-escape 500 --cost-reject 4
-  samecall risk --lower 9.95 --upper 10.05 --cut-lower 9.95 --cut-upper 10.05 --sigma 0.005 --mean 10 --sd 0.02`,
+  samecall risk --lower 9.95 --upper 10.05 --cut-lower 9.95 --cut-upper 10.05 \
+    --sigma 0.005 --mean 10 --sd 0.02`,
 		Args: oneFile,
 		RunE: func(cmd *cobra.Command, args []string) error {
 			opt, err := shape.options(0)
