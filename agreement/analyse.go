@@ -11,6 +11,7 @@ type Analysis struct {
 	All     *Against  // all appraisers together; nil without a reference
 
 	Warnings []Warning
+	Patterns Patterns
 }
 
 // study is what an analysis is computed from.
@@ -50,6 +51,7 @@ func Analyse(r *Ratings, opt Options) (*Analysis, error) {
 	}
 	out.Between = s.between()
 	out.Warnings = s.warnings(&out)
+	out.Patterns = s.patterns.public()
 	return &out, nil
 }
 

@@ -48,3 +48,25 @@ func (p patterns) where(chosen func(pattern int) bool) []int {
 	}
 	return parts
 }
+
+// Pattern is a row of calls and its reference, as some parts have it.
+type Pattern struct {
+	Row       []Category // as Ratings.Row
+	Reference Category   // or Missing
+	Parts     int        // how many parts have it
+}
+
+// Patterns are the different rows of a study: what can be said of a part
+// without its name is said of its pattern, for all parts alike at once.
+type Patterns struct {
+	List []Pattern
+	Of   []int32 // of each part, its place in List
+}
+
+func (p patterns) public() Patterns {
+	out := Patterns{Of: p.pattern}
+	for i, row := range p.rows {
+		out.List = append(out.List, Pattern{row, p.ref[i], p.times[i]})
+	}
+	return out
+}

@@ -96,6 +96,11 @@ func (r *Ratings) Calls(part, appraiser int) []Category {
 	return r.Row(part)[r.first[appraiser]:r.first[appraiser+1]]
 }
 
+// CallsIn returns the calls of one appraiser in a Row, shared with it.
+func (r *Ratings) CallsIn(row []Category, appraiser int) []Category {
+	return row[r.first[appraiser]:r.first[appraiser+1]]
+}
+
 // SetReference gives each part the category that it truly belongs to, or
 // Missing. The slice, one entry a part, is kept. It returns an error if there
 // are more or fewer; Analyse returns one if an entry is no category.

@@ -44,7 +44,10 @@ func Detect(hits, bad, falseAlarms, good int, confidence float64) (Detection, er
 // Tally is how often one part was rejected out of its calls.
 type Tally struct {
 	Rejected, Calls int
+	Parts           int // how many parts are so, alike; 0 counts as one
 }
+
+func (t Tally) parts() int { return max(1, t.Parts) }
 
 // DetectByPart is Detect with the part as the sampled unit: the variance of
 // each rate is linearised over parts (the ratio estimator of cluster sampling;
@@ -120,7 +123,8 @@ func clusteredRate(parts []Tally, kind string) (rate, variance float64, err erro
 			return 0, 0, fmt.Errorf("%s part %d: %d rejected out of %d calls", kind, i, t.Rejected, t.Calls)
 		}
 		if t.Calls > 0 {
-			rejected, calls, m = rejected+t.Rejected, calls+t.Calls, m+1
+			n := t.parts()
+			rejected, calls, m = rejected+n*t.Rejected, calls+n*t.Calls, m+n
 		}
 	}
 	if m == 0 {
@@ -134,7 +138,7 @@ func clusteredRate(parts []Tally, kind string) (rate, variance float64, err erro
 	p := float64(rejected) / float64(calls)
 	for _, t := range parts {
 		e := float64(t.Rejected) - p*float64(t.Calls)
-		variance += e * e
+		variance += float64(t.parts()) * e * e
 	}
 	variance *= float64(m) / float64(m-1) / float64(calls) / float64(calls)
 	if rejected == 0 || rejected == calls {

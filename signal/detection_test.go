@@ -103,3 +103,21 @@ func TestDetectNeverEscapes(t *testing.T) {
 		}
 	})
 }
+
+// Parts told together count as if told one by one.
+func TestDetectByPartTogether(t *testing.T) {
+	one := []Tally{{Rejected: 3, Calls: 3}, {Rejected: 3, Calls: 3}, {Rejected: 1, Calls: 3}, {Rejected: 1, Calls: 3}, {Rejected: 1, Calls: 3}}
+	together := []Tally{{Rejected: 3, Calls: 3, Parts: 2}, {Rejected: 1, Calls: 3, Parts: 3}}
+	good := []Tally{{Rejected: 1, Calls: 3}, {Calls: 3}, {Calls: 3}}
+	a, err := DetectByPart(one, good, 0.95)
+	if err != nil {
+		t.Fatal(err)
+	}
+	b, err := DetectByPart(together, good, 0.95)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if math.Abs(a.DPrime.Value-b.DPrime.Value) > 1e-12 || math.Abs(a.DPrime.SE-b.DPrime.SE) > 1e-12 {
+		t.Errorf("told one by one %+v, together %+v", a.DPrime, b.DPrime)
+	}
+}

@@ -41,7 +41,7 @@ func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, 
 	for _, w := range a.Warnings {
 		r.Warnings = append(r.Warnings, Warning{w.Code, w.Text})
 	}
-	r.Detection = detection(s.Ratings, opt.Confidence)
+	r.Detection = detection(s.Ratings, a.Patterns.List, opt.Confidence)
 	curve.Confidence = opt.Confidence
 	r.Zone, r.NoZone = NewZone(s, curve)
 	return r, nil
@@ -50,21 +50,19 @@ func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, 
 // ErrNoReference is why a study without a reference has no errors to count.
 var ErrNoReference = errors.New("no part has a reference: nothing is known to be right or wrong")
 
-func detection(r *agreement.Ratings, confidence float64) []*signal.Detection {
+func detection(r *agreement.Ratings, patterns []agreement.Pattern, confidence float64) []*signal.Detection {
 	all := make([]*signal.Detection, r.Appraisers())
 	if !r.HasReference() || !r.HasAccept() {
 		return all
 	}
-	var bad, good []signal.Tally
 	for a := range all {
-		bad, good = bad[:0], good[:0]
-		for part := range r.Parts() {
-			ref := r.Reference(part)
-			if ref == agreement.Missing {
+		var bad, good []signal.Tally
+		for _, p := range patterns {
+			if p.Reference == agreement.Missing {
 				continue
 			}
-			var t signal.Tally
-			for _, c := range r.Calls(part, a) {
+			t := signal.Tally{Parts: p.Parts}
+			for _, c := range r.CallsIn(p.Row, a) {
 				if c == agreement.Missing {
 					continue
 				}
@@ -73,7 +71,7 @@ func detection(r *agreement.Ratings, confidence float64) []*signal.Detection {
 					t.Rejected++
 				}
 			}
-			if r.Accepts(ref) {
+			if r.Accepts(p.Reference) {
 				good = append(good, t)
 			} else {
 				bad = append(bad, t)

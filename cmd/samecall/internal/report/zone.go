@@ -105,23 +105,40 @@ func cutsTable(r *Record) Table {
 			t.Columns = append(t.Columns, Column{Name: l.Side.String() + ": cut less limit", Numbers: true})
 		}
 	}
-	for _, side := range sides {
-		t.Columns = append(t.Columns, Column{Name: "σ " + side(all.Pooled).Side.String(), Numbers: true})
+	sigmas := sides
+	if oneSigma(all) {
+		sigmas = sides[:1]
+	}
+	for _, side := range sigmas {
+		name := "σ"
+		if len(sigmas) > 1 {
+			name += " " + side(all.Pooled).Side.String()
+		}
+		t.Columns = append(t.Columns, Column{Name: name, Numbers: true})
 	}
 	for a, own := range all.Each {
 		row := []Cell{say(r.Study.Appraisers[a])}
-		var sigmas []Cell
-		for _, side := range sides {
-			offset, sigma := say(format.Dash), say(format.Dash)
-			if own != nil {
-				if l := side(own); l.Known() {
-					offset = offsetCell(s, l.Offset)
-					sigma = valueCell(s.Value(l.Sigma.Value), l.Sigma.Value)
-				}
+		known := func(side func(c *signal.Curve) *signal.LimitFit) *signal.LimitFit {
+			if own == nil || !side(own).Known() {
+				return nil
 			}
-			row, sigmas = append(row, offset), append(sigmas, sigma)
+			return side(own)
 		}
-		t.Rows = append(t.Rows, append(row, sigmas...))
+		for _, side := range sides {
+			cell := say(format.Dash)
+			if l := known(side); l != nil {
+				cell = offsetCell(s, l.Offset)
+			}
+			row = append(row, cell)
+		}
+		for _, side := range sigmas {
+			cell := say(format.Dash)
+			if l := known(side); l != nil {
+				cell = valueCell(s.Value(l.Sigma.Value), l.Sigma.Value)
+			}
+			row = append(row, cell)
+		}
+		t.Rows = append(t.Rows, row)
 	}
 	var tests []string
 	for _, x := range []struct {
@@ -147,4 +164,18 @@ func offsetCell(s format.Scale, e signal.Estimate) Cell {
 		c.Upper = e.Upper
 	}
 	return c
+}
+
+// oneSigma reports whether every curve has one σ for its two limits, which
+// then is told once.
+func oneSigma(all *signal.Appraisers) bool {
+	for _, c := range append([]*signal.Curve{all.Pooled}, all.Each...) {
+		if c == nil {
+			continue
+		}
+		if !c.Lower.Known() || !c.Upper.Known() || c.Lower.Sigma.Value != c.Upper.Sigma.Value {
+			return false
+		}
+	}
+	return true
 }

@@ -52,28 +52,49 @@ func patterns(r *judge.Result, without []farPart) (each []pattern, together patt
 	if r.Agreement.All == nil {
 		return nil, together
 	}
+	rows := r.Agreement.Patterns
+	parts := make([]int, len(rows.List)) // how many have each row
+	for i, p := range rows.List {
+		parts[i] = p.Parts
+	}
 	leave := make(map[int]bool)
 	for _, f := range without {
-		leave[f.part] = true
+		if !leave[f.part] {
+			leave[f.part] = true
+			parts[rows.Of[f.part]]--
+		}
 	}
 	each = make([]pattern, s.Appraisers())
-	for part := range s.Parts() {
-		ref := s.Reference(part)
-		if ref == agreement.Missing || leave[part] {
+	// By appraiser, and last all together: the rows that are wrong every time.
+	steady := make([][]bool, len(each)+1)
+	for a := range steady {
+		steady[a] = make([]bool, len(rows.List))
+	}
+	for i, row := range rows.List {
+		if row.Reference == agreement.Missing || parts[i] == 0 {
 			continue
 		}
 		var all tally
 		for a := range each {
-			t := count(s, s.Calls(part, a), ref)
-			if all.calls += t.calls; t.wrong == 0 { // most parts, in a large study
-				continue
-			}
-			each[a].add(part, t)
+			t := count(s, s.CallsIn(row.Row, a), row.Reference)
+			steady[a][i] = each[a].add(t, parts[i])
+			all.calls += t.calls
 			all.wrong += t.wrong
 			all.ways.add(t.ways)
 		}
-		if all.wrong > 0 {
-			together.add(part, all)
+		steady[len(each)][i] = together.add(all, parts[i])
+	}
+	for part, i := range rows.Of {
+		if leave[part] {
+			continue
+		}
+		for a := range each {
+			if steady[a][i] {
+				each[a].steady = append(each[a].steady, part)
+			}
+		}
+		if steady[len(each)][i] {
+			together.steady = append(together.steady, part)
 		}
 	}
 	return each, together
@@ -113,15 +134,23 @@ func (w *ways) add(o ways) {
 	w.others += o.others
 }
 
-func (p *pattern) add(part int, t tally) {
-	p.wrong += t.wrong
-	if t.calls < 2 {
-		return
+// times is w for so many parts.
+func (w ways) times(parts int) ways {
+	return ways{w.misses * parts, w.falseAlarms * parts, w.others * parts}
+}
+
+// add counts the calls on parts that are alike, and reports whether they are
+// wrong every time.
+func (p *pattern) add(t tally, parts int) (steady bool) {
+	p.wrong += t.wrong * parts
+	if t.calls < 2 || t.wrong == 0 {
+		return false
 	}
-	p.repeats += float64(t.wrong*(t.wrong-1)) / float64(t.calls-1)
-	p.repeatable += float64(t.wrong)
-	if t.wrong == t.calls {
-		p.steady = append(p.steady, part)
-		p.steadyCalls.add(t.ways)
+	p.repeats += float64(parts) * float64(t.wrong*(t.wrong-1)) / float64(t.calls-1)
+	p.repeatable += float64(t.wrong * parts)
+	if t.wrong < t.calls {
+		return false
 	}
+	p.steadyCalls.add(t.ways.times(parts))
+	return true
 }

@@ -13,18 +13,25 @@ import (
 // wrong twice.
 func TestRepeat(t *testing.T) {
 	var p pattern
-	p.add(0, tally{calls: 2, wrong: 2, ways: ways{misses: 2}})
-	p.add(1, tally{calls: 2, wrong: 1, ways: ways{misses: 1}})
-	p.add(2, tally{calls: 3, wrong: 2, ways: ways{falseAlarms: 2}})
-	p.add(3, tally{calls: 1, wrong: 1, ways: ways{misses: 1}}) // one call repeats nothing
-	p.add(4, tally{calls: 3})
+	steady := 0
+	for _, t := range []tally{
+		{calls: 2, wrong: 2, ways: ways{misses: 2}},
+		{calls: 2, wrong: 1, ways: ways{misses: 1}},
+		{calls: 3, wrong: 2, ways: ways{falseAlarms: 2}},
+		{calls: 1, wrong: 1, ways: ways{misses: 1}}, // one call repeats nothing
+		{calls: 3},
+	} {
+		if p.add(t, 1) {
+			steady++
+		}
+	}
 	// Part 0: each of 2 wrong calls is repeated; part 1: not; part 2: each of
 	// 2 by one of the other two. (2 + 0 + 1)/(2 + 1 + 2).
 	if got := p.repeat(); math.Abs(got-0.6) > 1e-15 {
 		t.Errorf("repeat %v, want 0.6", got)
 	}
-	if len(p.steady) != 1 || p.steady[0] != 0 || p.wrong != 6 {
-		t.Errorf("%+v", p)
+	if steady != 1 || p.steadyCalls.misses != 2 || p.wrong != 6 {
+		t.Errorf("%d wrong every time, %+v", steady, p)
 	}
 	if (pattern{}).repeat() != 0 {
 		t.Error("no wrong call is repeated")

@@ -103,14 +103,14 @@ func wrongByPart(r *judge.Result, a int) (bad, good []interval.Cluster) {
 	}
 	// parts[good or bad][calls][events], made as they occur
 	var parts [2][][]int
-	for part := range s.Parts() {
-		ref := s.Reference(part)
+	for _, p := range r.Agreement.Patterns.List {
+		ref := p.Reference
 		if ref == agreement.Missing {
 			continue
 		}
 		accept := s.Accepts(ref)
 		calls, events := 0, 0
-		for _, call := range s.Calls(part, a) {
+		for _, call := range s.CallsIn(p.Row, a) {
 			if call == agreement.Missing {
 				continue
 			}
@@ -132,7 +132,7 @@ func wrongByPart(r *judge.Result, a int) (bad, good []interval.Cluster) {
 		if parts[kind][calls] == nil {
 			parts[kind][calls] = make([]int, calls+1)
 		}
-		parts[kind][calls][events]++
+		parts[kind][calls][events] += p.Parts
 	}
 	return clusters(parts[0]), clusters(parts[1])
 }
