@@ -7,6 +7,8 @@ import (
 	"io"
 	"strings"
 
+	"github.com/jedib0t/go-pretty/v6/text"
+
 	"samecall/cmd/samecall/internal/figure"
 	"samecall/cmd/samecall/internal/format"
 )
@@ -45,20 +47,24 @@ type pageSection struct {
 }
 
 type pageFigure struct {
-	Label, Caption string
-	Markup         template.HTML
+	Name, Label, Caption string
+	Markup               template.HTML
 }
 
 type pageTable struct {
-	Label, Title, Note string
-	Heads              []Column
-	Rows               [][]pageCell
+	ID, Title, Note string
+	Heads           []pageCell
+	Rows            [][]pageCell
+	Small           bool // has room on one page
 }
 
 type pageCell struct {
 	Text, Class string
 	Head        bool
 }
+
+// smallTable is how many rows a table may have that is kept on one page.
+const smallTable = 16
 
 func newPage(r *Record) page {
 	v := r.Verdict
@@ -76,7 +82,12 @@ func newPage(r *Record) page {
 		Methods:      methods(r),
 	}
 	p.Study = newPageTable(studyTable(r))
-	p.Study.Title = "" // it has a heading of its own
+	p.Study.ID, p.Study.Title = "study", "" // the heading of its section
+	for _, row := range p.Study.Rows {
+		if what := row[0].Text; strings.HasPrefix(what, "SHA-256") || what == "computed by" {
+			row[1].Class = "code"
+		}
+	}
 	for _, c := range v.Causes {
 		p.Causes = append(p.Causes, format.Plain(c.Text))
 	}
@@ -90,27 +101,22 @@ func sections(r *Record) []pageSection {
 	for _, f := range Figures(r) {
 		figures[f.Name] = f
 	}
-	captions := map[string]string{
-		"square": "The share of parts on which all calls are alike, as a number and as the length of the bar, and kappa. Framed: each appraiser with itself. Last column: each against the reference.",
-		"errors": "A point for each appraiser with its intervals. The solid box is the accept level of both rates, the dashed box the conditional level.",
-		"calls":  "Every call on every part, a row for each trial. Wrong calls are marked: a stroke where a bad part was accepted, a cross where a good part was rejected.",
-		"curve":  "Each ring is a part. The heavy curve is fitted to all calls, in its band; the grey zone reaches from 0.5 to 99.5 % acceptance.",
-	}
 	var out []pageSection
 	add := func(id, title string, pictures []string, tables ...Table) {
 		s := pageSection{ID: id, Title: title}
 		for _, name := range pictures {
 			if f := figures[name]; f != nil {
 				// The markup is made by package figure, which escapes every text.
-				s.Figures = append(s.Figures, pageFigure{f.Title, captions[name], template.HTML(f.Inline())})
+				s.Figures = append(s.Figures, pageFigure{f.Name, f.Title, caption(r, name), template.HTML(f.Inline())})
 			}
 		}
 		for _, t := range tables {
 			if len(t.Rows) > 0 {
-				if t.Title == title { // the heading says it
-					t.Title = ""
+				p := newPageTable(t)
+				if t.Title == title { // the heading of the section says it
+					p.ID, p.Title = id, ""
 				}
-				s.Tables = append(s.Tables, newPageTable(t))
+				s.Tables = append(s.Tables, p)
 			}
 		}
 		if len(s.Figures)+len(s.Tables) > 0 {
@@ -134,23 +140,66 @@ func sections(r *Record) []pageSection {
 	return out
 }
 
+// caption says how a figure is read.
+func caption(r *Record, figure string) string {
+	switch figure {
+	case "square":
+		c := "The share of parts on which all calls are alike, as a number and as the length of the bar, and kappa. Framed: each appraiser with itself."
+		if r.Agreement.All != nil {
+			c += " Last column: each against the reference."
+		}
+		return c
+	case "errors":
+		return "A point for each appraiser with its intervals. The solid box is the accept level of both rates, the dashed box the conditional level."
+	case "calls":
+		c := "Every call on every part, a row for each trial."
+		switch {
+		case r.Agreement.All == nil:
+		case r.Study.Ratings.HasAccept():
+			c += " Wrong calls are marked: a stroke where a bad part was accepted, a cross where a good part was rejected."
+		default:
+			c += " Wrong calls are marked; the tables below say what was called instead."
+		}
+		return c
+	case "curve":
+		return "Rings are parts, or parts of like value together where there are many. The heavy curve is fitted to all calls, in its band where the data bound it; the grey zone reaches from 0.5 to 99.5 % acceptance."
+	}
+	return ""
+}
+
+// Widths of names and of heads, in columns of a terminal: shorter ones stay
+// on one line, longer ones are broken.
+const (
+	shortName = 22
+	shortHead = 16
+)
+
 func newPageTable(t Table) pageTable {
-	out := pageTable{Label: "Table of " + t.Name, Title: format.Plain(t.Title), Note: format.Plain(t.Note)}
+	out := pageTable{ID: "table-" + strings.ReplaceAll(t.Name, " ", "-"), Title: format.Plain(t.Title), Note: format.Plain(t.Note), Small: len(t.Rows) <= smallTable}
 	for _, c := range t.Columns {
-		c.Name = format.Plain(c.Name)
-		out.Heads = append(out.Heads, c)
+		head := pageCell{Text: format.Plain(c.Name)}
+		if c.Numbers {
+			head.Class = "n"
+		}
+		if text.StringWidthWithoutEscSequences(head.Text) > shortHead {
+			head.Class = strings.TrimSpace(head.Class + " broken")
+		}
+		out.Heads = append(out.Heads, head)
 	}
 	for _, row := range t.Rows {
 		var cells []pageCell
 		for i, c := range row {
 			cell := pageCell{Text: format.Plain(c.Text), Head: i == 0}
+			short := text.StringWidthWithoutEscSequences(cell.Text) <= shortName
 			switch {
 			case t.Columns[i].Numbers:
 				cell.Class = "n"
 			case t.Columns[i].Long:
 				cell.Class = "long"
-			case i > 0:
-				cell.Class = "t"
+			case short:
+				cell.Class = "short"
+			default:
+				cell.Class = "name"
 			}
 			cells = append(cells, cell)
 		}

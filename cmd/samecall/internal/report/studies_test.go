@@ -231,3 +231,37 @@ func plans() []plan {
 		{name: "by chance", random: 1},
 	}
 }
+
+// hostile are texts that mean something to what reads the outputs: a page, a
+// spreadsheet, a terminal, a formatter.
+var hostile = []string{
+	`<script>alert(1)</script>`,
+	`"><img src=x onerror=alert(1)>`,
+	`</style></svg></table><h1>&lt;&amp;`,
+	`javascript:alert('1')`,
+	`=1+1`, `+cmd|' /C calc'!A0`, `-2+3`, `@SUM(A1)`, `=HYPERLINK("http://example.com","x")`,
+	"tab\tand\nbreak\r\nin it",
+	"\x1b[31mred\x1b[0m \x1b]0;title\x07",
+	"\u202eevil\u202c \u2066x\u2069",
+	`%s %d %!v(MISSING) {{.}} ${x} $(x)`,
+	"*bold* _it_ `code` [a](javascript:x) | # ~~x~~ $x$ <b>",
+	`\\`, `'; DROP TABLE parts; --`,
+	strings.Repeat("W", 500),
+	"\ufffe\uffff",
+}
+
+// hostilePlan is a study with every hostile text as a name, and some more as
+// its title, unit and so on.
+func hostilePlan() plan {
+	return plan{
+		name:       "hostile text",
+		parts:      36,
+		trials:     2,
+		appraisers: []string{hostile[0], hostile[4], hostile[9], hostile[16], hostile[13]},
+		part:       func(i int) string { return hostile[i%len(hostile)] + strings.Repeat(" ", 1) + strconv.Itoa(i) },
+		file:       `=a&b "<i>" 'c' $(x).csv`,
+		change: func(s *study.Settings) {
+			s.Title, s.Characteristic, s.Gauge, s.Unit = hostile[1]+hostile[16], hostile[2], hostile[8], hostile[0]
+		},
+	}
+}
