@@ -89,8 +89,20 @@ func (t *table) header(c *chunker, s Settings) (rest chunk, comma byte, err erro
 			return k, 0, err
 		}
 		for len(k.data) > 0 {
-			text, n := firstRow(k.data)
+			text, n, open := firstRow(k.data)
 			line := k.line
+			if open && len(k.data) < maxLine { // a line end in quotes, where the chunk was cut
+				if more, err := c.next(); err == nil {
+					k.data = append(k.data[:len(k.data):len(k.data)], more.data...)
+					c.release(more)
+					continue
+				} else if p, ok := problemOf(err); ok {
+					t.problems = append(t.problems, p)
+					return k, 0, nil
+				} else if err != io.EOF {
+					return k, 0, err
+				}
+			}
 			k.data, k.line = k.data[n:], k.line+bytes.Count(k.data[:n], []byte{'\n'})
 			if plain := strings.TrimSpace(text); plain == "" || text[0] == '#' || strings.Trim(plain, ",;\t") == "" {
 				continue
@@ -121,18 +133,19 @@ func (t *table) header(c *chunker, s Settings) (rest chunk, comma byte, err erro
 }
 
 // firstRow returns the first row of the text, which may have a line end
-// inside quotes, and its length with the line end.
-func firstRow(data []byte) (row string, n int) {
-	inQuotes := false
+// inside quotes, and its length with the line end. It is open if the text
+// ends inside quotes. In a comment a quote is a character like any other.
+func firstRow(data []byte) (row string, n int, open bool) {
+	inQuotes, comment := false, len(data) > 0 && data[0] == '#'
 	for i, ch := range data {
 		switch {
-		case ch == '"':
+		case ch == '"' && !comment:
 			inQuotes = !inQuotes
 		case ch == '\n' && !inQuotes:
-			return strings.TrimSuffix(string(data[:i]), "\r"), i + 1
+			return strings.TrimSuffix(string(data[:i]), "\r"), i + 1, false
 		}
 	}
-	return string(data), len(data)
+	return string(data), len(data), inQuotes
 }
 
 // separator tells the separator of a table from its header: one that makes

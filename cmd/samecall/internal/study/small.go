@@ -121,7 +121,7 @@ func (t *smallTable) readText(data []byte) error {
 	}
 	line, separated := 1, byte(0)
 	for len(text) > 0 {
-		row, n := firstRow(text)
+		row, n, _ := firstRow(text)
 		plain := strings.TrimSpace(row)
 		if sep, ok := strings.CutPrefix(strings.ToLower(plain), "sep="); ok && len(sep) == 1 && strings.Contains(",;\t", sep) {
 			separated = sep[0]
@@ -135,7 +135,7 @@ func (t *smallTable) readText(data []byte) error {
 		t.list = append(t.list, Problem{Text: "the file holds no table: expected a header line and rows"})
 		return nil
 	}
-	first, _ := firstRow(text)
+	first, _, _ := firstRow(text)
 	switch {
 	case separated != 0:
 	case !strings.ContainsAny(first, ",;\t") || isNumber(first):
