@@ -1,11 +1,13 @@
 package main
 
 import (
+	"encoding/csv"
 	"errors"
 	"fmt"
 	"io"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -113,7 +115,11 @@ func writeFigures(dir string, r *report.Record) error {
 // every flag that bears on the figures.
 func commandLine(cmd *cobra.Command, args []string) string {
 	words := strings.Fields(cmd.CommandPath())
-	words = append(words, args...)
+	// Files come first, as people write them, unless one looks like a flag.
+	last := slices.ContainsFunc(args, func(a string) bool { return a != "-" && strings.HasPrefix(a, "-") })
+	if !last {
+		words = append(words, args...)
+	}
 	cmd.Flags().Visit(func(f *pflag.Flag) {
 		switch f.Name {
 		case "html", "json", "markdown", "csv", "xlsx", "figures", "full", "require":
@@ -121,14 +127,26 @@ func commandLine(cmd *cobra.Command, args []string) string {
 		}
 		value := f.Value.String()
 		if list, ok := f.Value.(pflag.SliceValue); ok {
-			value = strings.Join(list.GetSlice(), ",")
+			value = joined(list.GetSlice())
 		}
 		words = append(words, "--"+f.Name+"="+value)
 	})
+	if last {
+		words = append(append(words, "--"), args...)
+	}
 	for i, w := range words {
 		words[i] = quoted(w)
 	}
 	return strings.Join(words, " ")
+}
+
+// joined writes a list as a flag reads it: a line of CSV.
+func joined(list []string) string {
+	var line strings.Builder
+	w := csv.NewWriter(&line)
+	_ = w.Write(list) // a Builder takes everything
+	w.Flush()
+	return strings.TrimSuffix(line.String(), "\n")
 }
 
 // quoted makes a word safe for a shell.

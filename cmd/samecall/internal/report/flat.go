@@ -44,9 +44,10 @@ func (t Table) flat() (heads []string, rows [][]any) {
 }
 
 // harmless keeps a text from being run as a formula by a spreadsheet that
-// opens a CSV: an apostrophe before the signs that begin one.
+// opens a CSV: an apostrophe before the signs that begin one, of either
+// width, also behind spaces.
 func harmless(s string) string {
-	if s != "" && strings.ContainsRune("=+-@\t\r\n", rune(s[0])) {
+	if strings.IndexAny(strings.TrimSpace(s), "=+-@＝＋－＠") == 0 {
 		return "'" + s
 	}
 	return s

@@ -75,17 +75,22 @@ func (t Table) markdown(s *strings.Builder) {
 	}
 }
 
-// md keeps a text from being read as markup.
+// md keeps a text from being read as markup: everything that CommonMark, or
+// the extensions of the usual forges, would take for a sign is escaped.
 func md(s string) string {
-	s = format.Plain(s)
+	s = strings.TrimSpace(format.Plain(s))
 	var out strings.Builder
+	number := true // so far there are but digits, as before an entry of a list
 	for i, r := range s {
 		switch {
-		case strings.ContainsRune("\\`*_[]<>|#~$&", r):
-			out.WriteByte('\\')
-		case i == 0 && strings.ContainsRune("-+=", r):
+		case strings.ContainsRune("\\`*_[]<>|#~$&@", r),
+			i == 0 && strings.ContainsRune("-+=", r),
+			number && i > 0 && (r == '.' || r == ')'),
+			r == ':' && strings.HasPrefix(s[i:], "://"),                     // would become a link
+			r == '.' && strings.EqualFold(s[max(0, i-len("www")):i], "www"): // likewise
 			out.WriteByte('\\')
 		}
+		number = number && r >= '0' && r <= '9'
 		out.WriteRune(r)
 	}
 	return out.String()

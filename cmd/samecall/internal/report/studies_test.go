@@ -248,6 +248,7 @@ var hostile = []string{
 	`\\`, `'; DROP TABLE parts; --`,
 	strings.Repeat("W", 500),
 	"\ufffe\uffff",
+	"1. one", "2) two", "- dash", "> quote", "    code", "http://example.com/x", "www.example.com", "a@example.com", "[^1]: note", "---", "| - |",
 }
 
 // hostilePlan is a study with every hostile text as a name, and some more as
@@ -257,7 +258,7 @@ func hostilePlan() plan {
 		name:       "hostile text",
 		parts:      36,
 		trials:     2,
-		appraisers: []string{hostile[0], hostile[4], hostile[9], hostile[16], hostile[13]},
+		appraisers: append([]string{hostile[0], hostile[4], hostile[9], hostile[16], hostile[13], hostile[12]}, hostile[17:27]...),
 		part:       func(i int) string { return hostile[i%len(hostile)] + strings.Repeat(" ", 1) + strconv.Itoa(i) },
 		file:       `=a&b "<i>" 'c' $(x).csv`,
 		change: func(s *study.Settings) {
