@@ -28,7 +28,7 @@ func digits(share, oneDecimal float64) string {
 	case p < 0.005:
 		return "<0.01"
 	case p < 0.095:
-		return strconv.FormatFloat(p, 'g', 1, 64)
+		return strconv.FormatFloat(p, 'f', 2, 64)
 	case p < oneDecimal:
 		return decimals(1)
 	case p > 99: // never 100.0
