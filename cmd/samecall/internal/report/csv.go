@@ -40,10 +40,10 @@ func texts(s []string) []string {
 	return out
 }
 
-func record(row []any) []string {
+func record(row []flatCell) []string {
 	out := make([]string, len(row))
-	for i, x := range row {
-		switch x := x.(type) {
+	for i, c := range row {
+		switch x := c.Value.(type) {
 		case nil:
 		case string:
 			out[i] = harmless(format.Plain(x))

@@ -2,10 +2,15 @@ package report
 
 import "strings"
 
+// flatCell is a cell for spreadsheets: string, int, float64 or nil.
+type flatCell struct {
+	Value any
+	Share bool // a fraction that is read in percent
+}
+
 // flat returns a table for spreadsheets: a figure with an interval takes
-// three columns, and numbers are numbers. Cells are string, int, float64 or
-// nil.
-func (t Table) flat() (heads []string, rows [][]any) {
+// three columns, and numbers are numbers.
+func (t Table) flat() (heads []string, rows [][]flatCell) {
 	bounded := make([]bool, len(t.Columns))
 	for i := range t.Columns {
 		for _, row := range t.Rows {
@@ -19,23 +24,24 @@ func (t Table) flat() (heads []string, rows [][]any) {
 		}
 	}
 	for _, row := range t.Rows {
-		var cells []any
+		var cells []flatCell
 		for i, c := range row {
+			share := strings.Contains(c.Text, "%")
 			switch {
 			case c.Value != nil:
-				cells = append(cells, c.Value)
+				cells = append(cells, flatCell{c.Value, share})
 			case c.Text == "":
-				cells = append(cells, nil)
+				cells = append(cells, flatCell{})
 			default:
-				cells = append(cells, c.Text)
+				cells = append(cells, flatCell{Value: c.Text})
 			}
 			if !bounded[i] {
 				continue
 			}
 			if c.Bounded {
-				cells = append(cells, c.Lower, c.Upper)
+				cells = append(cells, flatCell{c.Lower, share}, flatCell{c.Upper, share})
 			} else {
-				cells = append(cells, nil, nil)
+				cells = append(cells, flatCell{}, flatCell{})
 			}
 		}
 		rows = append(rows, cells)

@@ -18,7 +18,7 @@ func XLSX(w io.Writer, r *Record) (err error) {
 			err = c
 		}
 	}()
-	bold, err := f.NewStyle(&excelize.Style{Font: &excelize.Font{Bold: true}})
+	look, err := newLook(f)
 	if err != nil {
 		return err
 	}
@@ -32,7 +32,7 @@ func XLSX(w io.Writer, r *Record) (err error) {
 		if err != nil {
 			return err
 		}
-		if err := writeSheet(f, name, t, bold); err != nil {
+		if err := writeSheet(f, name, t, look); err != nil {
 			return err
 		}
 	}
@@ -57,57 +57,101 @@ func sheetName(f *excelize.File, name string) string {
 	}
 }
 
-func writeSheet(f *excelize.File, sheet string, t Table, bold int) error {
+// look are the styles of a workbook.
+type look struct{ bold, wrapped, share, figure int }
+
+func newLook(f *excelize.File) (l look, err error) {
+	const percent = 10 // the workbook's own format 0.00%
+	three := "0.000"
+	for _, s := range []struct {
+		to    *int
+		style excelize.Style
+	}{
+		{&l.bold, excelize.Style{Font: &excelize.Font{Bold: true}, Alignment: &excelize.Alignment{Vertical: "top"}}},
+		{&l.wrapped, excelize.Style{Alignment: &excelize.Alignment{Vertical: "top", WrapText: true}}},
+		{&l.share, excelize.Style{NumFmt: percent, Alignment: &excelize.Alignment{Vertical: "top"}}},
+		{&l.figure, excelize.Style{CustomNumFmt: &three, Alignment: &excelize.Alignment{Vertical: "top"}}},
+	} {
+		if *s.to, err = f.NewStyle(&s.style); err != nil {
+			return l, err
+		}
+	}
+	return l, nil
+}
+
+// of returns the style of a cell; 0 is none.
+func (l look) of(t Table, c flatCell) int {
+	switch c.Value.(type) {
+	case float64:
+		switch {
+		case c.Share:
+			return l.share
+		case t.Name != "zone" && t.Name != "cuts": // values there are as fine as the characteristic
+			return l.figure
+		}
+	case string:
+		return l.wrapped
+	}
+	return 0
+}
+
+const (
+	headRow   = 3 // below the title and an empty row
+	usualCell = 18.0
+	longCell  = 90.0 // for sentences
+)
+
+func writeSheet(f *excelize.File, sheet string, t Table, l look) error {
 	heads, rows := t.flat()
-	row := 1
-	put := func(cells []any) error {
-		at, err := excelize.CoordinatesToCellName(1, row)
+	put := func(column, row int, c flatCell, style int) error {
+		at, err := excelize.CoordinatesToCellName(column, row)
 		if err != nil {
 			return err
 		}
-		for i, c := range cells {
-			if s, ok := c.(string); ok {
-				cells[i] = format.Plain(s) // written as text, never as a formula
-			}
+		switch x := c.Value.(type) {
+		case nil:
+			return nil
+		case string: // as text, never as a formula
+			err = f.SetCellStr(sheet, at, format.Plain(x))
+		default:
+			err = f.SetCellValue(sheet, at, x)
 		}
-		row++
-		return f.SetSheetRow(sheet, at, &cells)
-	}
-	if err := put([]any{t.Title}); err != nil {
-		return err
-	}
-	if err := put(nil); err != nil {
-		return err
-	}
-	head := make([]any, len(heads))
-	for i, h := range heads {
-		head[i] = h
-	}
-	if err := put(head); err != nil {
-		return err
-	}
-	for _, r := range rows {
-		if err := put(r); err != nil {
+		if err != nil || style == 0 {
 			return err
+		}
+		return f.SetCellStyle(sheet, at, at, style)
+	}
+	if err := put(1, 1, flatCell{Value: t.Title}, l.bold); err != nil {
+		return err
+	}
+	for i, h := range heads {
+		if err := put(i+1, headRow, flatCell{Value: h}, l.bold); err != nil {
+			return err
+		}
+	}
+	for i, row := range rows {
+		for j, c := range row {
+			if err := put(j+1, headRow+1+i, c, l.of(t, c)); err != nil {
+				return err
+			}
 		}
 	}
 	if t.Note != "" {
-		if err := put(nil); err != nil {
+		if err := put(1, headRow+len(rows)+2, flatCell{Value: t.Note}, 0); err != nil {
 			return err
 		}
-		if err := put([]any{t.Note}); err != nil {
-			return err
-		}
-	}
-	if err := f.SetRowStyle(sheet, 3, 3, bold); err != nil {
-		return err
-	}
-	if err := f.SetRowStyle(sheet, 1, 1, bold); err != nil {
-		return err
 	}
 	last, err := excelize.ColumnNumberToName(max(1, len(heads)))
 	if err != nil {
 		return err
 	}
-	return f.SetColWidth(sheet, "A", last, 18)
+	if err := f.SetColWidth(sheet, "A", last, usualCell); err != nil {
+		return err
+	}
+	if n := len(t.Columns); len(heads) == n && t.Columns[n-1].Long {
+		if err := f.SetColWidth(sheet, last, last, longCell); err != nil {
+			return err
+		}
+	}
+	return f.SetPanes(sheet, &excelize.Panes{Freeze: true, YSplit: headRow, TopLeftCell: fmt.Sprintf("A%d", headRow+1), ActivePane: "bottomLeft"})
 }
