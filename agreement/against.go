@@ -35,7 +35,8 @@ var (
 )
 
 // against compares the calls in some columns of each row with the reference.
-func (s *study) against(calls func(row []Category) []Category) Against {
+// mixed are the parts on which those calls differ.
+func (s *study) against(calls func(row []Category) []Category, mixed []int) Against {
 	out := Against{Table: newTable(s.Categories())}
 	counts := s.counts(calls)
 	right, called := 0, 0
@@ -71,7 +72,7 @@ func (s *study) against(calls func(row []Category) []Category) Against {
 		nothing = errNoReference
 	}
 	out.Effectiveness = shareOfParts(right, called, s.opt.Confidence, nothing)
-	out.Mixed = s.where(func(i int) bool { return !oneCategory(counts[i]) })
+	out.Mixed = mixed
 	out.WrongEveryTime = s.where(func(i int) bool { return wrong[i] })
 	noBad, noGood := errNoBad, errNoGood
 	switch {

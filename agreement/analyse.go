@@ -44,9 +44,10 @@ func Analyse(r *Ratings, opt Options) (*Analysis, error) {
 	if r.HasReference() {
 		s.begin(s.ofTables(n+1) + (n+1)*K*6*rows)
 		for a := range n {
-			out.Against = append(out.Against, s.against(func(row []Category) []Category { return s.of(row, a) }))
+			out.Against = append(out.Against, s.against(func(row []Category) []Category { return s.of(row, a) }, out.Within[a].Mixed))
 		}
-		all := s.against(func(row []Category) []Category { return row })
+		everyCall := func(row []Category) []Category { return row }
+		all := s.against(everyCall, s.mixed(s.counts(everyCall)))
 		out.All = &all
 	}
 	out.Between = s.between()
@@ -84,6 +85,11 @@ func (s *study) counts(calls func(row []Category) []Category) [][]int {
 		tally(calls(row), counts[i])
 	}
 	return counts
+}
+
+// mixed returns the parts whose calls, counted by pattern, differ.
+func (s *study) mixed(counts [][]int) []int {
+	return s.where(func(i int) bool { return !oneCategory(counts[i]) })
 }
 
 // tally adds calls to counts by category and returns how many there are.

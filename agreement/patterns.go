@@ -36,12 +36,20 @@ func (r *Ratings) patterns() patterns {
 
 // where returns, in order, the parts whose pattern is chosen.
 func (p patterns) where(chosen func(pattern int) bool) []int {
+	return where(p.pattern, len(p.rows), chosen)
+}
+
+func where(of []int32, patterns int, chosen func(pattern int) bool) []int {
 	parts := []int{}
-	yes := make([]bool, len(p.rows))
-	for i := range p.rows {
+	yes, some := make([]bool, patterns), false
+	for i := range yes {
 		yes[i] = chosen(i)
+		some = some || yes[i]
 	}
-	for part, i := range p.pattern {
+	if !some {
+		return parts
+	}
+	for part, i := range of {
 		if yes[i] {
 			parts = append(parts, part)
 		}
@@ -69,4 +77,9 @@ func (p patterns) public() Patterns {
 		out.List = append(out.List, Pattern{row, p.ref[i], p.times[i]})
 	}
 	return out
+}
+
+// Where returns, in order, the parts whose pattern is chosen.
+func (p Patterns) Where(chosen func(Pattern) bool) []int {
+	return where(p.Of, len(p.List), func(i int) bool { return chosen(p.List[i]) })
 }

@@ -19,7 +19,7 @@ func (s *study) within(appraiser int) Within {
 	alike, parts := s.alike(counts)
 	w := Within{
 		Share: shareOfParts(alike, parts, s.opt.Confidence, errOneTrial),
-		Mixed: s.where(func(i int) bool { return !oneCategory(counts[i]) }),
+		Mixed: s.mixed(counts),
 	}
 	m, z := fleiss(counts, s.times)
 	w.Kappa = s.estimate(m, z, errOneTrial, errWithinAlike)

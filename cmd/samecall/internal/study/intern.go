@@ -2,6 +2,7 @@ package study
 
 import (
 	"bytes"
+	"encoding/binary"
 	"hash/maphash"
 
 	"golang.org/x/text/unicode/norm"
@@ -22,6 +23,7 @@ const (
 // partEntry is one part as one builder knows it. The text of its value
 // follows its name in the block, where one look at memory finds both.
 type partEntry struct {
+	key      uint64 // of the name: the whole of a short one
 	at       uint32 // of the name: block and place in it
 	row      uint32 // the builder's row in which the part first stands
 	nameLen  uint16
@@ -40,6 +42,7 @@ type partTable struct {
 	last      uint32 // the part of the row before, its entry and its name
 	lastEntry *partEntry
 	lastName  []byte
+	inOrder   bool // the part of the row before came after the one before it
 }
 
 func newPartTable() *partTable {
@@ -58,20 +61,44 @@ func (t *partTable) value(e *partEntry) []byte {
 	return t.blocks[e.at>>blockBits][e.at&(1<<blockBits-1)+uint32(e.nameLen):][:e.valueLen]
 }
 
+// shortName is how long a name may be to be its own key.
+const shortName = 8
+
+// nameKey packs a name of at most shortName bytes into a number, one to one
+// among names of the same length; of a longer one, its last bytes. Most names
+// are short, and then no look at the name itself is needed.
+func nameKey(name []byte) uint64 {
+	switch n := len(name); {
+	case n >= 8:
+		return binary.LittleEndian.Uint64(name[n-8:])
+	case n >= 4:
+		return uint64(binary.LittleEndian.Uint32(name)) | uint64(binary.LittleEndian.Uint32(name[n-4:]))<<32
+	case n > 0:
+		return uint64(name[0]) | uint64(name[n/2])<<8 | uint64(name[n-1])<<16
+	}
+	return 0
+}
+
+// is reports whether an entry has the name, given with its key.
+func (t *partTable) is(e *partEntry, name []byte, key uint64) bool {
+	return e.key == key && int(e.nameLen) == len(name) && (len(name) <= shortName || bytes.Equal(t.name(e), name))
+}
+
 // find returns the number and the entry of a name; ok is false if the name is
 // new.
 //
 // Rows mostly come part by part, or in the same order of parts trial by
-// trial: the part of the row before, or the one that once came after it, is
-// tried first.
+// trial: the part of the row before is tried first, then, as long as parts
+// come in order, the one that once came after it.
 func (t *partTable) find(name []byte) (id uint32, e *partEntry, ok bool) {
 	if bytes.Equal(t.lastName, name) {
 		return t.last, t.lastEntry, true
 	}
-	if next := t.last + 1; next < t.n {
+	key := nameKey(name)
+	if next := t.last + 1; t.inOrder && next < t.n {
 		e = t.entry(next)
-		if bytes.Equal(t.name(e), name) {
-			t.setLast(next, e)
+		if t.is(e, name, key) {
+			t.setLast(next, e, name)
 			return next, e, true
 		}
 	}
@@ -85,16 +112,19 @@ func (t *partTable) find(name []byte) (id uint32, e *partEntry, ok bool) {
 		if uint32(s>>32) == tag {
 			id = uint32(s) - 1
 			e = t.entry(id)
-			if bytes.Equal(t.name(e), name) {
-				t.setLast(id, e)
+			if t.is(e, name, key) {
+				t.inOrder = id == t.last+1
+				t.setLast(id, e, name)
 				return id, e, true
 			}
 		}
 	}
 }
 
-func (t *partTable) setLast(id uint32, e *partEntry) {
-	t.last, t.lastEntry, t.lastName = id, e, t.name(e)
+// setLast keeps the part of this row for the next. The name is copied: the
+// one in the table may be far away in memory.
+func (t *partTable) setLast(id uint32, e *partEntry, name []byte) {
+	t.last, t.lastEntry, t.lastName = id, e, append(t.lastName[:0], name...)
 }
 
 func (t *partTable) tag(name []byte) uint32 { return uint32(maphash.Bytes(t.seed, name)) }
@@ -119,10 +149,10 @@ func (t *partTable) add(name, value []byte, row uint32) (uint32, *partEntry) {
 		t.entries = append(t.entries, make([]partEntry, 0, 1<<entryBits))
 	}
 	b := &t.entries[id>>entryBits]
-	*b = append(*b, partEntry{at: t.store(name, value), row: row, nameLen: uint16(len(name)), valueLen: uint16(len(value))})
+	*b = append(*b, partEntry{key: nameKey(name), at: t.store(name, value), row: row, nameLen: uint16(len(name)), valueLen: uint16(len(value))})
 	t.n++
 	e := &(*b)[id&(1<<entryBits-1)]
-	t.setLast(id, e)
+	t.setLast(id, e, name)
 	return id, e
 }
 

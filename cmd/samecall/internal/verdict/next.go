@@ -78,19 +78,12 @@ func noPattern(r *judge.Result, v *Verdict) string {
 		if ap.Verdict != Conditional && ap.Verdict != Reject {
 			continue
 		}
-		found := false
-		for part := range r.Study.Parts {
-			ref := r.Study.Ratings.Reference(part)
-			if ref == agreement.Missing {
-				continue
-			}
-			if count(r.Study.Ratings, r.Study.Ratings.Calls(part, a), ref).wrong > 0 {
-				found = true
-				parts = append(parts, part)
-			}
-		}
-		if found {
+		wrong := r.Agreement.Patterns.Where(func(p agreement.Pattern) bool {
+			return p.Reference != agreement.Missing && count(r.Study.Ratings, r.Study.Ratings.CallsIn(p.Row, a), p.Reference).wrong > 0
+		})
+		if len(wrong) > 0 {
 			who = append(who, ap.Name)
+			parts = append(parts, wrong...)
 		}
 	}
 	if len(who) == 0 {
