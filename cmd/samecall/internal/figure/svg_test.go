@@ -86,7 +86,7 @@ func TestMarkup(t *testing.T) {
 		f.rect(p.role, 0, 0, 10, 10)
 		f.outline(p.role, 0, 0, 10, 10, true, true)
 		f.line(p.role, 0, 0, 1e9, math.SmallestNonzeroFloat64)
-		f.dot(p.role, -0.0, 1, 2)
+		f.dot(p.role, math.Copysign(0, -1), 1, 2)
 		f.turned(p.role, 1, 1, 12, Middle, "]]><script>")
 		f.bold(p.role, 1, 1, 12, End, "דנה 2 検 👩🏽‍🔧")
 		f.Marks = append(f.Marks, Mark{Role: p.role, Path: []Point{{1, 2}, {3, 4}}}, Mark{Role: p.role, Area: []Point{{1, 2}, {3, 4}, {5, 6}}},

@@ -64,7 +64,7 @@ type pageCell struct {
 }
 
 // smallTable is how many rows a table may have that is kept on one page.
-const smallTable = 16
+const smallTable = 9
 
 func newPage(r *Record) page {
 	v := r.Verdict
@@ -177,7 +177,7 @@ const (
 func newPageTable(t Table) pageTable {
 	out := pageTable{ID: "table-" + strings.ReplaceAll(t.Name, " ", "-"), Title: format.Plain(t.Title), Note: format.Plain(t.Note), Small: len(t.Rows) <= smallTable}
 	for _, c := range t.Columns {
-		head := pageCell{Text: format.Plain(c.Name)}
+		head := pageCell{Text: shortened(format.Plain(c.Name))}
 		if c.Numbers {
 			head.Class = "n"
 		}
@@ -190,6 +190,9 @@ func newPageTable(t Table) pageTable {
 		var cells []pageCell
 		for i, c := range row {
 			cell := pageCell{Text: format.Plain(c.Text), Head: i == 0}
+			if !t.Columns[i].Long {
+				cell.Text = shortened(cell.Text)
+			}
 			short := text.StringWidthWithoutEscSequences(cell.Text) <= shortName
 			switch {
 			case t.Columns[i].Numbers:
@@ -206,6 +209,17 @@ func newPageTable(t Table) pageTable {
 		out.Rows = append(out.Rows, cells)
 	}
 	return out
+}
+
+// shortened leaves out the middle of a name that is longer than anybody reads
+// in row after row. The table of what was studied has all of it.
+func shortened(name string) string {
+	const longest, begin, end = 90, 60, 25
+	runes := []rune(name)
+	if len(runes) <= longest {
+		return name
+	}
+	return string(runes[:begin]) + " … " + string(runes[len(runes)-end:])
 }
 
 func plainLines(lines []string) []string {
