@@ -235,8 +235,12 @@ func mapOrder(r *Record) (order []int, how string) {
 		if r.Agreement.All != nil {
 			how = "by what they truly are, each by how many calls are wrong"
 		}
+		kinds, differ := make([]int, len(order)), make([]int, len(order))
+		for part := range order {
+			kinds[part], differ[part] = kindOf(r, part), differing(r, part)
+		}
 		slices.SortStableFunc(order, func(a, b int) int {
-			return cmp.Or(cmp.Compare(kindOf(r, a), kindOf(r, b)), cmp.Compare(differing(r, a), differing(r, b)))
+			return cmp.Or(cmp.Compare(kinds[a], kinds[b]), cmp.Compare(differ[a], differ[b]))
 		})
 		return order, how
 	}

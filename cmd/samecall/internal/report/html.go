@@ -1,10 +1,12 @@
 package report
 
 import (
+	"cmp"
 	_ "embed"
 	"fmt"
 	"html/template"
 	"io"
+	"slices"
 	"strings"
 
 	"github.com/jedib0t/go-pretty/v6/text"
@@ -130,7 +132,7 @@ func sections(r *Record) []pageSection {
 	add("appraisers", "Appraisers", []string{"errors"}, appraisers...)
 	square := []Table{withinTable(r)}
 	if len(r.Study.Appraisers) > 1 {
-		square = append(square, pairsTable(r))
+		square = append(square, leastAlike(pairsTable(r)))
 	}
 	square = append(square, coefficientsTable(r), weightedTable(r), categoriesTable(r))
 	add("agreement", "Agreement", []string{"square"}, square...)
@@ -138,6 +140,27 @@ func sections(r *Record) []pageSection {
 	add("zone", "Grey zone", []string{"curve"}, zoneTable(r), cutsTable(r))
 	add("parts", "Parts to look at", nil, partsTable(r))
 	return out
+}
+
+// leastAlike cuts a table of pairs down to those that agree least, where it
+// would fill page after page.
+func leastAlike(t Table) Table {
+	const most = 120
+	if len(t.Rows) <= most {
+		return t
+	}
+	share := slices.IndexFunc(t.Columns, func(c Column) bool { return c.Name == "share" })
+	value := func(row []Cell) float64 {
+		if x, ok := row[share].Value.(float64); ok {
+			return x
+		}
+		return 2 // not known: last
+	}
+	rows := slices.Clone(t.Rows)
+	slices.SortStableFunc(rows, func(a, b []Cell) int { return cmp.Compare(value(a), value(b)) })
+	t.Note = fmt.Sprintf("The %d pairs that agree least, of %s; the JSON, the CSV and the workbook have them all. %s", most, format.Count(len(rows)), t.Note)
+	t.Rows = rows[:most]
+	return t
 }
 
 // caption says how a figure is read.

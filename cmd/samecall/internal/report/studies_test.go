@@ -47,6 +47,13 @@ const (
 
 // some returns so many names of appraisers, invented.
 func some(n int) []string {
+	if n > 12 {
+		var out []string
+		for i := range n {
+			out = append(out, fmt.Sprintf("Inspector %d", i+1))
+		}
+		return out
+	}
 	all := []string{"Early 1", "Early 2", "Late 1", "Late 2", "Night 1", "Night 2", "Camera A", "Camera B", "Goods in", "Lab", "Weekend", "Temp"}
 	return all[:n]
 }
@@ -202,6 +209,7 @@ func plans() []plan {
 		{name: "three appraisers"},
 		{name: "twelve appraisers", appraisers: some(12), parts: 50},
 		{name: "twelve close appraisers", appraisers: some(12), parts: 20, wrong: func(i int) bool { return i == 4 || i == 11 }},
+		{name: "thirty appraisers", appraisers: some(30), parts: 20, trials: 2},
 		{name: "ten parts", parts: 10},
 		{name: "two hundred parts", parts: 200},
 		{name: "two thousand parts", parts: 2000, trials: 2},
