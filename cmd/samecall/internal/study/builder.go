@@ -43,6 +43,7 @@ type builder struct {
 	appraisers *names
 	words      *names
 
+	warmed  int // line up to which the table of parts has looked ahead
 	records recordLog
 	rows    uint32
 	jumps   []jump // where the line number does not follow from the row before

@@ -43,6 +43,8 @@ type partTable struct {
 	lastEntry *partEntry
 	lastName  []byte
 	inOrder   bool // the part of the row before came after the one before it
+	scattered bool // it was known and came from anywhere
+	touched   uint64
 }
 
 func newPartTable() *partTable {
@@ -114,6 +116,7 @@ func (t *partTable) find(name []byte) (id uint32, e *partEntry, ok bool) {
 			e = t.entry(id)
 			if t.is(e, name, key) {
 				t.inOrder = id == t.last+1
+				t.scattered = !t.inOrder
 				t.setLast(id, e, name)
 				return id, e, true
 			}
@@ -144,6 +147,7 @@ func (t *partTable) add(name, value []byte, row uint32) (uint32, *partEntry) {
 		t.grow()
 	}
 	id := t.n
+	t.scattered = false
 	t.insert(t.tag(name), id)
 	if id&(1<<entryBits-1) == 0 {
 		t.entries = append(t.entries, make([]partEntry, 0, 1<<entryBits))

@@ -194,6 +194,7 @@ func (b *builder) direct(k chunk, comma byte) {
 	commas, ends := ones*uint64(comma), ones*uint64('\n')
 	fields := make([][]byte, 0, len(b.layout.header)+1)
 	data, line, start := k.data, k.line, 0
+	b.warmed = line
 	i := 0
 	for ; i+8 <= len(data); i += 8 {
 		w := binary.LittleEndian.Uint64(data[i:])
@@ -205,6 +206,10 @@ func (b *builder) direct(k chunk, comma byte) {
 				b.directRow(fields, line)
 				line++
 				fields = fields[:0]
+				if b.parts.scattered && b.layout.part == 0 && line >= b.warmed {
+					b.parts.warm(data[start:], comma)
+					b.warmed = line + warmRows
+				}
 			}
 		}
 	}
