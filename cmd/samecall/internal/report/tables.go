@@ -163,7 +163,7 @@ func againstTable(r *Record, all bool) Table {
 	if all && len(r.Agreement.Against) > 1 {
 		row(together, *r.Agreement.All)
 	}
-	return t
+	return withoutRates(r, t)
 }
 
 // errorsTable gives the counts behind the rates, and the detection indices.
@@ -194,7 +194,31 @@ func errorsTable(r *Record) Table {
 	if len(r.Agreement.Against) > 1 {
 		row(together, *r.Agreement.All, say(""), say(""))
 	}
-	return t
+	return withoutRates(r, t)
+}
+
+// withoutRates leaves out the columns in which nothing stands, where no
+// category is acceptable: such a study has no misses and no false alarms.
+func withoutRates(r *Record, t Table) Table {
+	if r.Study.Ratings.HasAccept() {
+		return t
+	}
+	out := t
+	out.Columns, out.Rows = nil, make([][]Cell, len(t.Rows))
+	for i, c := range t.Columns {
+		empty := i > 0
+		for _, row := range t.Rows {
+			empty = empty && (row[i].Text == format.Dash || row[i].Text == "")
+		}
+		if empty {
+			continue
+		}
+		out.Columns = append(out.Columns, c)
+		for j, row := range t.Rows {
+			out.Rows[j] = append(out.Rows[j], row[i])
+		}
+	}
+	return out
 }
 
 func withinTable(r *Record) Table {
