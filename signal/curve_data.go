@@ -135,11 +135,15 @@ func (d *dataset) halves() [2]half {
 		hs[1].from, _ = slices.BinarySearch(d.x, middle)
 		// Parts beyond the middle that were always accepted tell of this limit
 		// too, up to the first rejected call, which is the other limit's.
-		for hs[0].to < n && d.rejected[hs[0].to] == 0 {
-			hs[0].to++
+		for to := hs[0].to; to < n; hs[0].to = to {
+			if to = d.alike(to, 1); d.anyRejected(hs[0].to, to) {
+				break
+			}
 		}
-		for hs[1].from > 0 && d.rejected[hs[1].from-1] == 0 {
-			hs[1].from--
+		for from := hs[1].from; from > 0; hs[1].from = from {
+			if from = d.alike(from-1, -1) + 1; d.anyRejected(from, hs[1].from) {
+				break
+			}
 		}
 	}
 	for k := range hs {
@@ -148,6 +152,20 @@ func (d *dataset) halves() [2]half {
 		}
 	}
 	return hs
+}
+
+// alike returns the first row from i on, in the direction given, that has
+// another value than row i: several rows may be of one value, or of one part.
+func (d *dataset) alike(i, step int) int {
+	j := i
+	for j >= 0 && j < len(d.x) && d.x[j] == d.x[i] {
+		j += step
+	}
+	return j
+}
+
+func (d *dataset) anyRejected(from, to int) bool {
+	return slices.ContainsFunc(d.rejected[from:to], func(n float64) bool { return n > 0 })
 }
 
 // acceptedNear returns t if calls were accepted on both sides of it (or at

@@ -6,8 +6,9 @@ import "math"
 // at first, until root reaches target, and closes in on the value where it
 // does. root is the signed-root deviance, which grows nearly in proportion to
 // the distance, so that a secant finds the crossing in a few evaluations.
-// It returns false if target is not reached within reach of inside, or if a
-// constrained fit did not converge (root then returns NaN).
+// It returns false if target is not reached within reach of inside. Where a
+// constrained fit does not converge, root returns NaN and a shorter step is
+// tried, since each fit starts from the one before.
 func crossing(inside, first, reach, target float64, root func(float64) float64) (at float64, found bool) {
 	lo, rlo := inside, 0.0
 	step := first
@@ -21,7 +22,10 @@ func crossing(inside, first, reach, target float64, root func(float64) float64) 
 		}
 		rhi = root(hi)
 		if math.IsNaN(rhi) {
-			return 0, false
+			if step /= 3; math.Abs(step) < 1e-4*math.Abs(first) {
+				return 0, false
+			}
+			continue
 		}
 		if rhi >= target {
 			break
@@ -45,8 +49,12 @@ func crossing(inside, first, reach, target float64, root func(float64) float64) 
 			mid = lo + (hi-lo)/2
 		}
 		r := root(mid)
-		if math.IsNaN(r) {
-			return 0, false
+		for shorter := 0; math.IsNaN(r); shorter++ {
+			if shorter == 10 {
+				return 0, false
+			}
+			mid = lo + (mid-lo)/2
+			r = root(mid)
 		}
 		f := r - target
 		if math.Abs(f) < 1e-8 || math.Abs(hi-lo) <= 1e-12*math.Abs(first) {

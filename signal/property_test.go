@@ -91,15 +91,21 @@ func sameCurve(t *rapid.T, a, b *Curve, to func(float64) float64, scale float64)
 			if e.got.HasLower != e.want.HasLower || e.got.HasUpper != e.want.HasUpper {
 				t.Fatalf("%s: bounds %+v, want %+v", e.what, e.got, e.want)
 			}
-			wide := 1.0
-			if e.want.HasLower && e.want.HasUpper {
-				wide += (e.want.Upper - e.want.Lower) / sigma
+			// Far from the estimate the likelihood is flat: its signed root
+			// nears a bound like 1/distance, so that what is left open in it
+			// moves a limit with the square of the distance.
+			flat := func(limit float64) float64 {
+				away := math.Abs(limit-e.want.Value) / (e.unit / size)
+				if e.unit == 1 {
+					away = 0 // a probability
+				}
+				return 1 + away + away*away
 			}
 			if e.want.HasLower {
-				eq(e.what+" lower", e.got.Lower, e.to(e.want.Lower), e.unit*wide)
+				eq(e.what+" lower", e.got.Lower, e.to(e.want.Lower), e.unit*flat(e.want.Lower))
 			}
 			if e.want.HasUpper {
-				eq(e.what+" upper", e.got.Upper, e.to(e.want.Upper), e.unit*wide)
+				eq(e.what+" upper", e.got.Upper, e.to(e.want.Upper), e.unit*flat(e.want.Upper))
 			}
 		}
 	}
