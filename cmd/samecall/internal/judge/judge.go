@@ -17,9 +17,12 @@ type Result struct {
 	// Detection holds the detection indices of each appraiser; nil entries
 	// where bad or good parts are lacking.
 	Detection []*signal.Detection
-	Zone      *Zone // nil where the study has none
-	NoZone    error // why
-	Warnings  []Warning
+	// Areas holds the area under each appraiser's ROC curve, where calls are
+	// grades; nil elsewhere, and nil entries as in Detection.
+	Areas    []*signal.Estimate
+	Zone     *Zone // nil where the study has none
+	NoZone   error // why
+	Warnings []Warning
 }
 
 // Warning is something to be said with the result; Code is fixed, for programs.
@@ -42,6 +45,9 @@ func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, 
 		r.Warnings = append(r.Warnings, Warning{w.Code, w.Text})
 	}
 	r.Detection = detection(s.Ratings, a.Patterns.List, opt.Confidence)
+	if opt.Ordered && len(s.Categories) > 2 {
+		r.Areas = areas(s.Ratings, opt.Confidence)
+	}
 	curve.Confidence = opt.Confidence
 	r.Zone, r.NoZone = NewZone(s, curve)
 	return r, nil
@@ -79,6 +85,35 @@ func detection(r *agreement.Ratings, patterns []agreement.Pattern, confidence fl
 		}
 		if d, err := signal.DetectByPart(bad, good, confidence); err == nil {
 			all[a] = &d
+		}
+	}
+	return all
+}
+
+// areas takes the place of a category in the order, from best to worst, as
+// its grade.
+func areas(r *agreement.Ratings, confidence float64) []*signal.Estimate {
+	all := make([]*signal.Estimate, r.Appraisers())
+	if !r.HasReference() || !r.HasAccept() {
+		return all
+	}
+	for a := range all {
+		var parts []signal.Graded
+		for part := range r.Parts() {
+			ref := r.Reference(part)
+			if ref == agreement.Missing {
+				continue
+			}
+			g := signal.Graded{Bad: !r.Accepts(ref)}
+			for _, c := range r.Calls(part, a) {
+				if c != agreement.Missing {
+					g.Grades = append(g.Grades, float64(c))
+				}
+			}
+			parts = append(parts, g)
+		}
+		if e, err := signal.AreaUnderROC(parts, confidence); err == nil {
+			all[a] = &e
 		}
 	}
 	return all

@@ -185,6 +185,7 @@ type againstAppraiserJSON struct {
 	Criterion         *float64      `json:"criterion,omitempty"`
 	DPrimeInterval    *estimateJSON `json:"d_prime_interval,omitempty"`
 	CriterionInterval *estimateJSON `json:"criterion_interval,omitempty"`
+	ROCArea           *estimateJSON `json:"roc_area,omitempty"`
 }
 
 // testsJSON holds the tests of direction; absent ones had nothing to test.
@@ -315,6 +316,10 @@ func newAgainstAppraiser(r *Record, a int) againstAppraiserJSON {
 		out.DPrime, out.Criterion = &d.DPrime.Value, &d.Criterion.Value
 		dPrime, criterion := newSignal(d.DPrime), newSignal(d.Criterion)
 		out.DPrimeInterval, out.CriterionInterval = &dPrime, &criterion
+	}
+	if r.Areas != nil && r.Areas[a] != nil {
+		e := newSignal(*r.Areas[a])
+		out.ROCArea = &e
 	}
 	return out
 }

@@ -6,8 +6,10 @@ import (
 	"strings"
 
 	"samecall/agreement"
+	"samecall/agreement/interval"
 	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/verdict"
+	"samecall/signal"
 )
 
 const together = "all together"
@@ -184,17 +186,42 @@ func errorsTable(r *Record) Table {
 	row := func(name string, a agreement.Against, dPrime, criterion Cell) {
 		t.Rows = append(t.Rows, []Cell{say(name), ofCell(a.Effectiveness), ofCell(a.Miss), worth(a.Miss), ofCell(a.FalseAlarm), worth(a.FalseAlarm), dPrime, criterion})
 	}
+	if r.Areas != nil {
+		t.Columns = append(t.Columns, Column{Name: "ROC area", Numbers: true})
+		t.Note += " ROC area: how often a bad part gets a worse grade than a good one."
+	}
 	for i, a := range r.Agreement.Against {
 		dPrime, criterion := say(format.Dash), say(format.Dash)
 		if d := r.Detection[i]; d != nil {
 			dPrime, criterion = valueCell(format.Figure(d.DPrime.Value), d.DPrime.Value), valueCell(format.Figure(d.Criterion.Value), d.Criterion.Value)
 		}
 		row(r.Study.Appraisers[i], a, dPrime, criterion)
+		if r.Areas != nil {
+			last := len(t.Rows) - 1
+			t.Rows[last] = append(t.Rows[last], areaCell(r.Areas[i]))
+		}
 	}
 	if len(r.Agreement.Against) > 1 {
 		row(together, *r.Agreement.All, say(""), say(""))
+		if r.Areas != nil {
+			last := len(t.Rows) - 1
+			t.Rows[last] = append(t.Rows[last], say(""))
+		}
 	}
 	return withoutRates(r, t)
+}
+
+func areaCell(e *signal.Estimate) Cell {
+	if e == nil {
+		return say(format.Dash)
+	}
+	c := Cell{Text: format.Figure(e.Value), Value: e.Value}
+	if e.HasLower && e.HasUpper {
+		i := interval.Interval{Lower: e.Lower, Upper: e.Upper}
+		c.Text += " " + format.FigureRange(i)
+		c.Bounded, c.Lower, c.Upper = true, e.Lower, e.Upper
+	}
+	return c
 }
 
 // withoutRates leaves out the columns in which nothing stands, where no
