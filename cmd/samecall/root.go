@@ -88,7 +88,8 @@ how many good ones are thrown out, and how far the study can show it.`,
 			}
 			return nil
 		},
-		RunE: func(cmd *cobra.Command, args []string) error { return cmd.Help() },
+		PersistentPreRunE: keep,
+		RunE:              func(cmd *cobra.Command, args []string) error { return cmd.Help() },
 	}
 	root.SetIn(s.in)
 	root.SetOut(s.out)

@@ -57,7 +57,7 @@ func studyTable(r *Record) Table {
 	}
 	add("parts", parts)
 	add("appraisers", strings.Join(r.Study.Appraisers, ", "))
-	add("trials", format.Count(d.Trials))
+	add("trials", trials(r))
 	calls := format.Count(d.Calls)
 	if d.Missing > 0 {
 		calls += ", " + format.Count(d.Missing) + " missing"
@@ -155,6 +155,9 @@ func againstTable(r *Record, all bool) Table {
 		Title:   "Against the reference",
 		Columns: []Column{{Name: "appraiser"}, {Name: "effectiveness", Numbers: true}, {Name: "miss rate", Numbers: true}, {Name: "false-alarm rate", Numbers: true}, {Name: "kappa", Numbers: true}},
 		Note:    fmt.Sprintf("In brackets the %s interval, the part being the sampled unit.", format.Percent(r.Options.Confidence)),
+	}
+	if all && len(r.Agreement.Against) > 1 {
+		t.Note += " All together: right in every call of all."
 	}
 	row := func(name string, a agreement.Against) {
 		t.Rows = append(t.Rows, []Cell{say(name), shareCell(a.Effectiveness), shareCell(a.Miss), shareCell(a.FalseAlarm), kappaCell(a.Kappa)})

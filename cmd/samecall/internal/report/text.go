@@ -3,6 +3,7 @@ package report
 import (
 	"fmt"
 	"io"
+	"math"
 	"slices"
 	"strings"
 
@@ -158,13 +159,27 @@ func facts(r *Record) string {
 	if d.BadParts != nil {
 		parts += fmt.Sprintf(" (%s bad, %s good)", format.Count(*d.BadParts), format.Count(*d.GoodParts))
 	}
-	out = append(out, parts, format.Counted(len(s.Appraisers), "appraiser")+" × "+format.Counted(d.Trials, "trial"))
+	out = append(out, parts, format.Counted(len(s.Appraisers), "appraiser")+" × "+trials(r))
 	calls := format.Counted(d.Calls, "call")
 	if d.Missing > 0 {
 		calls += fmt.Sprintf(", %s missing", format.Count(d.Missing))
 	}
 	out = append(out, calls, "reference "+d.Reference)
 	return strings.Join(out, " · ")
+}
+
+// trials says how many trials there were: from fewest to most, where
+// appraisers had different numbers.
+func trials(r *Record) string {
+	least, most := math.MaxInt, 0
+	for a := range r.Study.Appraisers {
+		n := r.Study.Ratings.Trials(a)
+		least, most = min(least, n), max(most, n)
+	}
+	if least >= most {
+		return format.Counted(most, "trial")
+	}
+	return fmt.Sprintf("%d to %d trials", least, most)
 }
 
 func limitsText(r *Record) string {
@@ -299,7 +314,7 @@ func (p *printer) between(r *Record) {
 	if b.Fleiss.Absent != nil {
 		s += " Kappa: " + b.Fleiss.Absent.Error() + "."
 	} else {
-		s += fmt.Sprintf(" Fleiss' kappa %s, AC1 %s, alpha %s.", format.Kappa(b.Fleiss), format.Figure(b.AC1.Value), format.Figure(b.Alpha.Value))
+		s += fmt.Sprintf(" Fleiss' kappa %s.", format.Kappa(b.Fleiss))
 	}
 	p.wrap(s, "")
 }

@@ -1,6 +1,10 @@
 package report
 
 import (
+	"errors"
+	"fmt"
+	"slices"
+
 	"samecall/signal"
 )
 
@@ -158,9 +162,10 @@ func newCurve(r *Record, all *signal.Appraisers) *curveJSON {
 		}
 		out.Appraisers = append(out.Appraisers, row)
 	}
-	for _, w := range append(append([]error(nil), c.Warnings...), all.Warnings...) {
+	for _, w := range c.Warnings {
 		out.Warnings = append(out.Warnings, w.Error())
 	}
+	out.Warnings = append(out.Warnings, comparedWarnings(r.Study.Appraisers, all)...)
 	return out
 }
 
@@ -207,4 +212,26 @@ func newRatioTest(t *signal.Test) *testJSON {
 		return nil
 	}
 	return &testJSON{t.Statistic, t.DF, t.P}
+}
+
+// comparedWarnings are the warnings of curves by appraiser, with the names that
+// package signal does not know.
+func comparedWarnings(names []string, all *signal.Appraisers) []string {
+	var out []string
+	for a, own := range all.Each {
+		switch {
+		case slices.Contains(all.Compared, a):
+		case own == nil:
+			out = append(out, fmt.Sprintf("%s is not compared: %v", names[a], all.Errors[a]))
+		default:
+			out = append(out, names[a]+" is not compared: its calls do not turn at each limit")
+		}
+	}
+	for _, w := range all.Warnings {
+		var known signal.Warning
+		if !errors.As(w, &known) || known.Code != signal.WarnNotCompared {
+			out = append(out, w.Error())
+		}
+	}
+	return out
 }
