@@ -26,12 +26,13 @@ type Against struct {
 }
 
 var (
-	errNoReference = errors.New("no part has a reference: nothing is known to be right or wrong")
-	errNeverCalled = errors.New("no part with a reference was called")
-	errNoBad       = errors.New("no bad part was called: the miss rate is unknown")
-	errNoGood      = errors.New("no good part was called: the false-alarm rate is unknown")
-	errNoAccept    = errors.New("no category is set as acceptable: there are no misses and no false alarms")
-	errOneSided    = errors.New("the calls and the reference are of one category only, the same: kappa has nothing to measure")
+	errNoReference  = errors.New("no part has a reference: nothing is known to be right or wrong")
+	errNeverCalled  = errors.New("no part with a reference was called")
+	errNoBad        = errors.New("no bad part was called: the miss rate is unknown")
+	errNoGood       = errors.New("no good part was called: the false-alarm rate is unknown")
+	errNoAccept     = errors.New("no category is set as acceptable: there are no misses and no false alarms")
+	errOneReference = errors.New("the parts called are all of one reference category: kappa against it has nothing to measure")
+	errOneSided     = errors.New("the calls and the reference are of one category only, the same: kappa has nothing to measure")
 )
 
 // against compares the calls in some columns of each row with the reference.
@@ -93,7 +94,14 @@ func (s *study) against(calls func(row []Category) []Category, mixed []int) Agai
 			}
 		}
 	}
-	out.Kappa = s.cross(Nominal, out.Table, pairs, nothing, errOneSided)
+	kappa := func(w Weights) Estimate {
+		e := s.cross(w, out.Table, pairs, nothing, errOneSided)
+		if e.Absent == nil && out.Table.columnsUsed() < 2 {
+			return absent(errOneReference) // it would be 0, whatever the calls are
+		}
+		return e
+	}
+	out.Kappa = kappa(Nominal)
 	if s.Categories() > 2 {
 		for k := range s.Categories() {
 			out.Categories = append(out.Categories, s.cross(Nominal, out.Table.only(k), func(i int, add func(j, k Category)) {
@@ -102,8 +110,7 @@ func (s *study) against(calls func(row []Category) []Category, mixed []int) Agai
 		}
 	}
 	if s.weighted() {
-		linear := s.cross(Linear, out.Table, pairs, nothing, errOneSided)
-		quadratic := s.cross(Quadratic, out.Table, pairs, nothing, errOneSided)
+		linear, quadratic := kappa(Linear), kappa(Quadratic)
 		out.Linear, out.Quadratic = &linear, &quadratic
 	}
 	out.direction()

@@ -420,7 +420,12 @@ func (p plainStudy) checkAgainst(t rapid.TB, g Against, opt Options, appraisers 
 	sameFigures(t, "wrong", g.WrongEveryTime, wrong)
 	sameFigures(t, "mixed", g.Mixed, mixed)
 	p.checkTable(t, g.Table, pairs)
-	p.checkCohen(t, pairs, opt, g.Kappa, g.Linear, g.Quadratic)
+	// With one reference category kappa would be 0 whatever the calls are.
+	if references := categoriesOf(pairs, 1); references != 1 {
+		p.checkCohen(t, pairs, opt, g.Kappa, g.Linear, g.Quadratic)
+	} else if g.Kappa.Absent == nil || g.Linear != nil && g.Linear.Absent == nil {
+		t.Fatalf("one reference category, kappa %v", g.Kappa.Value)
+	}
 	if p.categories == 2 {
 		if g.Categories != nil {
 			t.Fatal("kappas of two categories one by one")
@@ -435,4 +440,13 @@ func (p plainStudy) checkAgainst(t rapid.TB, g Against, opt Options, appraisers 
 		v, ok := cohen(two, 0)
 		checkValue(t, "category", e, v, ok)
 	}
+}
+
+// categoriesOf returns how many categories stand on one side of pairs.
+func categoriesOf(pairs [][2]int, side int) int {
+	seen := make(map[int]bool)
+	for _, x := range pairs {
+		seen[x[side]] = true
+	}
+	return len(seen)
 }

@@ -81,3 +81,17 @@ func is(k, category int) int {
 	}
 	return 0
 }
+
+// columnsUsed returns how many columns have a count.
+func (t Table) columnsUsed() int {
+	n := 0
+	for k := range t {
+		for j := range t {
+			if t[j][k] > 0 {
+				n++
+				break
+			}
+		}
+	}
+	return n
+}

@@ -1,6 +1,9 @@
 package agreement
 
-import "fmt"
+import (
+	"fmt"
+	"math"
+)
 
 // Warning is something to be said with the result, not a failure.
 type Warning struct {
@@ -26,8 +29,8 @@ func (s *study) warnings(a *Analysis) []Warning {
 	share := s.commonest()
 	if share >= prevalentShare && b.Fleiss.Absent == nil && b.AC1.Absent == nil && b.AC1.Value-b.Fleiss.Value >= prevalenceGap {
 		out = append(out, Warning{"prevalence", fmt.Sprintf(
-			"%.0f %% of all calls are of one category: kappa is pulled down by that and understates the agreement. Read it beside the shares of parts and AC1 (%.2f).",
-			100*share, b.AC1.Value)})
+			"%.3g %% of all calls are of one category: kappa is pulled down by that and understates the agreement. Read it beside the shares of parts and AC1 (%.2f).",
+			math.Floor(1000*share)/10, b.AC1.Value)})
 	}
 	return out
 }
