@@ -29,7 +29,7 @@ func TestWhatIsAbsent(t *testing.T) {
 		{"no reference", "part,A-1,A-2,B-1,B-2\n1,1,1,1,1\n2,0,0,0,0\n", "", NotShown,
 			"No part has a reference", "Give each part a reference"},
 		{"one trial", "part,reference,A-1,B-1\n1,1,1,1\n2,0,0,0\n3,1,1,1\n", "", Accept,
-			"Every figure meets its accept level", "Let A and B call the parts a second and a third time"},
+			"Every figure meets its accept level", "Have A and B call the parts a second and a third time"},
 		{"kinds without accept", "part,reference,A-1,A-2\n1,dent,dent,dent\n2,scratch,scratch,scratch\n3,fine,fine,fine\n", "categories = [\"fine\", \"dent\", \"scratch\"]\n", NotShown,
 			"no category is set as acceptable", "Say which categories a part may have to be used (accept)"},
 		{"absent does not hide a reject", "part,reference,A-1,A-2,A-3\n1,1,0,0,0\n2,1,1,1,1\n3,1,0,0,1\n", "", Reject,

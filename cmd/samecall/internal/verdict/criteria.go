@@ -51,8 +51,9 @@ type Criterion struct {
 	// estimate meets it, else the conditional level.
 	Against float64
 
-	Kind  string // of the parts that it rests on: "bad part", "good part" or "part"
-	Parts int    // how many there are
+	Confidence float64 // of the one-sided limits that Evidence rests on
+	Kind       string  // of the parts that it rests on: "bad part", "good part" or "part"
+	Parts      int     // how many there are
 	// More is how many parts more, of that kind, would settle an open
 	// criterion if the rate stayed as it is; 0 where none would.
 	More int
@@ -74,7 +75,7 @@ func (c Criterion) meets(x, level float64) bool {
 
 // newCriterion holds an estimate against its levels.
 func newCriterion(name string, levels Levels, e agreement.Estimate, kind string, parts int, confidence float64) Criterion {
-	c := Criterion{Name: name, Levels: levels, Estimate: e, Kind: kind, Parts: parts, Met: NotShown, Against: levels[1]}
+	c := Criterion{Name: name, Levels: levels, Estimate: e, Confidence: confidence, Kind: kind, Parts: parts, Met: NotShown, Against: levels[1]}
 	switch name {
 	case Effectiveness:
 		c.Best = interval.LowerLimit(parts, parts, confidence)

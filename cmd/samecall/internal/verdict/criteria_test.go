@@ -59,6 +59,32 @@ func TestLevels(t *testing.T) {
 	}
 }
 
+// An open rejection tells the other side by its one-sided limit; a met level
+// tells what so few parts can show at best: 1 − 0.05^(1/16) = 17.1 %, and
+// 1 − 0.05^(1/100) = 2.95 %.
+func TestOpenIsTold(t *testing.T) {
+	for _, c := range []struct {
+		name  string
+		e     agreement.Estimate
+		parts int
+		more  int
+		text  string
+	}{
+		{Miss, one(0.063, 0.017, 0.2), 16, 6, "Open: at 95 % confidence it may be as low as 1.7 %, within the 5 % allowed; 6 parts more at this rate would show it. 16 parts cannot show a miss rate below 5 %: at best 17.1 %."},
+		{Miss, one(0.063, 0.017, 0.2), 100, 1, "Open: at 95 % confidence it may be as low as 1.7 %, within the 5 % allowed; 1 part more at this rate would show it."},
+		{Miss, one(0.0501, 0.017, 0.2), 100, 0, "Open: at 95 % confidence it may be as low as 1.7 %, within the 5 % allowed; not even 1\u00a0000 times the parts would show it."},
+		{Effectiveness, one(0.75, 0.6, 0.87), 16, 9, "Open: at 95 % confidence it may be as high as 87 %, above the 80 % required; 9 parts more at this share would show it."},
+		{Kappa, one(0.3, 0.1, 0.5), 16, 9, "Open: at 95 % confidence it may be as high as 0.50, above the 0.40 required; 9 parts more at this kappa would show it."},
+		{Miss, one(0, 0, 0.171), 16, 133, "Open: 16 parts cannot show less than 17.1 %; 133 parts more without an error would settle it."},
+	} {
+		got := newCriterion(c.name, Default[c.name], c.e, "part", c.parts, 0.95)
+		got.More = c.more
+		if got.EvidenceText() != c.text {
+			t.Errorf("%s %v: %q, want %q", c.name, c.e.Value, got.EvidenceText(), c.text)
+		}
+	}
+}
+
 func TestAbsentAndUnbounded(t *testing.T) {
 	why := errors.New("no bad part was called")
 	c := newCriterion(Miss, Default[Miss], agreement.Estimate{Absent: why}, "bad part", 0, 0.95)

@@ -3,6 +3,7 @@ package verdict
 import (
 	"fmt"
 	"strconv"
+	"strings"
 
 	"samecall/cmd/samecall/internal/format"
 )
@@ -58,7 +59,7 @@ func (c Criterion) found() string {
 // than the 5 % allowed".
 func (c Criterion) Text() string {
 	if c.Met == NotShown {
-		return c.Label() + " not known: " + c.Estimate.Absent.Error()
+		return c.Label() + " not known: " + strings.TrimSuffix(c.Estimate.Absent.Error(), ": the "+c.Label()+" is unknown")
 	}
 	short, enough, asked := "less than", "at least", "required"
 	if c.atMost() {
@@ -97,7 +98,43 @@ func (c Criterion) EvidenceText() string {
 	case c.Evidence != Open:
 		return "The data show it."
 	}
+	if c.Met == Reject {
+		return "Open: " + c.otherSide() + "." + c.tooFew()
+	}
 	return "Open: " + c.open() + "."
+}
+
+// otherSide says what speaks against a rejection that is open.
+func (c Criterion) otherSide() string {
+	if c.Estimate.Unbounded != nil {
+		return c.Estimate.Unbounded.Error()
+	}
+	limit := c.deciding(c.Estimate.OneSided)
+	side, level := "high", "the "+c.Level(c.Against)+" required"
+	if c.atMost() {
+		side, level = "low", "the "+c.Level(c.Against)+" allowed"
+	}
+	reach := "above "
+	switch {
+	case limit == c.Against:
+		reach = "on "
+	case c.atMost():
+		reach = "within "
+	}
+	text := fmt.Sprintf("at %s confidence it may be as %s as %s, %s%s", strconv.FormatFloat(100*c.Confidence, 'g', 4, 64)+" %", side, c.Number(limit), reach, level)
+	if c.More > 0 {
+		return text + fmt.Sprintf("; %s more at this %s would show it", format.Counted(c.More, c.Kind), c.measure())
+	}
+	return text + fmt.Sprintf("; not even %s times the parts would show it", format.Count(manyTimes))
+}
+
+// tooFew says, with a space before it, that so few parts cannot show a rate of
+// errors as low as the level asks, however good the calls.
+func (c Criterion) tooFew() string {
+	if !c.atMost() || c.meets(c.Best, c.Against) {
+		return ""
+	}
+	return fmt.Sprintf(" %s cannot show a %s below %s: at best %s.", format.Counted(c.Parts, c.Kind), c.Label(), c.Level(c.Against), c.Number(c.Best))
 }
 
 // open says why a criterion is open and what would settle it.

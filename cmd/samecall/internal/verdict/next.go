@@ -212,7 +212,7 @@ func repeatTrials(r *judge.Result) string {
 	if len(who) == 0 {
 		return ""
 	}
-	return fmt.Sprintf("Let %s call the parts a second and a third time: with one trial nobody knows whether the calls repeat.", some(who))
+	return fmt.Sprintf("Have %s call the parts a second and a third time: with one trial nobody knows whether the calls repeat.", some(who))
 }
 
 // criterion returns one criterion of an appraiser by its name.

@@ -60,7 +60,9 @@ func also(grounds []ground) string {
 			text += "; "
 		}
 		text += fmt.Sprintf("%s: %s", some(g.who), g.c.Label())
-		if g.c.Met != NotShown {
+		if g.c.Met == NotShown {
+			text += " not known"
+		} else {
 			text += " " + g.c.found()
 		}
 	}
@@ -97,7 +99,7 @@ func (v *Verdict) grounds() []ground {
 			add(a.Name, c)
 		}
 	}
-	if v.Between != nil {
+	if v.Between != nil && v.Between.Met != NotShown { // calls all alike are no fault
 		add(betweenAll, *v.Between)
 	}
 	return out

@@ -22,8 +22,8 @@ func apart(f *finder) []Cause {
 	if same.Absent != nil || other.Absent != nil || same.Value < f.levels[Kappa][0] || same.Value-other.Value < kappaGap {
 		return nil
 	}
-	text := fmt.Sprintf("Each appraiser repeats its own calls (kappa %s), but they differ from each other (kappa %s).", format.Kappa(same), format.Kappa(other))
-	do := "Let all appraisers call together, beside one standard, the parts on which they differ"
+	text := fmt.Sprintf("Each appraiser repeats the same calls (kappa %s), but the appraisers differ from each other (kappa %s).", format.Kappa(same), format.Kappa(other))
+	do := "Have all appraisers call together, beside one standard, the parts on which they differ"
 	who := f.standsApart()
 	if who != Everyone {
 		text += fmt.Sprintf(" %s stands apart; the others agree with each other.", f.name(who))

@@ -96,7 +96,7 @@ func farErrors(f *finder) []Cause {
 	if len(who) == 1 && f.several() {
 		cause.Appraiser = who[0]
 		cause.Text = fmt.Sprintf("%s made wrong calls where nobody should be in doubt: %s. Neither the width nor the place of the grey zone explains them.", f.name(who[0]), strings.Join(names, ", "))
-		cause.Do = fmt.Sprintf("Check these parts with %s, and the records of its calls: parts mixed up, a slip in writing down, attention, handling.", f.name(who[0]))
+		cause.Do = fmt.Sprintf("Check these parts with %s, and the records of the calls: parts mixed up, a slip in writing down, attention, handling.", f.name(who[0]))
 	}
 	return []Cause{cause}
 }

@@ -6,9 +6,10 @@ import (
 	"samecall/cmd/samecall/internal/format"
 )
 
-// Grades lean when this share of all calls, and of the wrong ones, goes wrong
-// one way. Our own choice, no source.
+// Grades lean when so many calls, a share of all calls and of the wrong ones,
+// go wrong one way. Our own choice, no source.
 const (
+	leaningCalls = 4
 	leaningRate  = 0.1
 	leaningShare = 0.8
 )
@@ -34,13 +35,13 @@ func leaningGrades(f *finder) []Cause {
 			n, lean = wrong-worse, "leniently"
 		}
 		calls, _ := g.Table.Total()
-		if n == 0 || float64(n) < leaningRate*float64(calls) || float64(n) < leaningShare*float64(wrong) {
+		if n < leaningCalls || float64(n) < leaningRate*float64(calls) || float64(n) < leaningShare*float64(wrong) {
 			continue
 		}
 		leaning[lean]++
 		out = append(out, Cause{
 			Code: codeGrades, Appraiser: a,
-			Text: fmt.Sprintf("%s grades too %s: %s of its %s are wrong, %s of them that way.", f.name(a), lean, format.Count(wrong), format.Counted(calls, "call"), allOr(n, wrong)),
+			Text: fmt.Sprintf("%s grades too %s: %s of %s are wrong, %s of them that way.", f.name(a), lean, format.Count(wrong), format.Counted(calls, "call"), allOr(n, wrong)),
 			Do:   fmt.Sprintf("Set the grades of %s against the reference again, at each boundary between two grades.", f.name(a)),
 		})
 	}

@@ -37,9 +37,9 @@ func inconsistent(f *finder) []Cause {
 		}
 		out = append(out, Cause{
 			Code: codeInconsistent, Appraiser: a,
-			Text: fmt.Sprintf("%s does not repeat its own calls: %s of %s %s mixed; kappa over its trials is %s, less than %s.",
+			Text: fmt.Sprintf("%s does not repeat the same calls: %s of %s %s mixed; kappa over the trials is %s, less than %s.",
 				f.name(a), format.Count(len(w.Mixed)), format.Counted(w.Share.Of, "part"), are(len(w.Mixed)), format.Kappa(w.Kappa), format.Figure(level)),
-			Do: stop(fmt.Sprintf("Go through the mixed parts with %s: lighting, handling, what counts as a reject. Then repeat its trials. Mixed: %s",
+			Do: stop(fmt.Sprintf("Go through the mixed parts with %s: lighting, handling, what counts as a reject. Then repeat the trials. Mixed: %s",
 				f.name(a), f.list(w.Mixed))),
 		})
 	}

@@ -40,7 +40,7 @@ func confusedKinds(f *finder) []Cause {
 				nameX, nameY := f.Study.Categories[x], f.Study.Categories[y]
 				out = append(out, Cause{
 					Code: codeKinds, Appraiser: a,
-					Text: fmt.Sprintf("%s confuses %s and %s: %s of its %s (%s called %s where it was %s, %s the other way).",
+					Text: fmt.Sprintf("%s confuses %s and %s: %s of %s (%s called %s where it was %s, %s the other way).",
 						f.name(a), nameX, nameY, format.Count(n), format.Counted(wrong, "wrong call"), format.Count(g.Table[x][y]), nameX, nameY, format.Count(g.Table[y][x])),
 					Do: fmt.Sprintf("Show %s the two beside each other: a boundary sample of %s and one of %s, and what tells them apart.", f.name(a), nameX, nameY),
 				})

@@ -2,13 +2,32 @@ package verdict
 
 import (
 	"fmt"
+	"slices"
 
 	"samecall/cmd/samecall/internal/format"
+	"samecall/signal"
 )
 
 // wideZone is the share of the tolerance above which the grey zone at a limit
 // is wide. Our own choice, after the 30 % of %GRR (common practice, no source).
 const wideZone = 0.30
+
+// zones returns the limits whose grey zone the data tell: rejected and accepted
+// calls overlap, some part in the zone is mixed, and σ is bounded.
+func (f *finder) zones() (out []*signal.LimitFit) {
+	if f.Zone == nil || f.Zone.Curves == nil {
+		return nil
+	}
+	c := plain(f.Zone.Curves.Pooled)
+	for _, l := range sides(c) {
+		if l.Status == signal.Fitted && l.Sigma.HasUpper && slices.ContainsFunc(c.Parts, func(p signal.PartFit) bool {
+			return p.Accepted > 0 && p.Accepted < p.Calls && p.Value >= l.From && p.Value <= l.To
+		}) {
+			out = append(out, l)
+		}
+	}
+	return out
+}
 
 // nearLimits: no other cause, figures that miss their level, and every wrong
 // call where the curve expects it: near the limits.
@@ -22,7 +41,7 @@ func nearLimits(f *finder) []Cause {
 	}
 	cause := Cause{
 		Code: codeWide, Appraiser: Everyone,
-		Text: "The wrong calls lie near the limits only, and no shift explains them." + width,
+		Text: "The wrong calls lie near the limits only, and no shift of half a σ or more explains them." + width,
 		Do:   fmt.Sprintf("Make the call surer with a better gauge or fixture; or measure the parts in the grey zone (%s); or move the cuts inwards by a guard band.", f.zoneRanges()),
 	}
 	if share, known := f.zoneShare(); known && share <= wideZone {
@@ -36,14 +55,11 @@ func nearLimits(f *finder) []Cause {
 }
 
 // zoneWidth tells the width of the grey zone in a sentence with a space
-// before it; nothing where no curve is known.
+// before it; nothing where the data do not tell it.
 func (f *finder) zoneWidth() string {
-	if f.Zone == nil || f.Zone.Curves == nil {
-		return ""
-	}
 	s := f.Scale()
 	var widths, at []string
-	for _, l := range sides(plain(f.Zone.Curves.Pooled)) {
+	for _, l := range f.zones() {
 		text := s.WithUnit(s.Value(l.Width.Value)) + " wide"
 		if l.HasShare {
 			text += " (" + percent(l.Share.Value) + " of the tolerance)"
@@ -71,7 +87,7 @@ func percent(share float64) string {
 func (f *finder) zoneRanges() string {
 	s := f.Scale()
 	var out []string
-	for _, l := range sides(plain(f.Zone.Curves.Pooled)) {
+	for _, l := range f.zones() {
 		out = append(out, s.WithUnit(s.Value(l.From)+" to "+s.Value(l.To))+" at the "+l.Side.String()+" limit")
 	}
 	return and(out)
@@ -80,7 +96,7 @@ func (f *finder) zoneRanges() string {
 // zoneShare is the larger share of the tolerance that the grey zone takes,
 // and whether it is known.
 func (f *finder) zoneShare() (share float64, known bool) {
-	for _, l := range sides(plain(f.Zone.Curves.Pooled)) {
+	for _, l := range f.zones() {
 		if l.HasShare {
 			share, known = max(share, l.Share.Value), true
 		}

@@ -41,9 +41,9 @@ func steadyErrors(f *finder) []Cause {
 		}
 		out = append(out, Cause{
 			Code: codeSteady, Appraiser: a,
-			Text: fmt.Sprintf("%s is wrong about the same parts every time: %s of its %s, on %s (%s).",
+			Text: fmt.Sprintf("%s is wrong about the same parts every time: %s of %s, on %s (%s).",
 				f.name(a), format.Count(p.steadyCalls.total()), format.Counted(p.wrong, "wrong call"), format.Counted(len(p.steady), "part"), p.steadyCalls),
-			Do: fmt.Sprintf("Go through %s with %s beside the standard: what it takes for good is shifted, its attention is not at fault.", f.list(p.steady), f.name(a)),
+			Do: fmt.Sprintf("Go through %s with %s beside the standard: it is the idea of a good part that is shifted, not attention that is at fault.", f.list(p.steady), f.name(a)),
 		})
 	}
 	return out

@@ -27,7 +27,7 @@ type Appraiser struct {
 
 // Cautions go with every verdict.
 var cautions = []string{
-	"The customer's requirements, local rules and the judgement of licensed practice come before this verdict.",
+	"The customer's requirements, local rules and the judgement of qualified practitioners come before this verdict.",
 	"An attribute study alone should not release a safety characteristic.",
 }
 
