@@ -15,6 +15,9 @@ import (
 	"samecall/signal"
 )
 
+// fewestResamples is how many resamples limits are read from at least.
+const fewestResamples = 100
+
 func newJudge(s streams) *cobra.Command {
 	var src source
 	opt := agreement.DefaultOptions()
@@ -50,8 +53,8 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 			default:
 				return fmt.Errorf("--pairing is %q; expected matched or all", pairing)
 			}
-			if opt.Resamples < 0 {
-				return fmt.Errorf("--resamples is %d; expected a number of 0 or more", opt.Resamples)
+			if opt.Resamples != 0 && opt.Resamples < fewestResamples || opt.Resamples > agreement.MaxResamples {
+				return fmt.Errorf("--resamples is %d; expected 0, or %d to %d", opt.Resamples, fewestResamples, agreement.MaxResamples)
 			}
 			level, err := parseRequirement(require)
 			if err != nil {

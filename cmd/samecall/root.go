@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io"
 	"runtime/debug"
+	"strings"
 
 	"github.com/spf13/cobra"
 
@@ -72,7 +73,7 @@ func newRoot(s streams) *cobra.Command {
 		Short: "Can the yes and no of this inspection be trusted?",
 		Long: `samecall reads the calls of a pass/fail or graded inspection study (several
 appraisers calling the same parts several times) and tells whether the calls
-can be trusted: does each appraiser repeat the own call, do they agree with
+can be trusted: does each appraiser repeat its own calls, do they agree with
 each other, do they agree with the truth, how many bad parts slip through and
 how many good ones are thrown out, and how far the study can show it.`,
 		Example: `  samecall judge --example bore      look at a whole answer, on invented data
@@ -95,16 +96,45 @@ how many good ones are thrown out, and how far the study can show it.`,
 	root.SetOut(s.out)
 	root.SetErr(s.err)
 	root.SetVersionTemplate("samecall {{.Version}}\n")
-	root.SetFlagErrorFunc(func(cmd *cobra.Command, err error) error {
-		return fmt.Errorf("%w; %s --help lists what there is", err, cmd.CommandPath())
-	})
+	root.SetFlagErrorFunc(flagError)
 	root.AddCommand(newJudge(s), newCheck(s), newZone(s), newRisk(s), newShort(s), newFlaw(s), newExample(s))
+	refuseUnknown(root)
 	return root
+}
+
+// refuseUnknown makes cobra's own commands, help and completion, refuse what
+// they do not know, as the others do.
+func refuseUnknown(root *cobra.Command) {
+	root.InitDefaultHelpCmd()
+	root.InitDefaultCompletionCmd()
+	for _, c := range root.Commands() {
+		switch c.Name() {
+		case "help":
+			c.Args = func(_ *cobra.Command, args []string) error {
+				found, rest, err := root.Find(args)
+				if err != nil || len(rest) > 0 || found == nil {
+					return fmt.Errorf("there is no command %q; samecall --help lists them", strings.Join(args, " "))
+				}
+				return nil
+			}
+		case "completion":
+			c.Args = func(_ *cobra.Command, args []string) error {
+				if len(args) > 0 {
+					return fmt.Errorf("there is no shell %q; expected bash, fish, powershell or zsh", args[0])
+				}
+				return nil
+			}
+			c.RunE = func(c *cobra.Command, _ []string) error { return c.Help() }
+		}
+	}
 }
 
 // version is that of the module, as the Go toolchain recorded it.
 func version() string {
 	if info, ok := debug.ReadBuildInfo(); ok && info.Main.Version != "" {
+		if info.Main.Version == "(devel)" {
+			return "unversioned build"
+		}
 		return info.Main.Version
 	}
 	return "(unknown)"

@@ -3,8 +3,10 @@ package judge
 
 import (
 	"errors"
+	"fmt"
 
 	"samecall/agreement"
+	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/study"
 	"samecall/signal"
 )
@@ -41,6 +43,9 @@ func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, 
 	for _, n := range s.Notes {
 		r.Warnings = append(r.Warnings, Warning{n.Code, n.Text})
 	}
+	if w, ok := missingCalls(s.Ratings); ok {
+		r.Warnings = append(r.Warnings, w)
+	}
 	for _, w := range a.Warnings {
 		r.Warnings = append(r.Warnings, Warning{w.Code, w.Text})
 	}
@@ -51,6 +56,20 @@ func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, 
 	curve.Confidence = opt.Confidence
 	r.Zone, r.NoZone = NewZone(s, curve)
 	return r, nil
+}
+
+// manyMissing is the share of calls whose lack is told. Our own choice, no source.
+const manyMissing = 0.05
+
+func missingCalls(r *agreement.Ratings) (Warning, bool) {
+	made, missing := r.Count()
+	share := float64(missing) / float64(max(1, made+missing))
+	if share <= manyMissing {
+		return Warning{}, false
+	}
+	return Warning{"missing_calls", fmt.Sprintf(
+		"%s of %s calls are missing (%s). Every figure rests on the calls that were made; a call left blank is often one that was hard to make.",
+		format.Count(missing), format.Count(made+missing), format.Percent(share))}, true
 }
 
 // ErrNoReference is why a study without a reference has no errors to count.

@@ -41,10 +41,13 @@ func Flaw(w io.Writer, st SmallStudy, rows []study.Tally, h *signal.HitMiss, ter
 	}
 	p.smallHead(st, fmt.Sprintf("hit/miss study of flaw size · %s · found in %s of %s", format.Counted(len(h.Curve.Parts), "flaw"), format.Count(found), format.Counted(looks, "look")))
 	p.line("")
-	if h.HasA9095 {
+	switch why := whyNoA9095(st, h); {
+	case h.HasA9095 && why == "":
 		p.wrap(fmt.Sprintf("A flaw of %s is found at least nine times in ten, with 95 %% confidence (a90/95).", s.WithUnit(s.Value(h.A9095))), "")
-	} else {
-		p.wrap("The study gives no a90/95: "+h.Why+". More flaws are needed, above all around a90 and above it.", "")
+	case h.HasA9095:
+		p.wrap("a90/95 is not shown: "+why+". Larger flaws are needed.", "")
+	default:
+		p.wrap("The study gives no a90/95: "+why+". More flaws are needed, above all around a90 and above it.", "")
 	}
 	p.table(flawTable(st, h))
 	p.table(flawSizesTable(st, rows, h))
@@ -70,15 +73,56 @@ func flawScale(st SmallStudy, h *signal.HitMiss) format.Scale {
 	return format.NewScale(st.Unit, nil, h.A50.Value/10)
 }
 
+// largestFlaw is the largest size that was tried.
+func largestFlaw(h *signal.HitMiss) float64 {
+	largest := slices.MaxFunc(h.Curve.Parts, func(a, b signal.PartFit) int { return cmp.Compare(a.Value, b.Value) })
+	return math.Exp(largest.Value)
+}
+
+// beyondTried reports whether a size is larger than every flaw tried; the
+// logarithm and back may lose the last digit.
+func beyondTried(h *signal.HitMiss, size float64) bool { return size > largestFlaw(h)*(1+1e-12) }
+
+// whyNoA9095 says why a90/95 is not to be relied on: there is none, or it is
+// an extrapolation. Empty if it is shown.
+func whyNoA9095(st SmallStudy, h *signal.HitMiss) string {
+	s := flawScale(st, h)
+	switch {
+	case !h.HasA9095:
+		return h.Why
+	case beyondTried(h, h.A9095):
+		return "it lies beyond the largest flaw tried (" + s.WithUnit(s.Value(largestFlaw(h))) + ")"
+	}
+	return ""
+}
+
+// hasA9095 reports whether there is a number for a90/95. Beyond the largest
+// flaw it rests on the curve alone, and where hits and misses do not overlap
+// nothing is known of how the curve rises.
+func hasA9095(h *signal.HitMiss) bool {
+	return h.HasA9095 && (h.Curve.Lower.Status == signal.Fitted || !beyondTried(h, h.A9095))
+}
+
+// flawSize writes a size; one beyond the largest flaw tried is an
+// extrapolation and has few digits.
+func flawSize(s format.Scale, h *signal.HitMiss) func(float64) string {
+	return func(x float64) string {
+		if beyondTried(h, x) {
+			return format.Short(x)
+		}
+		return s.Value(x)
+	}
+}
+
 func flawTable(st SmallStudy, h *signal.HitMiss) Table {
 	s := flawScale(st, h)
 	t := Table{Name: "flaw", Title: inUnit("Size against chance of being found", s), Columns: []Column{{Name: "figure"}, {Name: "size", Numbers: true}, {Name: "what it tells", Long: true}}}
 	t.Rows = append(t.Rows,
-		[]Cell{say("a50"), boundedCell(s, h.A50, s.Value), say("found half of the time")},
-		[]Cell{say("a90"), boundedCell(s, h.A90, s.Value), say("found nine times in ten")})
+		[]Cell{say("a50"), boundedCell(s, h.A50, flawSize(s, h)), say("found half of the time")},
+		[]Cell{say("a90"), boundedCell(s, h.A90, flawSize(s, h)), say("found nine times in ten")})
 	bound := say(format.Dash)
-	if h.HasA9095 {
-		bound = valueCell(s.Value(h.A9095), h.A9095)
+	if hasA9095(h) {
+		bound = valueCell(flawSize(s, h)(h.A9095), h.A9095)
 	}
 	t.Rows = append(t.Rows, []Cell{say("a90/95"), bound, say("a90 is not larger than this, with 95 % confidence, one-sided, by likelihood ratio")})
 	t.Note = fmt.Sprintf("Hit/miss model of MIL-HDBK-1823A (2009): %s curve over the logarithm of the size, by maximum likelihood. In brackets the two-sided %s interval.",
@@ -144,8 +188,8 @@ func flawNotes(st SmallStudy, h *signal.HitMiss) []string {
 		from, to := s.Value(math.Exp(gap.Reject)), s.WithUnit(s.Value(math.Exp(gap.Accept)))
 		out = append(out, fmt.Sprintf("Hits and misses do not overlap in size: flaws up to %s were missed and flaws from %s found (one size at most had both). The curve is a bias-reduced one; where it turns between these sizes, and how steeply, the study does not tell.", from, to))
 	}
-	if largest := slices.MaxFunc(c.Parts, func(a, b signal.PartFit) int { return cmp.Compare(a.Value, b.Value) }); h.HasA9095 && h.A9095 > math.Exp(largest.Value) {
-		out = append(out, fmt.Sprintf("a90/95 lies beyond the largest flaw tried, %s: it rests on the shape of the curve alone. Larger flaws are needed.", s.WithUnit(s.Value(math.Exp(largest.Value)))))
+	if hasA9095(h) && beyondTried(h, h.A9095) {
+		out = append(out, fmt.Sprintf("The number given for a90/95 is an extrapolation beyond the largest flaw tried, %s: it rests on the shape of the curve alone.", s.WithUnit(s.Value(largestFlaw(h)))))
 	}
 	for _, i := range c.Outliers {
 		p := c.Parts[i]

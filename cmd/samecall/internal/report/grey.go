@@ -90,15 +90,20 @@ func greyLimitsTable(g *judge.Grey) Table {
 		{"limit", func(l judge.GreyLimit) Cell { return valueCell(s.Value(l.Limit), l.Limit) }},
 		{"cut: accepted half of the time", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Cut, s.Value) }},
 		{"cut less limit", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Offset, s.Signed) }},
-		{"σ", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Sigma, s.Value) }},
+		{"σ", func(l judge.GreyLimit) Cell {
+			if !informs(l.Curve) {
+				return say(notKnown)
+			}
+			return boundedCell(s, l.Curve.Sigma, s.Value)
+		}},
 		{"grey zone from", func(l judge.GreyLimit) Cell { return zoneEnd(s, l.Curve, l.Curve.From) }},
 		{"grey zone to", func(l judge.GreyLimit) Cell { return zoneEnd(s, l.Curve, l.Curve.To) }},
 		{"wide", func(l judge.GreyLimit) Cell { return zoneWidth(s, l.Curve, true) }},
 		{"of tolerance", func(l judge.GreyLimit) Cell {
-			if !l.Curve.HasShare || l.Curve.Status != signal.Fitted {
+			if !l.Curve.HasShare {
 				return say(format.Dash)
 			}
-			return boundedCell(s, l.Curve.Share, format.Percent)
+			return zoneShare(l.Curve)
 		}},
 		{"accepted at the limit itself", func(l judge.GreyLimit) Cell {
 			if !l.Curve.HasAtLimit {
@@ -130,10 +135,40 @@ func greyLimitsTable(g *judge.Grey) Table {
 	return t
 }
 
-// zoneEnd is an end of the grey zone; without mixed parts it is not known.
+const notKnown = "not known"
+
+// informs reports whether the calls say how wide the grey zone at a limit is:
+// rejected and accepted ones overlap there, and the width has an upper bound.
+// What a fit gives otherwise is a number without a meaning.
+func informs(l *signal.LimitFit) bool {
+	return l.Known() && l.Status == signal.Fitted && l.Width.HasUpper
+}
+
+// gapWidth is the gap that the grey zone is narrower than, where no part in it
+// is mixed.
+func gapWidth(l *signal.LimitFit) (float64, bool) {
+	if g := l.Gap; l.Status != signal.Fitted && g != nil && g.HasReject && g.HasAccept {
+		return math.Abs(g.Accept - g.Reject), true
+	}
+	return 0, false
+}
+
+// zoneShare is the width of the grey zone, of the tolerance.
+func zoneShare(l *signal.LimitFit) Cell {
+	gap, separated := gapWidth(l)
+	switch {
+	case informs(l):
+		return boundedCell(format.Scale{}, l.Share, format.Percent)
+	case separated && l.Width.Value > 0:
+		return say("under " + format.Percent(gap*l.Share.Value/l.Width.Value))
+	}
+	return say(notKnown)
+}
+
+// zoneEnd is an end of the grey zone.
 func zoneEnd(s format.Scale, l *signal.LimitFit, x float64) Cell {
-	if l.Status != signal.Fitted {
-		return say(format.Dash)
+	if !informs(l) {
+		return say(notKnown)
 	}
 	return valueCell(s.Value(x), x)
 }
@@ -141,11 +176,12 @@ func zoneEnd(s format.Scale, l *signal.LimitFit, x float64) Cell {
 // zoneWidth is the width of the grey zone; without mixed parts, the gap that
 // it is narrower than.
 func zoneWidth(s format.Scale, l *signal.LimitFit, interval bool) Cell {
-	switch gap := l.Gap; {
-	case l.Status != signal.Fitted && gap != nil && gap.HasReject && gap.HasAccept:
-		return say("under " + s.Value(math.Abs(gap.Accept-gap.Reject)))
-	case l.Status != signal.Fitted:
-		return say(format.Dash)
+	gap, separated := gapWidth(l)
+	switch {
+	case separated:
+		return say("under " + s.Value(gap))
+	case !informs(l):
+		return say(notKnown)
 	case interval:
 		return boundedCell(s, l.Width, s.Value)
 	}
@@ -183,7 +219,11 @@ func greyMethodsTable(g *judge.Grey) Table {
 			if l.Side == signal.Upper {
 				from, to = to, from
 			}
-			add(l.Side.String(), "curve", zoneEnd(s, c, from), zoneEnd(s, c, to), zoneWidth(s, c, false), value(c.SD), grr(l.HasTolerance, l.PercentGRR[1]))
+			sigma, share := say(notKnown), none
+			if informs(c) {
+				sigma, share = value(c.SD), grr(l.HasTolerance, l.PercentGRR[1])
+			}
+			add(l.Side.String(), "curve", zoneEnd(s, c, from), zoneEnd(s, c, to), zoneWidth(s, c, false), sigma, share)
 		} else {
 			add(l.Side.String(), "curve", none, none, none, none, none)
 		}
@@ -217,6 +257,9 @@ func WhyTheyDiffer(g *judge.Grey) []string {
 			continue
 		case z.Mixed == 0:
 			out = append(out, at+"no part is mixed: the unanimous zone is only the gap between two neighbouring parts, and the true zone is narrower.")
+			continue
+		case !informs(l.Curve):
+			out = append(out, at+"the calls do not say how wide the zone of the curve is: there is nothing to compare.")
 			continue
 		}
 		compared = true
@@ -350,16 +393,20 @@ func greyWithoutTable(g *judge.Grey) Table {
 		if l.Side == signal.Upper {
 			without = c.Without.Upper
 		}
-		for _, figure := range []func(*signal.LimitFit) float64{
-			func(f *signal.LimitFit) float64 { return f.Cut.Value }, func(f *signal.LimitFit) float64 { return f.Sigma.Value },
-		} {
-			for _, f := range []*signal.LimitFit{l.Curve, without} {
-				if !f.Known() {
-					row = append(row, say(format.Dash))
-					continue
-				}
-				row = append(row, valueCell(s.Value(figure(f)), figure(f)))
+		fits := []*signal.LimitFit{l.Curve, without}
+		for _, f := range fits {
+			cell := say(format.Dash)
+			if f.Known() {
+				cell = valueCell(s.Value(f.Cut.Value), f.Cut.Value)
 			}
+			row = append(row, cell)
+		}
+		for _, f := range fits {
+			cell := say(format.Dash)
+			if f.Known() && f.Status == signal.Fitted { // the fit without has no intervals to ask
+				cell = valueCell(s.Value(f.Sigma.Value), f.Sigma.Value)
+			}
+			row = append(row, cell)
 		}
 		t.Rows = append(t.Rows, row)
 	}
@@ -382,6 +429,9 @@ func greyFit(g *judge.Grey) []string {
 	s := g.Result.Scale()
 	var out []string
 	for _, l := range g.Limits {
+		if l.Curve.Known() && l.Curve.Status == signal.Fitted && !informs(l.Curve) {
+			out = append(out, "At the "+l.Side.String()+" limit the calls set no upper bound to σ, so that the width of the grey zone is not known. More parts around the limit, and some beyond the zone on either side, would tell it.")
+		}
 		if l.Curve == nil || l.Curve.Status == signal.Fitted || l.Curve.Why == "" {
 			continue
 		}
@@ -479,10 +529,13 @@ func greyMembers(g *judge.Grey) []string {
 		}
 		e := m.Explanation
 		text := ""
-		switch e.Finding {
-		case signal.Explained:
+		none := e.Offset.HasLower && e.Offset.HasUpper && e.Offset.Lower <= 0 && e.Offset.Upper >= 0
+		switch {
+		case none && e.Finding != signal.Unexplained:
+			text = "there is no offset to explain: the interval of cut less limit includes 0."
+		case e.Finding == signal.Explained:
 			text = "the gauge's size explains where the cut lies: the offset is within the uncertainty of its calibration."
-		case signal.PartlyExplained:
+		case e.Finding == signal.PartlyExplained:
 			text = "the gauge's size explains the offset in part: the two intervals overlap."
 		default:
 			text = "the gauge's size does not explain where the cut lies: " + s.WithUnit(s.Signed(e.Remainder.Value)) + " is left over. Look at how the gauge is used, at its form and at the reference values."

@@ -176,7 +176,10 @@ func newGreyMethod(l judge.GreyLimit) greyMethodJSON {
 		m.Unanimous = &widthJSON{l.Unanimous.Width, l.Sigma, grr(0)}
 	}
 	if l.Curve.Known() {
-		m.Curve = &curveWidthJSON{newSignal(l.Curve.Width), l.Curve.SD, grr(1)}
+		m.Curve = &curveWidthJSON{Width: newSignal(l.Curve.Width), Sigma: l.Curve.SD}
+		if informs(l.Curve) {
+			m.Curve.PercentGRR = grr(1)
+		}
 	}
 	return m
 }

@@ -139,6 +139,7 @@ func sections(r *Record) []pageSection {
 	add("map", "Calls", []string{"calls"}, append(crossTables(r), directionTable(r))...)
 	add("zone", "Grey zone", []string{"curve"}, zoneTable(r), cutsTable(r))
 	add("parts", "Parts to look at", nil, partsTable(r))
+	add("every-call", "Every call", nil, callsTable(r))
 	return out
 }
 

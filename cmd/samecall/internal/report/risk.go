@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"strconv"
 	"strings"
 
 	"samecall/cmd/samecall/internal/format"
@@ -91,9 +92,70 @@ func gaugeText(r *judge.Risks) string {
 }
 
 // ppmCell is a share in ppm with its interval.
-func ppmCell(e signal.Estimate) Cell { return boundedCell(format.Scale{}, e, format.PPM) }
+func ppmCell(e signal.Estimate) Cell { return exactCell(e, format.PPM) }
 
-func percentCell(e signal.Estimate) Cell { return boundedCell(format.Scale{}, e, format.Percent) }
+func percentCell(e signal.Estimate) Cell { return exactCell(e, percentApart(e)) }
+
+// exactCell is an estimate with its interval, or alone where the interval is
+// nothing but the estimate.
+func exactCell(e signal.Estimate, write func(float64) string) Cell {
+	c := boundedCell(format.Scale{}, e, write)
+	if !e.Absent && e.HasLower && e.HasUpper && e.Lower == e.Upper {
+		c.Text = write(e.Value)
+	}
+	return c
+}
+
+// percentApart writes shares in percent with as many decimals as tell the
+// estimate from the ends of its interval, six at most.
+func percentApart(e signal.Estimate) func(float64) string {
+	if e.Absent || !e.HasLower || !e.HasUpper || e.Lower == e.Upper {
+		return format.Percent
+	}
+	apart := func(write func(float64) string) bool {
+		value, lower, upper := write(e.Value), write(e.Lower), write(e.Upper)
+		return (value != lower || e.Value == e.Lower) && (value != upper || e.Value == e.Upper)
+	}
+	if apart(format.Percent) {
+		return format.Percent
+	}
+	for decimals := 1; decimals <= 6; decimals++ {
+		write := func(share float64) string {
+			text := strconv.FormatFloat(100*share, 'f', decimals, 64)
+			if x, _ := strconv.ParseFloat(text, 64); share == 0 || share == 1 || x == 0 || x == 100 {
+				return format.Percent(share) // none and all are for none and all only
+			}
+			return text + " %"
+		}
+		if apart(write) {
+			return write
+		}
+	}
+	return format.Percent
+}
+
+// noneBeyond reports at which limits a process of measured values has none
+// beyond.
+func noneBeyond(r *judge.Risks) (lower, upper bool) {
+	if r.Process.N == 0 {
+		return false, false
+	}
+	lower, upper = r.Limits.HasLower, r.Limits.HasUpper
+	for _, v := range r.Ask.Process.Values {
+		lower = lower && v >= r.Limits.Lower
+		upper = upper && v <= r.Limits.Upper
+	}
+	return lower, upper
+}
+
+// unlessNone is the share of escapes, or says that there is no value to escape.
+func unlessNone(none bool, e signal.Estimate) Cell {
+	c := ppmCell(e)
+	if none {
+		c.Text = "0: no value there"
+	}
+	return c
+}
 
 // riskTable gives the shares without a guard band, by limit.
 func riskTable(r *judge.Risks) Table {
@@ -110,7 +172,9 @@ func riskTable(r *judge.Risks) Table {
 	}
 	n := r.Now
 	add("made bad, ppm", valueCell(format.PPM(n.Bad.Value), n.Bad.Value))
-	add("escapes, ppm", ppmCell(n.Escape), ppmCell(n.EscapeLower), ppmCell(n.EscapeUpper))
+	noLower, noUpper := noneBeyond(r)
+	add("escapes, ppm", unlessNone((noLower || !r.Limits.HasLower) && (noUpper || !r.Limits.HasUpper), n.Escape),
+		unlessNone(noLower, n.EscapeLower), unlessNone(noUpper, n.EscapeUpper))
 	add("false rejects, ppm", ppmCell(n.FalseReject), ppmCell(n.FalseRejectLower), ppmCell(n.FalseRejectUpper))
 	add("accepted", percentCell(n.Accepted))
 	add("bad among accepted, ppm", ppmCell(n.BadAmongAccepted))
@@ -210,10 +274,26 @@ func riskFound(r *judge.Risks) []string {
 // costText writes the cost of a thousand parts.
 func costText(perPart float64) string { return fmt.Sprintf("%.3g", 1000*perPart) }
 
+// fewProcessValues is below how many values of a process a caution is given:
+// our own choice, no source.
+const fewProcessValues = 30
+
 func riskCautions(r *judge.Risks) []string {
 	out := []string{"The process figures are your assumption, not a finding of the study: another mean or spread gives other escapes. One call is taken to decide on each part, made as in the study."}
 	if r.Process.N > 0 {
 		out = append(out, fmt.Sprintf("The %s hold no tail beyond their own extremes: shares far below 1 in %s cannot be told from them.", format.Counted(r.Process.N, "value"), format.Count(r.Process.N)))
+	}
+	if n := r.Process.N; n > 0 && n < fewProcessValues {
+		out = append(out, fmt.Sprintf("%s, fewer than %d, say little about where a process lies and how wide it is (that number is our own choice, without a source).", format.Counted(n, "value"), fewProcessValues))
+	}
+	lower, upper := noneBeyond(r)
+	for _, l := range []struct {
+		none bool
+		side string
+	}{{lower, "lower"}, {upper, "upper"}} {
+		if l.none {
+			out = append(out, "No process value lies beyond the "+l.side+" limit: that no part escapes there follows from the values given, and is not a finding about the inspection.")
+		}
 	}
 	switch {
 	case r.Curve == nil:

@@ -152,14 +152,14 @@ func FlawJSON(w io.Writer, st SmallStudy, rows []study.Tally, h *signal.HitMiss)
 	c := h.Curve
 	d := flawDocument{
 		Schema: FlawSchema, Title: st.Title, Input: inputJSON(st.Input), Unit: st.Unit, Confidence: c.Options.Confidence,
-		Flaws: len(c.Parts), A50: newSignal(h.A50), A90: newSignal(h.A90), A9095: estimateJSON{Reason: h.Why},
+		Flaws: len(c.Parts), A50: newSignal(h.A50), A90: newSignal(h.A90), A9095: estimateJSON{Reason: whyNoA9095(st, h)},
 		Sigma: newSignal(c.Lower.Sigma), Likelihood: newLikelihood(c, nil, signal.Lower),
 		Sizes: []flawSizeJSON{}, Outliers: []flawSizeJSON{}, Notes: append([]string{}, flawNotes(st, h)...), Assumes: flawAssumes, Cautions: flawCautions,
 	}
 	// The curve runs over the logarithm of the size; its cuts there are a50.
 	d.Likelihood.Limit = nil
-	if h.HasA9095 {
-		d.A9095 = estimateJSON{Estimate: &h.A9095, Method: flawBound}
+	if hasA9095(h) {
+		d.A9095.Estimate, d.A9095.Method = &h.A9095, flawBound
 	}
 	for _, p := range flawSizes(rows, h) {
 		d.Looks += p.Looks

@@ -34,7 +34,11 @@ func Tables(r *Record) []Table {
 
 // allTables are those of the whole record: what was studied first.
 func allTables(r *Record) []Table {
-	return append([]Table{studyTable(r), causesTable(r)}, Tables(r)...)
+	all := append([]Table{studyTable(r), causesTable(r)}, Tables(r)...)
+	if t := callsTable(r); len(t.Rows) > 0 {
+		all = append(all, t)
+	}
+	return all
 }
 
 // studyTable says what was studied and decided, and how it came about.
@@ -51,6 +55,8 @@ func studyTable(r *Record) Table {
 	add("characteristic", set.Characteristic)
 	add("gauge", set.Gauge)
 	add("limits", limitsText(r))
+	add("calibrated size", memberText(r.Scale(), "lower", set.GaugeSizes.Lower))
+	add("calibrated size", memberText(r.Scale(), "upper", set.GaugeSizes.Upper))
 	parts := format.Count(d.Parts)
 	if d.BadParts != nil {
 		parts += fmt.Sprintf(": %s bad, %s good", format.Count(*d.BadParts), format.Count(*d.GoodParts))
@@ -65,11 +71,20 @@ func studyTable(r *Record) Table {
 	add("calls", calls)
 	add("categories", strings.Join(r.Study.Categories, ", "))
 	add("accepted", strings.Join(d.Accept, ", "))
+	add("words that accept", strings.Join(set.Accept, ", "))
+	add("words that reject", strings.Join(set.Reject, ", "))
 	add("reference", d.Reference)
 	add("verdict", r.Verdict.Overall.String())
 	add("confidence", format.Percent(r.Options.Confidence))
 	add("resamples", fmt.Sprintf("%d, seed %d", r.Options.Resamples, r.Options.Seed))
 	add("pairing of trials", r.Options.Pairing.String())
+	if r.Zone != nil && r.Zone.Curves != nil {
+		sigma := "one σ for both limits"
+		if r.Zone.Curves.Pooled.Options.TwoSigmas {
+			sigma = "a σ for each limit"
+		}
+		add("acceptance curve", r.Zone.Curves.Pooled.Options.Link.String()+", "+sigma)
+	}
 	for _, in := range r.Study.Inputs {
 		add("SHA-256 of "+in.File, in.SHA256)
 	}
@@ -176,9 +191,9 @@ func errorsTable(r *Record) Table {
 	t := Table{
 		Name:  "errors",
 		Title: "Counts behind the rates",
-		Columns: []Column{{Name: "appraiser"}, {Name: "parts right", Numbers: true}, {Name: "misses", Numbers: true}, {Name: "worth", Numbers: true},
-			{Name: "false alarms", Numbers: true}, {Name: "worth", Numbers: true}, {Name: "d′", Numbers: true}, {Name: "criterion", Numbers: true}},
-		Note: "Misses of the calls on bad parts, false alarms of those on good parts. Worth: how many independent calls the calls are worth, since calls on one part are alike. d′: how well bad is told from good; criterion: below 0 leans to rejecting, above 0 to accepting.",
+		Columns: []Column{{Name: "appraiser"}, {Name: "parts right", Numbers: true}, {Name: "misses", Numbers: true}, {Name: "effective", Numbers: true},
+			{Name: "false alarms", Numbers: true}, {Name: "effective", Numbers: true}, {Name: "d′", Numbers: true}, {Name: "criterion", Numbers: true}},
+		Note: "Misses of the calls on bad parts, false alarms of those on good parts. Effective: how many independent calls they are worth, since calls on one part are alike. d′: how well bad is told from good; criterion: below 0 leans to rejecting, above 0 to accepting.",
 	}
 	worth := func(s agreement.Share) Cell {
 		if s.Absent != nil {

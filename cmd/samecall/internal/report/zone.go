@@ -14,7 +14,7 @@ func zoneTable(r *Record) Table {
 	t := Table{
 		Name:  "zone",
 		Title: "Grey zone: where the calls of all appraisers turn",
-		Columns: []Column{{Name: "limit"}, {Name: "at", Numbers: true}, {Name: "cut less limit", Numbers: true}, {Name: "σ", Numbers: true},
+		Columns: []Column{{Name: "limit"}, {Name: "at", Numbers: true}, {Name: "cut − limit", Numbers: true}, {Name: "σ", Numbers: true},
 			{Name: "grey zone", Numbers: true}, {Name: "of tolerance", Numbers: true}},
 	}
 	if r.Zone == nil || r.Zone.Curves == nil {
@@ -38,17 +38,23 @@ func zoneTable(r *Record) Table {
 			continue
 		}
 		share := say(format.Dash)
-		if l.HasShare {
+		sigma, width := say(format.Dash), say(format.Dash)
+		if drawn(l) {
+			sigma, width = valueCell(s.Value(l.Sigma.Value), l.Sigma.Value), valueCell(s.Value(l.Width.Value), l.Width.Value)
+		}
+		if l.HasShare && drawn(l) {
 			share = valueCell(format.Percent(l.Share.Value), l.Share.Value)
 		}
 		t.Rows = append(t.Rows, append(row,
 			offsetCell(s, l.Offset),
-			valueCell(s.Value(l.Sigma.Value), l.Sigma.Value),
-			valueCell(s.Value(l.Width.Value), l.Width.Value),
-			share))
+			sigma, width, share))
 	}
 	return t
 }
+
+// drawn reports whether calls near a limit draw the curve there: without
+// mixed parts, or with a σ that nothing bounds, its width is nobody's finding.
+func drawn(l *signal.LimitFit) bool { return l.Status == signal.Fitted && l.Sigma.HasUpper }
 
 // zoneNotes says in sentences what the table of the grey zone cannot.
 func zoneNotes(r *Record) []string {
@@ -81,7 +87,7 @@ func zoneNotes(r *Record) []string {
 				widths = append(widths, s.Value(l.Width)+" wide at the "+l.Side.String()+" limit")
 			}
 		}
-		out = append(out, fmt.Sprintf("Unanimous zone: %s. Taken as %.2f σ it makes %%GRR %.0f %% of the tolerance: %s by common practice (below 10 good, to 30 conditional).",
+		out = append(out, fmt.Sprintf("Unanimous zone: %s. Taken as %.2f σ it makes %%GRR %.0f %% of the tolerance: %s by common practice (below 10 good, to 30 conditional). The command zone tells how it differs from the curve's.",
 			strings.Join(widths, ", "), u.Spread, u.PercentGRR, signal.BandGRR(u.PercentGRR)))
 	}
 	return out
@@ -102,7 +108,7 @@ func cutsTable(r *Record) Table {
 	} {
 		if l := side(all.Pooled); l != nil && l.HasLimit {
 			sides = append(sides, side)
-			t.Columns = append(t.Columns, Column{Name: l.Side.String() + ": cut less limit", Numbers: true})
+			t.Columns = append(t.Columns, Column{Name: l.Side.String() + ": cut − limit", Numbers: true})
 		}
 	}
 	sigmas := sides
@@ -144,13 +150,13 @@ func cutsTable(r *Record) Table {
 	for _, x := range []struct {
 		what string
 		test signal.Test
-	}{{"the same cuts", all.SameCut}, {"the same σ", all.SameSigma}} {
+	}{{"same cuts", all.SameCut}, {"same σ", all.SameSigma}} {
 		if x.test.Done {
-			tests = append(tests, x.what+" p "+format.Probability(x.test.P))
+			tests = append(tests, x.what+": p "+format.Probability(x.test.P))
 		}
 	}
 	if len(tests) > 0 {
-		t.Note = "Do all appraisers have " + strings.Join(tests, ", ") + " (likelihood ratio; a small p says they do not)."
+		t.Note = "Likelihood-ratio tests of all appraisers, " + strings.Join(tests, "; ") + ". A small p says that they differ."
 	}
 	return t
 }
