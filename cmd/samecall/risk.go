@@ -4,6 +4,9 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"math"
+	"strconv"
+	"strings"
 
 	"github.com/spf13/cobra"
 
@@ -96,7 +99,7 @@ func (a *riskFlags) addFlags(cmd *cobra.Command) {
 	f.StringVar(&a.towards, "towards", "", "the limit that the process lies nearer to, where Cpk is less than Cp: lower or upper")
 	f.StringVar(&a.values, "process-values", "", "`file` with measured values of the process, CSV or .xlsx; no distribution is laid through them")
 	f.StringVar(&a.column, "process-column", "", "its column; without it the only one, or the one named value")
-	f.Float64SliceVar(&a.guard, "guard", nil, "guard bands of the table, such as 0,0.002,0.004; without it multiples of σ")
+	f.Var((*numberList)(&a.guard), "guard", "guard bands of the table, such as 0,0.002,0.004; without it multiples of σ")
 	f.Float64Var(&a.target, "escape-target", 0, "find the guard band that holds the escapes under so many ppm")
 	f.BoolVar(&a.shown, "shown", false, "with --escape-target: hold the upper bound of the interval under it, not the estimate")
 	f.Float64Var(&a.costEscape, "cost-escape", 0, "find the cheapest guard band: cost of an escape")
@@ -104,8 +107,35 @@ func (a *riskFlags) addFlags(cmd *cobra.Command) {
 	f.StringVar(&a.appraiser, "appraiser", "", "the curve of this appraiser in place of all together")
 	f.Float64Var(&a.cutLower, "cut-lower", 0, "without a study: the value accepted half of the time at the lower limit")
 	f.Float64Var(&a.cutUpper, "cut-upper", 0, "and at the upper limit")
-	f.Float64SliceVar(&a.sigma, "sigma", nil, "without a study: σ of the inspection, or those at the lower and the upper limit")
+	f.Var((*numberList)(&a.sigma), "sigma", "without a study: σ of the inspection, or those at the lower and the upper limit")
 	_ = cmd.RegisterFlagCompletionFunc("towards", cobra.FixedCompletions([]string{"lower", "upper"}, cobra.ShellCompDirectiveNoFileComp))
+}
+
+// numberList is a flag of numbers with commas between them. The error names the
+// one that is none.
+type numberList []float64
+
+func (n *numberList) String() string {
+	var out []string
+	for _, x := range *n {
+		out = append(out, strconv.FormatFloat(x, 'g', -1, 64))
+	}
+	return strings.Join(out, ",")
+}
+
+func (n *numberList) Type() string { return "floats" }
+
+func (n *numberList) Set(text string) error {
+	var out []float64
+	for _, field := range strings.Split(text, ",") {
+		x, err := strconv.ParseFloat(strings.TrimSpace(field), 64)
+		if err != nil || math.IsNaN(x) || math.IsInf(x, 0) {
+			return fmt.Errorf("%q is not a number; expected numbers with commas between them, such as 0.002,0.004", field)
+		}
+		out = append(out, x)
+	}
+	*n = append(*n, out...)
+	return nil
 }
 
 // given reports whether any of the flags was given.
@@ -154,6 +184,8 @@ func (a *riskFlags) wanted(cmd *cobra.Command) (judge.RiskAsk, error) {
 		return want, errors.New("--towards goes with --cp and --cpk")
 	case a.towards != "" && a.towards != "lower" && a.towards != "upper":
 		return want, fmt.Errorf("--towards is %q; expected lower or upper", a.towards)
+	case given(cmd, "cp") && a.cpk > a.cp:
+		return want, fmt.Errorf("--cpk is %v and --cp %v; Cpk cannot exceed Cp, and equals it where the process is centred", a.cpk, a.cp)
 	case given(cmd, "cp") && a.cpk != a.cp && a.towards == "":
 		return want, errors.New("--cpk differs from --cp: the process is off centre; say with --towards lower or --towards upper to which side")
 	case a.column != "" && a.values == "":
@@ -215,6 +247,9 @@ func (a *riskFlags) fitted(cmd *cobra.Command, src *source, in streams, args []s
 	st, err := src.read(cmd, args, in)
 	if err != nil {
 		return nil, nil, err
+	}
+	if err := needValues(st); err != nil {
+		return nil, nil, statusError{exitWrongData, err}
 	}
 	opt.Confidence = st.Settings.Confidence
 	c, err := judge.PooledCurve(st, opt, a.appraiser)

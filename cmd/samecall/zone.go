@@ -1,6 +1,7 @@
 package main
 
 import (
+	"errors"
 	"fmt"
 	"io"
 
@@ -9,6 +10,7 @@ import (
 	"samecall/cmd/samecall/internal/judge"
 	"samecall/cmd/samecall/internal/output"
 	"samecall/cmd/samecall/internal/report"
+	"samecall/cmd/samecall/internal/study"
 )
 
 func newZone(s streams) *cobra.Command {
@@ -50,6 +52,9 @@ written, 3 the data is wrong or holds no values or limits.`,
 			if err != nil {
 				return err
 			}
+			if err := needValues(st); err != nil {
+				return statusError{exitWrongData, err}
+			}
 			opt.Confidence = st.Settings.Confidence
 			g, err := judge.NewGrey(st, opt, spread)
 			if err != nil {
@@ -68,6 +73,24 @@ written, 3 the data is wrong or holds no values or limits.`,
 	f.Float64Var(&spread, "spread", 5.15, "number of σ that the unanimous zone is taken to span: 5.15 or 6")
 	src.addFlags(cmd)
 	return cmd
+}
+
+// needValues says what a study lacks for an acceptance curve, and what to do.
+func needValues(st *study.Study) error {
+	const (
+		values = "add a column value with the measured value of each part"
+		limits = "give lower or upper, in the study file or as --lower or --upper"
+	)
+	limited := st.Settings.Lower != nil || st.Settings.Upper != nil
+	switch {
+	case st.Values == nil && !limited:
+		return errors.New("the parts have no values and no limit is given: " + values + ", and " + limits)
+	case st.Values == nil:
+		return errors.New("the parts have no values: " + values)
+	case !limited:
+		return errors.New("no limit is given: " + limits)
+	}
+	return nil
 }
 
 func addJSON(cmd *cobra.Command, file *string) {

@@ -88,8 +88,8 @@ func greyLimitsTable(g *judge.Grey) Table {
 		cell func(judge.GreyLimit) Cell
 	}{
 		{"limit", func(l judge.GreyLimit) Cell { return valueCell(s.Value(l.Limit), l.Limit) }},
-		{"cut: accepted half of the time", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Cut, s.Value) }},
-		{"cut less limit", func(l judge.GreyLimit) Cell { return boundedCell(s, l.Curve.Offset, s.Signed) }},
+		{"cut: accepted half of the time", func(l judge.GreyLimit) Cell { return placeCell(s, l.Curve, l.Curve.Cut, s.Value) }},
+		{"cut less limit", func(l judge.GreyLimit) Cell { return placeCell(s, l.Curve, l.Curve.Offset, s.Signed) }},
 		{"σ", func(l judge.GreyLimit) Cell {
 			if !informs(l.Curve) {
 				return say(notKnown)
@@ -151,6 +151,15 @@ func gapWidth(l *signal.LimitFit) (float64, bool) {
 		return math.Abs(g.Accept - g.Reject), true
 	}
 	return 0, false
+}
+
+// placeCell is where the curve cuts. A cut that nothing bounds on either side,
+// where the calls do not say how steep the curve is, is not known.
+func placeCell(s format.Scale, l *signal.LimitFit, e signal.Estimate, write func(float64) string) Cell {
+	if !informs(l) && !e.HasLower && !e.HasUpper {
+		return say(notKnown)
+	}
+	return boundedCell(s, e, write)
 }
 
 // zoneShare is the width of the grey zone, of the tolerance.
@@ -403,7 +412,7 @@ func greyWithoutTable(g *judge.Grey) Table {
 		}
 		for _, f := range fits {
 			cell := say(format.Dash)
-			if f.Known() && f.Status == signal.Fitted { // the fit without has no intervals to ask
+			if f.Known() && f.Status == signal.Fitted {
 				cell = valueCell(s.Value(f.Sigma.Value), f.Sigma.Value)
 			}
 			row = append(row, cell)
