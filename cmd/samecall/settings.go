@@ -7,6 +7,7 @@ import (
 	"os"
 
 	"github.com/spf13/cobra"
+	"github.com/spf13/pflag"
 
 	"samecall/cmd/samecall/internal/example"
 	"samecall/cmd/samecall/internal/study"
@@ -111,7 +112,7 @@ func (s *source) flags(cmd *cobra.Command) (study.Settings, error) {
 		switch {
 		case !cmd.Flags().Changed(name):
 		case len(levels) != 2:
-			return out, fmt.Errorf("--%s has %d numbers; expected two, the accept and the conditional level", name, len(levels))
+			return out, fmt.Errorf("--%s has %s; expected two, the accept and the conditional level", name, countedNumbers(len(levels)))
 		default:
 			*to = &[2]float64{levels[0], levels[1]}
 		}
@@ -147,4 +148,34 @@ func oneFile(cmd *cobra.Command, args []string) error {
 		return fmt.Errorf("%d files are named; expected one (a calls file, a study file, or - for standard input)", len(args))
 	}
 	return nil
+}
+
+// countedNumbers counts numbers in words.
+func countedNumbers(n int) string {
+	if n == 1 {
+		return "1 number"
+	}
+	return fmt.Sprintf("%d numbers", n)
+}
+
+// flagError says in plain words what is wrong with a flag.
+func flagError(cmd *cobra.Command, err error) error {
+	var invalid *pflag.InvalidValueError
+	if errors.As(err, &invalid) {
+		flag := invalid.GetFlag()
+		if expected := flagValues[flag.Value.Type()]; expected != "" {
+			return fmt.Errorf("--%s is %q; expected %s", flag.Name, invalid.GetValue(), expected)
+		}
+	}
+	return fmt.Errorf("%w; %s --help lists what there is", err, cmd.CommandPath())
+}
+
+// flagValues says what a flag expects, by the type of its value.
+var flagValues = map[string]string{
+	"bool":         "true or false",
+	"float64":      "a number such as 12.018",
+	"float64Slice": "numbers with commas between them, such as 0.9,0.8",
+	"int":          "a whole number such as 1000",
+	"uint64":       "a whole number of 0 or more",
+	"stringSlice":  "words with commas between them, such as go,pass",
 }

@@ -50,6 +50,8 @@ type builder struct {
 
 	refs, values, doubled []again
 
+	points, commas bool // there is a value with a decimal point, with a comma
+
 	problems []Problem
 	more     int
 }
@@ -168,7 +170,11 @@ func (b *builder) fit(fields [][]byte, line int) [][]byte {
 		if blank(fields[n:]) {
 			return fields[:n]
 		}
-		b.problem(line, n, counted(len(fields), "field", "fields"), fmt.Sprintf("%d, as in the header", n), "a separator inside a field needs quotes around the field")
+		hint := "a separator inside a field needs quotes around the field"
+		if v := b.layout.value; !b.comma && v >= 0 && digits(bytes.TrimLeft(trim(fields[v]), "+-")) && digits(trim(fields[v+1])) {
+			hint = "a decimal comma needs quotes, or semicolons between fields"
+		}
+		b.problem(line, n, counted(len(fields), "field", "fields"), fmt.Sprintf("%d, as in the header", n), hint)
 		return nil
 	}
 	if b.padded {
@@ -179,6 +185,10 @@ func (b *builder) fit(fields [][]byte, line int) [][]byte {
 	}
 	b.problem(line, -1, counted(len(fields), "field", "fields"), fmt.Sprintf("%d, as in the header", n), "a missing call is an empty field")
 	return nil
+}
+
+func digits(field []byte) bool {
+	return len(field) > 0 && len(bytes.Trim(field, "0123456789")) == 0
 }
 
 func (b *builder) badPart(fields [][]byte, part []byte, line int) {

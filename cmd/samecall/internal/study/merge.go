@@ -1,6 +1,7 @@
 package study
 
 import (
+	"bytes"
 	"cmp"
 	"fmt"
 	"math"
@@ -32,6 +33,7 @@ func (t *table) study(s Settings) (*Study, []Problem, int) {
 		m.problems = append(m.problems, b.problems...)
 		m.more += b.more
 	}
+	m.unusedSettings()
 	m.mergeWords()
 	trials := m.mergeColumns()
 	m.mergeParts()
@@ -64,6 +66,27 @@ func (m *merge) note(code, format string, args ...any) {
 	m.study.Notes = append(m.study.Notes, Note{code, fmt.Sprintf(format, args...)})
 }
 
+// unusedSettings notes settings that name something that is not there.
+func (m *merge) unusedSettings() {
+	header := make(map[string]bool)
+	for _, h := range m.layout.header {
+		header[fold(h)] = true
+	}
+	for _, name := range m.settings.Ignore {
+		if header[fold(name)] {
+			continue
+		}
+		hint := "."
+		if near := nearest(name, m.layout.header); near != "" {
+			hint = "; did you mean " + near + "?"
+		}
+		m.note("unknown_ignore", "The setting ignore names the column %s, which the table does not have%s", quote(name), hint)
+	}
+	if m.settings.Sheet != "" && m.sheet == "" {
+		m.note("no_sheet", "The setting sheet names %s, but the calls are text, not a workbook: it changes nothing.", quote(m.settings.Sheet))
+	}
+}
+
 // mergeWords gives the words of all builders their meaning.
 func (m *merge) mergeWords() {
 	spelt := make(map[string]string)
@@ -78,6 +101,11 @@ func (m *merge) mergeWords() {
 	v := newVocabulary(m.settings, spelt)
 	m.words = v
 	m.study.Categories, m.study.PassFail = v.names, v.passFail
+	problems, notes := absent(m.settings, spelt)
+	for _, p := range problems {
+		m.add(p)
+	}
+	m.study.Notes = slices.Concat(m.study.Notes, notes, v.notes)
 	if p, ok := v.tooMany(); ok {
 		p.Line = m.line
 		m.add(p)
@@ -361,12 +389,26 @@ func (m *merge) mergeParts() {
 		m.study.Values, m.study.HasValue = values, hasValue
 	}
 	m.study.Notes = append(m.study.Notes, alike.notes()...)
+	m.decimalSigns()
 	for i, b := range m.builders {
 		for _, list := range [][]again{b.refs, b.values, b.doubled} {
 			for _, a := range list {
 				m.suspect[m.rank[i][a.part]] = true
 			}
 		}
+	}
+}
+
+// decimalSigns notes values of a text of which some have a decimal comma and
+// some a point: one of the two may separate thousands. A workbook stores its
+// numbers with points, whatever it shows.
+func (m *merge) decimalSigns() {
+	points, commas := false, false
+	for _, b := range m.builders {
+		points, commas = points || b.points, commas || b.commas
+	}
+	if points && commas && m.sheet == "" {
+		m.note("decimal_signs", "The values have both decimal commas and points; each is read as a decimal sign. Is none of them a separator of thousands?")
 	}
 }
 
@@ -402,8 +444,12 @@ func (b *builder) numbersOf() []float64 {
 	x := make([]float64, b.parts.n)
 	for id := range x {
 		var err error
-		if x[id], err = parseNumber(b.parts.value(b.parts.entry(uint32(id))), b.comma); err != nil {
+		text := b.parts.value(b.parts.entry(uint32(id)))
+		if x[id], err = parseNumber(text, b.comma); err != nil {
 			x[id] = math.NaN()
+		} else if b.comma {
+			b.points = b.points || bytes.IndexByte(text, '.') >= 0
+			b.commas = b.commas || bytes.IndexByte(text, ',') >= 0
 		}
 	}
 	return x

@@ -28,10 +28,20 @@ calls.csv:4:4: found "ZZZ" (2 times) in column 4 (call), expected ` + unknown + 
 			`calls.csv:2:2: found "maybe" in column 2 (reference), expected ` + unknown + `; ` + settingsHint},
 		{"word that categories do not list", "part,a-1\n1,maybe\n2,dent\n", Settings{Categories: []string{"dent", "ok"}},
 			`calls.csv:2:2: found "maybe" in column 2 (a-1), expected dent or ok, as categories lists; add the word to categories if it is right`},
-		{"word of neither accept nor reject", "part,a-1\n1,go\n2,dent\n3,fine\n", Settings{Accept: []string{"fine"}, Reject: []string{"dent"}},
-			`calls.csv:2:2: found "go" in column 2 (a-1), expected accept (fine) or reject (dent); add the word to accept or to reject if it is right`},
+		{"word of neither accept nor reject", "part,a-1\n1,gone\n2,dent\n3,fine\n", Settings{Accept: []string{"fine"}, Reject: []string{"dent"}},
+			`calls.csv:2:2: found "gone" in column 2 (a-1), expected accept (fine) or reject (dent), or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0); add the word to accept or to reject if it is right`},
 		{"word beside reject alone", "part,a-1\n1,ok\n2,dent\n3,fine\n", Settings{Reject: []string{"dent"}},
-			`calls.csv:4:2: found "fine" in column 2 (a-1), expected accept (accept, pass, go, ok, good, conforming, …) or reject (dent); add the word to accept or to reject if it is right`},
+			`calls.csv:4:2: found "fine" in column 2 (a-1), expected accept or reject (dent), or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0); add the word to accept or to reject if it is right`},
+		{"usual words where accept turns one round", "part,a-1\n1,0\n2,1\n3,x\n", Settings{Accept: []string{"0"}, Reject: []string{"x"}},
+			`calls.csv:3:2: found "1" in column 2 (a-1), expected accept (0) or reject (x), or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0); add the word to accept or to reject if it is right`},
+		{"no word of accept occurs", "part,reference,a-1\n1,good,pass\n2,bad,fail\n", Settings{Accept: []string{"passs"}, Reject: []string{"fail"}},
+			`calls.csv: found no call or reference "passs", which the setting accept lists, expected it somewhere in the table; did you mean pass? the table has bad, fail, good and pass`},
+		{"no word of accept alone occurs", "part,value,a-1\n1,0.5,fine\n2,1.5,dent\n", Settings{Accept: []string{"keep", "use"}, Lower: ptr(1)},
+			`calls.csv: found no call or reference one of keep and use, which the setting accept lists, expected it somewhere in the table; the table has dent and fine`},
+		{"decimal comma without quotes", "part,value,a-1\n1,10,02,go\n2,-10,02,go\n3,10,go,go\n", Settings{},
+			`calls.csv:2:4: found 4 fields, expected 3, as in the header; a decimal comma needs quotes, or semicolons between fields
+calls.csv:3:4: found 4 fields, expected 3, as in the header; a decimal comma needs quotes, or semicolons between fields
+calls.csv:4:4: found 4 fields, expected 3, as in the header; a separator inside a field needs quotes around the field`},
 		{"missing columns", "part,call\n1,go\n", Settings{},
 			`calls.csv:1: found no column "appraiser", expected it in the header line
 calls.csv:1: found no column "trial", expected it in the header line; a study of one trial needs it too: 1 in each row`},

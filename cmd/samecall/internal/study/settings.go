@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"os"
+	"regexp"
 	"slices"
 	"sort"
 	"strings"
@@ -364,7 +365,7 @@ func parseSettings(name string, data []byte) (Settings, error) {
 	var top map[string]toml.Primitive
 	meta, err := toml.Decode(string(data), &top)
 	if err != nil {
-		return s, problemsOf([]Problem{syntaxProblem(name, err)}, 0)
+		return s, problemsOf([]Problem{syntaxProblem(name, string(data), err)}, 0)
 	}
 	var list []Problem
 	lines := make(map[string]int) // of each key
@@ -452,12 +453,42 @@ func lineOf(err error) int {
 	return 0
 }
 
-func syntaxProblem(name string, err error) Problem {
+func syntaxProblem(name, text string, err error) Problem {
 	var pe toml.ParseError
 	if !errors.As(err, &pe) {
 		return Problem{File: name, Text: strings.TrimPrefix(err.Error(), "toml: ")}
 	}
-	return Problem{File: name, Line: pe.Position.Line, Column: pe.Position.Col, Text: "not valid TOML: " + pe.Message}
+	p := Problem{File: name, Line: pe.Position.Line, Column: pe.Position.Col, Text: "not valid TOML: " + pe.Message}
+	if lines := strings.Split(text, "\n"); p.Line >= 1 && p.Line <= len(lines) {
+		if hint := syntaxHint(lines[p.Line-1]); hint != "" {
+			p.Text += "; " + hint
+		}
+	}
+	return p
+}
+
+var (
+	decimalComma = regexp.MustCompile(`^[^#"']*=\s*[+-]?\d+,\d`)
+	bareText     = regexp.MustCompile(`^\s*[\w.-]+\s*=\s*[^\s#"'\[{]`)
+	bareNumber   = regexp.MustCompile(`^[^=]*=\s*[+-]?[\d.][\d._eE+-]*\s*(#.*)?$`)
+	numberUnit   = regexp.MustCompile(`^\s*(lower|upper|confidence)\s*=\s*[+-]?\d+(\.\d+)?\s*[^\s#\d._eE]`)
+	bareWords    = regexp.MustCompile(`^[^#"']*=\s*\[\s*\pL`)
+)
+
+// syntaxHint says what is often meant by a line that is not valid.
+func syntaxHint(line string) string {
+	line = strings.TrimSuffix(line, "\r")
+	switch {
+	case decimalComma.MatchString(line):
+		return "the decimal sign is a point, not a comma"
+	case numberUnit.MatchString(line):
+		return "a number stands alone, without a unit"
+	case bareWords.MatchString(line):
+		return "words need quotes, each its own"
+	case bareText.MatchString(line) && !bareNumber.MatchString(line):
+		return `text needs quotes, as in unit = "mm"`
+	}
+	return ""
 }
 
 func sortedKeys[V any](m map[string]V) []string {

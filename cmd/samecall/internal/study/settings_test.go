@@ -90,6 +90,30 @@ s.toml:2: accept names "b", which categories does not list`},
 	}
 }
 
+// The hint stands behind the message of the TOML library, the line before it.
+func TestSyntaxHints(t *testing.T) {
+	for _, c := range []struct{ in, want string }{
+		{"title = \"x\"\nunit = mm\n", `text needs quotes, as in unit = "mm"`},
+		{"title = 12 bolts\r\n", `text needs quotes, as in unit = "mm"`},
+		{"lower = 10,000\nupper = 11\n", "the decimal sign is a point, not a comma"},
+		{"[gauge_sizes]\nlower = {size = 9,997, uncertainty = 1}\n", "the decimal sign is a point, not a comma"},
+		{"accept = [go]\n", "words need quotes, each its own"},
+		{"upper = 10.5 mm\n", "a number stands alone, without a unit"},
+		{"upper = .5\n", ""},
+		{"title = \"x, 3\n", ""},
+	} {
+		_, err := parseSettings("s.toml", []byte(c.in))
+		if err == nil {
+			t.Errorf("%q: no error", c.in)
+			continue
+		}
+		_, hint, _ := strings.Cut(err.Error(), "; ")
+		if hint != c.want || !strings.Contains(err.Error(), "not valid TOML: ") {
+			t.Errorf("%q: %v, want the hint %q", c.in, err, c.want)
+		}
+	}
+}
+
 func TestMerge(t *testing.T) {
 	file, err := parseSettings("s.toml", []byte(wholeStudyFile))
 	if err != nil {

@@ -35,6 +35,7 @@ type vocabulary struct {
 	expected, hint string // for a word that has no meaning
 	candidates     []string
 	own            map[string]string // words that are a category only because they occur, as spelt
+	notes          []Note
 }
 
 // newVocabulary gives the words seen their meaning. spelt holds, for each
@@ -102,55 +103,96 @@ func listed(s Settings, words []string, key string) *vocabulary {
 	return v
 }
 
+// senses are the folded words that accept and that reject a part: those that
+// the settings list, and the usual ones that neither list claims.
+//
+// A list that turns a usual word round, such as accept = ["0"], gets no usual
+// words beside its own: 1 would then accept too, which nobody can mean.
+func senses(s Settings) (accept, reject map[string]bool) {
+	accept, reject = folded(s.Accept), folded(s.Reject)
+	usual := func(to, other map[string]bool, words, opposite []string) {
+		turned := func(w string) bool { return to[w] }
+		if slices.ContainsFunc(opposite, turned) {
+			return
+		}
+		for _, w := range words {
+			if !other[w] {
+				to[w] = true
+			}
+		}
+	}
+	usual(accept, reject, acceptWords, rejectWords)
+	usual(reject, folded(s.Accept), rejectWords, acceptWords)
+	return accept, reject
+}
+
 // passFail is a study of two categories: the words of settings, and those
 // that are understood without any.
 func passFail(s Settings) *vocabulary {
 	v := &vocabulary{names: passFailNames, accept: []bool{false, true}, passFail: true, of: make(map[string]agreement.Category)}
-	accept, reject := s.Accept, s.Reject
-	if len(reject) == 0 {
-		reject = rejectWords
+	accept, reject := senses(s)
+	for w := range accept {
+		v.of[w] = 1
 	}
-	if len(accept) == 0 {
-		accept = acceptWords
+	for w := range reject {
+		v.of[w] = 0
 	}
-	for _, w := range accept {
-		v.of[fold(w)] = 1
+	v.candidates = slices.Concat(s.Accept, s.Reject) // of equally near words, those of the settings
+	for _, w := range slices.Concat(acceptWords, rejectWords) {
+		if accept[w] || reject[w] {
+			v.candidates = append(v.candidates, w)
+		}
 	}
-	for _, w := range reject {
-		v.of[fold(w)] = 0
-	}
-	v.candidates = append(slices.Clone(accept), reject...)
-	v.expected = fmt.Sprintf("a call such as %s or %s", accept[0], reject[0])
-	if len(s.Accept)+len(s.Reject) > 0 {
-		v.expected = fmt.Sprintf("accept (%s) or reject (%s)", listOf(firstFew(accept), "or"), listOf(firstFew(reject), "or"))
-		v.hint = "add the word to accept or to reject if it is right"
-	} else {
-		v.expected = "accept or reject, or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0)"
+	const usual = "a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0)"
+	if len(s.Accept)+len(s.Reject) == 0 {
+		v.expected = "accept or reject, or " + usual
 		v.hint = "say what other words mean by accept and reject, or list kinds by categories, grades by order"
+		return v
 	}
+	v.expected = "accept" + inBrackets(s.Accept) + " or reject" + inBrackets(s.Reject)
+	if len(accept)+len(reject) > len(folded(s.Accept))+len(folded(s.Reject)) {
+		v.expected += ", or " + usual
+	}
+	v.hint = "add the word to accept or to reject if it is right"
 	return v
 }
 
-// acceptOnly is a study in which each word that is not accepted is a kind of
-// bad part.
+func inBrackets(words []string) string {
+	if len(words) == 0 {
+		return ""
+	}
+	return " (" + listOf(firstFew(words), "or") + ")"
+}
+
+// acceptOnly is a study in which each word that neither accepts nor rejects a
+// part is a kind of bad part. Words that reject without saying why are one
+// category beside the kinds. One kind at most makes a pass/fail study.
 func acceptOnly(s Settings, spelt map[string]string) *vocabulary {
 	v := &vocabulary{of: make(map[string]agreement.Category), own: make(map[string]string)}
-	accept := folded(s.Accept)
-	var bad []string
+	accept, reject := senses(s)
+	var kinds []string
+	var plain []string // words that reject and occur
 	for w := range spelt {
-		if !accept[w] {
-			bad = append(bad, w)
+		switch {
+		case reject[w]:
+			plain = append(plain, spelt[w])
+		case !accept[w]:
+			kinds = append(kinds, w)
 			v.own[w] = spelt[w]
 		}
 	}
-	slices.SortFunc(bad, compareNatural)
-	for i, w := range bad {
-		if i < agreement.MaxCategories {
-			v.of[w] = agreement.Category(i)
+	slices.SortFunc(kinds, compareNatural)
+	slices.SortFunc(plain, compareNatural)
+	if len(kinds) > 1 && len(plain) > 0 {
+		v.names = append(v.names, passFailNames[0])
+	}
+	for _, w := range kinds {
+		if len(v.names) < agreement.MaxCategories {
+			v.of[w] = agreement.Category(len(v.names))
 		}
 		v.names = append(v.names, spelt[w])
 	}
-	good := len(bad)
+	good := len(v.names)
 	if good <= 1 {
 		v.names, v.passFail, good = passFailNames, true, 1
 	} else {
@@ -159,9 +201,84 @@ func acceptOnly(s Settings, spelt map[string]string) *vocabulary {
 	for w := range accept {
 		v.of[w] = agreement.Category(min(good, agreement.MaxCategories))
 	}
+	for w := range reject {
+		v.of[w] = 0
+	}
 	v.accept = make([]bool, len(v.names))
 	v.accept[good] = true
+	v.mixed(kinds, plain)
 	return v
+}
+
+// mixed notes what becomes of kinds beside words that reject without saying
+// why.
+func (v *vocabulary) mixed(kinds, plain []string) {
+	if len(kinds) == 0 || len(plain) == 0 {
+		return
+	}
+	var names []string
+	for _, w := range kinds {
+		names = append(names, quote(v.own[w]))
+	}
+	for i, w := range plain {
+		plain[i] = quote(w)
+	}
+	kind, rejects := listOf(firstFew(names), "and"), listOf(firstFew(plain), "and")
+	if len(plain) > 1 {
+		rejects = "each of " + rejects
+	}
+	if v.passFail {
+		v.own = nil // it is told here, and its calls are counted with others
+		v.notes = append(v.notes, Note{"mixed_words", fmt.Sprintf("%s is taken as reject, as is %s. Where it is a kind of its own, the setting categories lists the kinds.", kind, rejects)})
+		return
+	}
+	v.notes = append(v.notes, Note{"mixed_words", fmt.Sprintf("%s are kinds of bad parts, and %s is plain reject, a category of its own: a kind does not agree with it. Where they mean the same, list them all by reject.", kind, rejects)})
+}
+
+// absent looks for lists of words of which none occurs. That nothing is ever
+// rejected may be; that nothing is accepted is a problem, unless all words that
+// do occur are listed to reject.
+func absent(s Settings, spelt map[string]string) (problems []Problem, notes []Note) {
+	if len(spelt) == 0 || len(s.Order)+len(s.Categories) > 0 {
+		return nil, nil
+	}
+	found := make([]string, 0, len(spelt))
+	for _, w := range spelt {
+		found = append(found, w)
+	}
+	slices.SortFunc(found, compareNatural)
+	rejected := folded(s.Reject)
+	listed := func(w string) bool { return rejected[fold(w)] }
+	for _, l := range []struct {
+		key   string
+		words []string
+		fatal bool
+	}{
+		{"accept", s.Accept, !(len(s.Reject) > 0 && !slices.ContainsFunc(found, func(w string) bool { return !listed(w) }))},
+		{"reject", s.Reject, false},
+	} {
+		if len(l.words) == 0 || slices.ContainsFunc(l.words, func(w string) bool { return spelt[fold(w)] != "" }) {
+			continue
+		}
+		what := quote(l.words[0])
+		if len(l.words) > 1 {
+			what = "one of " + listOf(firstFew(l.words), "and")
+		}
+		hint := ""
+		for _, w := range l.words {
+			if near := nearest(w, found); near != "" && hint == "" {
+				hint = "did you mean " + near + "? "
+			}
+		}
+		there := "the table has " + listOf(firstFew(found), "and")
+		if l.fatal {
+			problems = append(problems, Problem{Found: "no call or reference " + what + ", which the setting " + l.key + " lists",
+				Expected: "it somewhere in the table", Text: hint + there})
+			continue
+		}
+		notes = append(notes, Note{"unused_words", fmt.Sprintf("The setting %s lists %s, which occurs nowhere; %s%s.", l.key, what, hint, there)})
+	}
+	return problems, notes
 }
 
 // tooMany returns a problem if there are more categories than can be held.
