@@ -89,7 +89,7 @@ func greyLimitsTable(g *judge.Grey) Table {
 	}{
 		{"limit", func(l judge.GreyLimit) Cell { return valueCell(s.Value(l.Limit), l.Limit) }},
 		{"cut: accepted half of the time", func(l judge.GreyLimit) Cell { return placeCell(s, l.Curve, l.Curve.Cut, s.Value) }},
-		{"cut less limit", func(l judge.GreyLimit) Cell { return placeCell(s, l.Curve, l.Curve.Offset, s.Signed) }},
+		{"cut − limit", func(l judge.GreyLimit) Cell { return placeCell(s, l.Curve, l.Curve.Offset, s.Signed) }},
 		{"σ", func(l judge.GreyLimit) Cell {
 			if !informs(l.Curve) {
 				return say(notKnown)
@@ -512,7 +512,7 @@ func greyMembersTable(g *judge.Grey) Table {
 	s := g.Result.Scale()
 	t := Table{
 		Name: "gauge", Title: inUnit("The gauge's own sizes, as calibrated", s),
-		Columns: []Column{{Name: "limit"}, {Name: "member", Numbers: true}, {Name: "less limit", Numbers: true}, {Name: "cut less member", Numbers: true}},
+		Columns: []Column{{Name: "limit"}, {Name: "member", Numbers: true}, {Name: "member − limit", Numbers: true}, {Name: "cut − member", Numbers: true}},
 	}
 	for _, m := range g.Members {
 		row := []Cell{say(m.Member.Side.String()), valueCell(s.Value(m.Member.Size)+" ± "+s.Value(m.Member.Uncertainty), m.Member.Size)}
@@ -541,7 +541,7 @@ func greyMembers(g *judge.Grey) []string {
 		none := e.Offset.HasLower && e.Offset.HasUpper && e.Offset.Lower <= 0 && e.Offset.Upper >= 0
 		switch {
 		case none && e.Finding != signal.Unexplained:
-			text = "there is no offset to explain: the interval of cut less limit includes 0."
+			text = "there is no offset to explain: its interval includes 0."
 		case e.Finding == signal.Explained:
 			text = "the gauge's size explains where the cut lies: the offset is within the uncertainty of its calibration."
 		case e.Finding == signal.PartlyExplained:

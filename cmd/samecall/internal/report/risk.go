@@ -94,7 +94,16 @@ func gaugeText(r *judge.Risks) string {
 // ppmCell is a share in ppm with its interval.
 func ppmCell(e signal.Estimate) Cell { return exactCell(e, format.PPM) }
 
-func percentCell(e signal.Estimate) Cell { return exactCell(e, percentApart(e)) }
+// percentCell is a share in percent, whose sign is written once.
+func percentCell(e signal.Estimate) Cell {
+	write := percentApart(e)
+	c := exactCell(e, func(share float64) string { return strings.TrimSuffix(write(share), " %") })
+	if !e.Absent {
+		value, interval, _ := strings.Cut(c.Text, " ")
+		c.Text = strings.TrimSpace(value + " % " + interval)
+	}
+	return c
+}
 
 // exactCell is an estimate with its interval, or alone where the interval is
 // nothing but the estimate.
