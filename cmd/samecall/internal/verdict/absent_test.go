@@ -23,9 +23,9 @@ func TestWhatIsAbsent(t *testing.T) {
 		next      string
 	}{
 		{"no bad parts", "part,reference,A-1,A-2\n1,1,1,1\n2,1,1,1\n3,1,1,1\n", "", NotShown,
-			"no bad part was called", "Add bad parts, close to the limits: A called none, so that nothing is known of its miss rate. 149 bad parts without an error show a miss rate of at most 2 %."},
+			"no bad part was called", "The study holds no bad part. Add bad parts, some of them hard to call. Then the miss rate is known. 149 bad parts without an error show a miss rate of at most 2 %."},
 		{"no good parts", "part,reference,A-1,A-2\n1,0,0,0\n2,0,0,0\n", "", NotShown,
-			"no good part was called", "Add good parts, close to the limits: A called none, so that nothing is known of its false-alarm rate. 59 good parts without an error show a false-alarm rate of at most 5 %."},
+			"no good part was called", "The study holds no good part. Add good parts, some of them hard to call. Then the false-alarm rate is known. 59 good parts without an error show a false-alarm rate of at most 5 %."},
 		{"no reference", "part,A-1,A-2,B-1,B-2\n1,1,1,1,1\n2,0,0,0,0\n", "", NotShown,
 			"No part has a reference", "Give each part a reference"},
 		{"one trial", "part,reference,A-1,B-1\n1,1,1,1\n2,0,0,0\n3,1,1,1\n", "", Accept,

@@ -1,6 +1,10 @@
 package verdict
 
-import "samecall/cmd/samecall/internal/judge"
+import (
+	"slices"
+
+	"samecall/cmd/samecall/internal/judge"
+)
 
 // Everyone stands for all appraisers in a Cause.
 const Everyone = -1
@@ -12,10 +16,14 @@ type Cause struct {
 	Appraiser int    // whose it is, or Everyone
 	Text      string
 	Do        string // what to do about it
+
+	outside bool // a cut lies outside its limit: bad parts are accepted
 }
 
 // Codes of the causes.
 const (
+	codeAlike        = "all_alike"            // every call of everybody is the same
+	codeReversed     = "reversed"             // nearly every call is wrong
 	codeInconsistent = "inconsistent"         // does not repeat its own calls
 	codeFar          = "far_errors"           // wrong calls where nobody should be in doubt
 	codeGauge        = "gauge_shifted"        // all cut beside the limit alike
@@ -46,6 +54,9 @@ func causes(r *judge.Result, levels map[string]Levels, missed bool) []Cause {
 	f := &finder{Result: r, levels: levels, missed: missed}
 	f.far = farParts(r)
 	f.patterns, f.together = patterns(r, f.far)
+	if f.found = uniform(f); len(f.found) > 0 {
+		return f.found
+	}
 	for _, rule := range []func(*finder) []Cause{
 		confusedKinds, leaningGrades, inconsistent, farErrors, shiftedCut, steadyErrors, apart, nearLimits,
 	} {
@@ -77,3 +88,9 @@ func (f *finder) name(a int) string { return f.Study.Appraisers[a] }
 
 // several reports whether the study has more than one appraiser.
 func (f *finder) several() bool { return len(f.Study.Appraisers) > 1 }
+
+// beforePeople reports whether what to do about a cause comes before anything
+// with people: it begins at the gauge, or at the records.
+func (c Cause) beforePeople() bool {
+	return slices.Contains([]string{codeGauge, codeCut, codeAlike, codeReversed}, c.Code)
+}

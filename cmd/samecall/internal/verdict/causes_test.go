@@ -55,10 +55,25 @@ func callers(m ...func(*rand.Rand, int) int) (out []person) {
 	return out
 }
 
+// always calls every part the same.
+func always(call int) func(*rand.Rand, int) int {
+	return func(*rand.Rand, int) int { return call }
+}
+
+// swapped calls a part right but for the words, and a few by chance.
+func swapped(r *rand.Rand, ref int) int {
+	if r.Float64() < 0.02 {
+		return ref
+	}
+	return 1 - ref
+}
+
+const passFailFile = "categories = [\"no\", \"yes\"]\naccept = [\"yes\"]\n"
 const kindsFile = "categories = [\"good\", \"run\", \"pinhole\", \"scratch\"]\naccept = [\"good\"]\n"
 const gradesFile = "order = [\"a\", \"b\", \"c\", \"d\"]\naccept = [\"a\", \"b\"]\n"
 
 var defects = []string{"good", "run", "pinhole", "scratch"}
+var passFail = []string{"no", "yes"}
 var fourGrades = []string{"a", "b", "c", "d"}
 
 var causeTests = []struct {
@@ -112,6 +127,10 @@ var causeTests = []struct {
 	{"one lenient", drawn{people: callers(grades(1, 0), grades(1, 0), grades(-1, 0.3)), categories: fourGrades, settings: gradesFile}, "grades_lean:Cedar", 0},
 	{"all strict", drawn{people: callers(grades(1, 0.3), grades(1, 0.3), grades(1, 0.3)), categories: fourGrades, settings: gradesFile}, "grades_lean:everyone", 0},
 
+	{"all alike", drawn{people: callers(always(1), always(1), always(1)), categories: passFail, settings: passFailFile}, "all_alike:everyone", 0},
+	{"all rejected", drawn{people: callers(always(0), always(0)), categories: passFail, settings: passFailFile}, "all_alike:everyone", 0},
+	{"reversed", drawn{people: callers(swapped, swapped, swapped), categories: passFail, settings: passFailFile}, "reversed:everyone", 0},
+
 	// Wide, but not so wide that kappa within is below its level: with kappas
 	// that near to it, chance puts one below now and then.
 	{"wide grey zone", drawn{people: []person{{sigma: 0.08}, {sigma: 0.08}, {sigma: 0.08}}, values: true}, "wide_grey_zone:everyone", 1},
@@ -148,7 +167,7 @@ func TestEveryCodeHasAStudy(t *testing.T) {
 		all += " " + c.want
 	}
 	for _, code := range []string{
-		codeInconsistent, codeFar, codeGauge, codeCut, codeStandard, codeSteady, codeApart, codeKinds, codeGrades, codeWide, codeNear,
+		codeInconsistent, codeFar, codeGauge, codeCut, codeStandard, codeSteady, codeApart, codeKinds, codeGrades, codeWide, codeNear, codeAlike, codeReversed,
 	} {
 		if !strings.Contains(all, " "+code+":") {
 			t.Errorf("no study has the cause %s", code)

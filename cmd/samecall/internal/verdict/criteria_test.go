@@ -74,6 +74,8 @@ func TestOpenIsTold(t *testing.T) {
 		{Miss, one(0.063, 0.017, 0.2), 100, 1, "Open: at 95 % confidence it may be as low as 1.7 %, within the 5 % allowed; 1 part more at this rate would show it."},
 		{Miss, one(0.0501, 0.017, 0.2), 100, 0, "Open: at 95 % confidence it may be as low as 1.7 %, within the 5 % allowed; not even 1\u00a0000 times the parts would show it."},
 		{Effectiveness, one(0.75, 0.6, 0.87), 16, 9, "Open: at 95 % confidence it may be as high as 87 %, above the 80 % required; 9 parts more at this share would show it."},
+		{Effectiveness, one(0.75, 0.6, 0.8001), 16, 9, "Open: at 95 % confidence it may be as high as 80.01 %, above the 80 % required; 9 parts more at this share would show it."},
+		{Miss, one(0.5, 0.00001, 0.9), 100, 9, "Open: at 95 % confidence it may be less than 0.01 %, within the 5 % allowed; 9 parts more at this rate would show it."},
 		{Kappa, one(0.3, 0.1, 0.5), 16, 9, "Open: at 95 % confidence it may be as high as 0.50, above the 0.40 required; 9 parts more at this kappa would show it."},
 		{Miss, one(0, 0, 0.171), 16, 133, "Open: 16 parts cannot show less than 17.1 %; 133 parts more without an error would settle it."},
 	} {

@@ -38,10 +38,12 @@ func (c Criterion) Level(x float64) string {
 	return strconv.FormatFloat(100*x, 'g', 4, 64) + " %"
 }
 
-// found writes the estimate, with more digits where it would read like a
-// level that it misses.
-func (c Criterion) found() string {
-	x := c.Estimate.Value
+// found writes the estimate.
+func (c Criterion) found() string { return c.exact(c.Estimate.Value) }
+
+// exact writes a value, with more digits where it would read like a level
+// that it is not.
+func (c Criterion) exact(x float64) string {
 	text := c.Number(x)
 	for _, level := range c.Levels {
 		if x == level || (text != c.Number(level) && text != c.Level(level)) {
@@ -121,7 +123,13 @@ func (c Criterion) otherSide() string {
 	case c.atMost():
 		reach = "within "
 	}
-	text := fmt.Sprintf("at %s confidence it may be as %s as %s, %s%s", strconv.FormatFloat(100*c.Confidence, 'g', 4, 64)+" %", side, c.Number(limit), reach, level)
+	bound := "as " + side + " as " + c.exact(limit)
+	if x, yes := strings.CutPrefix(c.Number(limit), "<"); yes {
+		bound = "less than " + x
+	} else if x, yes := strings.CutPrefix(c.Number(limit), ">"); yes {
+		bound = "more than " + x
+	}
+	text := fmt.Sprintf("at %s confidence it may be %s, %s%s", strconv.FormatFloat(100*c.Confidence, 'g', 4, 64)+" %", bound, reach, level)
 	if c.More > 0 {
 		return text + fmt.Sprintf("; %s more at this %s would show it", format.Counted(c.More, c.Kind), c.measure())
 	}

@@ -23,11 +23,18 @@ func next(r *judge.Result, v *Verdict) []string {
 		}
 	}
 	add(doubtfulReference(r, v))
+	// The gauge and the records come before the people.
+	for _, c := range v.Causes {
+		if c.beforePeople() {
+			add(c.Do)
+		}
+	}
+	add(containment(r, v))
 	for _, c := range v.Causes {
 		add(c.Do)
 	}
-	if len(v.Causes) == 0 {
-		add(noPattern(r, v))
+	for _, text := range wrongCallsOf(r, v) {
+		add(text)
 	}
 	if s := lacks(r, v); len(s) > 0 {
 		for _, text := range s {
@@ -46,7 +53,7 @@ func next(r *judge.Result, v *Verdict) []string {
 // doubtfulReference names parts on which every call of all appraisers was
 // wrong, other than those that a shifted gauge or standard explains.
 func doubtfulReference(r *judge.Result, v *Verdict) string {
-	if r.Agreement.All == nil || len(r.Study.Appraisers) < 2 || has(v.Causes, Everyone, codeStandard, codeKinds, codeGrades) {
+	if r.Agreement.All == nil || len(r.Study.Appraisers) < 2 || has(v.Causes, Everyone, codeStandard, codeKinds, codeGrades, codeAlike, codeReversed) {
 		return ""
 	}
 	parts := slices.DeleteFunc(slices.Clone(r.Agreement.All.WrongEveryTime), func(part int) bool { return expected(r, part) })
@@ -64,33 +71,6 @@ func expected(r *judge.Result, part int) bool {
 	}
 	x := r.Study.Values[part]
 	return (plain(r.Zone.Curves.Pooled).Accept(x) > 0.5) != r.Zone.Limits.Inside(x)
-}
-
-// noPattern names the wrong calls of those who miss a level where no cause was
-// found.
-func noPattern(r *judge.Result, v *Verdict) string {
-	if r.Agreement.All == nil || v.Overall != Conditional && v.Overall != Reject {
-		return ""
-	}
-	var who []string
-	var parts []int
-	for a, ap := range v.Appraisers {
-		if ap.Verdict != Conditional && ap.Verdict != Reject {
-			continue
-		}
-		wrong := r.Agreement.Patterns.Where(func(p agreement.Pattern) bool {
-			return p.Reference != agreement.Missing && count(r.Study.Ratings, r.Study.Ratings.CallsIn(p.Row, a), p.Reference).wrong > 0
-		})
-		if len(wrong) > 0 {
-			who = append(who, ap.Name)
-			parts = append(parts, wrong...)
-		}
-	}
-	if len(who) == 0 {
-		return ""
-	}
-	slices.Sort(parts)
-	return stop(fmt.Sprintf("No pattern tells what is behind the wrong calls. Go through them with %s, part by part: %s", some(who), list(r.Study.Parts, slices.Compact(parts))))
 }
 
 // lacks says what the study lacks for its figures to be known.
@@ -112,11 +92,37 @@ func lacks(r *judge.Result, v *Verdict) []string {
 			if name == FalseAlarm {
 				kind = "good part"
 			}
-			out = append(out, stop(fmt.Sprintf("Add %ss, close to the limits: %s called none, so that nothing is known of its %s%s", kind, a.Name, c.Label(), shows(c, kind, r.Options.Confidence))))
+			out = append(out, stop(fmt.Sprintf("%sThen the %s is known%s", noneOf(r, v, name, kind, a.Name), c.Label(), shows(c, kind, r.Options.Confidence))))
 			break
 		}
 	}
 	return out
+}
+
+// noneOf says that the study holds no part of a kind, or who called none, and
+// asks for some.
+func noneOf(r *judge.Result, v *Verdict, name, kind, who string) string {
+	add := fmt.Sprintf("Add %ss, %s. ", kind, hard(r))
+	for _, a := range v.Appraisers {
+		if a.criterion(name).Met != NotShown {
+			return stop(who+" called no "+kind) + " " + add
+		}
+	}
+	s := r.Study.Ratings
+	for part := range r.Study.Parts {
+		if ref := s.Reference(part); ref != agreement.Missing && s.Accepts(ref) == (name == FalseAlarm) {
+			return "Nobody called any " + kind + ". " + add
+		}
+	}
+	return "The study holds no " + kind + ". " + add
+}
+
+// hard says which parts a study needs most.
+func hard(r *judge.Result) string {
+	if r.Study.Settings.Lower == nil && r.Study.Settings.Upper == nil {
+		return "some of them hard to call"
+	}
+	return "some of them close to the limits"
 }
 
 // shows says how many parts without an error show the levels of a criterion.
@@ -152,7 +158,7 @@ func moreParts(r *judge.Result, v *Verdict) string {
 		case c.More == 0:
 			continue
 		case c.errorFree():
-			return fmt.Sprintf("To show that the %s of %s is %s, add %s, some of them close to the limits; all must be called right.", c.Label(), who, c.claim(), format.Counted(c.More, kind))
+			return fmt.Sprintf("To show that the %s of %s is %s, add %s, %s; all must be called right.", c.Label(), who, c.claim(), format.Counted(c.More, kind), hard(r))
 		case c.More > largerStudy*c.Parts:
 			return fmt.Sprintf("To show that the %s of %s is %s would take %s more: rather than enlarge the study, bring the errors down.", c.Label(), who, c.claim(), format.Counted(c.More, kind))
 		}

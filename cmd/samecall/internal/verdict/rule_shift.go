@@ -40,16 +40,18 @@ func shiftedCut(f *finder) []Cause {
 			if f.shifted(l, looks) {
 				out = append(out, Cause{
 					Code: codeCut, Appraiser: 0,
-					Text: f.shift(f.name(0)+" cuts", l, "With one appraiser, a worn or mis-set gauge and a shifted standard cannot be told apart"),
-					Do:   fmt.Sprintf("Check the %s limit of the gauge or standard that %s uses: calibrated size, wear, setting.", l.Side, f.name(0)),
+					Text:    f.shift(f.name(0)+" cuts", l, "With one appraiser, a worn or mis-set gauge and a shifted standard cannot be told apart") + f.calibrated(l),
+					Do:      f.checkGauge(l, fmt.Sprintf("Check the %s limit of the gauge or standard that %s uses: calibrated size, wear, setting.", l.Side, f.name(0))),
+					outside: outside(l),
 				})
 			}
 		case f.cutAlike(l):
 			if f.shifted(l, looks) {
 				out = append(out, Cause{
 					Code: codeGauge, Appraiser: Everyone,
-					Text: f.shift("All appraisers cut", l, "That points to a worn or mis-set gauge, or a shifted standard") + f.calibrated(l),
-					Do:   fmt.Sprintf("Check the %s limit of the gauge or the standard: calibrated size, wear, setting. Correct it, then repeat the parts near that limit.", l.Side),
+					Text:    f.shift("All appraisers cut", l, "That points to a worn or mis-set gauge, or a shifted standard") + f.calibrated(l),
+					Do:      f.checkGauge(l, fmt.Sprintf("Check the %s limit of the gauge or the standard: calibrated size, wear, setting. Correct it, then repeat the parts near that limit.", l.Side)),
+					outside: outside(l),
 				})
 			}
 		default:
@@ -57,8 +59,9 @@ func shiftedCut(f *finder) []Cause {
 				if own := f.ownSide(a, l.Side); own.Known() && f.shifted(own, looks) {
 					out = append(out, Cause{
 						Code: codeCut, Appraiser: a,
-						Text: f.shift(f.name(a)+" cuts", own, "Others do not, so it is the gauge or the standard of this one"),
-						Do:   fmt.Sprintf("Compare the gauge and the standard of %s at the %s limit with those of the others.", f.name(a), l.Side),
+						Text:    f.shift(f.name(a)+" cuts", own, "Others do not, so it is the gauge or the standard of this one"),
+						Do:      fmt.Sprintf("Compare the gauge and the standard of %s at the %s limit with those of the others.", f.name(a), l.Side),
+						outside: outside(own),
 					})
 				}
 			}
@@ -167,8 +170,13 @@ func (f *finder) shift(who string, l *signal.LimitFit, points string) string {
 		size += fmt.Sprintf(" (%s to %s)", s.Value(near), s.Value(far))
 	}
 	wrong := "good parts are rejected"
-	if (l.Side == signal.Lower) == (l.Offset.Value < 0) { // outside the limit
+	if outside(l) {
 		wrong = "bad parts are accepted"
 	}
 	return fmt.Sprintf("%s %s %s the %s limit, so that %s there. %s.", who, size, where, l.Side, wrong, points)
+}
+
+// outside reports whether a cut lies outside its limit.
+func outside(l *signal.LimitFit) bool {
+	return (l.Side == signal.Lower) == (l.Offset.Value < 0)
 }

@@ -1,0 +1,144 @@
+package verdict
+
+import (
+	"math/rand/v2"
+	"slices"
+	"strings"
+	"testing"
+)
+
+// at is the place of the first step that holds a text; −1 if none does.
+func at(steps []string, text string) int {
+	return slices.IndexFunc(steps, func(s string) bool { return strings.Contains(s, text) })
+}
+
+// What to do next on small studies, by hand.
+func TestNext(t *testing.T) {
+	for _, c := range []struct {
+		name, csv, toml string
+		first           string // how the first step begins
+		says, saysNot   []string
+	}{
+		{"nobody rejected any", "part,reference,A-1,A-2,B-1,B-2\n1,1,1,1,1,1\n2,0,1,1,1,1\n3,0,1,1,1,1\n4,0,1,1,1,1\n", "",
+			"Ask first whether the calls were written down as made.",
+			[]string{"Consider parts passed by this inspection"}, []string{"reference of", "No pattern"}},
+		{"words swapped", "part,reference,A-1,A-2,B-1,B-2\n1,1,0,0,0,0\n2,0,1,1,1,1\n3,0,1,1,1,1\n4,1,0,0,0,0\n", "",
+			"Check first whether the words of the calls (accept, reject) or those of the reference column are swapped.",
+			nil, []string{"as suspect", "Every call on", "No pattern"}},
+		{"one called no bad part", "part,reference,A-1,A-2,B-1,B-2\n1,1,1,1,1,1\n2,0,0,0,,\n", "",
+			"B called no bad part. Add bad parts, some of them hard to call.", nil, []string{"holds no"}},
+		{"nobody called the bad part", "part,reference,A-1,A-2\n1,1,1,1\n2,1,1,1\n3,0,,\n", "",
+			"Nobody called any bad part. Add bad parts, some of them hard to call.", nil, []string{"holds no"}},
+		{"no bad part, with limits", "part,reference,value,A-1,A-2\n1,1,9,1,1\n2,1,8,1,1\n", "upper = 10\n",
+			"The study holds no bad part. Add bad parts, some of them close to the limits.", nil, nil},
+		{"two decide, by different parts", "part,reference,A-1,A-2,B-1,B-2,C-1,C-2\n1,1,1,1,1,1,1,1\n2,0,1,1,0,0,0,0\n3,1,1,1,0,0,1,1\n4,0,0,0,1,1,0,0\n5,1,1,1,1,1,1,1\n", "",
+			"", []string{"Go through the wrong calls with A (bad parts accepted: 2).", "on which they differ: 2, 3 and 4."}, []string{"with C "}},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			_, v := decide(t, calls(c.csv, c.toml))
+			if !strings.HasPrefix(v.Next[0], c.first) {
+				t.Errorf("first step %q, want %q", v.Next[0], c.first)
+			}
+			for _, s := range c.says {
+				if at(v.Next, s) < 0 {
+					t.Errorf("%q lacks %q", v.Next, s)
+				}
+			}
+			for _, s := range c.saysNot {
+				if at(v.Next, s) >= 0 {
+					t.Errorf("%q holds %q", v.Next, s)
+				}
+			}
+			for _, fault := range v.faults() {
+				t.Error(fault)
+			}
+		})
+	}
+}
+
+// One appraiser's cause does not hide the wrong calls of another, and more
+// than a few are told in one step.
+func TestWrongCallsOfOthers(t *testing.T) {
+	d := causeTest(t, "one confuses kinds")
+	right := d.people[0].mistakes
+	d.people = slices.Clone(d.people)
+	d.people[0].mistakes = func(r *rand.Rand, ref int) int { // Ash misses scratches
+		if ref == 3 && r.Float64() < 0.3 {
+			return 0
+		}
+		return right(r, ref)
+	}
+	_, v := decide(t, d.files(1))
+	if at(v.Next, "Show Birch the two") < 0 || slices.ContainsFunc(v.Next, func(s string) bool { return strings.Contains(s, "with Birch") && strings.Contains(s, "wrong category") }) || at(v.Next, "wrong calls with Ash (bad parts accepted: P") < 0 {
+		t.Errorf("%q", v.Next)
+	}
+	csv := "part,reference,A-1,B-1,C-1,D-1\n1,1,1,1,1,1\n2,0,1,0,0,0\n3,0,0,1,0,0\n4,0,0,0,1,0\n5,0,0,0,0,1\n6,1,1,1,1,1\n7,1,1,1,1,1\n"
+	_, v = decide(t, calls(csv, ""))
+	if at(v.Next, "the wrong calls of A, B, C and D, part by part: 2, 3, 4 and 5.") < 0 {
+		t.Errorf("%q", v.Next)
+	}
+}
+
+// The gauge comes first, by what is known of it, and what it passed before is
+// in doubt only where it accepts bad parts.
+func TestGaugeFirst(t *testing.T) {
+	for _, c := range []struct {
+		model, sizes string
+		first        string
+		suspect      bool
+	}{
+		{"gauge shifted, lower limit outside", "", "Check the lower limit of the gauge or the standard", true},
+		{"gauge shifted, lower limit outside", "lower = {size = 9.9, uncertainty = 0.02, wear_limit = 9.95}", "Take the gauge member at the lower limit out of use: it is worn beyond its limit. With a good one,", true},
+		{"gauge shifted, lower limit outside", "lower = {size = 9.9, uncertainty = 0.02}", "Correct or replace the gauge member at the lower limit: its size explains the shift.", true},
+		{"gauge shifted, lower limit outside", "lower = {size = 10.0, uncertainty = 0.002}", "Check the setting and the use of the gauge at the lower limit", true},
+		{"gauge shifted, lower limit inside", "", "Check the lower limit of the gauge or the standard", false},
+	} {
+		d := causeTest(t, c.model)
+		if c.sizes != "" {
+			d.settings = "[gauge_sizes]\n" + c.sizes + "\n"
+		}
+		_, v := decide(t, d.files(1))
+		if !strings.HasPrefix(v.Next[0], c.first) {
+			t.Errorf("%s, %q: first %q, want %q", c.model, c.sizes, v.Next[0], c.first)
+		}
+		if got := at(v.Next, "Consider parts passed with this gauge since its last good check as suspect") == 1; got != c.suspect {
+			t.Errorf("%s, %q: %q", c.model, c.sizes, v.Next)
+		}
+	}
+}
+
+// Four parts, none of them mixed, tell of no grey zone.
+func TestFewPartsTellNoZone(t *testing.T) {
+	for _, csv := range []string{
+		"part,value,A-1,A-2\n1,8,1,1\n2,9.5,0,0\n3,10.5,1,1\n4,12,0,0\n",
+		"part,value,A-1,A-2,B-1,B-2\n1,8,1,1,1,1\n2,9.9,0,0,0,0\n3,10.1,1,1,1,1\n4,12,0,0,0,0\n",
+	} {
+		_, v := decide(t, calls(csv, "lower = 5\nupper = 10\n"))
+		for _, text := range v.texts() {
+			if strings.Contains(text, "grey zone") {
+				t.Errorf("%q", text)
+			}
+		}
+	}
+}
+
+// Three wrong calls one way are too few to say that grades lean, four are not.
+func TestFewGradesDoNotLean(t *testing.T) {
+	csv := func(wrong int) string {
+		out := "part,reference,A-1,A-2\n"
+		for i := range 8 {
+			call := "a"
+			if i < wrong {
+				call = "b"
+			}
+			out += string(rune('p'+i)) + ",a," + call + ",a\n"
+		}
+		return out
+	}
+	for wrong, want := range map[int]bool{1: false, 3: false, 4: true} {
+		_, v := decide(t, calls(csv(wrong), "order = [\"a\", \"b\", \"c\"]\naccept = [\"a\"]\n"))
+		if got := has(v.Causes, 0, codeGrades); got != want {
+			t.Errorf("%d wrong: %v", wrong, v.Causes)
+		}
+	}
+}

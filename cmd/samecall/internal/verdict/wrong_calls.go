@@ -1,0 +1,91 @@
+package verdict
+
+import (
+	"fmt"
+	"slices"
+	"strings"
+
+	"samecall/agreement"
+	"samecall/cmd/samecall/internal/judge"
+)
+
+// mostSteps is how many appraisers get a step each for their wrong calls;
+// more are told in one.
+const mostSteps = 3
+
+// wrongCallsOf names the wrong calls of those who decide the verdict and whose
+// wrong calls no cause is about.
+func wrongCallsOf(r *judge.Result, v *Verdict) []string {
+	if r.Agreement.All == nil || v.Overall != Conditional && v.Overall != Reject || has(v.Causes, Everyone, codeAlike, codeReversed, codeGauge, codeStandard) {
+		return nil
+	}
+	var who []int
+	for a, ap := range v.Appraisers {
+		named := slices.ContainsFunc(ap.Criteria, func(c Criterion) bool { return c.Met == v.Overall })
+		if named && !namesParts(v.Causes, a) && len(wrongParts(r, a, untold(v, a))) > 0 {
+			who = append(who, a)
+		}
+	}
+	if len(who) == 0 {
+		return nil
+	}
+	lead := "Go through "
+	if len(v.Causes) == 0 {
+		lead = "No pattern tells what is behind the wrong calls. Go through "
+	}
+	if len(who) > mostSteps {
+		var people []string
+		var parts []int
+		for _, a := range who {
+			people = append(people, v.Appraisers[a].Name)
+			parts = append(parts, wrongParts(r, a, untold(v, a))...)
+		}
+		slices.Sort(parts)
+		return []string{stop(fmt.Sprintf("%sthe wrong calls of %s, part by part: %s", lead, some(people), list(r.Study.Parts, slices.Compact(parts))))}
+	}
+	var out []string
+	for _, a := range who {
+		var told []string
+		for _, kind := range []struct {
+			says string
+			way  func(ways) int
+		}{
+			{"bad parts accepted: ", func(w ways) int { return w.misses }},
+			{"good parts rejected: ", func(w ways) int { return w.falseAlarms }},
+			{"wrong category: ", func(w ways) int { return untold(v, a)(ways{others: w.others}) }},
+		} {
+			if parts := wrongParts(r, a, kind.way); len(parts) > 0 {
+				told = append(told, kind.says+list(r.Study.Parts, parts))
+			}
+		}
+		out = append(out, stop(fmt.Sprintf("%sthe wrong calls with %s (%s)", lead, v.Appraisers[a].Name, strings.Join(told, "; "))))
+		lead = "Go through "
+	}
+	return out
+}
+
+// untold counts the wrong calls of an appraiser that no cause tells of:
+// confused kinds and leaning grades tell of the wrong categories.
+func untold(v *Verdict, a int) func(ways) int {
+	if has(v.Causes, a, codeKinds, codeGrades) {
+		return func(w ways) int { return w.misses + w.falseAlarms }
+	}
+	return ways.total
+}
+
+// namesParts reports whether an appraiser has a cause of its own that says
+// which parts, or which limit, it is about.
+func namesParts(found []Cause, a int) bool {
+	return slices.ContainsFunc(found, func(c Cause) bool {
+		return c.Appraiser == a && c.Code != codeKinds && c.Code != codeGrades
+	})
+}
+
+// wrongParts returns the parts that an appraiser called wrong in a way that
+// is counted.
+func wrongParts(r *judge.Result, a int, way func(ways) int) []int {
+	s := r.Study.Ratings
+	return r.Agreement.Patterns.Where(func(p agreement.Pattern) bool {
+		return p.Reference != agreement.Missing && way(count(s, s.CallsIn(p.Row, a), p.Reference).ways) > 0
+	})
+}
