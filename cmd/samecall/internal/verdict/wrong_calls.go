@@ -1,6 +1,7 @@
 package verdict
 
 import (
+	"cmp"
 	"fmt"
 	"slices"
 	"strings"
@@ -43,6 +44,14 @@ func wrongCallsOf(r *judge.Result, v *Verdict) []string {
 		slices.Sort(parts)
 		return []string{stop(fmt.Sprintf("%sthe wrong calls of %s, part by part: %s", lead, some(people), list(r.Study.Parts, slices.Compact(parts))))}
 	}
+	// Whoever let the most bad parts pass comes first, whatever the names.
+	slices.SortStableFunc(who, func(a, b int) int {
+		return cmp.Or(
+			cmp.Compare(missRate(v, b), missRate(v, a)),
+			cmp.Compare(len(wrongParts(r, b, untold(v, b))), len(wrongParts(r, a, untold(v, a)))),
+			slices.Compare(wrongParts(r, a, untold(v, a)), wrongParts(r, b, untold(v, b))),
+		)
+	})
 	var out []string
 	for _, a := range who {
 		var told []string
@@ -62,6 +71,14 @@ func wrongCallsOf(r *judge.Result, v *Verdict) []string {
 		lead = "Go through "
 	}
 	return out
+}
+
+// missRate is an appraiser's, 0 where it is not known.
+func missRate(v *Verdict, a int) float64 {
+	if c := v.Appraisers[a].criterion(Miss); c.Met != NotShown {
+		return c.Estimate.Value
+	}
+	return 0
 }
 
 // untold counts the wrong calls of an appraiser that no cause tells of:
