@@ -13,7 +13,7 @@ const (
 	whyFlat         = "the likelihood sets no bound on this side"
 	whySkipped      = "intervals were not asked for"
 	cutReach        = 1e4 // half ranges
-	logSigmaReach   = 40
+	logSigmaReach   = 14  // a factor of a million; a bound beyond would be rounding
 	negligible      = 1e-6
 )
 

@@ -103,7 +103,8 @@ func (d *dataset) fit(search bool) (*Curve, error) {
 		}
 	}
 	if search {
-		if overlap == 2 {
+		// The test is of curves without lapses.
+		if overlap == 2 && !c.known[logitE] {
 			c.SameSigma = d.sameSigma(c)
 		}
 		if !c.known[logitE] { // random calls have their own place in the curve then

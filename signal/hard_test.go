@@ -364,3 +364,21 @@ func TestLikelihoodDerivatives(t *testing.T) {
 		}
 	})
 }
+
+// A σ for each limit leaves more room for lapses than one σ for both: their
+// upper bound cannot be the smaller one.
+func TestLapseBoundWithTwoSigmas(t *testing.T) {
+	bound := func(two bool) float64 {
+		c, err := Fit(study(t), Between(0.45, 0.545), Options{Lapse: true, TwoSigmas: two})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if !c.HasLapse || !c.Lapse.HasUpper {
+			t.Fatalf("no bound: %+v", c.Lapse)
+		}
+		return c.Lapse.Upper
+	}
+	if one, two := bound(false), bound(true); two < 0.99*one {
+		t.Errorf("bound %v with two σ, %v with one", two, one)
+	}
+}

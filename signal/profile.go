@@ -87,6 +87,7 @@ type profiler struct {
 	tangent bool      // slope is known and kept up to date
 	param   int
 	last    []float64 // previous solution
+	held    []float64 // best with the parameter held
 }
 
 // newProfiler returns a profiler of parameter param. covariance may be nil.
@@ -114,6 +115,19 @@ func (p *profiler) root(value float64) float64 {
 	if !out.converged {
 		copy(p.s.theta, p.best)
 		p.s.theta[p.param] = value
+		if out = p.s.maximise(p.param, profileTolerance); !out.converged {
+			return math.NaN()
+		}
+	}
+	// Coming back from far out, the fit before can lead to a lesser maximum:
+	// the point to start from, with the parameter held, must not beat it.
+	if p.held == nil {
+		p.held = make([]float64, len(p.best))
+	}
+	copy(p.held, p.best)
+	p.held[p.param] = value
+	if p.s.eval(p.held, p.s.grad, p.s.hess) > out.loglik+1e-9 {
+		copy(p.s.theta, p.held)
 		if out = p.s.maximise(p.param, profileTolerance); !out.converged {
 			return math.NaN()
 		}
