@@ -41,7 +41,7 @@ func TestRecompute(t *testing.T) {
 	write("study 1.toml", "title = \"A bore\"\ncalls = \"calls of \\\"bore\\\" it's $HOME & co.csv\"\naccept = [\"yes, it's fine\"]\nreject = [\"no\"]\nlower = 3.5\n")
 	for _, args := range [][]string{
 		{"judge", "study 1.toml"},
-		{"judge", "study 1.toml", "--confidence", "0.9", "--seed", "7", "--resamples", "50", "--pairing", "all", "--kappa", "0.8,0.3"},
+		{"judge", "study 1.toml", "--confidence", "0.9", "--seed", "7", "--resamples", "150", "--pairing", "all", "--kappa", "0.8,0.3"},
 		{"judge", "study 1.toml", "--title", `it's "quoted" $x \ %d *`, "--gauge", "", "--upper", "8", "--unit", "µm"},
 		{"judge", `calls of "bore" it's $HOME & co.csv`, "--accept", `"yes, it's fine"`, "--reject", "no", "--lower", "3.5"},
 		{"judge", "--accept", `"yes, it's fine"`, "--reject", "no", "--lower=-3.5", "--", "-odd name.csv"},

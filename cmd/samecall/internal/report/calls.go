@@ -33,13 +33,14 @@ func callsTable(r *Record) Table {
 	for _, name := range s.Appraisers {
 		t.Columns = append(t.Columns, Column{Name: name})
 	}
+	values := format.Alike(s.Values...) // of parts without a value they are not read
 	order, how := mapOrder(r)
 	for _, part := range order {
 		row := []Cell{say(s.Parts[part])}
 		if s.Values != nil {
 			value := say(format.Dash)
 			if s.HasValue[part] {
-				value = valueCell(format.Number(s.Values[part]), s.Values[part])
+				value = valueCell(values[part], s.Values[part])
 			}
 			row = append(row, value)
 		}

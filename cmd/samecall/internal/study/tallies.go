@@ -94,7 +94,7 @@ func (t *smallTable) tally(r smallRow, count, of string) (Tally, bool) {
 		t.at(r, t.columns[of], "0", "1 or more in column "+of, "leave the row out if nobody tried")
 		return Tally{}, false
 	case a > n:
-		t.at(r, t.columns[count], fmt.Sprintf("%s %d", count, a), fmt.Sprintf("no more than %s, which is %d", of, n), "")
+		t.at(r, t.columns[count], fmt.Sprintf("%d in column %s", a, count), fmt.Sprintf("no more than %s, which is %d", of, n), "")
 		return Tally{}, false
 	}
 	return Tally{Count: a, Of: n, inLine: r.line}, true

@@ -1,6 +1,8 @@
 package verdict
 
 import (
+	"slices"
+
 	"samecall/agreement"
 	"samecall/agreement/interval"
 	"samecall/cmd/samecall/internal/judge"
@@ -27,7 +29,7 @@ type Appraiser struct {
 
 // Cautions go with every verdict.
 var cautions = []string{
-	"The customer's requirements, local rules and the judgement of qualified practitioners come before this verdict.",
+	"The customer's requirements, local rules and licensed practice come before this verdict.",
 	"An attribute study alone should not release a safety characteristic.",
 }
 
@@ -45,8 +47,9 @@ func Decide(r *judge.Result) *Verdict {
 		c := newCriterion(Kappa, levels[Kappa], b.Fleiss, "part", b.Share.Of, r.Options.Confidence)
 		c.settle(coefficient(b.Fleiss, c.Parts))
 		v.Between = &c
-		// Calls that are all alike have no kappa, and are no fault.
-		if c.Met != NotShown {
+		// Calls that are all alike have no kappa, and are no fault; nor can a
+		// kappa that one prevailing category pulls down decide by itself.
+		if c.Met != NotShown && !prevalent(r) {
 			v.Overall = max(v.Overall, c.Met)
 		}
 	}
@@ -57,6 +60,11 @@ func Decide(r *judge.Result) *Verdict {
 	v.Reasons, v.Carry = reasons(r, v)
 	v.Next = next(r, v)
 	return v
+}
+
+// prevalent reports whether the result warns that one category prevails.
+func prevalent(r *judge.Result) bool {
+	return slices.ContainsFunc(r.Warnings, func(w judge.Warning) bool { return w.Code == "prevalence" })
 }
 
 func worst(criteria []Criterion) Level {
