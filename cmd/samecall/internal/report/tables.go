@@ -169,10 +169,10 @@ func againstTable(r *Record, all bool) Table {
 		Name:    "appraisers",
 		Title:   "Against the reference",
 		Columns: []Column{{Name: "appraiser"}, {Name: "effectiveness", Numbers: true}, {Name: "miss rate", Numbers: true}, {Name: "false-alarm rate", Numbers: true}, {Name: "kappa", Numbers: true}},
-		Note:    fmt.Sprintf("In brackets the %s interval, the part being the sampled unit.", format.Percent(r.Options.Confidence)),
+		Note:    fmt.Sprintf("In brackets the %s interval by parts.", format.Percent(r.Options.Confidence)),
 	}
 	if all && len(r.Agreement.Against) > 1 {
-		t.Note += " All together: right in every call of all."
+		t.Note += " All together: right in every call of every appraiser."
 	}
 	row := func(name string, a agreement.Against) {
 		t.Rows = append(t.Rows, []Cell{say(name), shareCell(a.Effectiveness), shareCell(a.Miss), shareCell(a.FalseAlarm), kappaCell(a.Kappa)})
