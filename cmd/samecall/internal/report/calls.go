@@ -53,8 +53,8 @@ func callsTable(r *Record) Table {
 				calls = append(calls, letter(r, c))
 			}
 			between := ", "
-			if s.PassFail {
-				between = " "
+			if s.PassFail { // a letter each
+				between = ""
 			}
 			row = append(row, say(strings.Join(calls, between)))
 		}

@@ -146,7 +146,7 @@ func TestSmallTablesWrong(t *testing.T) {
 			"t.csv:8:4: found \"3\", expected 3 fields, as the header has"}},
 		"cells": {short, "value,accepted,trials\nx,2,3\n1,4,3\n1,1.5,3\n1,-1,3\n1,1\n1,0,0\n", []string{
 			`t.csv:2:1: found "x", expected a number in column value`,
-			"t.csv:3:2: found accepted 4, expected no more than trials, which is 3",
+			"t.csv:3:2: found 4 in column accepted, expected no more than trials, which is 3",
 			"t.csv:4:2: found 1.5, expected a whole number of 0 or more in column accepted",
 			"t.csv:5:2: found -1, expected a whole number",
 			"t.csv:6:3: found nothing, expected a number in column trials",
