@@ -13,7 +13,7 @@ const (
 	// mostParts and mostColumns are how many parts and appraisers a record
 	// prints every call of: what can still be checked by hand.
 	mostParts   = 200
-	mostColumns = 12
+	mostColumns = 8
 )
 
 // callsTable lists every call, so that a printed record can be computed
