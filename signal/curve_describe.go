@@ -14,7 +14,10 @@ const (
 	whySkipped      = "intervals were not asked for"
 	cutReach        = 1e4 // half ranges
 	logSigmaReach   = 14  // a factor of a million; a bound beyond would be rounding
-	negligible      = 1e-6
+	// A σ of a fiftieth of the estimate cannot be told from none: between
+	// neighbouring values the likelihood no longer depends on it.
+	logSigmaDown = 4
+	negligible   = 1e-6
 )
 
 // method names the interval, with widening if there is any.
@@ -29,7 +32,7 @@ func (c *Curve) method(plain, widened string) string {
 func (d *dataset) describe(c *Curve, b *block) {
 	g := b.m.groups[0]
 	if at := b.m.lapse; at != absent {
-		e := d.profile(c, b, at, logSigmaReach)
+		e := d.profile(c, b, at, logSigmaReach, logSigmaReach)
 		c.Lapse = e.map1(logistic, logistic(e.Value)*(1-logistic(e.Value)))
 		if !c.Lapse.HasLower && c.Lapse.Why == whyFlat { // a rate is never below 0
 			c.Lapse.Lower, c.Lapse.HasLower = 0, true
@@ -44,10 +47,10 @@ func (d *dataset) describe(c *Curve, b *block) {
 			continue
 		}
 		l := c.side(k)
-		cut := d.profile(c, b, g.cut[k], cutReach)
+		cut := d.profile(c, b, g.cut[k], cutReach, cutReach)
 		l.Cut = cut.map1(d.sc.out, d.sc.scale)
 		if sigma == nil || g.logSigma[0] != g.logSigma[1] {
-			e := d.profile(c, b, g.logSigma[k], logSigmaReach)
+			e := d.profile(c, b, g.logSigma[k], logSigmaDown, logSigmaReach)
 			e = e.map1(func(t float64) float64 { return d.sc.size(math.Exp(t)) }, d.sc.size(math.Exp(e.Value)))
 			sigma = &e
 		}
@@ -90,7 +93,7 @@ func (l *LimitFit) PercentGRR(limits Limits) (Estimate, bool) {
 }
 
 // profile returns a parameter with its profile-likelihood interval.
-func (d *dataset) profile(c *Curve, b *block, param int, reach float64) Estimate {
+func (d *dataset) profile(c *Curve, b *block, param int, down, up float64) Estimate {
 	se := math.Sqrt(b.cov(param, param))
 	e := Estimate{Value: b.theta[param], SE: se * math.Sqrt(c.factor), Confidence: d.options.Confidence, Method: c.method(profileMethod, profileWidened)}
 	if d.options.SkipIntervals {
@@ -99,9 +102,9 @@ func (d *dataset) profile(c *Curve, b *block, param int, reach float64) Estimate
 	}
 	target := math.Sqrt(c.crit)
 	p := newProfiler(b.s, b.theta, b.loglik, b.cov, param)
-	e.Upper, e.HasUpper = crossing(e.Value, target*se, reach, target, p.root)
+	e.Upper, e.HasUpper = crossing(e.Value, target*se, up, target, p.root)
 	p.restart()
-	e.Lower, e.HasLower = crossing(e.Value, -target*se, reach, target, p.root)
+	e.Lower, e.HasLower = crossing(e.Value, -target*se, down, target, p.root)
 	if !e.HasLower || !e.HasUpper {
 		e.Why = whyFlat
 	}
