@@ -6,6 +6,7 @@ import (
 	"errors"
 	"math"
 	"slices"
+	"strings"
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
@@ -108,7 +109,10 @@ func FuzzReadCSV(f *testing.F) {
 		if d := cmp.Diff(s, again, sameStudy); d != "" {
 			t.Fatal(d)
 		}
-		if err != nil && err.Error() != err2.Error() {
+		// Of a text in no one encoding, the first problem met depends on how
+		// far it was read.
+		mixed := func(err error) bool { return strings.Contains(err.Error(), "found the byte") }
+		if err != nil && err.Error() != err2.Error() && !mixed(err) && !mixed(err2) {
 			t.Fatalf("%v\nin small chunks: %v", err, err2)
 		}
 	})
