@@ -1,0 +1,42 @@
+package verdict
+
+import (
+	"fmt"
+	"strings"
+	"testing"
+
+	"samecall/agreement"
+	"samecall/cmd/samecall/internal/judge"
+	"samecall/cmd/samecall/internal/study"
+	"samecall/signal"
+)
+
+// One false alarm in 240 calls on good parts makes kappa between appraisers
+// about 0, since nearly all calls are of one category: that must not reject
+// what 239 right calls say.
+func TestPrevalentCategoryDoesNotReject(t *testing.T) {
+	var text strings.Builder
+	text.WriteString("part,reference,a-1,a-2,b-1,b-2\n")
+	for part := range 60 {
+		first := "ok"
+		if part == 7 {
+			first = "nok"
+		}
+		fmt.Fprintf(&text, "%d,good,%s,ok,ok,ok\n", part, first)
+	}
+	s, err := study.Read(study.Source{Path: "-", Stdin: strings.NewReader(text.String())}, study.Settings{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	r, err := judge.Run(s, agreement.DefaultOptions(), signal.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	v := Decide(r)
+	if v.Between == nil || v.Between.Met != Reject {
+		t.Fatalf("kappa between appraisers %+v: the study does not show what it is to show", v.Between)
+	}
+	if v.Overall != NotShown { // there is no bad part
+		t.Errorf("verdict %v, want not shown; reasons %q", v.Overall, v.Reasons)
+	}
+}
