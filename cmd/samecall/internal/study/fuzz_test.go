@@ -5,6 +5,7 @@ import (
 	"bytes"
 	"errors"
 	"math"
+	"regexp"
 	"slices"
 	"strings"
 	"testing"
@@ -90,6 +91,8 @@ var fuzzSettings = []Settings{
 	{Lower: ptr(1), Upper: ptr(2), Ignore: []string{"comment"}},
 }
 
+var times = regexp.MustCompile(` \(\d+ times\)`)
+
 func FuzzReadCSV(f *testing.F) {
 	for _, s := range []string{
 		"part,appraiser,trial,call,reference,value\n1,a,1,go,go,1.5\n2,a,1,nogo,nogo,2.5\n",
@@ -112,7 +115,10 @@ func FuzzReadCSV(f *testing.F) {
 		// Of a text in no one encoding, the first problem met depends on how
 		// far it was read.
 		mixed := func(err error) bool { return strings.Contains(err.Error(), "found the byte") }
-		if err != nil && err.Error() != err2.Error() && !mixed(err) && !mixed(err2) {
+		// Of a part that stands twice, the words of the second row are counted
+		// only where another worker met it.
+		told := func(err error) string { return times.ReplaceAllString(err.Error(), "") }
+		if err != nil && told(err) != told(err2) && !mixed(err) && !mixed(err2) {
 			t.Fatalf("%v\nin small chunks: %v", err, err2)
 		}
 	})
