@@ -23,7 +23,6 @@ type again struct {
 	part, row uint32
 	word      uint16 // of a second reference
 	value     []byte // a second value
-	line      int    // of a second row in a wide table; the builder does not count that row
 }
 
 // builder takes the rows that one worker reads. It keeps what can be told
@@ -119,9 +118,8 @@ func (b *builder) row(fields [][]byte, line int) {
 	if !ok {
 		return
 	}
-	if b.parts.n == n {
-		b.doubled = append(b.doubled, again{part: id, line: line})
-		return
+	if b.parts.n == n { // its words still count, as where another builder reads it
+		b.doubled = append(b.doubled, again{part: id, row: b.rows})
 	}
 	for i, c := range l.cells {
 		b.call(id, uint16(i), trim(fields[c.field]), line, c.field)

@@ -508,7 +508,7 @@ func (m *merge) contradictions() {
 			said[m.rank[i][a.part]] = append(said[m.rank[i][a.part]], statement{line: b.line(a.row), ref: agreement.Missing, value: string(a.value)})
 		}
 		for _, a := range b.doubled {
-			said[m.rank[i][a.part]] = append(said[m.rank[i][a.part]], statement{line: a.line, ref: agreement.Missing, row: true})
+			said[m.rank[i][a.part]] = append(said[m.rank[i][a.part]], statement{line: b.line(a.row), ref: agreement.Missing, row: true})
 		}
 	}
 	for part, list := range said {
