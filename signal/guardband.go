@@ -7,11 +7,11 @@ import (
 )
 
 // GuardTable returns the risk with each cut moved inwards by each of bands,
-// with intervals.
-func GuardTable(p Process, c *Curve, bands []float64) ([]Risk, error) {
+// with intervals where the inspection has any.
+func GuardTable(p Process, in Inspection, bands []float64) ([]Risk, error) {
 	rows := make([]Risk, 0, len(bands))
 	for _, b := range bands {
-		r, err := Assess(p, c, b)
+		r, err := Assess(p, in, b)
 		if err != nil {
 			return nil, err
 		}
@@ -23,30 +23,30 @@ func GuardTable(p Process, c *Curve, bands []float64) ([]Risk, error) {
 // GuardForEscapes returns the smallest guard band, 0 or more, at which the
 // share of escapes is at most target (a fraction, not ppm), and the risk there.
 // With shown, the upper bound of its interval is held under the target instead
-// of the estimate.
+// of the estimate, which a Known inspection does not have.
 //
 // It returns an error in words if no guard band can hold it: between two limits
 // the cuts can move inwards only until they meet, and calls made at random let
 // parts escape whatever the cuts.
-func GuardForEscapes(p Process, c *Curve, target float64, shown bool) (Risk, error) {
+func GuardForEscapes(p Process, in Inspection, target float64, shown bool) (Risk, error) {
 	if !(target > 0 && target < 1) {
 		return Risk{}, fmt.Errorf("escape target %v: want a share between 0 and 1 (10 ppm is 0.00001)", target)
 	}
-	r, err := Assess(p, c, 0)
+	r, err := Assess(p, in, 0)
 	if err != nil {
 		return Risk{}, err
 	}
-	g, err := c.Gauge()
+	g, limits, err := cutsOf(in)
 	if err != nil {
 		return Risk{}, err
 	}
 	// at returns what is to be held under the target.
 	at := func(band float64) (float64, error) {
 		if !shown {
-			s := p.shares(g.Tighten(band), c.Limits)
+			s := p.shares(g.Tighten(band), limits)
 			return s.values()[qEscape], nil
 		}
-		r, err := Assess(p, c, band)
+		r, err := Assess(p, in, band)
 		if err != nil {
 			return 0, err
 		}
@@ -62,7 +62,7 @@ func GuardForEscapes(p Process, c *Curve, target float64, shown bool) (Risk, err
 	if e <= target {
 		return r, nil
 	}
-	most, step, err := c.guardRange(p)
+	most, step, err := p.guardRange(g)
 	if err != nil {
 		return Risk{}, err
 	}
@@ -97,17 +97,13 @@ func GuardForEscapes(p Process, c *Curve, target float64, shown bool) (Risk, err
 			lo = mid
 		}
 	}
-	return Assess(p, c, hi)
+	return Assess(p, in, hi)
 }
 
 // guardRange returns how far inwards the cuts can move and a step to search
 // by. With one limit they can move until next to nothing of the process is
 // accepted.
-func (c *Curve) guardRange(p Process) (most, step float64, err error) {
-	g, err := c.Gauge()
-	if err != nil {
-		return 0, 0, err
-	}
+func (p Process) guardRange(g Gauge) (most, step float64, err error) {
 	if g.HasLower && g.HasUpper {
 		most = (g.UpperCut - g.LowerCut) / 2
 		step = math.Min(g.LowerSigma, g.UpperSigma)
@@ -144,23 +140,23 @@ type Cost struct {
 // costEscape and a good part rejected costs costReject. The band may be
 // negative: cuts moved outwards, where false rejects cost more. It is found by
 // a grid and golden sections in the best part of it.
-func GuardForCost(p Process, c *Curve, costEscape, costReject float64) (Cost, error) {
+func GuardForCost(p Process, in Inspection, costEscape, costReject float64) (Cost, error) {
 	if !finite(costEscape, costReject) || costEscape < 0 || costReject < 0 || costEscape+costReject == 0 {
 		return Cost{}, fmt.Errorf("cost of an escape %v and of a false reject %v: want numbers of 0 or more, one of them above 0", costEscape, costReject)
 	}
-	g, err := c.Gauge()
+	g, limits, err := cutsOf(in)
 	if err != nil {
 		return Cost{}, err
 	}
-	if err := checkRisk(p, g, c.Limits); err != nil {
+	if err := checkRisk(p, g, limits); err != nil {
 		return Cost{}, err
 	}
-	most, _, err := c.guardRange(p)
+	most, _, err := p.guardRange(g)
 	if err != nil {
 		return Cost{}, err
 	}
 	cost := func(band float64) float64 {
-		s := p.shares(g.Tighten(band), c.Limits)
+		s := p.shares(g.Tighten(band), limits)
 		v := s.values()
 		return costEscape*v[qEscape] + costReject*v[qFalseReject]
 	}
@@ -188,7 +184,7 @@ func GuardForCost(p Process, c *Curve, costEscape, costReject float64) (Cost, er
 	if out.PerPart = cost(band); out.PerPart > least {
 		band, out.PerPart = grid[best], least
 	}
-	out.Risk, err = Assess(p, c, band)
+	out.Risk, err = Assess(p, in, band)
 	return out, err
 }
 

@@ -82,24 +82,6 @@ func (s *shares) values() (v [quantities]float64) {
 	return v
 }
 
-// AssessGauge returns the risk of a gauge that is known exactly, without
-// intervals. It returns an error if process, gauge or limits are not usable.
-func AssessGauge(p Process, g Gauge, limits Limits) (Risk, error) {
-	if err := checkRisk(p, g, limits); err != nil {
-		return Risk{}, err
-	}
-	s := p.shares(g, limits)
-	v := s.values()
-	var r Risk
-	for i, e := range r.fields() {
-		*e = Estimate{Value: v[i], Why: "the gauge is taken as known"}
-		if v[i] < 0 {
-			*e = noShare(i)
-		}
-	}
-	return r, nil
-}
-
 func noShare(quantity int) Estimate {
 	if quantity == qBadAmongAccepted {
 		return Estimate{Absent: true, Why: "no part is accepted"}
@@ -236,21 +218,19 @@ func (p Process) shares(g Gauge, limits Limits) (s shares) {
 	return s
 }
 
-// Assess returns the risk of a fitted curve in a process, each cut moved
-// inwards by guard, with intervals that carry the curve's uncertainty (the
-// process is taken as given). They are normal on the logit scale by the delta
-// method, from the covariance of the cuts and log σs, widened where lack of fit
-// widens the rest. Where a limit is separated there is no covariance; the
-// intervals then span the risks at the corners of the intervals of cuts and σs,
-// which is cautious, and a σ without lower bound counts as a step.
+// Assess returns the risk of an inspection in a process, each cut moved inwards
+// by guard. Of a fitted curve the intervals carry its uncertainty (the process
+// is taken as given). They are normal on the logit scale by the delta method,
+// from the covariance of the cuts and log σs, widened where lack of fit widens
+// the rest. Where a limit is separated there is no covariance; the intervals
+// then span the risks at the corners of the intervals of cuts and σs, which is
+// cautious, and a σ without lower bound counts as a step. A Known inspection
+// has no intervals.
 //
-// It returns an error if the curve has no cut at one of its limits, or process
-// or limits are not usable.
-func Assess(p Process, c *Curve, guard float64) (Risk, error) {
-	if c == nil {
-		return Risk{}, errors.New("no curve")
-	}
-	g, err := c.Gauge()
+// It returns an error if the curve has no cut at one of its limits, or process,
+// gauge or limits are not usable.
+func Assess(p Process, in Inspection, guard float64) (Risk, error) {
+	g, limits, err := cutsOf(in)
 	if err != nil {
 		return Risk{}, err
 	}
@@ -258,25 +238,19 @@ func Assess(p Process, c *Curve, guard float64) (Risk, error) {
 		return Risk{}, errors.New("the guard band is not a number")
 	}
 	g = g.Tighten(guard)
-	if err := checkRisk(p, g, c.Limits); err != nil {
+	if err := checkRisk(p, g, limits); err != nil {
 		return Risk{}, err
 	}
-	s := p.shares(g, c.Limits)
+	s := p.shares(g, limits)
 	v := s.values()
 	r := Risk{GuardBand: guard}
-	fields := r.fields()
-	for i, e := range fields {
-		*e = Estimate{Value: v[i], Confidence: c.Options.Confidence}
+	for i, e := range r.fields() {
+		*e = Estimate{Value: v[i]}
 		if v[i] < 0 {
 			*e = noShare(i)
 		}
 	}
-	*fields[qBad] = Estimate{Value: v[qBad], Lower: v[qBad], Upper: v[qBad], HasLower: true, HasUpper: true, Confidence: c.Options.Confidence, Method: "the process is taken as given"}
-	if c.separatedAnywhere() {
-		c.corners(p, g, &r, v)
-	} else {
-		c.delta(p, g, &r, v)
-	}
+	in.bound(p, g, &r, v)
 	return r, nil
 }
 

@@ -36,7 +36,7 @@ func TestRiskAgainstR(t *testing.T) {
 			t.Fatal(err)
 		}
 		g := Gauge{LowerCut: w.CutLower, UpperCut: w.CutUpper, LowerSigma: w.SigmaGauge, UpperSigma: w.SigmaGauge, HasLower: true, HasUpper: true}
-		r, err := AssessGauge(p, g, Between(w.Lower, w.Upper))
+		r, err := Assess(p, Known{g, Between(w.Lower, w.Upper)}, 0)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -60,14 +60,14 @@ func TestRiskClosedForms(t *testing.T) {
 		p := Process{Mean: 250, SD: 0.02}
 		sg := ratio * p.SD
 		g := Gauge{LowerCut: 249.97, UpperCut: 250.05, LowerSigma: sg, UpperSigma: sg, HasLower: true, HasUpper: true}
-		r, err := AssessGauge(p, g, Between(249.96, 250.04))
+		r, err := Assess(p, Known{g, Between(249.96, 250.04)}, 0)
 		if err != nil {
 			t.Fatal(err)
 		}
 		s := math.Hypot(p.SD, sg)
 		want := normalCDF(0.05/s) - normalCDF(-0.03/s)
 		near(t, "accepted", r.Accepted.Value, want, 1e-10)
-		one, err := AssessGauge(p, Gauge{LowerCut: 250, LowerSigma: sg, HasLower: true}, AtLeast(250))
+		one, err := Assess(p, Known{Gauge{LowerCut: 250, LowerSigma: sg, HasLower: true}, AtLeast(250)}, 0)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -101,13 +101,13 @@ func TestRiskOtherForms(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	a, err := AssessGauge(s, g, limits)
+	a, err := Assess(s, Known{g, limits}, 0)
 	if err != nil {
 		t.Fatal(err)
 	}
 	nearRel(t, "escape", a.Escape.Value, escape, 1e-9)
 	nearRel(t, "false reject", a.FalseReject.Value, falseReject, 1e-9)
-	b, err := AssessGauge(Process{Mean: 10, SD: 0.03}, g, limits)
+	b, err := Assess(Process{Mean: 10, SD: 0.03}, Known{g, limits}, 0)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -179,10 +179,11 @@ func TestGuardBands(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
+	known := Known{g, studyLimits}
 	best, at := math.Inf(1), 0.0
 	for i := range 2001 {
 		b := -0.02 + 0.00002*float64(i)
-		r, err := AssessGauge(p, g.Tighten(b), studyLimits)
+		r, err := Assess(p, known, b)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -192,6 +193,34 @@ func TestGuardBands(t *testing.T) {
 	}
 	if math.Abs(got.Risk.GuardBand-at) > 0.00004 || got.PerPart > best+1e-12 || got.PerPart > got.PerPartNow {
 		t.Errorf("band %v, cost %v; by the grid %v, %v", got.Risk.GuardBand, got.PerPart, at, best)
+	}
+	// The same cuts taken as known: the same estimates, no intervals, nothing
+	// to be shown.
+	of, err := GuardForCost(p, known, 100, 1)
+	if err != nil || of.Risk.GuardBand != got.Risk.GuardBand || of.PerPart != got.PerPart || of.Risk.Escape.HasUpper {
+		t.Errorf("known cuts: %+v, %v", of, err)
+	}
+	held, err := GuardForEscapes(p, known, target, false)
+	if err != nil || held.Escape.Value > target || held.Escape.Value < target*(1-1e-6) || held.Escape.HasUpper {
+		t.Errorf("known cuts: escapes %+v at %v, %v", held.Escape, held.GuardBand, err)
+	}
+	if _, err := GuardForEscapes(p, known, target, true); err == nil || !strings.Contains(err.Error(), "taken as known") {
+		t.Errorf("shown with known cuts: %v", err)
+	}
+}
+
+func TestNoInspection(t *testing.T) {
+	p := Process{Mean: 0.5, SD: 0.02}
+	for _, in := range []Inspection{nil, (*Curve)(nil), Known{}} {
+		if _, err := Assess(p, in, 0); err == nil {
+			t.Errorf("%T: no error of Assess", in)
+		}
+		if _, err := GuardForEscapes(p, in, 0.1, false); err == nil {
+			t.Errorf("%T: no error of GuardForEscapes", in)
+		}
+		if _, err := GuardForCost(p, in, 1, 1); err == nil {
+			t.Errorf("%T: no error of GuardForCost", in)
+		}
 	}
 }
 

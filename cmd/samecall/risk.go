@@ -277,8 +277,11 @@ func (a *riskFlags) known(cmd *cobra.Command, src *source, in streams, args []st
 	if len(args) > 0 || src.example != "" || src.study != "" {
 		return nil, errors.New("a study and --cut-lower, --cut-upper or --sigma are both given; the cuts come from one of them")
 	}
-	if a.appraiser != "" || opt.Lapse || opt.TwoSigmas {
+	switch {
+	case a.appraiser != "" || opt.Lapse || opt.TwoSigmas:
 		return nil, errors.New("--appraiser, --lapse and --two-sigmas go with a study")
+	case want.Shown:
+		return nil, errors.New("--shown goes with a study: cuts and σ that are given have no interval, so escapes have no upper bound")
 	}
 	g := signal.Gauge{Link: opt.Link, HasLower: given(cmd, "cut-lower"), HasUpper: given(cmd, "cut-upper"), LowerCut: a.cutLower, UpperCut: a.cutUpper}
 	limits := signal.Limits{}
@@ -309,7 +312,7 @@ func (a *riskFlags) known(cmd *cobra.Command, src *source, in streams, args []st
 	if want.Process, file, err = a.process(cmd, limits, in, settings.Sheet); err != nil {
 		return nil, err
 	}
-	r, err := judge.NewKnownRisks(g, limits, want, settings.Unit)
+	r, err := judge.NewKnownRisks(signal.Known{Gauge: g, Limits: limits}, want, settings.Unit)
 	if err != nil {
 		return nil, err
 	}

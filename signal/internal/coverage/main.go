@@ -190,7 +190,7 @@ func row(s scenario, studies int) (line, separated string) {
 	truth := signal.Gauge{LowerCut: cutLower, UpperCut: cutUpper, LowerSigma: s.sigma, UpperSigma: s.sigma, HasLower: true, HasUpper: true}
 	process := signal.Process{Mean: 0.5, SD: 0.2}
 	limits := signal.Between(0, 1)
-	known, err := signal.AssessGauge(process, truth, limits)
+	known, err := signal.Assess(process, signal.Known{Gauge: truth, Limits: limits}, 0)
 	if err != nil {
 		fmt.Fprintln(os.Stderr, "coverage:", err)
 		os.Exit(1)

@@ -43,6 +43,13 @@ func (s Scale) Value(x float64) string {
 	return text
 }
 
+// RoundUp returns the least number that Value writes in full and that is not
+// less than x, but for the noise of x's last digits.
+func (s Scale) RoundUp(x float64) float64 {
+	unit := math.Pow10(s.Decimals)
+	return math.Ceil(x*unit-1e-6) / unit
+}
+
 // Signed writes a difference of values with its sign.
 func (s Scale) Signed(x float64) string {
 	text := s.Value(x)

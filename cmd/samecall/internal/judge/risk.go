@@ -75,34 +75,27 @@ func NewRisks(c *signal.Curve, ask RiskAsk, unit string) (*Risks, error) {
 		return nil, err
 	}
 	r := &Risks{Ask: ask, Limits: c.Limits, Gauge: g, Curve: c}
-	return r, r.assess(unit)
+	return r, r.assess(c, unit)
 }
 
 // NewKnownRisks assesses a gauge that is taken as known, without intervals.
-func NewKnownRisks(g signal.Gauge, limits signal.Limits, ask RiskAsk, unit string) (*Risks, error) {
-	if ask.HasTarget || ask.HasCosts {
-		return nil, errors.New("a guard band is searched with the curve of a study; with --cut-lower, --cut-upper and --sigma the table of --guard shows what each band does")
-	}
-	r := &Risks{Ask: ask, Limits: limits, Gauge: g}
-	return r, r.assess(unit)
+func NewKnownRisks(known signal.Known, ask RiskAsk, unit string) (*Risks, error) {
+	r := &Risks{Ask: ask, Limits: known.Limits, Gauge: known.Gauge}
+	return r, r.assess(known, unit)
 }
 
-func (r *Risks) at(band float64) (signal.Risk, error) {
+// at is the risk with a guard band.
+func (r *Risks) at(in signal.Inspection, band float64) (signal.Risk, error) {
 	if band != 0 && r.Gauge.HasLower && r.Gauge.HasUpper && r.Gauge.LowerCut+band >= r.Gauge.UpperCut-band {
 		return signal.Risk{}, errors.New("the cuts would meet: nothing is left to accept")
 	}
-	if r.Curve != nil {
-		return signal.Assess(r.Ask.Process, r.Curve, band)
-	}
-	out, err := signal.AssessGauge(r.Ask.Process, r.Gauge.Tighten(band), r.Limits)
-	out.GuardBand = band
-	return out, err
+	return signal.Assess(r.Ask.Process, in, band)
 }
 
-func (r *Risks) assess(unit string) (err error) {
+func (r *Risks) assess(in signal.Inspection, unit string) (err error) {
 	r.Process = facts(r.Ask.Process, r.Limits)
 	r.Scale = r.scale(unit)
-	if r.Now, err = r.at(0); err != nil {
+	if r.Now, err = r.at(in, 0); err != nil {
 		return err
 	}
 	sigma := r.sigma()
@@ -114,11 +107,11 @@ func (r *Risks) assess(unit string) (err error) {
 	}
 	for _, b := range bands {
 		row := GuardRow{Band: b, Sigma: b / sigma}
-		row.Risk, row.Error = r.at(b)
+		row.Risk, row.Error = r.at(in, b)
 		r.Guards = append(r.Guards, row)
 	}
 	if r.Ask.HasTarget {
-		found, err := signal.GuardForEscapes(r.Ask.Process, r.Curve, r.Ask.Target, r.Ask.Shown)
+		found, err := signal.GuardForEscapes(r.Ask.Process, in, r.Ask.Target, r.Ask.Shown)
 		if err != nil {
 			r.Unreachable = err
 		} else {
@@ -126,7 +119,7 @@ func (r *Risks) assess(unit string) (err error) {
 		}
 	}
 	if r.Ask.HasCosts {
-		cost, err := signal.GuardForCost(r.Ask.Process, r.Curve, r.Ask.CostEscape, r.Ask.CostReject)
+		cost, err := signal.GuardForCost(r.Ask.Process, in, r.Ask.CostEscape, r.Ask.CostReject)
 		if err != nil {
 			r.NoCost = err
 		} else {

@@ -259,7 +259,9 @@ func riskFound(r *judge.Risks) []string {
 		case r.Target.GuardBand == 0:
 			out = append(out, what+": no guard band is needed. "+then(*r.Target))
 		default:
-			out = append(out, what+": "+band(*r.Target)+". "+then(*r.Target))
+			held := *r.Target
+			held.GuardBand = s.RoundUp(held.GuardBand) // a band rounded down would miss the target
+			out = append(out, what+": "+band(held)+". "+then(held))
 		}
 	}
 	if r.Ask.HasCosts {
@@ -281,7 +283,7 @@ func riskFound(r *judge.Risks) []string {
 }
 
 // costText writes the cost of a thousand parts.
-func costText(perPart float64) string { return fmt.Sprintf("%.3g", 1000*perPart) }
+func costText(perPart float64) string { return format.Short(1000 * perPart) }
 
 // fewProcessValues is below how many values of a process a caution is given:
 // our own choice, no source.

@@ -1,0 +1,59 @@
+package signal
+
+import "errors"
+
+// Inspection is what decides on the parts of a process: a fitted *Curve, whose
+// risks carry its uncertainty, or a Known one.
+type Inspection interface {
+	// cuts returns how it accepts, and the limits that tell good from bad. It
+	// returns an error if there is no cut at one of the limits.
+	cuts() (Gauge, Limits, error)
+	// bound gives the quantities of r, whose values v are found with g, their
+	// intervals.
+	bound(p Process, g Gauge, r *Risk, v [quantities]float64)
+}
+
+// Known is an inspection whose cuts and σ are taken as known exactly; its
+// risks have no intervals.
+type Known struct {
+	Gauge  Gauge
+	Limits Limits
+}
+
+// cutsOf is cuts, of nothing too.
+func cutsOf(in Inspection) (Gauge, Limits, error) {
+	if c, ok := in.(*Curve); in == nil || ok && c == nil {
+		return Gauge{}, Limits{}, errors.New("no curve")
+	}
+	return in.cuts()
+}
+
+func (k Known) cuts() (Gauge, Limits, error) { return k.Gauge, k.Limits, nil }
+
+func (k Known) bound(_ Process, _ Gauge, r *Risk, _ [quantities]float64) {
+	for _, e := range r.fields() {
+		if !e.Absent {
+			e.Why = "the gauge is taken as known"
+		}
+	}
+}
+
+func (c *Curve) cuts() (Gauge, Limits, error) {
+	g, err := c.Gauge()
+	return g, c.Limits, err
+}
+
+func (c *Curve) bound(p Process, g Gauge, r *Risk, v [quantities]float64) {
+	fields := r.fields()
+	for _, e := range fields {
+		if !e.Absent {
+			e.Confidence = c.Options.Confidence
+		}
+	}
+	*fields[qBad] = Estimate{Value: v[qBad], Lower: v[qBad], Upper: v[qBad], HasLower: true, HasUpper: true, Confidence: c.Options.Confidence, Method: "the process is taken as given"}
+	if c.separatedAnywhere() {
+		c.corners(p, g, r, v)
+		return
+	}
+	c.delta(p, g, r, v)
+}
