@@ -27,8 +27,7 @@ func BCa(estimate float64, resampled []float64, leftOut []LeftOut, confidence fl
 		return Interval{estimate, estimate}
 	}
 	slices.Sort(resampled)
-	// Values that differ by rounding alone are one step.
-	step := 1e-12 * max(1, math.Abs(estimate))
+	step := rounding(estimate)
 	below, _ := slices.BinarySearch(resampled, estimate-step)
 	notAbove, _ := slices.BinarySearch(resampled, estimate+step)
 	B := float64(len(resampled))
@@ -70,11 +69,15 @@ func Acceleration(leftOut []LeftOut) float64 {
 		s2 += d * d * float64(l.Parts)
 		s3 += d * d * d * float64(l.Parts)
 	}
-	if s2 <= 0 || math.Abs(s3) == 0 {
+	if r := rounding(mean); s2 <= n*r*r { // alike, but for rounding: no skewness
 		return 0
 	}
 	return s3 / (6 * math.Pow(s2, 1.5))
 }
+
+// rounding is by how much coefficients about x may differ that would be equal
+// if they were computed exactly.
+func rounding(x float64) float64 { return 1e-12 * max(1, math.Abs(x)) }
 
 // quantile returns the p-quantile of sorted values, the (B+1)p-th, between
 // two neighbours on a straight line.
