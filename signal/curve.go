@@ -71,10 +71,10 @@ type LimitFit struct {
 
 	Cut    Estimate // the value accepted half of the time
 	Offset Estimate // Cut minus Limit
-	Sigma  Estimate // scale of the curve
-	SD     float64  // standard deviation of the error: σ, or σπ/√3 with the logit link
+	Sigma  Estimate // standard deviation of the error behind the calls
 
-	// The grey zone, from 0.5 to 99.5 % acceptance: 5.15 σ with the probit link.
+	// The grey zone, from 0.5 to 99.5 % acceptance: 5.15 σ with the probit link,
+	// 5.84 σ with the logit link.
 	From, To float64
 	Width    Estimate
 	Share    Estimate // Width over the tolerance; meaningful if HasShare

@@ -69,7 +69,6 @@ func (d *dataset) derive(c *Curve, l *LimitFit) {
 		l.Offset = l.Cut.map1(func(x float64) float64 { return x - l.Limit }, 1)
 	}
 	q := link.greyQuantile()
-	l.SD = l.Sigma.Value * link.sd()
 	l.From, l.To = l.Cut.Value-q*l.Sigma.Value, l.Cut.Value+q*l.Sigma.Value
 	l.Width = l.Sigma.map1(func(s float64) float64 { return 2 * q * s }, 2*q)
 	if tolerance, ok := c.Limits.Tolerance(); ok {
@@ -78,17 +77,13 @@ func (d *dataset) derive(c *Curve, l *LimitFit) {
 	}
 }
 
-// PercentGRR returns 6 standard deviations of the error at the limit in percent
-// of the tolerance, and whether there is a tolerance and a σ. BandGRR grades it.
+// PercentGRR returns 6 σ at the limit in percent of the tolerance, and whether there is a tolerance and a σ. BandGRR grades it.
 func (l *LimitFit) PercentGRR(limits Limits) (Estimate, bool) {
 	tolerance, ok := limits.Tolerance()
 	if !ok || !l.Known() {
 		return Estimate{}, false
 	}
 	k := 600 / tolerance
-	if l.Sigma.Value > 0 {
-		k *= l.SD / l.Sigma.Value // σ of the logit link is not its standard deviation
-	}
 	return l.Sigma.map1(func(s float64) float64 { return k * s }, k), true
 }
 

@@ -353,7 +353,7 @@ func (c *Curve) sound() error {
 		for _, e := range []Estimate{l.Cut, l.Offset, l.Sigma, l.Width, l.Share, l.AtLimit} {
 			ok = ok && finite(e.Value, e.Lower, e.Upper, e.SE)
 		}
-		ok = ok && finite(l.From, l.To, l.SD)
+		ok = ok && finite(l.From, l.To)
 	})
 	if !ok {
 		return &NotConvergedError{What: "the acceptance curve", Reason: "the result is not a finite number in the unit of the values"}

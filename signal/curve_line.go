@@ -5,7 +5,8 @@ import (
 	"math"
 )
 
-// Line is one limit's curve as F(Intercept + Slope·x), the form in which
+// Line is one limit's curve as F(Intercept + Slope·x), with F the standard
+// normal or the standard logistic distribution (of scale 1), the form in which
 // generalised linear models give it, with standard errors by the expected
 // information and 0 where there are none.
 type Line struct {
@@ -24,6 +25,9 @@ func (c *Curve) Line(side Side) (Line, error) {
 		sign = -1
 	}
 	slope := sign * math.Exp(-c.local[2*k+1]) / c.sc.scale
+	if c.Options.Link == Logit {
+		slope *= perSD
+	}
 	cut := c.sc.out(c.local[2*k])
 	l := Line{Intercept: -slope * cut, Slope: slope}
 	if !c.hasCov[2*k] {

@@ -246,12 +246,14 @@ func TestCurveSeparatedAgainstR(t *testing.T) {
 		t.Run(name, func(t *testing.T) {
 			var want glm
 			reference(t, "separated."+name, &want)
+			// The standard deviation of the standard logistic is π/√3.
+			sigma := map[Link]float64{Probit: 1, Logit: math.Pi / math.Sqrt(3)}[link] / want.Slope
 			c := mustFit(t, parts, AtLeast(10), Options{Link: link})
 			if c.Lower.Status != Separated {
 				t.Fatalf("status %v", c.Lower.Status)
 			}
 			nearRel(t, "cut", c.Lower.Cut.Value, want.Cut, 1e-5)
-			nearRel(t, "sigma", c.Lower.Sigma.Value, 1/want.Slope, 1e-5)
+			nearRel(t, "sigma", c.Lower.Sigma.Value, sigma, 1e-5)
 			if g := c.Lower.Gap; !g.HasReject || !g.HasAccept || g.Reject != 10 || g.Accept != 10.02 || g.HasMixed {
 				t.Errorf("gap %+v", g)
 			}
@@ -262,7 +264,7 @@ func TestCurveSeparatedAgainstR(t *testing.T) {
 			}
 			m := mustFit(t, mirrored, AtMost(10), Options{Link: link})
 			nearRel(t, "mirrored cut", m.Upper.Cut.Value, 20-want.Cut, 1e-5)
-			nearRel(t, "mirrored sigma", m.Upper.Sigma.Value, 1/want.Slope, 1e-5)
+			nearRel(t, "mirrored sigma", m.Upper.Sigma.Value, sigma, 1e-5)
 			if math.IsNaN(c.LogLikelihood) {
 				t.Error("NaN")
 			}

@@ -53,7 +53,7 @@ func nonFinite(c *Curve) (bad []string) {
 		estimate("width", l.Width)
 		estimate("share", l.Share)
 		estimate("at limit", l.AtLimit)
-		check("zone", l.From, l.To, l.SD)
+		check("zone", l.From, l.To)
 		if l.Status != Fitted && l.Why == "" {
 			bad = append(bad, "status without reason")
 		}

@@ -121,7 +121,7 @@ func (t *term) at(link Link, z [2]float64, has [2]bool, accepted, rejected, epsi
 func relevant(link Link, z [2]float64) [2]bool {
 	far, farther := 10.0, 5.0
 	if link == Logit {
-		far, farther = 50, 37
+		far, farther = 28, 21
 	}
 	return [2]bool{
 		!(z[0] > far && z[0]-math.Abs(z[1]) > farther),
@@ -314,7 +314,7 @@ func (c *curveAt) silent(link Link, z [2]float64, accepted, rejected, epsilon fl
 	}
 	far := 10.0
 	if link == Logit {
-		far = 53
+		far = 53 / perSD
 	}
 	if rejected == 0 {
 		return (!c.has[0] || z[0] > far) && (!c.has[1] || z[1] < -far)

@@ -4,14 +4,15 @@ import (
 	"math"
 )
 
-// Link is the shape F of the acceptance curve.
+// Link is the shape F of the acceptance curve, that of an error with standard
+// deviation 1: σ is the standard deviation of the error behind the calls,
+// whatever its shape.
 type Link int
 
 const (
 	// Probit is the normal shape: the call turns on value plus a normal error.
 	Probit Link = iota
-	// Logit is the logistic shape, with heavier tails; σ is its scale, and its
-	// standard deviation is σπ/√3.
+	// Logit is the logistic shape, with heavier tails.
 	Logit
 )
 
@@ -22,6 +23,10 @@ func (k Link) String() string {
 	return "probit"
 }
 
+// perSD is how many scales of the logistic distribution make one standard
+// deviation, π/√3: F(z) = 1/(1 + exp(−perSD z)).
+const perSD = math.Pi / 1.732050807568877293527446341505872367
+
 // deep is where the tail of F leaves the range of float64 numbers (or comes
 // near it), so that only its logarithm can be used.
 const deep = 37
@@ -30,12 +35,13 @@ const deep = 37
 // relative precision where |z| < deep.
 func (k Link) tails(z float64) (below, above, density, ratio float64) {
 	if k == Logit {
-		e := math.Exp(-math.Abs(z))
+		e := math.Exp(-perSD * math.Abs(z))
 		small, large := e/(1+e), 1/(1+e)
+		density, ratio = perSD*small*large, perSD*(large-small)
 		if z < 0 {
-			return small, large, small * large, large - small
+			return small, large, density, ratio
 		}
-		return large, small, small * large, small - large
+		return large, small, density, -ratio
 	}
 	small := 0.5 * math.Erfc(math.Abs(z)/math.Sqrt2)
 	density = invSqrt2Pi * math.Exp(-z*z/2)
@@ -56,7 +62,7 @@ func (k Link) cdf(z float64) float64 {
 // quantile is z with F(z) = p.
 func (k Link) quantile(p float64) float64 {
 	if k == Logit {
-		return math.Log(p / (1 - p))
+		return math.Log(p/(1-p)) / perSD
 	}
 	return normalQuantile(p)
 }
@@ -64,7 +70,7 @@ func (k Link) quantile(p float64) float64 {
 // logCDF is log F(z), without underflow.
 func (k Link) logCDF(z float64) float64 {
 	if k == Logit {
-		if z < -deep {
+		if z *= perSD; z < -deep {
 			return z
 		}
 		return -math.Log1p(math.Exp(-z))
@@ -82,22 +88,15 @@ const logSqrt2Pi = 0.918938533204672741780329736406
 // logDensity is log f(z), without underflow.
 func (k Link) logDensity(z float64) float64 {
 	if k == Logit {
-		a := math.Abs(z)
-		return -a - 2*math.Log1p(math.Exp(-a))
+		a := perSD * math.Abs(z)
+		return math.Log(perSD) - a - 2*math.Log1p(math.Exp(-a))
 	}
 	return -z*z/2 - logSqrt2Pi
 }
 
-// sd is the standard deviation of the error that goes with scale σ = 1.
-func (k Link) sd() float64 {
-	if k == Logit {
-		return math.Pi / math.Sqrt(3)
-	}
-	return 1
-}
-
 // greyQuantile is F's 99.5 % point: the grey zone reaches so many σ to either
-// side of the cut, 5.15 σ in all for the normal shape.
+// side of the cut, 5.15 σ in all for the normal shape and 5.84 σ for the
+// logistic one.
 func (k Link) greyQuantile() float64 { return k.quantile(0.995) }
 
 // logSum is log(eᵃ + eᵇ).

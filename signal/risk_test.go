@@ -84,12 +84,13 @@ func TestRiskOtherForms(t *testing.T) {
 	limits := Between(9.95, 10.05)
 	rng := rand.New(rand.NewPCG(1, 2))
 	const n = 400000
+	perSD := math.Pi / math.Sqrt(3) // of the standard logistic
 	values := make([]float64, n)
 	var escape, falseReject float64
 	for i := range values {
 		values[i] = 10 + 0.03*rng.NormFloat64()
 		x := values[i]
-		f := 1/(1+math.Exp(-(x-9.96)/0.004)) - 1/(1+math.Exp(-(x-10.04)/0.006))
+		f := 1/(1+math.Exp(-perSD*(x-9.96)/0.004)) - 1/(1+math.Exp(-perSD*(x-10.04)/0.006))
 		f = 0.01 + 0.98*f
 		if limits.Inside(x) {
 			falseReject += (1 - f) / n

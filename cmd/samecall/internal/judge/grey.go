@@ -92,7 +92,7 @@ func NewGrey(s *study.Study, opt signal.Options, spread float64) (*Grey, error) 
 		if zone.Curves != nil {
 			l.Curve = limitOf(zone.Curves.Pooled, l.Side)
 			if l.Curve.Known() {
-				l.PercentGRR[1] = percentGRR(l.Curve.SD, tolerance)
+				l.PercentGRR[1] = percentGRR(l.Curve.Sigma.Value, tolerance)
 			}
 		}
 		l.Outermost = outermost(g.Parts, &l)

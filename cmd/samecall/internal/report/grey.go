@@ -230,7 +230,7 @@ func greyMethodsTable(g *judge.Grey) Table {
 			}
 			sigma, share := say(notKnown), none
 			if informs(c) {
-				sigma, share = value(c.SD), grr(l.HasTolerance, l.PercentGRR[1])
+				sigma, share = value(c.Sigma.Value), grr(l.HasTolerance, l.PercentGRR[1])
 			}
 			add(l.Side.String(), "curve", zoneEnd(s, c, from), zoneEnd(s, c, to), zoneWidth(s, c, false), sigma, share)
 		} else {

@@ -176,7 +176,7 @@ func newGreyMethod(l judge.GreyLimit) greyMethodJSON {
 		m.Unanimous = &widthJSON{l.Unanimous.Width, l.Sigma, grr(0)}
 	}
 	if l.Curve.Known() {
-		m.Curve = &curveWidthJSON{Width: newSignal(l.Curve.Width), Sigma: l.Curve.SD}
+		m.Curve = &curveWidthJSON{Width: newSignal(l.Curve.Width), Sigma: l.Curve.Sigma.Value}
 		if informs(l.Curve) {
 			m.Curve.PercentGRR = grr(1)
 		}
