@@ -2,10 +2,13 @@ package main
 
 import (
 	"fmt"
+	"io"
+	"strings"
 
 	"github.com/spf13/cobra"
 
 	"samecall/cmd/samecall/internal/example"
+	"samecall/cmd/samecall/internal/report"
 )
 
 func newExample(s streams) *cobra.Command {
@@ -51,10 +54,16 @@ All of them are invented. Files that are there already are not overwritten.`,
 }
 
 func listExamples(s streams) error {
+	const column = "          " // where titles begin
+	width := terminal(s.out).Width
+	var out strings.Builder
 	for _, e := range example.Names() {
-		fmt.Fprintf(s.out, "%-9s %s\n%-9s %s\n", e.Name, e.Title, "", e.About)
+		text := report.Lines(e.Title, width, column) + "\n" + report.Lines(e.About, width, column)
+		fmt.Fprintln(&out, e.Name+text[len(e.Name):])
 	}
-	_, err := fmt.Fprintln(s.out, "\nsamecall judge --example NAME runs on one; samecall example NAME --to FOLDER writes its files.")
+	fmt.Fprintln(&out)
+	fmt.Fprintln(&out, report.Lines("samecall judge --example NAME runs on one; samecall example NAME --to FOLDER writes its files.", width, ""))
+	_, err := io.WriteString(s.out, out.String())
 	return err
 }
 
@@ -62,11 +71,12 @@ func showExample(s streams, name string) error {
 	if _, err := example.FS(name); err != nil {
 		return err
 	}
+	width := terminal(s.out).Width
 	for _, e := range example.Names() {
 		if e.Name == name {
-			fmt.Fprintf(s.out, "%s\n%s\n", e.Title, e.About)
+			fmt.Fprintf(s.out, "%s\n%s\n", report.Lines(e.Title, width, ""), report.Lines(e.About, width, ""))
 		}
 	}
-	_, err := fmt.Fprintf(s.out, "\n  samecall judge --example %s           the answer\n  samecall example %s --to FOLDER      its files, to start from\n", name, name)
+	_, err := fmt.Fprintf(s.out, "\n  samecall judge --example %s           the answer\n  samecall example %s --to FOLDER      its files\n", name, name)
 	return err
 }

@@ -14,7 +14,7 @@ import (
 func Check(w io.Writer, s *study.Study, term Terminal) error {
 	p := &printer{w: w, term: term}
 	sum := s.Summary()
-	p.line(term.bold(format.Plain(studyTitle(s))))
+	p.title(studyTitle(s))
 	p.wrap("The study is read without a problem.", "")
 	p.table(Table{Columns: []Column{{Name: "what"}, {Name: "how many", Long: true}}, Rows: holds(s, sum)})
 	p.table(appraisersTable(sum))

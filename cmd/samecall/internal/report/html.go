@@ -127,7 +127,7 @@ func sections(r *Record) []pageSection {
 	}
 	appraisers := []Table{criteriaTable(r)}
 	if r.Agreement.All != nil {
-		appraisers = []Table{againstTable(r, true), criteriaTable(r), errorsTable(r)}
+		appraisers = []Table{againstTable(r, true), criteriaTable(r), errorsTable(r), detectionTable(r)}
 	}
 	add("appraisers", "Appraisers", []string{"errors"}, appraisers...)
 	square := []Table{withinTable(r)}

@@ -26,14 +26,7 @@ func Risk(w io.Writer, r *judge.Risks, of *Record, term Terminal) error {
 	p.wrap("Process, assumed: "+processText(r)+".", "  ")
 	p.wrap("Inspection: "+gaugeText(r)+".", "  ")
 	p.table(riskTable(r))
-	guards := guardTable(r)
-	if guards.width(guards.fit(term.Width)) > term.Width { // the least needed column gives way
-		guards.Columns = guards.Columns[:len(guards.Columns)-1]
-		for i, row := range guards.Rows {
-			guards.Rows[i] = row[:len(guards.Columns)]
-		}
-	}
-	p.table(guards)
+	p.table(guardTable(r))
 	if found := riskFound(r); len(found) > 0 {
 		p.line("")
 		for _, f := range found {
@@ -168,7 +161,7 @@ func unlessNone(none bool, e signal.Estimate) Cell {
 
 // riskTable gives the shares without a guard band, by limit.
 func riskTable(r *judge.Risks) Table {
-	t := Table{Name: "risk", Title: "What the inspection does to this process", Columns: []Column{{Name: "share", Long: true}, {Name: "in all", Numbers: true}}}
+	t := Table{Name: "risk", Title: "What the inspection does to this process, in ppm and %", Columns: []Column{{Name: "share"}, {Name: "in all", Numbers: true}}}
 	both := r.Limits.HasLower && r.Limits.HasUpper
 	if both {
 		t.Columns = append(t.Columns, Column{Name: "at lower limit", Numbers: true}, Column{Name: "at upper limit", Numbers: true})
@@ -180,15 +173,15 @@ func riskTable(r *judge.Risks) Table {
 		t.Rows = append(t.Rows, append([]Cell{say(name)}, cells[:len(t.Columns)-1]...))
 	}
 	n := r.Now
-	add("made bad, ppm", valueCell(format.PPM(n.Bad.Value), n.Bad.Value))
+	add("made bad", valueCell(format.PPM(n.Bad.Value), n.Bad.Value))
 	noLower, noUpper := noneBeyond(r)
-	add("escapes, ppm", unlessNone((noLower || !r.Limits.HasLower) && (noUpper || !r.Limits.HasUpper), n.Escape),
+	add("escapes", unlessNone((noLower || !r.Limits.HasLower) && (noUpper || !r.Limits.HasUpper), n.Escape),
 		unlessNone(noLower, n.EscapeLower), unlessNone(noUpper, n.EscapeUpper))
-	add("false rejects, ppm", ppmCell(n.FalseReject), ppmCell(n.FalseRejectLower), ppmCell(n.FalseRejectUpper))
+	add("false rejects", ppmCell(n.FalseReject), ppmCell(n.FalseRejectLower), ppmCell(n.FalseRejectUpper))
 	add("accepted", percentCell(n.Accepted))
-	add("bad among accepted, ppm", ppmCell(n.BadAmongAccepted))
+	add("bad among accepted", ppmCell(n.BadAmongAccepted))
 	add("good among rejected", percentCell(n.GoodAmongRejected))
-	t.Note = "Escapes are made bad and accepted, false rejects made good and rejected; both, like made bad, of all parts made."
+	t.Note = "Escapes are made bad and accepted, false rejects made good and rejected; both, like made bad, of all parts made; ppm where there is no %."
 	if r.Curve != nil {
 		t.Note += fmt.Sprintf(" In brackets the %s interval, which carries the uncertainty of the curve; the process is taken as given.", format.Percent(r.Curve.Options.Confidence))
 	}

@@ -22,7 +22,7 @@ func (p *printer) smallHead(s SmallStudy, facts string) {
 	if name == "" {
 		name = s.Input.File
 	}
-	p.line(p.term.bold(format.Plain(name)))
+	p.title(name)
 	p.wrap(facts, "")
 }
 

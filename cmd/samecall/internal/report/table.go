@@ -1,8 +1,12 @@
 package report
 
 import (
+	"slices"
+	"strings"
+
 	"github.com/jedib0t/go-pretty/v6/table"
 	"github.com/jedib0t/go-pretty/v6/text"
+
 	"samecall/cmd/samecall/internal/format"
 )
 
@@ -13,6 +17,7 @@ type Table struct {
 	Title   string
 	Columns []Column
 	Rows    [][]Cell
+	Keys    int    // columns that say what a row is about; 0 is taken as 1
 	Note    string // a sentence to read with it; may be empty
 }
 
@@ -37,82 +42,221 @@ func say(s string) Cell { return Cell{Text: s} }
 // render writes a table for a terminal of so many columns: no frame, one
 // line under the heads.
 func (t Table) render(width int) string {
+	var out []string
+	for _, b := range t.blocks(width) {
+		out = append(out, b.block(width))
+	}
+	return strings.Join(out, "\n\n")
+}
+
+func (t Table) block(width int) string {
 	w := table.NewWriter()
 	style := table.StyleLight
 	style.Options = table.Options{SeparateHeader: true}
 	style.Format.Header = text.FormatDefault
 	style.Box.PaddingLeft = ""
-	style.Box.PaddingRight = "  "
+	style.Box.PaddingRight = strings.Repeat(" ", gap)
 	w.SetStyle(style)
+	room := t.fit(width)
 	var head table.Row
 	var configs []table.ColumnConfig
 	for i, c := range t.Columns {
-		head = append(head, format.Plain(c.Name))
+		head = append(head, broken(format.Plain(c.Name), room[i]))
 		align := text.AlignLeft
 		if c.Numbers {
 			align = text.AlignRight
 		}
-		configs = append(configs, table.ColumnConfig{Number: i + 1, Align: align, AlignHeader: align})
+		configs = append(configs, table.ColumnConfig{Number: i + 1, Align: align, AlignHeader: align, VAlignHeader: text.VAlignBottom})
 	}
-	room := t.fit(width)
 	w.SetColumnConfigs(configs)
 	w.AppendHeader(head)
 	for _, row := range t.Rows {
 		var cells table.Row
 		for i, c := range row {
 			cell := format.Plain(c.Text)
-			if t.Columns[i].Long {
+			switch {
+			case t.Columns[i].Numbers:
+				cell = intervalBelow(cell, room[i])
+			case t.Columns[i].Long:
 				cell = wrapped(cell, room[i])
-			} else {
-				cell = text.Snip(cell, room[i], "…")
+			default:
+				cell = broken(cell, room[i])
 			}
 			cells = append(cells, cell)
 		}
 		w.AppendRow(cells)
 	}
-	return trimLines(w.Render())
+	lines := strings.Split(w.Render(), "\n")
+	for i, l := range lines {
+		lines[i] = strings.TrimRight(l, " ")
+		if strings.Trim(l, "─") == "" {
+			lines[i] = strings.TrimSuffix(l, strings.Repeat("─", gap)) // behind the last column
+		}
+	}
+	return strings.Join(lines, "\n")
 }
+
+// broken breaks a name or a head into lines. One that would take more of them
+// than anybody reads in row after row is cut.
+func broken(s string, room int) string {
+	const lines = 3
+	if wide(s) > room {
+		s = text.Snip(s, lines*room, "…")
+	}
+	return wrapped(s, room)
+}
+
+// intervalBelow sets the interval below its number where they have no room side by
+// side.
+func intervalBelow(s string, room int) string {
+	if wide(s) > room {
+		return strings.Replace(s, " (", "\n(", 1)
+	}
+	return s
+}
+
+func wide(s string) int { return text.StringWidthWithoutEscSequences(s) }
 
 const gap = 2 // behind each column
 
-// leastRoom is what a column keeps however narrow the terminal is.
-const leastRoom = 8
+const (
+	// longestWord is how long a word may be that is never broken. All words
+	// of our own are shorter: only names are longer.
+	longestWord = 16
+	// readable is the room that a text of several lines keeps as long as
+	// something else can give way.
+	readable = 24
+)
 
-// fit returns the room of each column: its widest cell, less where the table
-// would be wider than the terminal. Names and long texts give way, the widest
-// first; figures are never cut, so that a table of many figures may still be
-// too wide.
-func (t Table) fit(width int) []int {
+// How far a table has been narrowed, one step after the other.
+const (
+	wholeTable = iota
+	headsBroken
+	longBroken  // long texts go on in further lines
+	textsBroken // and so do all other texts
+)
+
+// least is the room that each column needs at a step of narrowing, with
+// intervals beside their numbers or below them.
+func (t Table) least(step int, below bool) []int {
 	room := make([]int, len(t.Columns))
-	total := 0
 	for i, c := range t.Columns {
-		room[i] = text.StringWidthWithoutEscSequences(format.Plain(c.Name))
+		room[i] = wide(format.Plain(c.Name))
+		if step >= headsBroken {
+			room[i] = widestWord(format.Plain(c.Name))
+		}
 		for _, row := range t.Rows {
-			room[i] = max(room[i], text.StringWidthWithoutEscSequences(format.Plain(row[i].Text)))
-		}
-		total += room[i] + gap
-	}
-	for total > width {
-		widest := -1
-		for i, c := range t.Columns {
-			if !c.Numbers && room[i] > leastRoom && (widest < 0 || room[i] > room[widest]) {
-				widest = i
+			cell := format.Plain(row[i].Text)
+			w := wide(cell)
+			switch {
+			case c.Numbers && below:
+				w = text.LongestLineLen(intervalBelow(cell, 0))
+			case c.Numbers:
+			case step >= textsBroken:
+				w = min(w, widestWord(cell))
+			case c.Long && step >= longBroken:
+				w = min(w, max(readable, widestWord(cell)))
 			}
+			room[i] = max(room[i], w)
 		}
-		if widest < 0 {
-			break
-		}
-		room[widest]--
-		total--
 	}
 	return room
 }
 
-// width returns how many columns of a terminal the table takes in the room given.
-func (t Table) width(room []int) int {
-	total := 0
-	for _, r := range room {
-		total += r + gap
+func widestWord(s string) int {
+	widest := 1
+	for word := range strings.SplitSeq(joined(s), " ") {
+		widest = max(widest, wide(word))
 	}
-	return total
+	return min(widest, longestWord)
+}
+
+// fit returns the room of each column, less than its content where the table
+// would be wider than the terminal. First heads are broken, then texts, the
+// widest column first; where that is not enough, intervals go below their
+// numbers. Figures are never cut, nor words of our own.
+func (t Table) fit(width int) []int {
+	below := total(t.least(textsBroken, false)) > width
+	room := t.least(wholeTable, below)
+	for step := headsBroken; step <= textsBroken; step++ {
+		least := t.least(step, below)
+		for total(room) > width {
+			widest := -1
+			for i := range room {
+				if room[i] > least[i] && (widest < 0 || room[i] > room[widest]) {
+					widest = i
+				}
+			}
+			if widest < 0 {
+				break
+			}
+			room[widest]--
+		}
+	}
+	return room
+}
+
+// fits reports whether a table can be made as narrow as a terminal.
+func (t Table) fits(width int) bool { return total(t.least(textsBroken, true)) <= width }
+
+// total is how many columns of a terminal columns with so much room take.
+func total(room []int) int {
+	sum := -gap // none behind the last
+	for _, r := range room {
+		sum += r + gap
+	}
+	return sum
+}
+
+// blocks cuts a table that no narrowing makes fit into as few as do, of
+// nearly the same width, each under the columns that say what a row is about.
+func (t Table) blocks(width int) []Table {
+	if t.fits(width) {
+		return []Table{t}
+	}
+	ends := t.ends(width)
+	for narrower := width - 1; narrower > 0; narrower-- {
+		even := t.ends(narrower)
+		if len(even) > len(ends) {
+			break
+		}
+		ends = even
+	}
+	keys := t.keys()
+	var out []Table
+	from := keys
+	for _, end := range ends {
+		out = append(out, t.cut(keys, from, end))
+		from = end
+	}
+	return out
+}
+
+func (t Table) keys() int { return min(max(t.Keys, 1), len(t.Columns)) }
+
+// ends is behind which columns a table is cut to blocks of so much width.
+func (t Table) ends(width int) []int {
+	room := t.least(textsBroken, false)
+	keys := t.keys()
+	var out []int
+	from, taken := keys, total(room[:keys])
+	for i := keys; i < len(room); i++ {
+		if i > from && taken+gap+room[i] > width {
+			out = append(out, i)
+			from, taken = i, total(room[:keys])
+		}
+		taken += gap + room[i]
+	}
+	return append(out, len(room))
+}
+
+// cut is the table of the first columns and those of a range.
+func (t Table) cut(keys, from, till int) Table {
+	out := t
+	out.Columns = slices.Concat(t.Columns[:keys], t.Columns[from:till])
+	out.Rows = nil
+	for _, row := range t.Rows {
+		out.Rows = append(out.Rows, slices.Concat(row[:keys], row[from:till]))
+	}
+	return out
 }

@@ -18,7 +18,7 @@ const together = "all together"
 func Tables(r *Record) []Table {
 	out := []Table{criteriaTable(r)}
 	if r.Agreement.All != nil {
-		out = append(out, againstTable(r, true), errorsTable(r))
+		out = append(out, againstTable(r, true), errorsTable(r), detectionTable(r))
 	}
 	out = append(out, zoneTable(r), cutsTable(r), withinTable(r))
 	if len(r.Study.Appraisers) > 1 {
@@ -186,14 +186,14 @@ func againstTable(r *Record, all bool) Table {
 	return withoutRates(r, t)
 }
 
-// errorsTable gives the counts behind the rates, and the detection indices.
+// errorsTable gives the counts behind the rates.
 func errorsTable(r *Record) Table {
 	t := Table{
 		Name:  "errors",
 		Title: "Counts behind the rates",
-		Columns: []Column{{Name: "appraiser"}, {Name: "parts right", Numbers: true}, {Name: "misses", Numbers: true}, {Name: "effective", Numbers: true},
-			{Name: "false alarms", Numbers: true}, {Name: "effective", Numbers: true}, {Name: "d′", Numbers: true}, {Name: "criterion", Numbers: true}},
-		Note: "Misses of the calls on bad parts, false alarms of those on good parts. Effective: how many independent calls they are worth, since calls on one part are alike. d′: how well bad is told from good; criterion: below 0 leans to rejecting, above 0 to accepting.",
+		Columns: []Column{{Name: "appraiser"}, {Name: "parts right", Numbers: true}, {Name: "misses", Numbers: true}, {Name: "effective bad calls", Numbers: true},
+			{Name: "false alarms", Numbers: true}, {Name: "effective good calls", Numbers: true}},
+		Note: "Misses of the calls on bad parts, false alarms of those on good parts. Effective: how many independent calls they are worth, since calls on one part are alike.",
 	}
 	worth := func(s agreement.Share) Cell {
 		if s.Absent != nil {
@@ -201,32 +201,45 @@ func errorsTable(r *Record) Table {
 		}
 		return valueCell(fmt.Sprintf("%.1f", s.Effective), s.Effective)
 	}
-	row := func(name string, a agreement.Against, dPrime, criterion Cell) {
-		t.Rows = append(t.Rows, []Cell{say(name), ofCell(a.Effectiveness), ofCell(a.Miss), worth(a.Miss), ofCell(a.FalseAlarm), worth(a.FalseAlarm), dPrime, criterion})
+	row := func(name string, a agreement.Against) {
+		t.Rows = append(t.Rows, []Cell{say(name), ofCell(a.Effectiveness), ofCell(a.Miss), worth(a.Miss), ofCell(a.FalseAlarm), worth(a.FalseAlarm)})
+	}
+	for i, a := range r.Agreement.Against {
+		row(r.Study.Appraisers[i], a)
+	}
+	if len(r.Agreement.Against) > 1 {
+		row(together, *r.Agreement.All)
+	}
+	return withoutRates(r, t)
+}
+
+// detectionTable gives the detection indices; empty where nothing is
+// acceptable, and bad is not told from good.
+func detectionTable(r *Record) Table {
+	t := Table{
+		Name:    "detection",
+		Title:   "How well bad is told from good",
+		Columns: []Column{{Name: "appraiser"}, {Name: "d′", Numbers: true}, {Name: "criterion", Numbers: true}},
+		Note:    "d′: how far calls on bad and on good parts lie apart; criterion: below 0 leans to rejecting, above 0 to accepting.",
+	}
+	if !r.Study.Ratings.HasAccept() {
+		return t
 	}
 	if r.Areas != nil {
 		t.Columns = append(t.Columns, Column{Name: "ROC area", Numbers: true})
 		t.Note += " ROC area: how often a bad part gets a worse grade than a good one."
 	}
-	for i, a := range r.Agreement.Against {
-		dPrime, criterion := say(format.Dash), say(format.Dash)
+	for i, name := range r.Study.Appraisers {
+		row := []Cell{say(name), say(format.Dash), say(format.Dash)}
 		if d := r.Detection[i]; d != nil {
-			dPrime, criterion = valueCell(format.Figure(d.DPrime.Value), d.DPrime.Value), valueCell(format.Figure(d.Criterion.Value), d.Criterion.Value)
+			row[1], row[2] = valueCell(format.Figure(d.DPrime.Value), d.DPrime.Value), valueCell(format.Figure(d.Criterion.Value), d.Criterion.Value)
 		}
-		row(r.Study.Appraisers[i], a, dPrime, criterion)
 		if r.Areas != nil {
-			last := len(t.Rows) - 1
-			t.Rows[last] = append(t.Rows[last], areaCell(r.Areas[i]))
+			row = append(row, areaCell(r.Areas[i]))
 		}
+		t.Rows = append(t.Rows, row)
 	}
-	if len(r.Agreement.Against) > 1 {
-		row(together, *r.Agreement.All, say(""), say(""))
-		if r.Areas != nil {
-			last := len(t.Rows) - 1
-			t.Rows[last] = append(t.Rows[last], say(""))
-		}
-	}
-	return withoutRates(r, t)
+	return t
 }
 
 func areaCell(e *signal.Estimate) Cell {
@@ -282,6 +295,7 @@ func pairsTable(r *Record) Table {
 	t := Table{
 		Name:    "pairs",
 		Title:   "Between appraisers: each two",
+		Keys:    2,
 		Columns: []Column{{Name: "first"}, {Name: "second"}, {Name: "parts alike", Numbers: true}, {Name: "share", Numbers: true}, {Name: "calls alike", Numbers: true}, {Name: "kappa", Numbers: true}},
 		Note:    pairingNote(r.Options.Pairing),
 	}
@@ -299,6 +313,7 @@ func weightedTable(r *Record) Table {
 	t := Table{
 		Name:    "weighted",
 		Title:   "Kappa weighted by the steps between grades",
+		Keys:    2,
 		Columns: []Column{{Name: "first"}, {Name: "second"}, {Name: "linear", Numbers: true}, {Name: "quadratic", Numbers: true}},
 	}
 	add := func(first, second string, linear, quadratic *agreement.Estimate) {
@@ -420,6 +435,7 @@ func directionTable(r *Record) Table {
 	t := Table{
 		Name:    "direction",
 		Title:   "Do the errors lean one way?",
+		Keys:    2,
 		Columns: []Column{{Name: "appraiser"}, {Name: "test"}, {Name: "statistic", Numbers: true}, {Name: "degrees of freedom", Numbers: true}, {Name: "p", Numbers: true}},
 		Note:    "A small p: the calls differ from the reference more often one way than the other. The tests take calls as independent; with several calls on a part p is too small.",
 	}
@@ -446,7 +462,7 @@ const manyParts = 40
 
 // partsTable names the parts that were wrong every time or mixed.
 func partsTable(r *Record) Table {
-	t := Table{Name: "parts", Title: "Parts to look at", Columns: []Column{{Name: "appraiser"}, {Name: "what"}, {Name: "parts", Numbers: true}, {Name: "which", Long: true}}}
+	t := Table{Name: "parts", Title: "Parts to look at", Keys: 2, Columns: []Column{{Name: "appraiser"}, {Name: "what"}, {Name: "parts", Numbers: true}, {Name: "which", Long: true}}}
 	add := func(name, what string, list []int) {
 		if len(list) > 0 {
 			t.Rows = append(t.Rows, []Cell{say(name), say(what), intCell(len(list)), say(partList(r, list))})
@@ -478,6 +494,7 @@ func criteriaTable(r *Record) Table {
 	t := Table{
 		Name:  "criteria",
 		Title: "Criteria",
+		Keys:  2,
 		Columns: []Column{{Name: "appraiser"}, {Name: "figure"}, {Name: "found", Numbers: true}, {Name: "accept", Numbers: true},
 			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: "data"}, {Name: "to settle it", Long: true}},
 		Note: fmt.Sprintf("Shown, contradicted or open at %s confidence, one-sided, for the level that the estimate reaches (for a reject, the conditional level).", format.Percent(r.Options.Confidence)),

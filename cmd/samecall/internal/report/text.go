@@ -92,11 +92,30 @@ func (p *printer) line(s string) {
 	}
 }
 
-// wrapped breaks a text into lines, but never between a number and its sign.
+// What wrapping must not see: private characters in the place of spaces that
+// hold together what stands beside them.
+var (
+	join   = strings.NewReplacer(" %", "\ue000%", " σ", "\ue000σ", " − ", "\ue000−\ue000", "\u00a0", "\ue001", "\u202f", "\ue002")
+	unjoin = strings.NewReplacer("\ue000", " ", "\ue001", "\u00a0", "\ue002", "\u202f")
+)
+
+// joined is a text with no space between a number and its sign, about a minus
+// or where there is a space without a break: there no line ends.
+func joined(s string) string { return join.Replace(s) }
+
+// wrapped breaks a text into lines.
 func wrapped(s string, width int) string {
-	const joint = "\ue000" // private use: a space that wrapping does not see
-	s = strings.NewReplacer(" %", joint+"%", " σ", joint+"σ").Replace(s)
-	return strings.ReplaceAll(text.WrapSoft(s, width), joint, " ")
+	lines := strings.Split(text.WrapSoft(joined(s), width), "\n")
+	for i, l := range lines {
+		lines[i] = strings.TrimRight(l, " ")
+	}
+	return unjoin.Replace(strings.Join(lines, "\n"))
+}
+
+// Lines breaks a text into lines for a terminal of so many columns, each
+// behind indent.
+func Lines(s string, width int, indent string) string {
+	return indent + strings.ReplaceAll(wrapped(s, max(20, width-wide(indent))), "\n", "\n"+indent)
 }
 
 // wrap writes a paragraph, its lines after the first behind indent.
@@ -117,7 +136,7 @@ func (p *printer) wrap(s, indent string) {
 func (p *printer) table(t Table) {
 	p.line("")
 	if t.Title != "" {
-		p.line(p.term.bold(format.Plain(t.Title)))
+		p.title(t.Title)
 	}
 	for _, l := range strings.Split(t.render(p.term.Width), "\n") {
 		p.line(l)
@@ -128,8 +147,15 @@ func (p *printer) table(t Table) {
 }
 
 func (p *printer) head(r *Record) {
-	p.line(p.term.bold(format.Plain(title(r))))
+	p.title(title(r))
 	p.wrap(facts(r), "")
+}
+
+// title writes a head in bold.
+func (p *printer) title(s string) {
+	for l := range strings.SplitSeq(wrapped(format.Plain(s), p.term.Width), "\n") {
+		p.line(p.term.bold(l))
+	}
 }
 
 // title is what the study is called: its title, or the file of its calls.
@@ -270,9 +296,6 @@ func worstFirst(r *Record) []int {
 	return order
 }
 
-// squareHead is how much of a name heads a column of the square.
-const squareHead = 14
-
 // square writes the agreement square, with kappas where they fit, and leaves
 // it to --full where not even the shares do.
 func (p *printer) square(r *Record) {
@@ -282,10 +305,7 @@ func (p *printer) square(r *Record) {
 	s := newSquare(r)
 	for _, kappas := range []bool{true, false} {
 		t := s.table(kappas)
-		for i := range t.Columns { // the heads are names
-			t.Columns[i].Name = text.Snip(format.Plain(t.Columns[i].Name), squareHead, "…")
-		}
-		if t.width(t.fit(p.term.Width)) > p.term.Width {
+		if !t.fits(p.term.Width) {
 			continue
 		}
 		t.Note = squareNote
@@ -324,12 +344,4 @@ func (p *printer) warnings(r *Record) {
 		p.line("")
 		p.wrap("Note: "+n.Text, "      ")
 	}
-}
-
-func trimLines(s string) string {
-	lines := strings.Split(s, "\n")
-	for i := range lines {
-		lines[i] = strings.TrimRight(lines[i], " ")
-	}
-	return strings.Join(lines, "\n")
 }

@@ -36,12 +36,24 @@ type vocabulary struct {
 	candidates     []string
 	own            map[string]string // words that are a category only because they occur, as spelt
 	notes          []Note
+
+	unsure map[string]bool          // words that may be meant as a missing call
+	beside []string                 // the other words, as spelt
+	list   func(word string) string // what to do where an unsure word is a call
 }
 
 // newVocabulary gives the words seen their meaning. spelt holds, for each
 // folded word of calls and reference, the smallest of its spellings. Words
 // that have no meaning are left out of it.
 func newVocabulary(s Settings, spelt map[string]string) *vocabulary {
+	unsure := unsureWords(s, spelt)
+	spelt = sure(spelt, unsure)
+	v := meanings(s, spelt)
+	v.setUnsure(s, spelt, unsure)
+	return v
+}
+
+func meanings(s Settings, spelt map[string]string) *vocabulary {
 	switch {
 	case len(s.Order) > 0:
 		return listed(s, s.Order, "order")
@@ -294,6 +306,9 @@ func (v *vocabulary) tooMany() (Problem, bool) {
 
 // unknown is the problem of a word without a meaning.
 func (v *vocabulary) unknown(spelling string) Problem {
+	if v.unsure[fold(spelling)] {
+		return v.missing(spelling)
+	}
 	p := Problem{Found: quote(spelling), Expected: v.expected, Text: v.hint}
 	if near := nearest(spelling, v.candidates); near != "" {
 		p.Text = "did you mean " + near + "? Else " + p.Text
