@@ -127,6 +127,7 @@ type Curve struct {
 	sc                 scaling
 	free               int     // parameters of maximum likelihood
 	blockLogLikelihood float64 // of the last such block, without lapses
+	blocks             []*block
 	factor             float64
 	crit               float64 // cut-off of twice the log-likelihood for the intervals
 }

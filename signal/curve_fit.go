@@ -92,6 +92,7 @@ func (d *dataset) fit(search bool) (*Curve, error) {
 	for _, b := range blocks {
 		d.describe(c, b)
 	}
+	c.blocks = blocks
 	for k, f := range separated {
 		if f != nil {
 			d.describeSeparated(c, hs[k], f)

@@ -61,6 +61,13 @@ func (g Gauge) Tighten(band float64) Gauge {
 // Accept returns the probability that a part of value x is accepted and that
 // it is rejected, each precise in its own tail.
 func (g Gauge) Accept(x float64) (accept, reject float64) {
+	accept, reject, _ = g.accept(x)
+	return accept, reject
+}
+
+// accept is Accept, and by how much acceptance grows with each local parameter,
+// cuts in the unit of the values.
+func (g Gauge) accept(x float64) (accept, reject float64, slope [locals]float64) {
 	has := [2]bool{g.HasLower, g.HasUpper}
 	var z [2]float64
 	if g.HasLower {
@@ -71,5 +78,15 @@ func (g Gauge) Accept(x float64) (accept, reject float64) {
 	}
 	var t term
 	t.at(g.Link, z, has, 0, 0, g.Lapse)
-	return math.Min(1, math.Max(0, t.p)), math.Min(1, math.Max(0, t.q))
+	steady := 1 - g.Lapse
+	if g.HasLower {
+		d := steady * t.densities[0]
+		slope[cutL], slope[logSigmaL] = -d/g.LowerSigma, -d*z[0]
+	}
+	if g.HasUpper {
+		d := steady * t.densities[1]
+		slope[cutU], slope[logSigmaU] = d/g.UpperSigma, d*z[1]
+	}
+	slope[logitE] = t.epsilonGradient * g.Lapse * steady
+	return math.Min(1, math.Max(0, t.p)), math.Min(1, math.Max(0, t.q)), slope
 }

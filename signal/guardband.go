@@ -46,14 +46,7 @@ func GuardForEscapes(p Process, in Inspection, target float64, shown bool) (Risk
 			s := p.shares(g.Tighten(band), limits)
 			return s.values()[qEscape], nil
 		}
-		r, err := Assess(p, in, band)
-		if err != nil {
-			return 0, err
-		}
-		if !r.Escape.HasUpper {
-			return 0, errors.New("the escapes have no upper bound to hold under a target: " + r.Escape.Why)
-		}
-		return r.Escape.Upper, nil
+		return in.mostEscapes(p, band)
 	}
 	e, err := at(0)
 	if err != nil {

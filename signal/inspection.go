@@ -11,6 +11,9 @@ type Inspection interface {
 	// bound gives the quantities of r, whose values v are found with g, their
 	// intervals.
 	bound(p Process, g Gauge, r *Risk, v [quantities]float64)
+	// mostEscapes returns the upper bound of the escapes with a guard band, or
+	// why there is none.
+	mostEscapes(p Process, band float64) (float64, error)
 }
 
 // Known is an inspection whose cuts and σ are taken as known exactly; its
@@ -38,6 +41,10 @@ func (k Known) bound(_ Process, _ Gauge, r *Risk, _ [quantities]float64) {
 	}
 }
 
+func (k Known) mostEscapes(Process, float64) (float64, error) {
+	return noUpperBound("the gauge is taken as known")
+}
+
 func (c *Curve) cuts() (Gauge, Limits, error) {
 	g, err := c.Gauge()
 	return g, c.Limits, err
@@ -55,5 +62,25 @@ func (c *Curve) bound(p Process, g Gauge, r *Risk, v [quantities]float64) {
 		c.corners(p, g, r, v)
 		return
 	}
-	c.delta(p, g, r, v)
+	c.profile(p, r, v)
+}
+
+func (c *Curve) mostEscapes(p Process, band float64) (float64, error) {
+	if !c.separatedAnywhere() {
+		if e, ok := newRiskProfile(c, p, band).limit(qEscape, 1); ok {
+			return e, nil
+		}
+	}
+	r, err := Assess(p, c, band) // none or all escape, or a limit is separated
+	if err != nil {
+		return 0, err
+	}
+	if !r.Escape.HasUpper {
+		return noUpperBound(r.Escape.Why)
+	}
+	return r.Escape.Upper, nil
+}
+
+func noUpperBound(why string) (float64, error) {
+	return 0, errors.New("the escapes have no upper bound to hold under a target: " + why)
 }

@@ -28,6 +28,9 @@ type Risk struct {
 type shares struct {
 	accepted, rejected [regions]float64
 	bad                float64
+	// slope is by how much accepted grows, and rejected falls, with each local
+	// parameter of the curve, cuts in the unit of the values.
+	slope [locals][regions]float64
 }
 
 // The regions of values: beyond the lower limit, good and nearer the lower
@@ -135,9 +138,7 @@ func (p Process) shares(g Gauge, limits Limits) (s shares) {
 			case x >= middle:
 				r = goodHigh
 			}
-			a, q := g.Accept(x)
-			s.accepted[r] += a / n
-			s.rejected[r] += q / n
+			s.add(r, 1/n, g, x)
 			if r == badLow || r == badHigh {
 				s.bad += 1 / n
 			}
@@ -204,25 +205,33 @@ func (p Process) shares(g Gauge, limits Limits) (s shares) {
 		case centre >= mid:
 			r = goodHigh
 		}
-		var accepted, rejected float64
 		for k, x := range nodes.x {
 			t := centre + half*x
-			w := nodes.w[k] * normalDensity(t)
-			acc, rej := scaled.Accept(t)
-			accepted += w * acc
-			rejected += w * rej
+			s.add(r, half*nodes.w[k]*normalDensity(t), scaled, t)
 		}
-		s.accepted[r] += half * accepted
-		s.rejected[r] += half * rejected
+	}
+	for r := range regions {
+		s.slope[cutL][r] /= p.SD
+		s.slope[cutU][r] /= p.SD
 	}
 	return s
 }
 
+// add adds so many parts of value x.
+func (s *shares) add(region int, weight float64, g Gauge, x float64) {
+	accept, reject, slope := g.accept(x)
+	s.accepted[region] += weight * accept
+	s.rejected[region] += weight * reject
+	for i := range locals {
+		s.slope[i][region] += weight * slope[i]
+	}
+}
+
 // Assess returns the risk of an inspection in a process, each cut moved inwards
 // by guard. Of a fitted curve the intervals carry its uncertainty (the process
-// is taken as given). They are normal on the logit scale by the delta method,
-// from the covariance of the cuts and log σs, widened where lack of fit widens
-// the rest. Where a limit is separated there is no covariance; the intervals
+// is taken as given). They are profile-likelihood: the extremes over all curves
+// within the likelihood's cut-off, widened where lack of fit widens the rest.
+// Where a limit is separated there is no covariance; the intervals
 // then span the risks at the corners of the intervals of cuts and σs, which is
 // cautious, and a σ without lower bound counts as a step. A Known inspection
 // has no intervals.
@@ -254,58 +263,31 @@ func Assess(p Process, in Inspection, guard float64) (Risk, error) {
 	return r, nil
 }
 
-// perturbed returns g with local parameter i moved by so much, in scaled units.
-func (c *Curve) perturbed(g Gauge, i int, by float64) Gauge {
-	switch i {
-	case cutL:
-		g.LowerCut += c.sc.size(by)
-	case logSigmaL:
-		g.LowerSigma *= math.Exp(by)
-	case cutU:
-		g.UpperCut += c.sc.size(by)
-	case logSigmaU:
-		g.UpperSigma *= math.Exp(by)
-	case logitE:
-		g.Lapse = logistic(c.local[logitE] + by)
+// profile fills intervals by profile likelihood.
+func (c *Curve) profile(p Process, r *Risk, v [quantities]float64) {
+	method := profileMethod
+	if c.LackOfFit.Applied {
+		method = profileWidened
 	}
-	return g
-}
-
-// delta fills intervals by the delta method on the logit scale.
-func (c *Curve) delta(p Process, g Gauge, r *Risk, v [quantities]float64) {
-	var gradient [quantities][locals]float64
-	for i := range locals {
-		if !c.hasCov[i] {
-			continue
-		}
-		h := 0.1 * math.Sqrt(c.cov[i][i])
-		su, sd := p.shares(c.perturbed(g, i, h), c.Limits), p.shares(c.perturbed(g, i, -h), c.Limits)
-		up, down := su.values(), sd.values()
-		for q := range quantities {
-			if inUnit(v[q]) && inUnit(up[q]) && inUnit(down[q]) {
-				gradient[q][i] = (logit(up[q]) - logit(down[q])) / (2 * h)
-			}
-		}
-	}
+	region := newRiskProfile(c, p, r.GuardBand)
 	for q, e := range r.fields() {
 		if q == qBad || e.Absent {
 			continue
 		}
-		e.Method = "normal on the logit scale, by the delta method"
-		if c.LackOfFit.Applied {
-			e.Method += ", widened for lack of fit"
-		}
-		if !inUnit(v[q]) {
+		e.Method = method
+		if !inUnit(v[q]) { // none or all, to any precision
 			e.Lower, e.Upper, e.HasLower, e.HasUpper = v[q], v[q], true, true
 			continue
 		}
-		se := math.Sqrt(math.Max(0, c.quadratic(gradient[q])))
-		half := math.Sqrt(c.crit) * se
-		l := logit(v[q])
-		e.Lower, e.Upper, e.HasLower, e.HasUpper = logistic(l-half), logistic(l+half), true, true
-		e.SE = v[q] * (1 - v[q]) * se * math.Sqrt(c.factor)
+		e.Lower, e.HasLower = region.limit(q, -1)
+		e.Upper, e.HasUpper = region.limit(q, 1)
+		if !e.HasLower || !e.HasUpper {
+			e.Why = whyNoLimit
+		}
 	}
 }
+
+const whyNoLimit = "no verified limit of the likelihood was found"
 
 func inUnit(x float64) bool { return x > 1e-300 && x < 1-1e-15 }
 
