@@ -14,15 +14,19 @@ func asFlag(key string, words ...string) string {
 		return "--" + key
 	}
 	w.Flush()
-	value := strings.TrimSuffix(b.String(), "\n")
+	return "--" + key + " " + shellWord(strings.TrimSuffix(b.String(), "\n"))
+}
+
+// shellWord writes a value as it is typed, in quotes where it needs them.
+func shellWord(value string) string {
 	switch {
 	case !strings.ContainsFunc(value, needsQuotes):
+		return value
 	case strings.ContainsAny(value, "\"$`\\!") && !strings.Contains(value, "'"):
-		value = "'" + value + "'"
+		return "'" + value + "'"
 	default:
-		value = `"` + value + `"`
+		return `"` + value + `"`
 	}
-	return "--" + key + " " + value
 }
 
 // needsQuotes reports whether a shell may take a character for something else

@@ -1,6 +1,7 @@
 package study
 
 import (
+	"cmp"
 	"fmt"
 	"slices"
 	"strconv"
@@ -39,9 +40,10 @@ func (l *layout) place(field int) string {
 
 var longOnly = []string{"appraiser", "trial", "call"}
 
-// readHeader tells the layout from the header. The problems have a column,
-// not yet a file and line.
-func readHeader(header, ignore []string) (*layout, []Problem) {
+// readHeader tells the layout from the header; sheet tells which sheet of a
+// workbook it is from, empty for text. The problems have a column, not yet a
+// file and line.
+func readHeader(header, ignore []string, sheet string) (*layout, []Problem) {
 	l := &layout{part: -1, reference: -1, value: -1, appraiser: -1, trial: -1, call: -1}
 	for len(header) > 0 && strings.TrimSpace(header[len(header)-1]) == "" {
 		header = header[:len(header)-1]
@@ -59,11 +61,11 @@ func readHeader(header, ignore []string) (*layout, []Problem) {
 	}
 
 	if len(l.header) == 1 && !ignored[fold(l.header[0])] {
-		return l, []Problem{{Column: 1, Found: "one column, " + quote(l.header[0]), Expected: "several, separated by comma, semicolon or tab",
-			Text: "the first line that is not blank and no comment is the header"}}
+		return l, []Problem{oneColumn(l.header[0], sheet)}
 	}
 	var list []Problem
-	likely := make(map[string]bool) // columns that are there, but misspelt
+	free := l.free(fields, ignored)
+	likely := make(map[string]bool) // columns that are there, but under another name
 	problem := func(field int, found, expected, text string) {
 		list = append(list, Problem{Column: field + 1, Found: found, Expected: expected, Text: text})
 	}
@@ -83,22 +85,26 @@ func readHeader(header, ignore []string) (*layout, []Problem) {
 			*to = i
 			continue
 		}
-		if near := nearest(h, sortedKeys(fields)); near != "" {
-			likely[near] = true
-		}
 		if h == "" {
 			problem(i, "", "", fmt.Sprintf("column %d has no name; name it, or take it out of the table", i+1))
 			continue
 		}
-		if l.long {
-			problem(i, "the unknown column "+quote(h), listOf(sortedKeys(fields), "or"), l.meant(h, fields))
+		appraiser, trial, ok := splitTrial(h)
+		if l.long || !ok {
+			may, hint := meant(h, free)
+			for _, c := range may {
+				likely[c] = true
+			}
+			if l.long {
+				problem(i, "the unknown column "+quote(h), listOf(sortedKeys(fields), "or"), hint+leaveOut(h, ignore))
+				continue
+			}
+			name := cmp.Or(strings.TrimRight(h, "0123456789"), h) // anna1 is anna-1
+			hint += fmt.Sprintf("the column of an appraiser is named appraiser-trial, such as %q; ", name+"-1")
+			problem(i, "the column "+quote(h)+" without a trial number", "part, reference, value or an appraiser's trial", hint+leaveOut(h, ignore))
 			continue
 		}
-		appraiser, trial, ok := splitTrial(h)
 		switch {
-		case !ok:
-			text := fmt.Sprintf("the column of an appraiser is named appraiser-trial, such as %q", h+"-1")
-			problem(i, "the column "+quote(h)+" without a trial number", "part, reference, value or an appraiser's trial", text+"; "+l.meant(h, fields))
 		case trial < 1 || trial > maxTrial:
 			problem(i, "the column "+quote(h), fmt.Sprintf("a trial number from 1 to %d", maxTrial), "")
 		default:
@@ -110,13 +116,27 @@ func readHeader(header, ignore []string) (*layout, []Problem) {
 			l.cells = append(l.cells, wideCell{i, appraiser, trial})
 		}
 	}
-	return l, append(list, l.missing(fields, likely)...)
+	return l, append(list, l.missing(fields, likely, sheet)...)
+}
+
+// oneColumn is the problem of a header of one column: another separator, or a
+// title above the header.
+func oneColumn(name, sheet string) Problem {
+	p := Problem{Column: 1, Found: "one column, " + quote(name), Expected: "several, separated by comma, semicolon or tab",
+		Text: "the first line that is not blank and no comment is the header"}
+	if sheet != "" {
+		p.Expected = "the columns of a header"
+		p.Text = "the first row that is not blank is the header: take a title above it out; " + sheet
+	}
+	return p
 }
 
 // isLong tells a long table by a column that only a long table has; where
-// none is spelt right, by more than one that is nearly right.
+// none is named right, by more than one that is nearly right or has another
+// usual name.
 func isLong(header []string, ignored map[string]bool) bool {
-	almost := 0
+	almost, cells := 0, 0
+	called := make(map[string]bool)
 	for _, h := range header {
 		name := fold(h)
 		if ignored[name] {
@@ -126,27 +146,57 @@ func isLong(header []string, ignored map[string]bool) bool {
 			return true
 		}
 		if _, _, ok := splitTrial(h); ok {
+			cells++
 			continue
 		}
 		if nearest(name, longOnly) != "" {
 			almost++
+		} else {
+			for _, c := range alsoCalled(h, longOnly) {
+				called[c] = true
+			}
 		}
 	}
-	return almost > 1
+	return almost > 1 || almost+len(called) > 1 && cells == 0
 }
 
-// meant says what a column that is not known may be.
-func (l *layout) meant(h string, fields map[string]*int) string {
-	hint := fmt.Sprintf("to leave the column out: ignore = [%q]", h)
-	if near := nearest(h, sortedKeys(fields)); near != "" {
-		return "did you mean " + near + "? " + hint
+// free returns the columns that the header does not have, in order.
+func (l *layout) free(fields map[string]*int, ignored map[string]bool) []string {
+	has := make(map[string]bool)
+	for _, h := range l.header {
+		if name := fold(h); !ignored[name] {
+			has[name] = true
+		}
 	}
-	return hint
+	return slices.DeleteFunc(sortedKeys(fields), func(name string) bool { return has[name] })
+}
+
+// meant returns which of the columns that are not there an unknown one may
+// be, and a hint that says so.
+func meant(h string, free []string) (columns []string, hint string) {
+	if near := nearest(h, free); near != "" {
+		return []string{near}, "did you mean " + near + "? "
+	}
+	if columns = alsoCalled(h, free); len(columns) > 0 {
+		hint = rename(columns) + "; "
+	}
+	return columns, hint
+}
+
+// leaveOut says how an unknown column is left out, beside those that are
+// ignored already.
+func leaveOut(h string, ignore []string) string {
+	all := append(slices.Clone(ignore), h)
+	var words []string
+	for _, w := range all {
+		words = append(words, fmt.Sprintf("%q", w))
+	}
+	return fmt.Sprintf("to leave the column out: %s, or ignore = [%s] in a study file", asFlag("ignore", all...), strings.Join(words, ", "))
 }
 
 // missing returns a problem for each column that is not there. A column that
 // is there but misspelt has its problem already.
-func (l *layout) missing(fields map[string]*int, likely map[string]bool) []Problem {
+func (l *layout) missing(fields map[string]*int, likely map[string]bool, sheet string) []Problem {
 	var list []Problem
 	need := []string{"part"}
 	if l.long {
@@ -160,6 +210,8 @@ func (l *layout) missing(fields map[string]*int, likely map[string]bool) []Probl
 		switch {
 		case name == "trial":
 			p.Text = "a study of one trial needs it too: 1 in each row"
+		case name == "part" && sheet != "":
+			p.Text = "the first row that is not blank is read as the header; " + sheet
 		case name == "part" && !l.long:
 			p.Text = "the first line that is not blank and no comment is read as the header"
 		}

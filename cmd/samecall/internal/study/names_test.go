@@ -118,7 +118,7 @@ func sameRows(t *testing.T, text []byte) {
 	for _, comma := range []byte(",;\t") {
 		var dumps [2]string
 		for i := range dumps {
-			l, problems := readHeader([]string{"part", "a-1", "a-2", "value"}, nil)
+			l, problems := readHeader([]string{"part", "a-1", "a-2", "value"}, nil, "")
 			if len(problems) > 0 {
 				t.Fatal(problems)
 			}

@@ -49,14 +49,29 @@ calls.csv:1: found no column "trial", expected it in the header line; a study of
 		{"column twice", "part,appraiser,trial,call,Call\n1,a,1,go,go\n", Settings{},
 			`calls.csv:1:5: found the column "Call" a second time, expected each column once; it stands in column 4 already`},
 		{"misspelt columns", "part,apraiser,trail,cal\n1,a,1,go\n", Settings{},
-			`calls.csv:1:2: found the unknown column "apraiser", expected appraiser, call, part, reference, trial or value; did you mean appraiser? to leave the column out: ignore = ["apraiser"]
-calls.csv:1:3: found the unknown column "trail", expected appraiser, call, part, reference, trial or value; did you mean trial? to leave the column out: ignore = ["trail"]
-calls.csv:1:4: found the unknown column "cal", expected appraiser, call, part, reference, trial or value; did you mean call? to leave the column out: ignore = ["cal"]`},
+			`calls.csv:1:2: found the unknown column "apraiser", expected appraiser, call, part, reference, trial or value; did you mean appraiser? to leave the column out: --ignore apraiser, or ignore = ["apraiser"] in a study file
+calls.csv:1:3: found the unknown column "trail", expected appraiser, call, part, reference, trial or value; did you mean trial? to leave the column out: --ignore trail, or ignore = ["trail"] in a study file
+calls.csv:1:4: found the unknown column "cal", expected appraiser, call, part, reference, trial or value; did you mean call? to leave the column out: --ignore cal, or ignore = ["cal"] in a study file`},
 		{"wide columns", "part,refrence,A,A-1,A 1,B-0\n1,go,go,go,go,go\n", Settings{},
-			`calls.csv:1:2: found the column "refrence" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "refrence-1"; did you mean reference? to leave the column out: ignore = ["refrence"]
-calls.csv:1:3: found the column "A" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "A-1"; to leave the column out: ignore = ["A"]
+			`calls.csv:1:2: found the column "refrence" without a trial number, expected part, reference, value or an appraiser's trial; did you mean reference? the column of an appraiser is named appraiser-trial, such as "refrence-1"; to leave the column out: --ignore refrence, or ignore = ["refrence"] in a study file
+calls.csv:1:3: found the column "A" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "A-1"; to leave the column out: --ignore A, or ignore = ["A"] in a study file
 calls.csv:1:5: found the column "A 1" a second time, expected each column once; it stands in column 4 already
 calls.csv:1:6: found the column "B-0", expected a trial number from 1 to 1000000`},
+		{"long under other names", "Sample,Operator,Run,Result,Size\n1,a,1,go,2\n", Settings{},
+			`calls.csv:1:1: found the unknown column "Sample", expected appraiser, call, part, reference, trial or value; if it holds the names of the parts, name it part; to leave the column out: --ignore Sample, or ignore = ["Sample"] in a study file
+calls.csv:1:2: found the unknown column "Operator", expected appraiser, call, part, reference, trial or value; if it holds the names of the appraisers, name it appraiser; to leave the column out: --ignore Operator, or ignore = ["Operator"] in a study file
+calls.csv:1:3: found the unknown column "Run", expected appraiser, call, part, reference, trial or value; if it holds the numbers of the trials, name it trial; to leave the column out: --ignore Run, or ignore = ["Run"] in a study file
+calls.csv:1:4: found the unknown column "Result", expected appraiser, call, part, reference, trial or value; if it holds the calls, name it call; if it holds the measured values, name it value; to leave the column out: --ignore Result, or ignore = ["Result"] in a study file
+calls.csv:1:5: found the unknown column "Size", expected appraiser, call, part, reference, trial or value; if it holds the measured values, name it value; to leave the column out: --ignore Size, or ignore = ["Size"] in a study file`},
+		{"wide under other names", "Part No.,Measured (mm),Anna1\n1,2,go\n", Settings{},
+			`calls.csv:1:1: found the column "Part No." without a trial number, expected part, reference, value or an appraiser's trial; if it holds the names of the parts, name it part; the column of an appraiser is named appraiser-trial, such as "Part No.-1"; to leave the column out: --ignore "Part No.", or ignore = ["Part No."] in a study file
+calls.csv:1:2: found the column "Measured (mm)" without a trial number, expected part, reference, value or an appraiser's trial; if it holds the measured values, name it value; the column of an appraiser is named appraiser-trial, such as "Measured (mm)-1"; to leave the column out: --ignore "Measured (mm)", or ignore = ["Measured (mm)"] in a study file
+calls.csv:1:3: found the column "Anna1" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "Anna-1"; to leave the column out: --ignore Anna1, or ignore = ["Anna1"] in a study file`},
+		{"a column that is there is not suggested", "part,sample,a-1\n1,2,go\n", Settings{Ignore: []string{"date"}},
+			`calls.csv:1:2: found the column "sample" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "sample-1"; to leave the column out: --ignore date,sample, or ignore = ["date", "sample"] in a study file`},
+		{"appraisers who are called like a column", "part,Operator,Run,run-1\n1,2,3,go\n", Settings{},
+			`calls.csv:1:2: found the column "Operator" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "Operator-1"; to leave the column out: --ignore Operator, or ignore = ["Operator"] in a study file
+calls.csv:1:3: found the column "Run" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "Run-1"; to leave the column out: --ignore Run, or ignore = ["Run"] in a study file`},
 		{"column without a name", ",part,appraiser,trial,call\n0,1,a,1,go\n", Settings{}, "calls.csv:1:1: column 1 has no name; name it, or take it out of the table"},
 		{"no column of calls", "part,reference\n1,go\n", Settings{},
 			`calls.csv:1: found no column with calls, expected either the columns appraiser, trial and call, or a column for each appraiser and trial, such as "early-1"`},

@@ -121,7 +121,7 @@ func (t *table) header(c *chunker, s Settings) (rest chunk, comma byte, err erro
 				return k, comma, nil
 			}
 			var list []Problem
-			t.layout, list = readHeader(fields, s.Ignore)
+			t.layout, list = readHeader(fields, s.Ignore, "")
 			for _, p := range list {
 				p.Line = line
 				t.problems = append(t.problems, p)

@@ -20,6 +20,7 @@ const maxSmall = 64 << 20
 type smallTable struct {
 	input   Input
 	sheet   string // of a workbook
+	which   string // says which sheet it is, and which others there are
 	line    int    // of the header
 	header  []string
 	rows    []smallRow
@@ -93,6 +94,7 @@ func (t *smallTable) readSheet(data []byte, want string) error {
 	}
 	defer f.Close()
 	t.sheet, t.comma = sheet, true
+	t.which = whichSheet(f, sheet)
 	rows, err := newCellRows(f, sheet)
 	if err != nil {
 		return sheetError(sheet, err)
@@ -109,7 +111,7 @@ func (t *smallTable) readSheet(data []byte, want string) error {
 		t.add(line, cells)
 	}
 	if t.header == nil {
-		t.list = append(t.list, noTable(sheet))
+		t.list = append(t.list, noTable(t.which))
 	}
 	return nil
 }
@@ -219,8 +221,12 @@ func (t *smallTable) pick(columns []smallColumn, ignore []string) error {
 		return t.wrong()
 	}
 	if len(t.header) == 1 && len(names) > 1 && !slices.Contains(names, fold(t.header[0])) {
-		t.list = append(t.list, Problem{Line: t.line, Found: "the one column " + quote(t.header[0]), Expected: "a header line with the columns " + listOf(names, "and"),
-			Text: "are the columns separated by comma, semicolon or tab?"})
+		p := Problem{Line: t.line, Found: "the one column " + quote(t.header[0]), Expected: "a header line with the columns " + listOf(names, "and"),
+			Text: "are the columns separated by comma, semicolon or tab?"}
+		if t.which != "" {
+			p.Text = "the first row that is not blank is the header: take a title above it out; " + t.which
+		}
+		t.list = append(t.list, p)
 		return t.wrong()
 	}
 	for i, h := range t.header {
@@ -234,7 +240,7 @@ func (t *smallTable) pick(columns []smallColumn, ignore []string) error {
 			p.Text = fmt.Sprintf("column %d has no name; name it, or take it out of the table", i+1)
 		case !slices.Contains(names, name):
 			p.Found, p.Expected = "the unknown column "+quote(h), listOf(names, "or")
-			p.Text = "to leave the column out: --ignore " + h
+			p.Text = "to leave the column out: " + asFlag("ignore", append(slices.Clone(ignore), h)...)
 			if near := nearest(h, names); near != "" {
 				p.Text = "did you mean " + near + "? " + p.Text
 			}

@@ -85,6 +85,7 @@ func TestReadFlaws(t *testing.T) {
 		want []Tally
 	}{
 		"counts": {"flaw,size,found,looks\nF1,0.4,1,3\nF2,0.9,3,3\n", []Tally{{Name: "F1", Value: 0.4, Count: 1, Of: 3}, {Name: "F2", Value: 0.9, Count: 3, Of: 3}}},
+		"signs":  {"size;hit\n0,4;-\n0,4;+\n0,9;1\n", []Tally{{Value: 0.4, Of: 1}, {Value: 0.4, Count: 1, Of: 1}, {Value: 0.9, Count: 1, Of: 1}}},
 		"hits":   {"size;hit\n0,4;0\n0,4;Found\n0,9;+\n1;missed\n", []Tally{{Value: 0.4, Of: 1}, {Value: 0.4, Count: 1, Of: 1}, {Value: 0.9, Count: 1, Of: 1}, {Value: 1, Of: 1}}},
 	} {
 		got, err := ReadFlaws(small(c.data), "", nil)
@@ -158,6 +159,7 @@ func TestSmallTablesWrong(t *testing.T) {
 		"both":          {flaws, "size,found,looks,hit\n1,1,2,1\n", []string{"expected size with found and looks (counts), or size with hit"}},
 		"neither":       {flaws, "size,found\n1,1\n", []string{"t.csv:1: found the columns found and size, expected size with found and looks"}},
 		"word":          {flaws, "size,hit\n1,maybe\n2,\n", []string{`t.csv:2:2: found "maybe", expected 1, hit, found or yes`, "t.csv:3:2: found nothing"}},
+		"dash":          {flaws, "size,hit\n1,1\n2,-\n", []string{`t.csv:3:2: found "-", expected 1 (found) or 0 (missed) in column hit; a dash without + in the column may be meant as no look`}},
 		"which column":  {values, "a,b\n1,2\n", []string{`t.csv:1: found no column "value", expected it in the header line; name the column that holds the values; there are "a" and "b"`}},
 		"unit":          {values, "value\n10.01 mm\n", []string{`t.csv:2:1: found "10.01 mm", expected a number in column value; write the number alone, without unit`}},
 		"no value":      {values, "value,b\n,1\n", []string{"t.csv:1: there is no value below the header"}},
@@ -184,6 +186,14 @@ func TestSmallTableCell(t *testing.T) {
 		t.Errorf("error %v", err)
 	}
 	if _, err = ReadShort(small(data), "May", nil); err == nil || !strings.Contains(err.Error(), `found no sheet "May", expected one of the sheets "Sheet1"`) {
+		t.Errorf("error %v", err)
+	}
+}
+
+func TestSmallTableTitle(t *testing.T) {
+	data := sheetOf(t, []any{"Gauge 7"}, []any{"value", "accepted", "trials"}, []any{1, 1, 2})
+	_, err := ReadShort(small(data), "", nil)
+	if err == nil || !strings.Contains(err.Error(), `found the one column "Gauge 7", expected a header line with the columns part, value, accepted and trials; the first row that is not blank is the header: take a title above it out; the sheet read is "Sheet1"`) {
 		t.Errorf("error %v", err)
 	}
 }

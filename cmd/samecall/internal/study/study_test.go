@@ -193,8 +193,18 @@ func TestWorkbook(t *testing.T) {
 		t.Errorf("%v", err)
 	}
 	_, err = Read(src(data), Settings{})
-	if err == nil || !strings.Contains(err.Error(), `the sheet "Sheet1" holds no table`) {
+	if err == nil || !strings.Contains(err.Error(), `the sheet holds no table: expected a header row and rows; the sheet read is "Sheet1"; to read another one: --sheet Calls`) {
 		t.Errorf("%v", err)
+	}
+	const place = `the sheet read is "Calls"; to read another one: --sheet Sheet1`
+	for title, want := range map[string]string{
+		"A1": `standard input:Calls!A1: found one column, "Study", expected the columns of a header; the first row that is not blank is the header: take a title above it out; ` + place,
+		"C1": `standard input:Calls!A1: found no column "part", expected it in the header line; the first row that is not blank is read as the header; ` + place,
+	} {
+		titled := map[string]any{"A1": "Study", title: "Study", "A2": "part", "B2": "a-1", "A3": 1, "B3": "go"}
+		if _, err = Read(src(workbook(t, titled)), Settings{Sheet: "Calls"}); err == nil || !strings.HasPrefix(err.Error(), want) {
+			t.Errorf("title in %s: %v", title, err)
+		}
 	}
 	cells["D5"], cells["B6"] = true, "about 12" // a truth value is no 1
 	_, err = Read(src(workbook(t, cells)), Settings{Sheet: "Calls"})

@@ -62,6 +62,12 @@ func ReadFlaws(src Source, sheet string, ignore []string) (*Tallies, error) {
 		return nil, t.wrong()
 	}
 	var rows []Tally
+	words := make(map[string]bool)
+	for _, r := range t.rows {
+		if w := fold(t.text(r, "hit")); w != "" {
+			words[w] = true
+		}
+	}
 	for _, r := range t.rows {
 		size, hasSize := t.number(r, "size")
 		if hasSize && size <= 0 {
@@ -73,7 +79,7 @@ func ReadFlaws(src Source, sheet string, ignore []string) (*Tallies, error) {
 		if counts {
 			row, ok = t.tally(r, "found", "looks")
 		} else {
-			row, ok = t.hit(r)
+			row, ok = t.hit(r, dashIsCall(words))
 		}
 		if ok && hasSize {
 			row.Name, row.Value = t.text(r, "flaw"), size
@@ -106,10 +112,14 @@ var (
 	missWords = folded([]string{"0", "miss", "missed", "no", "-"})
 )
 
-func (t *smallTable) hit(r smallRow) (Tally, bool) {
+// hit reads one look; dash says that a dash is a miss, and not a missing look.
+func (t *smallTable) hit(r smallRow, dash bool) (Tally, bool) {
 	word := t.text(r, "hit")
 	row := Tally{Of: 1, inLine: r.line}
 	switch k := fold(word); {
+	case k == "-" && !dash:
+		t.at(r, t.columns["hit"], quote(word), "1 (found) or 0 (missed) in column hit", "a dash without + in the column may be meant as no look; leave the row out if nobody looked")
+		return row, false
 	case hitWords[k]:
 		row.Count = 1
 	case missWords[k]:

@@ -34,7 +34,7 @@ func readWorkbook(in io.Reader, s Settings) (t *table, err error) {
 		return nil, sheetError(sheet, err)
 	}
 	if t.layout == nil && len(t.problems) == 0 {
-		t.problems = append(t.problems, noTable(sheet))
+		t.problems = append(t.problems, noTable(whichSheet(f, sheet)))
 	}
 	return t, nil
 }
@@ -73,8 +73,24 @@ func sheetError(sheet string, err error) error {
 	return &textError{Text: fmt.Sprintf("the sheet %s cannot be read (%v)", quote(sheet), err)}
 }
 
-func noTable(sheet string) Problem {
-	return Problem{Text: fmt.Sprintf("the sheet %s holds no table: expected a header row and rows", quote(sheet))}
+// noTable is the problem of an empty sheet; which is what whichSheet says.
+func noTable(which string) Problem {
+	return Problem{Text: "the sheet holds no table: expected a header row and rows; " + which}
+}
+
+// whichSheet says which sheet is read, and how to read another one.
+func whichSheet(f *excelize.File, sheet string) string {
+	var flags []string
+	for _, n := range f.GetSheetList() {
+		if n != sheet {
+			flags = append(flags, "--sheet "+shellWord(n))
+		}
+	}
+	read := "the sheet read is " + quote(sheet)
+	if len(flags) == 0 {
+		return read
+	}
+	return read + "; to read another one: " + listOf(firstFew(flags), "or")
 }
 
 // readSheet reads the header and the rows of t.sheet.
@@ -98,7 +114,7 @@ func (t *table) readSheet(f *excelize.File, s Settings) error {
 		if b == nil {
 			var list []Problem
 			t.line = line
-			t.layout, list = readHeader(cells, s.Ignore)
+			t.layout, list = readHeader(cells, s.Ignore, whichSheet(f, t.sheet))
 			for _, p := range list {
 				p.Line = line
 				t.problems = append(t.problems, p)
