@@ -77,6 +77,7 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 				return err
 			}
 			result.Command = commandLine(cmd, args)
+			result.FlagLevels = src.flagLevels(cmd)
 			if err := out.write(s.out, result); err != nil {
 				return err
 			}

@@ -126,7 +126,9 @@ func commandLine(cmd *cobra.Command, args []string) string {
 			return
 		}
 		value := f.Value.String()
-		if list, ok := f.Value.(pflag.SliceValue); ok {
+		if numbers, err := cmd.Flags().GetFloat64Slice(f.Name); err == nil {
+			value = (*numberList)(&numbers).String() // as short as it reads back
+		} else if list, ok := f.Value.(pflag.SliceValue); ok {
 			value = joined(list.GetSlice())
 		}
 		words = append(words, "--"+f.Name+"="+value)

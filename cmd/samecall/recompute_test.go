@@ -6,6 +6,7 @@ import (
 	"os/exec"
 	"path/filepath"
 	"runtime"
+	"slices"
 	"strings"
 	"testing"
 
@@ -61,6 +62,9 @@ func TestRecompute(t *testing.T) {
 		// TestMain has put the program on the path.
 		first := record("first.html", exec.Command("samecall", append([]string{args[0], "--html", "first.html"}, args[1:]...)...))
 		line := printedCommand(t, first)
+		if slices.Contains(args, "--kappa") && !strings.Contains(line, " --kappa=0.8,0.3") {
+			t.Errorf("the levels are not printed as they were given: %s", line)
+		}
 		// The line ends where a shell would go on with more words.
 		again := record("again.html", exec.Command("sh", "-c", strings.Replace(line, "samecall judge", "samecall judge --html again.html", 1)))
 		if !bytes.Equal(first, again) {

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io/fs"
 	"os"
+	"strings"
 
 	"github.com/spf13/cobra"
 	"github.com/spf13/pflag"
@@ -132,6 +133,17 @@ func (s *source) flags(cmd *cobra.Command) (study.Settings, error) {
 		return out, errors.New("--confidence is 0; expected a number between 0 and 1, such as 0.95")
 	}
 	return out, out.Validate()
+}
+
+// flagLevels names the criteria whose levels flags give.
+func (s *source) flagLevels(cmd *cobra.Command) map[string]bool {
+	out := make(map[string]bool)
+	for name := range s.pairs {
+		if cmd.Flags().Changed(name) {
+			out[strings.ReplaceAll(name, "-", "_")] = true
+		}
+	}
+	return out
 }
 
 func completeExamples(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {

@@ -13,7 +13,7 @@ import (
 // blank line between. Numbers have a decimal point; shares are fractions.
 func CSV(w io.Writer, r *Record) error {
 	c := csv.NewWriter(w)
-	for i, t := range allTables(r) {
+	for i, t := range numberTables(r) {
 		if i > 0 {
 			if err := c.Write([]string{""}); err != nil {
 				return err

@@ -382,14 +382,15 @@ func mapLimits(r *Record, order []int, cut bool) (limits []figure.MapLimit, zone
 	return limits, zones
 }
 
-// curveLimits returns the limits at which the pooled curve is known.
+// curveLimits returns the limits at which the grey zone of the pooled curve
+// is known.
 func curveLimits(r *Record) []*signal.LimitFit {
 	if r.Zone == nil || r.Zone.Curves == nil {
 		return nil
 	}
 	var out []*signal.LimitFit
 	for _, l := range []*signal.LimitFit{r.Zone.Curves.Pooled.Lower, r.Zone.Curves.Pooled.Upper} {
-		if l.Known() {
+		if widthKnown(l) {
 			out = append(out, l)
 		}
 	}

@@ -137,7 +137,7 @@ func sections(r *Record) []pageSection {
 	square = append(square, coefficientsTable(r), weightedTable(r), categoriesTable(r))
 	add("agreement", "Agreement", []string{"square"}, square...)
 	add("map", "Calls", []string{"calls"}, append(crossTables(r), directionTable(r))...)
-	add("zone", "Grey zone", []string{"curve"}, zoneTable(r), cutsTable(r))
+	add("zone", "Grey zone", []string{"curve"}, zoneTable(r), cutsTable(r), zonesTable(r))
 	add("parts", "Parts to look at", nil, partsTable(r))
 	add("every-call", "Every call", nil, callsTable(r))
 	return out
@@ -273,5 +273,5 @@ func methods(r *Record) []string {
 	if r.Zone != nil {
 		out = append(out, "Grey zone: unanimous zone and signal detection as in the Measurement Systems Analysis reference manual, 4th ed. 2010, chapter III C; acceptance curve by maximum likelihood with profile-likelihood intervals; where calls are separated, bias-reduced (Firth, 1993).")
 	}
-	return append(out, "Criteria: those of the study file; where it says nothing, those of the Measurement Systems Analysis reference manual, 4th ed. 2010. Causes are read from the pattern of the errors by fixed rules; they are leads, not proofs.")
+	return append(out, "Criteria: l"+strings.TrimPrefix(levelsFrom(r), "L")+" Causes are read from the pattern of the errors by fixed rules; they are leads, not proofs.")
 }

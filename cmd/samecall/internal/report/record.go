@@ -12,4 +12,7 @@ type Record struct {
 	Verdict *verdict.Verdict
 	Version string // of the program
 	Command string // line that computes the record again
+	// FlagLevels holds the names of the criteria whose levels the command line
+	// gave.
+	FlagLevels map[string]bool
 }

@@ -44,7 +44,15 @@ func (s square) at(a, b int) (agreement.Share, agreement.Estimate) {
 // table lays the square out for reading. With kappas, each cell holds the
 // share of parts and the kappa.
 func (s square) table(kappas bool) Table {
-	t := Table{Name: "square", Title: "Agreement square", Columns: []Column{{Name: ""}}}
+	t := Table{Name: "square", Title: "Agreement square", Columns: []Column{{Name: ""}}, Note: "Share of parts on which all calls are alike"}
+	if kappas {
+		t.Note += " · kappa"
+	}
+	t.Note += ". In brackets, each appraiser with itself"
+	if s.ref != nil {
+		t.Note += "; last column, against the reference"
+	}
+	t.Note += "."
 	for _, n := range s.names {
 		t.Columns = append(t.Columns, Column{Name: n, Numbers: true})
 	}
@@ -84,4 +92,28 @@ func squareCell(share agreement.Share, kappa agreement.Estimate, kappas, itself 
 		c.Text = "[" + c.Text + "]"
 	}
 	return c
+}
+
+// numbers lays the square out for programs: a table of the shares and one of
+// the kappas, each with its interval.
+func (s square) numbers() []Table {
+	shares, kappas := s.table(false), s.table(false)
+	shares.Title += ": share of parts alike"
+	kappas.Name, kappas.Title = "square kappas", "Agreement square: kappa"
+	shares.Note, kappas.Note = "", ""
+	kappas.Rows = nil
+	for a, n := range s.names {
+		row := []Cell{say(n)}
+		for b := range shares.Columns[1:] {
+			if b < a {
+				row = append(row, say(""))
+				continue
+			}
+			share, kappa := s.at(a, b)
+			shares.Rows[a][b+1] = shareCell(share)
+			row = append(row, kappaCell(kappa))
+		}
+		kappas.Rows = append(kappas.Rows, row)
+	}
+	return []Table{shares, kappas}
 }

@@ -43,10 +43,26 @@ func say(s string) Cell { return Cell{Text: s} }
 // line under the heads.
 func (t Table) render(width int) string {
 	var out []string
-	for _, b := range t.blocks(width) {
+	for _, b := range t.filled().blocks(width) {
 		out = append(out, b.block(width))
 	}
 	return strings.Join(out, "\n\n")
+}
+
+// filled leaves out columns in which nothing stands.
+func (t Table) filled() Table {
+	out := t
+	out.Columns, out.Rows = nil, make([][]Cell, len(t.Rows))
+	for i, c := range t.Columns {
+		if i >= t.keys() && !slices.ContainsFunc(t.Rows, func(row []Cell) bool { return row[i].Text != "" }) {
+			continue
+		}
+		out.Columns = append(out.Columns, c)
+		for j, row := range t.Rows {
+			out.Rows[j] = append(out.Rows[j], row[i])
+		}
+	}
+	return out
 }
 
 func (t Table) block(width int) string {

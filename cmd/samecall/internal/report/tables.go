@@ -20,11 +20,9 @@ func Tables(r *Record) []Table {
 	if r.Agreement.All != nil {
 		out = append(out, againstTable(r, true), errorsTable(r), detectionTable(r))
 	}
-	out = append(out, zoneTable(r), cutsTable(r), withinTable(r))
+	out = append(out, zoneTable(r), cutsTable(r), zonesTable(r), withinTable(r))
 	if len(r.Study.Appraisers) > 1 {
-		s := newSquare(r).table(true)
-		s.Note = squareNote
-		out = append(out, s, pairsTable(r))
+		out = append(out, newSquare(r).table(true), pairsTable(r))
 	}
 	out = append(out, coefficientsTable(r), weightedTable(r), categoriesTable(r))
 	out = append(out, crossTables(r)...)
@@ -39,6 +37,20 @@ func allTables(r *Record) []Table {
 		all = append(all, t)
 	}
 	return all
+}
+
+// numberTables are all tables for programs, where two figures do not share a
+// cell.
+func numberTables(r *Record) []Table {
+	var out []Table
+	for _, t := range allTables(r) {
+		if t.Name == "square" {
+			out = append(out, newSquare(r).numbers()...)
+		} else {
+			out = append(out, t)
+		}
+	}
+	return out
 }
 
 // studyTable says what was studied and decided, and how it came about.
@@ -126,8 +138,6 @@ func allNotes(r *Record) []string {
 	}
 	return out
 }
-
-const squareNote = "Share of parts on which all calls are alike · kappa. In brackets, each appraiser with itself; last column, against the reference."
 
 func shareCell(s agreement.Share) Cell {
 	if s.Absent != nil {
@@ -489,6 +499,35 @@ func partList(r *Record, list []int) string {
 	return strings.Join(parts(r, list), ", ") + more
 }
 
+// levelsFrom says of each criterion who set its levels.
+func levelsFrom(r *Record) string {
+	c := r.Study.Settings.Criteria
+	const manual = "the Measurement Systems Analysis reference manual, 4th ed. 2010 (the default)"
+	by := make(map[string][]string)
+	for _, x := range []struct {
+		label, key string
+		own        *[2]float64
+	}{{"effectiveness", verdict.Effectiveness, c.Effectiveness}, {"miss rate", verdict.Miss, c.Miss}, {"false-alarm rate", verdict.FalseAlarm, c.FalseAlarm}, {"kappa", verdict.Kappa, c.Kappa}} {
+		source := manual
+		switch {
+		case x.own != nil && r.FlagLevels[x.key]:
+			source = "the command line"
+		case x.own != nil:
+			source = "the study file"
+		}
+		by[source] = append(by[source], x.label)
+	}
+	var out []string
+	for _, source := range []string{"the command line", "the study file", manual} {
+		if of := by[source]; len(of) == 4 {
+			out = append(out, "all from "+source)
+		} else if len(of) > 0 {
+			out = append(out, strings.Join(of, ", ")+" from "+source)
+		}
+	}
+	return "Levels: " + strings.Join(out, "; ") + "."
+}
+
 // criteriaTable holds each figure of each appraiser against its levels.
 func criteriaTable(r *Record) Table {
 	t := Table{
@@ -497,7 +536,7 @@ func criteriaTable(r *Record) Table {
 		Keys:  2,
 		Columns: []Column{{Name: "appraiser"}, {Name: "figure"}, {Name: "found", Numbers: true}, {Name: "accept", Numbers: true},
 			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: "data"}, {Name: "to settle it", Long: true}},
-		Note: fmt.Sprintf("Shown, contradicted or open at %s confidence, one-sided, for the level that the estimate reaches (for a reject, the conditional level).", format.Percent(r.Options.Confidence)),
+		Note: levelsFrom(r) + " " + fmt.Sprintf("Shown, contradicted or open at %s confidence, one-sided, for the level that the estimate reaches (for a reject, the conditional level).", format.Percent(r.Options.Confidence)),
 	}
 	add := func(name string, c verdict.Criterion) {
 		found, evidence, settle := say(format.Dash), "", ""

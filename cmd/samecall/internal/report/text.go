@@ -33,7 +33,11 @@ func Text(w io.Writer, r *Record, term Terminal, full bool) error {
 	p.head(r)
 	p.verdict(r)
 	if full {
+		p.table(studyTable(r))
 		for _, t := range Tables(r) {
+			p.table(t)
+		}
+		if t := callsTable(r); len(t.Rows) > 0 {
 			p.table(t)
 		}
 	} else {
@@ -307,13 +311,6 @@ func (p *printer) square(r *Record) {
 		t := s.table(kappas)
 		if !t.fits(p.term.Width) {
 			continue
-		}
-		t.Note = squareNote
-		if !kappas {
-			t.Note = strings.Replace(squareNote, " · kappa", "", 1)
-		}
-		if s.ref == nil {
-			t.Note = strings.Replace(t.Note, "; last column, against the reference", "", 1)
 		}
 		p.table(t)
 		return

@@ -22,7 +22,7 @@ func XLSX(w io.Writer, r *Record) (err error) {
 	if err != nil {
 		return err
 	}
-	for i, t := range allTables(r) {
+	for i, t := range numberTables(r) {
 		name := sheetName(f, t.Name)
 		if i == 0 {
 			err = f.SetSheetName("Sheet1", name)
@@ -86,7 +86,7 @@ func (l look) of(t Table, c flatCell) int {
 		switch {
 		case c.Share:
 			return l.share
-		case t.Name != "zone" && t.Name != "cuts": // values there are as fine as the characteristic
+		case t.Name != "zone" && t.Name != "cuts" && t.Name != "zones": // values there are as fine as the characteristic
 			return l.figure
 		}
 	case string:

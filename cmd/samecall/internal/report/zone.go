@@ -37,24 +37,28 @@ func zoneTable(r *Record) Table {
 			t.Rows = append(t.Rows, row)
 			continue
 		}
-		share := say(format.Dash)
-		sigma, width := say(format.Dash), say(format.Dash)
-		if drawn(l) {
-			sigma, width = valueCell(s.Value(l.Sigma.Value), l.Sigma.Value), valueCell(s.Value(l.Width.Value), l.Width.Value)
+		cells := zoneCells(s, l)
+		sigma, wide, share := cells[0], cells[3], say(format.Dash)
+		if widthKnown(l) { // their intervals are in zone
+			sigma = valueCell(s.Value(l.Sigma.Value), l.Sigma.Value)
 		}
-		if l.HasShare && drawn(l) {
+		switch {
+		case !l.HasShare:
+		case widthKnown(l):
 			share = valueCell(format.Percent(l.Share.Value), l.Share.Value)
+		case informs(l):
+			share = say("under " + format.Percent(l.Share.Upper))
+		default:
+			share = zoneShare(l)
 		}
-		t.Rows = append(t.Rows, append(row,
-			offsetCell(s, l.Offset),
-			sigma, width, share))
+		t.Rows = append(t.Rows, append(row, placeCell(s, l, l.Offset, s.Signed), sigma, wide, share))
 	}
 	return t
 }
 
-// drawn reports whether calls near a limit draw the curve there: without
-// mixed parts, or with a σ that nothing bounds, its width is nobody's finding.
-func drawn(l *signal.LimitFit) bool { return l.Status == signal.Fitted && l.Sigma.HasUpper }
+// widthKnown reports whether the calls say how wide the grey zone at a limit
+// is, from above and from below.
+func widthKnown(l *signal.LimitFit) bool { return informs(l) && l.Sigma.HasLower }
 
 // zoneNotes says in sentences what the table of the grey zone cannot.
 func zoneNotes(r *Record) []string {
@@ -111,77 +115,84 @@ func cutsTable(r *Record) Table {
 			t.Columns = append(t.Columns, Column{Name: l.Side.String() + ": cut − limit", Numbers: true})
 		}
 	}
-	sigmas := sides
-	if oneSigma(all) {
-		sigmas = sides[:1]
-	}
-	for _, side := range sigmas {
-		name := "σ"
-		if len(sigmas) > 1 {
-			name += " " + side(all.Pooled).Side.String()
-		}
-		t.Columns = append(t.Columns, Column{Name: name, Numbers: true})
-	}
 	for a, own := range all.Each {
 		row := []Cell{say(r.Study.Appraisers[a])}
-		known := func(side func(c *signal.Curve) *signal.LimitFit) *signal.LimitFit {
-			if own == nil || !side(own).Known() {
-				return nil
-			}
-			return side(own)
-		}
 		for _, side := range sides {
 			cell := say(format.Dash)
-			if l := known(side); l != nil {
-				cell = offsetCell(s, l.Offset)
-			}
-			row = append(row, cell)
-		}
-		for _, side := range sigmas {
-			cell := say(format.Dash)
-			if l := known(side); l != nil {
-				cell = valueCell(s.Value(l.Sigma.Value), l.Sigma.Value)
+			if own != nil && side(own).Known() {
+				cell = placeCell(s, side(own), side(own).Offset, s.Signed)
 			}
 			row = append(row, cell)
 		}
 		t.Rows = append(t.Rows, row)
 	}
-	var tests []string
-	for _, x := range []struct {
-		what string
-		test signal.Test
-	}{{"same cuts", all.SameCut}, {"same σ", all.SameSigma}} {
-		if x.test.Done {
-			tests = append(tests, x.what+": p "+format.Probability(x.test.P))
-		}
-	}
-	if len(tests) > 0 {
-		t.Note = "Likelihood-ratio tests of all appraisers, " + strings.Join(tests, "; ") + ". A small p says that they differ."
-	}
+	t.Note = testNote(all.SameCut, "all appraisers cut alike")
 	return t
 }
 
-func offsetCell(s format.Scale, e signal.Estimate) Cell {
-	c := Cell{Text: s.Estimate(e, s.Signed), Value: e.Value, Bounded: true}
-	if e.HasLower {
-		c.Lower = e.Lower
+// testNote says what a likelihood-ratio test tells; empty if it was not made.
+func testNote(test signal.Test, what string) string {
+	if !test.Done {
+		return ""
 	}
-	if e.HasUpper {
-		c.Upper = e.Upper
-	}
-	return c
+	return "Likelihood-ratio test that " + what + ": p " + format.Probability(test.P) + ". A small p says that they differ."
 }
 
-// oneSigma reports whether every curve has one σ for its two limits, which
-// then is told once.
-func oneSigma(all *signal.Appraisers) bool {
-	for _, c := range append([]*signal.Curve{all.Pooled}, all.Each...) {
-		if c == nil {
-			continue
-		}
-		if !c.Lower.Known() || !c.Upper.Known() || c.Lower.Sigma.Value != c.Upper.Sigma.Value {
-			return false
+// zonesTable says how wide the grey zone of each appraiser is; empty with one
+// appraiser.
+func zonesTable(r *Record) Table {
+	t := Table{Name: "zones", Title: "How wide each appraiser's grey zone is", Keys: 2, Columns: []Column{{Name: "appraiser"}, {Name: "limit"},
+		{Name: "σ", Numbers: true}, {Name: "from", Numbers: true}, {Name: "to", Numbers: true}, {Name: "wide", Numbers: true}}}
+	if r.Zone == nil || r.Zone.Curves == nil || len(r.Study.Appraisers) < 2 {
+		return t
+	}
+	s := r.Scale()
+	t.Title = inUnit(t.Title, s)
+	all := r.Zone.Curves
+	for a, own := range all.Each {
+		for _, l := range limitsOf(own, all.Pooled) {
+			t.Rows = append(t.Rows, append([]Cell{say(r.Study.Appraisers[a]), say(l.side.String())}, zoneCells(s, l.fit)...))
 		}
 	}
-	return true
+	t.Note = testNote(all.SameSigma, "all have one σ")
+	return t
+}
+
+// sideFit is the fit at a limit, nil where there is none.
+type sideFit struct {
+	side signal.Side
+	fit  *signal.LimitFit
+}
+
+// limitsOf are an appraiser's fits at the limits that the pooled curve has.
+func limitsOf(own, pooled *signal.Curve) []sideFit {
+	var out []sideFit
+	add := func(of *signal.LimitFit, fit func(*signal.Curve) *signal.LimitFit) {
+		if of == nil || !of.HasLimit {
+			return
+		}
+		x := sideFit{side: of.Side}
+		if own != nil && fit(own).Known() {
+			x.fit = fit(own)
+		}
+		out = append(out, x)
+	}
+	add(pooled.Lower, func(c *signal.Curve) *signal.LimitFit { return c.Lower })
+	add(pooled.Upper, func(c *signal.Curve) *signal.LimitFit { return c.Upper })
+	return out
+}
+
+// zoneCells are σ, both ends and the width of a grey zone, no more of it than
+// the calls tell: a σ that may be nearly 0 is less than its upper bound, and
+// ends that lie anywhere are not known.
+func zoneCells(s format.Scale, l *signal.LimitFit) []Cell {
+	switch {
+	case l == nil:
+		return []Cell{say(format.Dash), say(format.Dash), say(format.Dash), say(format.Dash)}
+	case widthKnown(l):
+		return []Cell{boundedCell(s, l.Sigma, s.Value), zoneEnd(s, l, l.From), zoneEnd(s, l, l.To), zoneWidth(s, l, false)}
+	case informs(l):
+		return []Cell{say("under " + s.Value(l.Sigma.Upper)), say(notKnown), say(notKnown), say("under " + s.Value(l.Width.Upper))}
+	}
+	return []Cell{say(notKnown), say(notKnown), say(notKnown), zoneWidth(s, l, false)}
 }
