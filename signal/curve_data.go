@@ -3,6 +3,7 @@ package signal
 import (
 	"cmp"
 	"errors"
+	"fmt"
 	"math"
 	"slices"
 )
@@ -229,10 +230,49 @@ func (d *dataset) classify(h *half) {
 		}
 		if !(score > 1e-12*calls) {
 			h.status, h.reversed = OneSided, true
-			h.why = "calls do not turn towards acceptance from the " + side + " limit inwards; check that accept and reject are not swapped"
+			h.why = "calls do not turn towards acceptance from the " + side + " limit inwards" + d.againstTurn(h)
 		}
 	}
 	h.reject, h.accept = sign*h.reject, sign*h.accept
+}
+
+// againstTurn names what may stand against a turn: an accepted part far out, a
+// rejected one far in, or calls of swapped meaning.
+func (d *dataset) againstTurn(h *half) string {
+	innermost, outermost := h.to-1, h.from
+	if h.k == 1 {
+		innermost, outermost = outermost, innermost
+	}
+	named := func(i int) string {
+		p := d.parts[i]
+		name := "the part"
+		if p.Name != "" {
+			name = "part " + p.Name
+		}
+		return fmt.Sprintf("%s at %.10g", name, p.Value)
+	}
+	out, in := d.parts[outermost], d.parts[innermost]
+	switch far, near := out.Accepted == out.Calls, in.Accepted == 0; {
+	case far && near:
+		return "; check that accept and reject are not swapped"
+	case far:
+		return fmt.Sprintf(": %s, the farthest out, was always accepted; check its value", named(outermost))
+	case near && !d.has[1-h.k]:
+		return fmt.Sprintf(": %s, the farthest in, was always rejected; is there another limit?", named(innermost))
+	}
+	return "; check the values of the parts, and that accept and reject are not swapped"
+}
+
+// noCut tells whether part i lies where rejected calls give no cut.
+func (d *dataset) noCut(hs [2]half, i int) bool {
+	in := func(h half) bool { return d.has[h.k] && h.from <= i && i < h.to }
+	lost := func(h half) bool { return h.status == OneSided && h.hasReject }
+	for k, h := range hs {
+		if in(h) && lost(h) {
+			return !in(hs[1-k]) || lost(hs[1-k])
+		}
+	}
+	return false
 }
 
 // starts returns two guesses of cut and log σ at a limit: one from the balance

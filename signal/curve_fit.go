@@ -86,7 +86,7 @@ func (d *dataset) fit(search bool) (*Curve, error) {
 	if d.options.Lapse {
 		d.lapse(c, &blocks, hs)
 	}
-	c.summarise(d)
+	c.summarise(d, hs)
 	c.judgeFit()
 	c.params(d)
 	for _, b := range blocks {

@@ -33,7 +33,7 @@ func (d *dataset) outliers(c *Curve, hs [2]half) {
 		screen = r
 	}
 	for i := range d.parts {
-		if d.tailUnder(screen, i, false)*float64(n) < outlierScreen {
+		if !c.Parts[i].NoCut && d.tailUnder(screen, i, false)*float64(n) < outlierScreen {
 			suspects[i] = true
 		}
 	}

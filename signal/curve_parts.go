@@ -15,6 +15,10 @@ type PartFit struct {
 	Value    float64
 	Accepted int
 	Calls    int
+	// NoCut marks a part that lies at a limit where rejected calls give no cut:
+	// nothing is fitted there, the figures below are 0, and its calls are not in
+	// the log-likelihoods.
+	NoCut    bool
 	Fitted   float64 // fitted probability of acceptance
 	Residual float64 // deviance residual: its square is the part's share of the deviance
 	// Tail is the chance of calls at least as far from the fitted share, in
@@ -30,7 +34,7 @@ type PartFit struct {
 }
 
 // summarise fills log-likelihoods and parts from the estimates.
-func (c *Curve) summarise(d *dataset) {
+func (c *Curve) summarise(d *dataset, hs [2]half) {
 	at := c.at()
 	eps := c.epsilon()
 	link := c.Options.Link
@@ -43,10 +47,14 @@ func (c *Curve) summarise(d *dataset) {
 		z := at.z(t)
 		tm.at(link, z, at.has, a, r, eps)
 		c.Calls += p.Calls
+		pf := PartFit{Row: d.row[i], Name: p.Name, Value: p.Value, Accepted: p.Accepted, Calls: p.Calls, NoCut: d.noCut(hs, i)}
+		if pf.NoCut {
+			c.Parts[i] = pf
+			continue
+		}
 		c.CallLogLikelihood += tm.loglik
 		choose := logChoose(n, a)
 		c.LogLikelihood += tm.loglik + choose
-		pf := PartFit{Row: d.row[i], Name: p.Name, Value: p.Value, Accepted: p.Accepted, Calls: p.Calls}
 		pr, q := math.Min(1, math.Max(0, tm.p)), math.Min(1, math.Max(0, tm.q))
 		pf.Fitted = pr
 		deviance := 2 * (saturated(a, r) - tm.loglik)

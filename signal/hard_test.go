@@ -5,6 +5,7 @@ import (
 	"math"
 	"math/rand/v2"
 	"slices"
+	"strings"
 	"testing"
 
 	"pgregory.net/rapid"
@@ -380,5 +381,42 @@ func TestLapseBoundWithTwoSigmas(t *testing.T) {
 	}
 	if one, two := bound(false), bound(true); two < 0.99*one {
 		t.Errorf("bound %v with two σ, %v with one", two, one)
+	}
+}
+
+// A limit whose calls do not turn is no reason to judge its parts by the other
+// limit's curve: they are left out of the fit's figures, and the part that
+// stands against the turn is named.
+func TestPartsWithoutCut(t *testing.T) {
+	parts := []Part{
+		{Name: "a", Value: 9.7, Calls: 6}, {Name: "b", Value: 9.9, Calls: 6, Accepted: 2}, {Name: "c", Value: 10, Calls: 6, Accepted: 3},
+		{Name: "d", Value: 10.1, Calls: 6, Accepted: 4}, {Name: "e", Value: 10.4, Calls: 6, Accepted: 6},
+		{Name: "f", Value: 11.9, Calls: 6, Accepted: 4}, {Name: "g", Value: 12.1, Calls: 6, Accepted: 1}, {Name: "h", Value: 12.4, Calls: 6},
+	}
+	clean := mustFit(t, parts[:5], AtLeast(10), Options{})
+	c := mustFit(t, append(parts, Part{Name: "typed", Value: 120, Calls: 6, Accepted: 6}), Between(10, 12), Options{})
+	if c.Upper.Known() || c.Upper.Why != "calls do not turn towards acceptance from the upper limit inwards: part typed at 120, the farthest out, was always accepted; check its value" {
+		t.Errorf("upper limit: %q", c.Upper.Why)
+	}
+	for i, p := range c.Parts {
+		if p.NoCut != (i >= 5) || p.NoCut && (p.Residual != 0 || p.Outlier) {
+			t.Errorf("%+v", p)
+		}
+	}
+	near(t, "log-likelihood", c.LogLikelihood, clean.LogLikelihood, 1e-6)
+	if c.LackOfFit.DevianceDF != clean.LackOfFit.DevianceDF {
+		t.Errorf("%d degrees of freedom, %d without the other limit", c.LackOfFit.DevianceDF, clean.LackOfFit.DevianceDF)
+	}
+	for _, w := range []struct {
+		parts  []Part
+		limits Limits
+		why    string
+	}{
+		{parts, AtLeast(10), "part h at 12.4, the farthest in, was always rejected; is there another limit?"},
+		{[]Part{{Value: 0, Accepted: 3, Calls: 3}, {Value: 1, Accepted: 1, Calls: 3}, {Value: 2, Calls: 3}}, AtLeast(1), "; check that accept and reject are not swapped"},
+	} {
+		if _, err := Fit(w.parts, w.limits, Options{}); err == nil || !strings.HasSuffix(err.Error(), w.why) {
+			t.Errorf("%v", err)
+		}
 	}
 }

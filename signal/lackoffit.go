@@ -55,8 +55,13 @@ func (c *Curve) judgeFit() {
 	f := &c.LackOfFit
 	at := c.at()
 	var variance float64
+	parts := 0
 	for i := range c.Parts {
 		p := &c.Parts[i]
+		if p.NoCut {
+			continue
+		}
+		parts++
 		f.Deviance += p.Residual * p.Residual
 		pr := p.Fitted
 		npq := float64(p.Calls) * pr * (1 - pr)
@@ -67,7 +72,7 @@ func (c *Curve) judgeFit() {
 		f.X2 += sq(float64(p.Accepted)-float64(p.Calls)*pr) / npq
 		variance += 2 + (1-6*pr*(1-pr))/npq
 	}
-	f.DevianceDF = len(c.Parts) - c.Parameters
+	f.DevianceDF = parts - c.Parameters
 	f.DF = f.Parts - c.free
 	f.Factor = 1
 	c.crit = sq(twoSided(c.Options.Confidence))

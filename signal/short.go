@@ -214,7 +214,7 @@ func (s *ShortStudy) line() {
 		outward = 1
 	}
 	if !(-outward*b > 1e-12) {
-		s.Why = "acceptance does not rise from the " + s.Side.String() + " limit inwards; check that accept and reject are not swapped"
+		s.Why = fmt.Sprintf("acceptance does not rise from the %s limit inwards; is it the %s limit, or are accepted and rejected swapped?", s.Side, 1-s.Side)
 		return
 	}
 	s.Slope = b / scale

@@ -106,6 +106,9 @@ written, 3 the data is wrong.`,
 			if err != nil {
 				return statusError{exitWrongData, err}
 			}
+			if !short.HasLine && short.FitError != nil {
+				return statusError{exitWrongData, fmt.Errorf("%s gives no figures: %s", st.Input.File, short.Why)}
+			}
 			return jsonOrText(s, jsonFile,
 				func(w io.Writer) error { return report.ShortJSON(w, st, short) },
 				func(w io.Writer) error { return report.Short(w, st, short, terminal(s.out)) })

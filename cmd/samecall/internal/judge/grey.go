@@ -144,7 +144,7 @@ func partRows(c *signal.Curve) []PartRow {
 	const sure = 0.001 // fitted closer than this to 0 or 1, a part bears little
 	n := 0
 	for _, p := range c.Parts {
-		if p.Fitted > sure && p.Fitted < 1-sure {
+		if !p.NoCut && p.Fitted > sure && p.Fitted < 1-sure {
 			n++
 		}
 	}
@@ -161,7 +161,7 @@ func partRows(c *signal.Curve) []PartRow {
 			r.Drives = r.Drives || n > 0 && max(cut, sigma) > 2/math.Sqrt(float64(n))
 		}
 		mixed := p.Accepted > 0 && p.Accepted < p.Calls
-		r.Matters = mixed || p.Outlier || r.Drives || p.Fitted > sure && p.Fitted < 1-sure || math.Abs(p.Residual) > 2
+		r.Matters = mixed || p.NoCut && p.Accepted > 0 || p.Outlier || r.Drives || p.Fitted > sure && p.Fitted < 1-sure || math.Abs(p.Residual) > 2
 		rows[i] = r
 	}
 	slices.SortStableFunc(rows, func(a, b PartRow) int { return cmp.Compare(a.Value, b.Value) })

@@ -43,15 +43,19 @@ func Flaw(w io.Writer, st SmallStudy, rows []study.Tally, h *signal.HitMiss, ter
 	p.line("")
 	switch why := whyNoA9095(st, h); {
 	case h.HasA9095 && why == "":
-		p.wrap(fmt.Sprintf("A flaw of %s is found at least nine times in ten, with 95 %% confidence (a90/95).", s.WithUnit(s.Value(h.A9095))), "")
+		few := ""
+		if n := len(h.Curve.Parts); n < fewFlaws {
+			few = fmt.Sprintf(", on the strength of only %s", format.Counted(n, "flaw"))
+		}
+		p.wrap(fmt.Sprintf("A flaw of %s is found at least nine times in ten, with 95 %% confidence (a90/95)%s.", s.WithUnit(s.Value(h.A9095)), few), "")
 	case h.HasA9095:
-		p.wrap("a90/95 is not shown: "+why+". Larger flaws are needed.", "")
+		p.wrap("a90/95 is not shown: "+why+". "+whatItNeeds(h), "")
 	default:
 		p.wrap("The study gives no a90/95: "+why+". More flaws are needed, above all around a90 and above it.", "")
 	}
 	p.table(flawTable(st, h))
 	p.table(flawSizesTable(st, rows, h))
-	if notes := flawNotes(st, h); len(notes) > 0 {
+	if notes := flawNotes(st, rows, h); len(notes) > 0 {
 		p.line("")
 		for _, n := range notes {
 			p.wrap(n, "")
@@ -90,17 +94,27 @@ func whyNoA9095(st SmallStudy, h *signal.HitMiss) string {
 	switch {
 	case !h.HasA9095:
 		return h.Why
+	case h.Curve.Lower.Status != signal.Fitted:
+		return "hits and misses do not overlap in size, so the study does not tell how the chance rises"
 	case beyondTried(h, h.A9095):
 		return "it lies beyond the largest flaw tried (" + s.WithUnit(s.Value(largestFlaw(h))) + ")"
 	}
 	return ""
 }
 
-// hasA9095 reports whether there is a number for a90/95. Beyond the largest
-// flaw it rests on the curve alone, and where hits and misses do not overlap
-// nothing is known of how the curve rises.
+// hasA9095 reports whether there is a number for a90/95. Where hits and misses
+// do not overlap nothing is known of how the curve rises (MIL-HDBK-1823A wants
+// an overlap; from memory).
 func hasA9095(h *signal.HitMiss) bool {
-	return h.HasA9095 && (h.Curve.Lower.Status == signal.Fitted || !beyondTried(h, h.A9095))
+	return h.HasA9095 && h.Curve.Lower.Status == signal.Fitted
+}
+
+// whatItNeeds says what would give a study its a90/95.
+func whatItNeeds(h *signal.HitMiss) string {
+	if h.Curve.Lower.Status != signal.Fitted {
+		return "More flaws of the sizes between are needed."
+	}
+	return "Larger flaws are needed."
 }
 
 // flawSize writes a size; one beyond the largest flaw tried is an
@@ -125,8 +139,12 @@ func flawTable(st SmallStudy, h *signal.HitMiss) Table {
 		bound = valueCell(flawSize(s, h)(h.A9095), h.A9095)
 	}
 	t.Rows = append(t.Rows, []Cell{say("a90/95"), bound, say("a90 is not larger than this, with 95 % confidence, one-sided, by likelihood ratio")})
-	t.Note = fmt.Sprintf("Hit/miss model of MIL-HDBK-1823A (2009): %s curve over the logarithm of the size, by maximum likelihood. In brackets the two-sided %s interval.",
-		h.Curve.Options.Link, format.Percent(h.Curve.Options.Confidence))
+	way := "by maximum likelihood"
+	if h.Curve.Lower.Status != signal.Fitted {
+		way = "bias-reduced (Firth), since the likelihood has no maximum"
+	}
+	t.Note = fmt.Sprintf("Hit/miss model of MIL-HDBK-1823A (2009): %s curve over the logarithm of the size, %s. In brackets the two-sided %s interval.",
+		h.Curve.Options.Link, way, format.Percent(h.Curve.Options.Confidence))
 	return t
 }
 
@@ -177,12 +195,19 @@ func flawSizesTable(st SmallStudy, rows []study.Tally, h *signal.HitMiss) Table 
 	return t
 }
 
+func unnamed(rows []study.Tally) bool {
+	return !slices.ContainsFunc(rows, func(r study.Tally) bool { return r.Name != "" })
+}
+
 // flawNotes are what the fit says of itself.
-func flawNotes(st SmallStudy, h *signal.HitMiss) []string {
+func flawNotes(st SmallStudy, rows []study.Tally, h *signal.HitMiss) []string {
 	c, s := h.Curve, flawScale(st, h)
 	var out []string
 	if n := len(c.Parts); n < fewFlaws {
 		out = append(out, fmt.Sprintf("There are %s; MIL-HDBK-1823A asks for %d or more in a hit/miss study.", format.Counted(n, "flaw"), fewFlaws))
+	}
+	if sizes := len(flawSizes(rows, h)); unnamed(rows) && 2*sizes <= len(rows) {
+		out = append(out, fmt.Sprintf("The %d rows have %d different sizes and no names: each row counts as a flaw of its own. If rows are looks at the same flaw, name it (column flaw), or they count for too much.", len(rows), sizes))
 	}
 	if gap := c.Lower.Gap; gap != nil && gap.HasReject && gap.HasAccept {
 		from, to := s.Value(math.Exp(gap.Reject)), s.WithUnit(s.Value(math.Exp(gap.Accept)))

@@ -75,6 +75,11 @@ type greyPartJSON struct {
 	Value    float64 `json:"value"`
 	Accepted int     `json:"accepted"`
 	Calls    int     `json:"calls"`
+	*fittedPartJSON
+	Reason string `json:"reason,omitempty"` // why nothing is fitted
+}
+
+type fittedPartJSON struct {
 	Fitted   float64 `json:"fitted"`
 	Residual float64 `json:"residual"`
 	Tail     float64 `json:"tail"`
@@ -85,6 +90,17 @@ type greyPartJSON struct {
 	SigmaChange float64 `json:"sigma_change"`
 	Drives      bool    `json:"drives_the_fit"`
 	Outlier     bool    `json:"outlier"`
+}
+
+func newGreyPart(p judge.PartRow) greyPartJSON {
+	out := greyPartJSON{Part: p.Name, Value: p.Value, Accepted: p.Accepted, Calls: p.Calls}
+	if p.NoCut {
+		out.Reason = "the limit where the part lies has no cut"
+		return out
+	}
+	out.fittedPartJSON = &fittedPartJSON{p.Fitted, p.Residual, p.Tail, p.Leverage,
+		p.Side.String(), p.CutChange[p.Side], finiteOr0(math.Expm1(p.LogSigmaChange[p.Side])), p.Drives, p.Outlier}
+	return out
 }
 
 type memberJSON struct {
@@ -136,8 +152,7 @@ func GreyJSON(w io.Writer, g *judge.Grey, opt signal.Options) error {
 		d.Methods = append(d.Methods, newGreyMethod(l))
 	}
 	for _, p := range g.Rows {
-		d.Parts = append(d.Parts, greyPartJSON{p.Name, p.Value, p.Accepted, p.Calls, p.Fitted, p.Residual, p.Tail, p.Leverage,
-			p.Side.String(), p.CutChange[p.Side], finiteOr0(math.Expm1(p.LogSigmaChange[p.Side])), p.Drives, p.Outlier})
+		d.Parts = append(d.Parts, newGreyPart(p))
 	}
 	for _, m := range g.Members {
 		d.GaugeSizes = append(d.GaugeSizes, newMember(m))

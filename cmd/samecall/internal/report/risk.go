@@ -24,7 +24,7 @@ func Risk(w io.Writer, r *judge.Risks, of *Record, term Terminal) error {
 	}
 	p.line("")
 	p.wrap("Process, assumed: "+processText(r)+".", "  ")
-	p.wrap("Inspection: "+gaugeText(r)+".", "  ")
+	p.wrap("Inspection"+whoseCurve(r)+": "+gaugeText(r)+".", "  ")
 	p.table(riskTable(r))
 	p.table(guardTable(r))
 	if found := riskFound(r); len(found) > 0 {
@@ -62,6 +62,22 @@ func processText(r *judge.Risks) string {
 		out = append(out, "Cpk "+capability(f.Cpk))
 	}
 	return strings.Join(out, ", ")
+}
+
+// whoseCurve says whose calls made the curve, and its shape where it is not the
+// usual one.
+func whoseCurve(r *judge.Risks) string {
+	out := ""
+	switch {
+	case r.Appraiser != "":
+		out = " by " + r.Appraiser + " alone"
+	case r.Curve != nil:
+		out = " by all appraisers"
+	}
+	if r.Gauge.Link != signal.Probit {
+		out += ", " + r.Gauge.Link.String() + " curve"
+	}
+	return out
 }
 
 func capability(c float64) string { return strings.Replace(fmt.Sprintf("%.2f", c), "-", "−", 1) }
@@ -249,6 +265,8 @@ func riskFound(r *judge.Risks) []string {
 		switch {
 		case r.Unreachable != nil:
 			out = append(out, what+": "+r.Unreachable.Error()+".")
+		case tooFewFor(r):
+			out = append(out, fmt.Sprintf("%s: %s of the process cannot tell a share so small; give the process by --mean and --sd, or more values.", what, format.Counted(r.Process.N, "value")))
 		case r.Target.GuardBand == 0:
 			out = append(out, what+": no guard band is needed. "+then(*r.Target))
 		default:
@@ -273,6 +291,12 @@ func riskFound(r *judge.Risks) []string {
 		}
 	}
 	return out
+}
+
+// tooFewFor reports whether the target is a share of less than one value of the
+// process.
+func tooFewFor(r *judge.Risks) bool {
+	return r.Process.N > 0 && r.Ask.Target*float64(r.Process.N) < 1
 }
 
 // costText writes the cost of a thousand parts.

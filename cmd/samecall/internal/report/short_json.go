@@ -154,7 +154,7 @@ func FlawJSON(w io.Writer, st SmallStudy, rows []study.Tally, h *signal.HitMiss)
 		Schema: FlawSchema, Title: st.Title, Input: inputJSON(st.Input), Unit: st.Unit, Confidence: c.Options.Confidence,
 		Flaws: len(c.Parts), A50: newSignal(h.A50), A90: newSignal(h.A90), A9095: estimateJSON{Reason: whyNoA9095(st, h)},
 		Sigma: newSignal(c.Lower.Sigma), Likelihood: newLikelihood(c, nil, signal.Lower),
-		Sizes: []flawSizeJSON{}, Outliers: []flawSizeJSON{}, Notes: append([]string{}, flawNotes(st, h)...), Assumes: flawAssumes, Cautions: flawCautions,
+		Sizes: []flawSizeJSON{}, Outliers: []flawSizeJSON{}, Notes: append([]string{}, flawNotes(st, rows, h)...), Assumes: flawAssumes, Cautions: flawCautions,
 	}
 	// The curve runs over the logarithm of the size; its cuts there are a50.
 	d.Likelihood.Limit = nil
