@@ -15,9 +15,12 @@ func Check(w io.Writer, s *study.Study, term Terminal) error {
 	p := &printer{w: w, term: term}
 	sum := s.Summary()
 	p.title(studyTitle(s))
-	p.wrap("The study is read without a problem.", "")
+	p.wrap("The study is read without a problem"+notesBelow(len(s.Notes))+".", "")
 	p.table(Table{Columns: []Column{{Name: "what"}, {Name: "how many", Long: true}}, Rows: holds(s, sum)})
 	p.table(appraisersTable(sum))
+	if sum.Missing > 0 {
+		p.table(missingTable(sum))
+	}
 	if sum.Values != nil && (sum.Values.Lower != nil || sum.Values.Upper != nil) {
 		p.table(nearTable(sum.Values, s.Settings.Unit))
 	}
@@ -31,6 +34,17 @@ func Check(w io.Writer, s *study.Study, term Terminal) error {
 		p.wrap("Note: "+n.Text, "      ")
 	}
 	return p.err
+}
+
+func notesBelow(n int) string {
+	switch n {
+	case 0:
+		return ""
+	case 1:
+		return "; a note stands at the end"
+	default:
+		return fmt.Sprintf("; %d notes stand at the end", n)
+	}
 }
 
 func holds(s *study.Study, sum study.Summary) [][]Cell {
@@ -80,6 +94,13 @@ func holds(s *study.Study, sum study.Summary) [][]Cell {
 			unit = " " + unit
 		}
 		add("values", fmt.Sprintf("%s, from %s to %s%s", format.Counted(v.Count, "part"), format.Number(v.Min), format.Number(v.Max), unit))
+		if v.OnLimit > 0 {
+			lie := " lie"
+			if v.OnLimit == 1 {
+				lie = " lies"
+			}
+			add("on a limit", format.Counted(v.OnLimit, "part")+lie+" exactly on a limit; a value on a limit is inside")
+		}
 	}
 	for _, in := range s.Inputs {
 		add("read", in.File+", SHA-256 "+in.SHA256[:16]+"…")
@@ -91,6 +112,17 @@ func appraisersTable(sum study.Summary) Table {
 	t := Table{Title: "Appraisers", Columns: []Column{{Name: "appraiser"}, {Name: "trials", Numbers: true}, {Name: "parts called", Numbers: true}, {Name: "calls", Numbers: true}, {Name: "missing", Numbers: true}}}
 	for _, a := range sum.Appraisers {
 		t.Rows = append(t.Rows, []Cell{say(a.Appraiser), say(trialList(a.Trials)), intCell(a.Parts), intCell(a.Calls), intCell(a.Missing)})
+	}
+	return t
+}
+
+func missingTable(sum study.Summary) Table {
+	t := Table{Title: "Missing calls", Columns: []Column{{Name: "part"}, {Name: "appraiser"}, {Name: "trial", Numbers: true}}}
+	for _, c := range sum.Without {
+		t.Rows = append(t.Rows, []Cell{say(c.Part), say(c.Appraiser), intCell(c.Trial)})
+	}
+	if more := sum.Missing - len(sum.Without); more > 0 {
+		t.Note = "and " + format.Count(more) + " more"
 	}
 	return t
 }

@@ -49,7 +49,7 @@ type builder struct {
 
 	refs, values, doubled []again
 
-	points, commas bool // there is a value with a decimal point, with a comma
+	signs [len(decimalSigns)]signed // the first value with each decimal sign
 
 	problems []Problem
 	more     int
@@ -238,9 +238,28 @@ func (b *builder) laterValue(id uint32, e *partEntry, value []byte) {
 		b.late[id] = at
 		return
 	}
+	b.seeSigns(value, b.rows)
 	x, err := parseNumber(value, b.comma)
 	if y, err2 := parseNumber(b.parts.value(e), b.comma); err != nil || err2 != nil || x != y {
 		b.values = append(b.values, again{part: id, row: b.rows, value: bytes.Clone(value)})
+	}
+}
+
+// decimalSigns are the two, where a comma may be one.
+const decimalSigns = ",."
+
+// signed is a value with a decimal sign, as written.
+type signed struct {
+	text string // empty: there is none
+	row  uint32
+}
+
+// seeSigns keeps the first value with each decimal sign.
+func (b *builder) seeSigns(value []byte, row uint32) {
+	for i := range b.signs {
+		if s := &b.signs[i]; (s.text == "" || row < s.row) && b.comma && bytes.IndexByte(value, decimalSigns[i]) >= 0 {
+			*s = signed{string(value), row}
+		}
 	}
 }
 

@@ -18,13 +18,23 @@ type Summary struct {
 	ByCategory              []int // parts by the category of their reference; nil without reference
 
 	Appraisers []AppraiserSummary
-	Calls      int  // calls made
-	Missing    int  // calls that a complete study would have beside them
-	Balanced   bool // every appraiser called every part in each of the same number of trials
+	Calls      int           // calls made
+	Missing    int           // calls that a complete study would have beside them
+	Without    []MissingCall // the first of the missing calls, in the order of parts
+	Balanced   bool          // every appraiser called every part in each of the same number of trials
 
 	Values  *ValueSummary // nil without values
 	CanShow []Showing     // what the study can and cannot show
 }
+
+// MissingCall is a call that a complete study would have.
+type MissingCall struct {
+	Part, Appraiser string
+	Trial           int // its number
+}
+
+// maxWithout is how many missing calls are listed.
+const maxWithout = 10
 
 // AppraiserSummary counts the calls of one appraiser.
 type AppraiserSummary struct {
@@ -40,6 +50,7 @@ type AppraiserSummary struct {
 type ValueSummary struct {
 	Count    int
 	Min, Max float64
+	OnLimit  int           // parts exactly on a limit, hence inside
 	Lower    *LimitSummary // nil without such a limit
 	Upper    *LimitSummary
 }
@@ -118,8 +129,11 @@ func (s *Study) countCalls(sum *Summary) (alike agreement.Category) {
 	for p := range sum.Parts {
 		for a := range sum.Appraisers {
 			n := 0
-			for _, c := range r.Calls(p, a) {
+			for k, c := range r.Calls(p, a) {
 				if c == agreement.Missing {
+					if len(sum.Without) < maxWithout {
+						sum.Without = append(sum.Without, MissingCall{s.Parts[p], s.Appraisers[a], s.TrialNames[a][k]})
+					}
 					continue
 				}
 				n++
@@ -160,6 +174,9 @@ func (s *Study) valueSummary() *ValueSummary {
 		}
 	}
 	lower, upper := s.Settings.Lower, s.Settings.Upper
+	for p, x := range s.Values {
+		v.OnLimit += btoi(s.HasValue[p] && (lower != nil && x == *lower || upper != nil && x == *upper))
+	}
 	width, ofTolerance := v.Max/2*NearShare-v.Min/2*NearShare, false // halves: the difference may overflow
 	width *= 2
 	if lower != nil && upper != nil {

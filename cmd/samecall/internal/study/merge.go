@@ -1,7 +1,6 @@
 package study
 
 import (
-	"bytes"
 	"cmp"
 	"fmt"
 	"math"
@@ -46,6 +45,7 @@ func (t *table) study(s Settings) (*Study, []Problem, int) {
 	}
 	m.rareWords()
 	m.similarAppraisers()
+	m.farValues()
 	m.setReference()
 	if len(m.problems) > 0 {
 		return nil, m.problems, m.more
@@ -403,12 +403,18 @@ func (m *merge) mergeParts() {
 // some a point: one of the two may separate thousands. A workbook stores its
 // numbers with points, whatever it shows.
 func (m *merge) decimalSigns() {
-	points, commas := false, false
+	var first [len(decimalSigns)]string
+	var lines [len(decimalSigns)]int
 	for _, b := range m.builders {
-		points, commas = points || b.points, commas || b.commas
+		for i, s := range b.signs {
+			if line := b.line(s.row); s.text != "" && (first[i] == "" || line < lines[i]) {
+				first[i], lines[i] = s.text, line
+			}
+		}
 	}
-	if points && commas && m.sheet == "" {
-		m.note("decimal_signs", "The values have both decimal commas and points; each is read as a decimal sign. Is none of them a separator of thousands?")
+	if first[0] != "" && first[1] != "" && m.sheet == "" {
+		m.note("decimal_signs", "The values have both decimal commas (%s on line %d) and points (%s on line %d); each is read as a decimal sign. Is none of them a separator of thousands?",
+			quote(first[0]), lines[0], quote(first[1]), lines[1])
 	}
 }
 
@@ -444,12 +450,12 @@ func (b *builder) numbersOf() []float64 {
 	x := make([]float64, b.parts.n)
 	for id := range x {
 		var err error
-		text := b.parts.value(b.parts.entry(uint32(id)))
+		e := b.parts.entry(uint32(id))
+		text := b.parts.value(e)
 		if x[id], err = parseNumber(text, b.comma); err != nil {
 			x[id] = math.NaN()
 		} else if b.comma {
-			b.points = b.points || bytes.IndexByte(text, '.') >= 0
-			b.commas = b.commas || bytes.IndexByte(text, ',') >= 0
+			b.seeSigns(text, b.valueRow(uint32(id), e))
 		}
 	}
 	return x

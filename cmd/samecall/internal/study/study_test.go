@@ -271,14 +271,14 @@ func numbered(n int, word string) string {
 func TestSummaryLimits(t *testing.T) {
 	const table = "part,value,a-1\n1,0.8,no\n2,0.9,no\n3,1,go\n4,1.1,go\n5,1.5,go\n6,1.95,go\n7,2,go\n8,2.05,no\n9,2.2,no\n10,,go\n"
 	v := read(t, table, Settings{Lower: ptr(1), Upper: ptr(2)}).Summary().Values
-	want := &ValueSummary{Count: 9, Min: 0.8, Max: 2.2,
+	want := &ValueSummary{Count: 9, Min: 0.8, Max: 2.2, OnLimit: 2,
 		Lower: &LimitSummary{Limit: 1, Width: 0.1, OfTolerance: true, NearGood: 2, NearBad: 1, Inside: 7, Outside: 2},
 		Upper: &LimitSummary{Limit: 2, Width: 0.1, OfTolerance: true, NearGood: 2, NearBad: 1, Inside: 7, Outside: 2}}
 	if d := cmp.Diff(want, v); d != "" {
 		t.Error(d)
 	}
 	v = read(t, table, Settings{Upper: ptr(2)}).Summary().Values
-	if v.Lower != nil || v.Upper.OfTolerance || math.Abs(v.Upper.Width-0.14) > 1e-12 || v.Upper.NearGood != 2 || v.Upper.NearBad != 1 {
+	if v.OnLimit != 1 || v.Lower != nil || v.Upper.OfTolerance || math.Abs(v.Upper.Width-0.14) > 1e-12 || v.Upper.NearGood != 2 || v.Upper.NearBad != 1 {
 		t.Errorf("%+v", v.Upper)
 	}
 }
@@ -288,6 +288,7 @@ func TestSummaryCounts(t *testing.T) {
 	got := s.Summary()
 	got.CanShow = nil
 	want := Summary{Parts: 3, Good: 1, Bad: 1, Unreferenced: 1, ByCategory: []int{1, 1}, Calls: 6, Missing: 3,
+		Without:    []MissingCall{{"1", "a", 2}, {"2", "a", 1}, {"2", "a", 2}},
 		Appraisers: []AppraiserSummary{{"a", []int{1, 2}, 3, 3, 2}, {"b", []int{1}, 3, 0, 3}}}
 	if d := cmp.Diff(want, got); d != "" {
 		t.Error(d)

@@ -1,6 +1,7 @@
 package study
 
 import (
+	"fmt"
 	"slices"
 	"strings"
 	"testing"
@@ -127,20 +128,29 @@ func TestWordNotes(t *testing.T) {
 func TestSettingNotes(t *testing.T) {
 	const table = "part;value;a-1\n1;10,02;go\n2;10.5;go\n3;1;go\n"
 	noted := func(in string, s Settings) (list []Note) {
-		for _, n := range read(t, in, s).Notes {
+		study := read(t, in, s)
+		inChunks, err := Read(Source{Path: "-", Stdin: strings.NewReader(in), chunk: 16}, s)
+		if err != nil || !slices.Equal(study.Notes, inChunks.Notes) {
+			t.Errorf("in small chunks: %v %v", err, inChunks)
+		}
+		for _, n := range study.Notes {
 			if n.Code != "no_limits" {
 				list = append(list, n)
 			}
 		}
 		return list
 	}
-	signs := Note{"decimal_signs", "The values have both decimal commas and points; each is read as a decimal sign. Is none of them a separator of thousands?"}
+	signs := func(comma string, at int, point string, at2 int) Note {
+		return Note{"decimal_signs", fmt.Sprintf("The values have both decimal commas (%q on line %d) and points (%q on line %d); each is read as a decimal sign. Is none of them a separator of thousands?", comma, at, point, at2)}
+	}
 	for _, c := range []struct {
 		name, in string
 		settings Settings
 		want     []Note
 	}{
-		{"both signs", table, Settings{}, []Note{signs}},
+		{"both signs", table, Settings{}, []Note{signs("10,02", 2, "10.5", 3)}},
+		{"both signs of one part", "part;value;appraiser;trial;call\n2;;a;1;go\n1;1.5;a;1;go\n1;1,5;a;2;go\n2;1.25;a;2;go\n", Settings{}, []Note{signs("1,5", 4, "1.5", 3)}},
+		{"the first of each", "part;value;appraiser;trial;call\n9;;a;1;go\n3;0.5;a;1;go\n9;7.5;a;2;go\n1;1,5;a;1;go\n2;2,5;a;1;go\n", Settings{}, []Note{signs("1,5", 5, "0.5", 3)}},
 		{"commas", strings.ReplaceAll(table, ".", ","), Settings{}, nil},
 		{"points", strings.ReplaceAll(table, ",", "."), Settings{}, nil},
 		{"ignore", "part,x,a-1\n1,2,go\n", Settings{Ignore: []string{"X", "nosuch", "prt"}}, []Note{
