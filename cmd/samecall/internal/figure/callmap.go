@@ -144,18 +144,20 @@ func (f *Figure) legend(d MapData, seen map[Call]bool, y float64) float64 {
 		margin  = 4.0
 	)
 	x := margin
-	add := func(c Call, s string) {
-		if !seen[c] {
-			return
-		}
+	item := func(s string, draw func(x, y float64)) {
 		s = shorten(s, mapSize, longest)
 		w := side + 5 + textWidth(s, mapSize)
 		if x > margin && x+w > f.Width {
 			x, y = margin, y+side+8
 		}
-		f.call(c, x, y, side, side)
+		draw(x, y)
 		f.text(Muted, x+side+5, y+11, mapSize, Start, s)
 		x += w + 14
+	}
+	add := func(c Call, s string) {
+		if seen[c] {
+			item(s, func(x, y float64) { f.call(c, x, y, side, side) })
+		}
 	}
 	add(Accepted, "accepted")
 	add(Rejected, "rejected")
@@ -171,8 +173,15 @@ func (f *Figure) legend(d MapData, seen map[Call]bool, y float64) float64 {
 		}
 		add(Kind+Call(k), name)
 	}
-	add(OtherWrong, "not as the reference")
+	other := "not as the reference"
+	if len(d.Kinds) == 0 {
+		other = "right side, other category"
+	}
+	add(OtherWrong, other)
 	add(NoCall, "no call")
+	if len(d.Zones) > 0 {
+		item("grey zone", func(x, y float64) { f.rect(Zone, x, y, side, side) })
+	}
 	return y + side + 4
 }
 

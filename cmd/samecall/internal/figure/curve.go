@@ -74,8 +74,14 @@ func AcceptanceCurve(d CurveData) *Figure {
 		}
 		return p
 	}
-	for _, o := range d.Own {
-		f.Marks = append(f.Marks, Mark{Role: Thin, Path: path(o.Share)})
+	dash := func(own int) Dash {
+		if len(d.Own) > len(dashes) { // more than can be told apart
+			return 0
+		}
+		return Dash(own)
+	}
+	for i, o := range d.Own {
+		f.Marks = append(f.Marks, Mark{Role: Thin, Path: path(o.Share), Dash: dash(i)})
 	}
 	if d.Fit != nil {
 		f.Marks = append(f.Marks, Mark{Role: Right, Path: path(d.Fit), Heavy: true})
@@ -111,14 +117,24 @@ func AcceptanceCurve(d CurveData) *Figure {
 	}
 	f.text(Ink, (x.from+x.to)/2, y.from+36, size, Middle, shorten(unit, size, x.to-x.from))
 	f.turned(Ink, 16, (y.from+y.to)/2, size, Middle, "share accepted, %")
-	key := keyLine{f: f, x: leftW, y: height - 10, size: size}
+	key := keyLine{f: f, x: leftW, y: height - 10, from: leftW, to: width - right, size: size}
 	if d.Fit != nil {
 		key.add("all appraisers", func(x, y float64) {
-			f.Marks = append(f.Marks, Mark{Role: Right, Line: &Line{x, y, x + 22, y}, Heavy: true})
+			f.Marks = append(f.Marks, Mark{Role: Right, Line: &Line{x, y, x + keySample, y}, Heavy: true})
 		})
 	}
-	if len(d.Own) > 1 {
-		key.add("each appraiser", func(x, y float64) { f.line(Thin, x, y, x+22, y) })
+	own := func(i int, name string) {
+		key.add(name, func(x, y float64) {
+			f.Marks = append(f.Marks, Mark{Role: Thin, Line: &Line{x, y, x + keySample, y}, Dash: dash(i)})
+		})
+	}
+	switch n := len(d.Own); {
+	case n > len(dashes):
+		own(0, "each appraiser")
+	case n > 1:
+		for i, o := range d.Own {
+			own(i, shorten(o.Name, size, longestKey))
+		}
 	}
 	part, outlier := "a part", false
 	if len(shown) < len(d.Points) {
@@ -128,16 +144,17 @@ func AcceptanceCurve(d CurveData) *Figure {
 		outlier = outlier || p.Outlier
 	}
 	key.add(part, func(x, y float64) {
-		f.Marks = append(f.Marks, Mark{Role: Ink, Dot: &Dot{X: x + 11, Y: y, R: 3.5, Outline: true}})
+		f.Marks = append(f.Marks, Mark{Role: Ink, Dot: &Dot{X: x + keySample/2, Y: y, R: 3.5, Outline: true}})
 	})
 	if outlier {
 		key.add("does not fit the curve", func(x, y float64) {
-			f.Marks = append(f.Marks, Mark{Role: Wrong, Dot: &Dot{X: x + 11, Y: y, R: 3.5, Outline: true}, Heavy: true})
+			f.Marks = append(f.Marks, Mark{Role: Wrong, Dot: &Dot{X: x + keySample/2, Y: y, R: 3.5, Outline: true}, Heavy: true})
 		})
 	}
 	if len(d.Zones) > 0 {
-		key.add("grey zone", func(x, y float64) { f.rect(Zone, x, y-6, 22, 12) })
+		key.add("grey zone", func(x, y float64) { f.rect(Zone, x, y-6, keySample, 12) })
 	}
+	f.Height = key.y + 10
 
 	mixed := 0
 	for _, p := range d.Points {
@@ -149,17 +166,31 @@ func AcceptanceCurve(d CurveData) *Figure {
 	return f
 }
 
-// keyLine explains marks in one line.
+// keyLine explains marks in one line, or in more where they do not fit.
 type keyLine struct {
-	f          *Figure
-	x, y, size float64
+	f        *Figure
+	x, y     float64 // of the next mark
+	from, to float64
+	size     float64
 }
 
+const (
+	keySample  = 34.0  // how long a sample is: every dash stands in it twice
+	longestKey = 180.0 // of a name
+)
+
 func (k *keyLine) add(what string, draw func(x, y float64)) {
-	const sample = 28.0
+	const (
+		gap  = 6.0
+		line = 20.0
+	)
+	w := keySample + gap + textWidth(what, k.size)
+	if k.x > k.from && k.x+w > k.to {
+		k.x, k.y = k.from, k.y+line
+	}
 	draw(k.x, k.y-4)
-	k.f.text(Muted, k.x+sample, k.y, k.size, Start, what)
-	k.x += sample + textWidth(what, k.size) + 14
+	k.f.text(Muted, k.x+keySample+gap, k.y, k.size, Start, what)
+	k.x += w + 14
 }
 
 // bands are the outlines of the band, where there is one.

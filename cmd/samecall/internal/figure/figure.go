@@ -49,8 +49,18 @@ type Mark struct {
 	Dot   *Dot
 	Text  *Text
 	Heavy bool // a heavier line, a bold text
-	Dash  bool // a dashed line
+	Dash  Dash // of a line
 }
+
+// Dash is how a line is dashed; the zero one is not.
+type Dash int
+
+// Dashed is the usual dash.
+const Dashed Dash = 1
+
+// dashes are the lengths of strokes and gaps in turn, of patterns that are
+// told apart where lines cross.
+var dashes = [...][]float64{nil, {5, 4}, {1.5, 3}, {11, 3}, {8, 3, 1.5, 3}, {8, 3, 1.5, 3, 1.5, 3}}
 
 // Point is a place in a figure.
 type Point struct{ X, Y float64 }
@@ -94,7 +104,7 @@ func (f *Figure) rect(role Role, x, y, w, h float64) {
 	f.Marks = append(f.Marks, Mark{Role: role, Rect: &Rect{X: x, Y: y, W: w, H: h}})
 }
 
-func (f *Figure) outline(role Role, x, y, w, h float64, heavy, dash bool) {
+func (f *Figure) outline(role Role, x, y, w, h float64, heavy bool, dash Dash) {
 	f.Marks = append(f.Marks, Mark{Role: role, Rect: &Rect{X: x, Y: y, W: w, H: h, Outline: true}, Heavy: heavy, Dash: dash})
 }
 

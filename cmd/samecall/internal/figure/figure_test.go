@@ -183,3 +183,41 @@ func TestCurveAlways(t *testing.T) {
 		checkTexts(t, AcceptanceCurve(d))
 	})
 }
+
+// A reader can tell the appraisers' curves apart without colour, and what the
+// band of a call map is.
+func TestLegends(t *testing.T) {
+	d := CurveData{Points: []CurvePoint{{Value: 1, Share: 0.5}}, Grid: []float64{0, 2}}
+	for _, name := range []string{"early", "late", "night"} {
+		d.Own = append(d.Own, OwnCurve{Name: name, Share: []float64{0, 1}})
+	}
+	said := func(f *Figure, text string) bool {
+		for _, m := range f.Marks {
+			if m.Text != nil && m.Text.Text == text {
+				return true
+			}
+		}
+		return false
+	}
+	f := AcceptanceCurve(d)
+	seen := make(map[Dash]bool)
+	for _, m := range f.Marks {
+		if m.Role == Thin && m.Path != nil {
+			if seen[m.Dash] {
+				t.Errorf("two curves have the dash %d", m.Dash)
+			}
+			seen[m.Dash] = true
+		}
+	}
+	for _, o := range d.Own {
+		if !said(f, o.Name) {
+			t.Errorf("the legend does not name the curve of %s", o.Name)
+		}
+	}
+	calls := CallMap(MapData{Parts: []string{"1", "2"}, Appraisers: []MapAppraiser{{Name: "early", Calls: [][]Call{{Accepted, OtherWrong}}}}, Zones: [][2]int{{0, 1}}})
+	for _, text := range []string{"grey zone", "right side, other category"} {
+		if !said(calls, text) {
+			t.Errorf("the legend of the call map does not explain: %s", text)
+		}
+	}
+}

@@ -55,8 +55,8 @@ func Plane(d PlaneData) *Figure {
 	accept, conditional := box(0), box(1)
 	f.rect(Field, conditional.X, conditional.Y, conditional.W, conditional.H)
 	f.rect(Band, accept.X, accept.Y, accept.W, accept.H)
-	f.outline(Limit, conditional.X, conditional.Y, conditional.W, conditional.H, false, true)
-	f.outline(Limit, accept.X, accept.Y, accept.W, accept.H, false, false)
+	f.outline(Limit, conditional.X, conditional.Y, conditional.W, conditional.H, false, Dashed)
+	f.outline(Limit, accept.X, accept.Y, accept.W, accept.H, false, 0)
 	for _, b := range []Rect{accept, conditional} {
 		labels.crossed = append(labels.crossed, Rect{X: b.X, Y: b.Y - 1, W: b.W, H: 2}, Rect{X: b.X + b.W - 1, Y: b.Y, W: 2, H: b.H})
 	}
@@ -107,10 +107,10 @@ func Plane(d PlaneData) *Figure {
 	}
 	key := height - 8
 	f.rect(Band, leftW, key-11, 18, 12)
-	f.outline(Limit, leftW, key-11, 18, 12, false, false)
+	f.outline(Limit, leftW, key-11, 18, 12, false, 0)
 	f.text(Muted, leftW+25, key, size, Start, "accept level")
 	f.rect(Field, leftW+125, key-11, 18, 12)
-	f.outline(Limit, leftW+125, key-11, 18, 12, false, true)
+	f.outline(Limit, leftW+125, key-11, 18, 12, false, Dashed)
 	f.text(Muted, leftW+150, key, size, Start, "conditional level")
 	if unlabelled > 0 {
 		f.text(Muted, width-right, key, size, End, fmt.Sprintf("%d without a label for want of room", unlabelled))

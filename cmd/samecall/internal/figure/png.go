@@ -45,10 +45,11 @@ func (c canvas) at(x, y float64) vg.Point {
 func (c canvas) mark(m Mark) {
 	c.SetColor(light(m.Role))
 	c.SetLineWidth(length(m.strokeWidth()))
-	c.SetLineDash(nil, 0)
-	if m.Dash {
-		c.SetLineDash([]vg.Length{length(5), length(4)}, 0)
+	var lengths []vg.Length
+	for _, d := range dashes[m.Dash] {
+		lengths = append(lengths, length(d))
 	}
+	c.SetLineDash(lengths, 0)
 	switch {
 	case m.Rect != nil:
 		r := m.Rect

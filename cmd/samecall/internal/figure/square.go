@@ -97,7 +97,7 @@ func Square(d SquareData) *Figure {
 			}
 			f.cell(left(b), top, cellW, cellH, c)
 			if a == b {
-				f.outline(Ink, left(b)+1, top+1, cellW-2, cellH-2, true, false)
+				f.outline(Ink, left(b)+1, top+1, cellW-2, cellH-2, true, 0)
 			}
 			alt = append(alt, fmt.Sprintf("%s: %s, kappa %s", what, c.Text, c.Kappa))
 		}

@@ -24,7 +24,7 @@ var palette = []struct {
 	{Right, "#1f6fb2", "#6cb0ea"},
 	{Wrong, "#c4580a", "#f2994a"},
 	{Band, "#c9def0", "#24435e"},
-	{Thin, "#7aa7cc", "#4f86b3"},
+	{Thin, "#4d87b5", "#5f97c5"},
 	{Accept, "#d6e6f4", "#2b4963"},
 	{Reject, "#6d7b88", "#8a97a5"},
 	{kindRoles[0], "#dfeaf4", "#22384b"},
@@ -84,8 +84,8 @@ func (f *Figure) markup(alone bool) string {
 
 func (m Mark) markup(s *strings.Builder) {
 	stroke := fmt.Sprintf(`class="s-%s" stroke-width="%s"`, m.Role, num(m.strokeWidth()))
-	if m.Dash {
-		stroke += ` stroke-dasharray="5 4"`
+	if d := dashes[m.Dash]; d != nil {
+		stroke += fmt.Sprintf(` stroke-dasharray="%s"`, strings.Trim(fmt.Sprint(d), "[]"))
 	}
 	fill := fmt.Sprintf(`class="f-%s"`, m.Role)
 	switch {
@@ -126,8 +126,11 @@ func (m Mark) markup(s *strings.Builder) {
 }
 
 func (m Mark) strokeWidth() float64 {
-	if m.Heavy {
+	switch {
+	case m.Heavy:
 		return 2.25
+	case m.Role == Thin: // a dashed curve has less ink
+		return 1.4
 	}
 	return 1
 }

@@ -84,7 +84,7 @@ func TestMarkup(t *testing.T) {
 	f := &Figure{Name: "x", Title: `<&"'>`, Alt: "\x00\ufffe", Width: 100, Height: 50}
 	for _, p := range palette {
 		f.rect(p.role, 0, 0, 10, 10)
-		f.outline(p.role, 0, 0, 10, 10, true, true)
+		f.outline(p.role, 0, 0, 10, 10, true, Dashed)
 		f.line(p.role, 0, 0, 1e9, math.SmallestNonzeroFloat64)
 		f.dot(p.role, math.Copysign(0, -1), 1, 2)
 		f.turned(p.role, 1, 1, 12, Middle, "]]><script>")

@@ -57,7 +57,7 @@ type pageTable struct {
 	ID, Title, Note string
 	Heads           []pageCell
 	Rows            [][]pageCell
-	Small           bool // has room on one page
+	Class           string
 }
 
 type pageCell struct {
@@ -65,8 +65,13 @@ type pageCell struct {
 	Head        bool
 }
 
-// smallTable is how many rows a table may have that is kept on one page.
-const smallTable = 9
+const (
+	smallTable = 9  // rows of a table that may stand beside another on a page
+	wholeRows  = 14 // and of one that is kept on one page
+	// halfPage is how many characters a table may be wide that is set in two
+	// columns on a page.
+	halfPage = 50
+)
 
 func newPage(r *Record) page {
 	v := r.Verdict
@@ -181,12 +186,22 @@ func caption(r *Record, figure string) string {
 		case r.Agreement.All == nil:
 		case r.Study.Ratings.HasAccept():
 			c += " Wrong calls are marked: a stroke where a bad part was accepted, a cross where a good part was rejected."
+			if len(r.Study.Categories) > 2 {
+				c += " A dash: bad or good as the reference says, but another category than the reference."
+			}
 		default:
 			c += " Wrong calls are marked; the tables below say what was called instead."
 		}
+		if len(curveLimits(r)) > 0 {
+			c += " The tan band is the grey zone of all appraisers: there the calls turn from one side to the other."
+		}
 		return c
 	case "curve":
-		return "Rings are parts, or parts of like value together where there are many. The heavy curve is fitted to all calls, in its band where the data bound it; the grey zone reaches from 0.5 to 99.5 % acceptance."
+		thin := ""
+		if len(r.Study.Appraisers) > 1 {
+			thin = " A thin curve is one appraiser's own."
+		}
+		return "Rings are parts, or parts of like value together where there are many. The heavy curve is fitted to all calls, in its band where the data bound it; the grey zone reaches from 0.5 to 99.5 % acceptance." + thin
 	}
 	return ""
 }
@@ -199,7 +214,15 @@ const (
 )
 
 func newPageTable(t Table) pageTable {
-	out := pageTable{ID: "table-" + strings.ReplaceAll(t.Name, " ", "-"), Title: format.Plain(t.Title), Note: format.Plain(t.Note), Small: len(t.Rows) <= smallTable}
+	out := pageTable{ID: "table-" + strings.ReplaceAll(t.Name, " ", "-"), Title: format.Plain(t.Title), Note: format.Plain(t.Note)}
+	switch n := len(t.Rows); {
+	case n <= smallTable:
+		out.Class = "small"
+	case n <= wholeRows:
+		out.Class = "whole"
+	case total(t.least(wholeTable, false)) <= halfPage:
+		out.Class = "narrow"
+	}
 	for _, c := range t.Columns {
 		head := pageCell{Text: shortened(format.Plain(c.Name))}
 		if c.Numbers {
