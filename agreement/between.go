@@ -192,20 +192,24 @@ func (s *study) pair(a, b int) Pair {
 	return p
 }
 
-// trialPairs are the trials of two appraisers that are put side by side.
-type trialPairs [][2]int
-
-func (s *study) trialPairs(a, b int) trialPairs {
-	var pairs trialPairs
-	for t := range s.Trials(a) {
-		for u := range s.Trials(b) {
-			if s.opt.Pairing == All || s.trialNumber(a, t) == s.trialNumber(b, u) {
+// TrialPairs returns the trials of two appraisers that are put side by side,
+// the first's and the second's.
+func (r *Ratings) TrialPairs(a, b int, p Pairing) [][2]int {
+	var pairs [][2]int
+	for t := range r.Trials(a) {
+		for u := range r.Trials(b) {
+			if p == All || r.trialNumber(a, t) == r.trialNumber(b, u) {
 				pairs = append(pairs, [2]int{t, u})
 			}
 		}
 	}
 	return pairs
 }
+
+// trialPairs are the trials of two appraisers that are put side by side.
+type trialPairs [][2]int
+
+func (s *study) trialPairs(a, b int) trialPairs { return s.TrialPairs(a, b, s.opt.Pairing) }
 
 // each calls f for each pair of calls that were both made.
 func (p trialPairs) each(x, y []Category, f func(j, k Category)) {

@@ -52,15 +52,21 @@ func shareOfParts(count, of int, confidence float64, none error) Share {
 	}}
 }
 
-// rateOverCalls is a rate of events over calls, its interval by part.
+// rateOverCalls is a rate of events over calls, its interval by part: Korn and
+// Graubard's, but never surer than the number of parts allows.
 func rateOverCalls(clusters []interval.Cluster, opt Options, none error) Share {
 	r := interval.KornGraubard(clusters, opt.Confidence)
 	if r.Calls == 0 {
 		return Share{Estimate: absent(none)}
 	}
+	each := eachSide(opt.Confidence)
 	s := Share{Count: r.Events, Of: r.Calls, Effective: r.Effective, Estimate: Estimate{
-		Value: r.Value, Interval: r.Interval, OneSided: interval.KornGraubard(clusters, eachSide(opt.Confidence)).Interval, Method: "Korn-Graubard over parts",
+		Value: r.Value, Interval: r.NoSurerThanParts(opt.Confidence), OneSided: interval.KornGraubard(clusters, each).NoSurerThanParts(each),
+		Method: "Korn-Graubard over parts, no surer than their number",
 	}}
+	if r.Events == 0 || r.Events == r.Calls {
+		s.Method = "exact on the number of parts"
+	}
 	if opt.Independent {
 		i := interval.ClopperPearson(r.Events, r.Calls, opt.Confidence)
 		s.Independent = &i

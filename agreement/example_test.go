@@ -66,7 +66,7 @@ func Example() {
 	// shift 1: repeats itself on 9 of 10 castings, right on 9 of 10, kappa against reference 0.89
 	// shift 2: repeats itself on 9 of 10 castings, right on 8 of 10, kappa against reference 0.71
 	// between: kappa 0.61, calls [[7 0] [4 9]]
-	// misses: 1 of 16 calls, 0.000 to 0.502
+	// misses: 1 of 16 calls, 0.000 to 0.602
 }
 
 // A figure that the study cannot give is absent, with its reason.

@@ -226,17 +226,19 @@ func standardError(c coefficient, z contributions, sums []float64) float64 {
 }
 
 // byShareOfParts carries the exact interval of the share of parts that
-// disagree over to the coefficient, at the disagreement that was found on
-// such a part (or, where none was, the largest) and was expected by chance.
+// disagree over to the coefficient, at the disagreement that was found on such
+// a part and was expected by chance. The lower limit is never above that of
+// parts of which none disagreed, where any part might disagree throughout: a
+// single slight disagreement says little of how much others would disagree, and
+// must not show more than none.
 func byShareOfParts(c coefficient, sums []float64, disagreeing, parts int, confidence float64) interval.Interval {
 	observed, expected, _ := c.disagreements(sums)
-	share := interval.ClopperPearson(disagreeing, parts, confidence)
-	severity := 1.0
+	none := interval.ClopperPearson(0, parts, confidence)
+	i := interval.Interval{Lower: 1 - none.Upper/expected, Upper: 1}
 	if disagreeing > 0 {
-		severity = observed * float64(parts) / float64(disagreeing)
+		share := interval.ClopperPearson(disagreeing, parts, confidence)
+		severity := observed * float64(parts) / float64(disagreeing) / expected
+		i = interval.Interval{Lower: min(i.Lower, 1-share.Upper*severity), Upper: 1 - share.Lower*severity}
 	}
-	return interval.Interval{
-		Lower: 1 - share.Upper*severity/expected,
-		Upper: 1 - share.Lower*severity/expected,
-	}
+	return i
 }

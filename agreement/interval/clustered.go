@@ -71,6 +71,20 @@ func KornGraubard(clusters []Cluster, confidence float64) Rate {
 	return r
 }
 
+// NoSurerThanParts returns the interval of a rate, widened so that it is never
+// surer than the number of its parts allows: the upper limit is not below that
+// of no event on so many parts, the lower one not above that of nothing but
+// events. The variance between parts of a few events on one or two parts is
+// itself so uncertain that the effective number of calls can come out as the
+// number of calls, and one miss would then show what no miss cannot.
+func (r Rate) NoSurerThanParts(confidence float64) Interval {
+	if r.Parts == 0 {
+		return r.Interval
+	}
+	none, all := ClopperPearson(0, r.Parts, confidence), ClopperPearson(r.Parts, r.Parts, confidence)
+	return Interval{Lower: min(r.Lower, all.Lower), Upper: max(r.Upper, none.Upper)}
+}
+
 func studentQuantile(p, df float64) float64 {
 	if df > 1e7 { // indistinguishable, and the series for t grows slow
 		return distuv.UnitNormal.Quantile(p)

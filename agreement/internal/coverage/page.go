@@ -33,13 +33,11 @@ prints.
 `, studies, resamples, floor)
 	write(w, rows, []int{0, 1, 2, 3, 4, 5})
 	fmt.Fprint(w, `
-Shares of parts are exact, and cover by construction. Rates that pool the calls of all appraisers fall
-short where nearly all errors sit on very few difficult parts (1 % wrong calls, or 20 parts, at a
-correlation of 0.3): a study then often holds too few of those parts, and what the study does not contain
-no interval can see. The rates of single appraisers do not suffer from it. The answer is more bad parts,
-not
-more trials. Intervals that treat calls as independent fall short wherever calls on a part are correlated,
-and the more so the more calls there are on each part.
+Shares of parts are exact, and cover by construction. The limits of rates are never surer than the number
+of parts allows (the exact limits of no error on so many parts): where nearly all errors sit on very few
+difficult parts, Korn and Graubard's interval alone falls short, the more so the more calls there are on each
+part, since a study then often holds too few of those parts. Intervals that treat calls as independent fall
+short wherever calls on a part are correlated.
 
 ## Kappas
 
@@ -48,7 +46,8 @@ and the more so the more calls there are on each part.
 	fmt.Fprint(w, `
 Kappas are resampled by whole parts (BCa), at the confidence expanded for few parts, and are never
 narrower than the exact interval of the share of parts that disagree. The second matters where few parts
-disagree; resampling alone covered as little as 88 to 92 % there. With 2000 parts they are linearised. With 1 % wrong calls most small studies
-show no disagreement at all; the interval then is the exact one, and covers nearly always.
+disagree; resampling alone covered as little as 88 to 92 % there. With 2000 parts they are linearised. With
+1 % wrong calls most small studies show no disagreement at all; the interval then is the exact one, and
+covers nearly always.
 `)
 }

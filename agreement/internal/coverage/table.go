@@ -128,8 +128,9 @@ func scenarios(quick bool) []scenario {
 	var all []scenario
 	// With 2000 parts kappas are linearised instead of resampled.
 	for _, parts := range []int{20, 50, 200, 2000} {
-		for _, at := range [][2]int{{2, 2}, {3, 3}, {5, 3}} {
-			if (quick || parts == 2000) && at[0] != 3 {
+		// 10 and 25 trials: many calls on few parts, as of a camera or a fixture.
+		for _, at := range [][2]int{{2, 2}, {3, 3}, {5, 3}, {2, 10}, {2, 25}} {
+			if (quick || parts == 2000) && at[0] != 3 || at[1] >= 10 && parts > 50 {
 				continue
 			}
 			for _, miss := range []float64{0.01, 0.05, 0.15} {
