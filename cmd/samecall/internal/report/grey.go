@@ -37,6 +37,7 @@ func Grey(w io.Writer, g *judge.Grey, term Terminal, every bool) error {
 	some(greyMethodsTable(g))
 	sentences(WhyTheyDiffer(g))
 	some(cutsTable(r))
+	some(zonesTable(r))
 	some(greyPartsTable(g, every))
 	some(greyWithoutTable(g))
 	p.line("")

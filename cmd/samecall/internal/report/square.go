@@ -48,11 +48,7 @@ func (s square) table(kappas bool) Table {
 	if kappas {
 		t.Note += " · kappa"
 	}
-	t.Note += ". In brackets, each appraiser with itself"
-	if s.ref != nil {
-		t.Note += "; last column, against the reference"
-	}
-	t.Note += "."
+	t.Note += "; in brackets, each appraiser with itself."
 	for _, n := range s.names {
 		t.Columns = append(t.Columns, Column{Name: n, Numbers: true})
 	}

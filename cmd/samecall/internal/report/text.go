@@ -322,7 +322,9 @@ func (p *printer) square(r *Record) {
 // between writes one sentence on all appraisers together.
 func (p *printer) between(r *Record) {
 	b := r.Agreement.Between
-	p.line("")
+	if len(r.Study.Appraisers) < 2 { // else it goes with the square
+		p.line("")
+	}
 	if b.Share.Absent != nil {
 		p.wrap("Between appraisers: "+b.Share.Absent.Error()+".", "")
 		return
