@@ -6,6 +6,7 @@ import (
 	"math"
 	"slices"
 	"sort"
+	"unicode"
 )
 
 // columnKey is one trial of one appraiser.
@@ -136,7 +137,11 @@ func (b *builder) longRow(fields [][]byte, part, ref, value []byte, line int) {
 	}
 	trial, ok := wholeNumber(trim(fields[l.trial]))
 	if !ok {
-		b.problem(line, l.trial, found(fields[l.trial]), fmt.Sprintf("a trial number from 1 to %d", maxTrial), "")
+		hint := ""
+		if bytes.ContainsAny(fields[l.trial], "123456789") && bytes.ContainsFunc(fields[l.trial], unicode.IsLetter) {
+			hint = "write the number alone"
+		}
+		b.problem(line, l.trial, found(fields[l.trial]), fmt.Sprintf("a trial number from 1 to %d", maxTrial), hint)
 		return
 	}
 	appraiser, ok := b.appraisers.id(name)

@@ -1,7 +1,6 @@
 package study
 
 import (
-	"cmp"
 	"fmt"
 	"slices"
 	"strconv"
@@ -99,8 +98,7 @@ func readHeader(header, ignore []string, sheet string) (*layout, []Problem) {
 				problem(i, "the unknown column "+quote(h), listOf(sortedKeys(fields), "or"), hint+leaveOut(h, ignore))
 				continue
 			}
-			name := cmp.Or(strings.TrimRight(h, "0123456789"), h) // anna1 is anna-1
-			hint += fmt.Sprintf("the column of an appraiser is named appraiser-trial, such as %q; ", name+"-1")
+			hint += fmt.Sprintf("the column of an appraiser is named appraiser-trial, such as %q; ", l.likelyTrial(i))
 			problem(i, "the column "+quote(h)+" without a trial number", "part, reference, value or an appraiser's trial", hint+leaveOut(h, ignore))
 			continue
 		}
@@ -117,6 +115,20 @@ func readHeader(header, ignore []string, sheet string) (*layout, []Problem) {
 		}
 	}
 	return l, append(list, l.missing(fields, likely, sheet)...)
+}
+
+// likelyTrial returns the name that a column may be meant to have, of one
+// without a trial number: anna1 may be anna-1, and the second anna anna-2.
+func (l *layout) likelyTrial(field int) string {
+	h := l.header[field]
+	if name := strings.TrimRight(h, "0123456789"); name != "" && name != h {
+		return name + "-" + h[len(name):]
+	}
+	n := 0
+	for _, other := range l.header[:field+1] {
+		n += btoi(fold(other) == fold(h))
+	}
+	return fmt.Sprintf("%s-%d", h, n)
 }
 
 // oneColumn is the problem of a header of one column: another separator, or a
@@ -199,11 +211,16 @@ func leaveOut(h string, ignore []string) string {
 func (l *layout) missing(fields map[string]*int, likely map[string]bool, sheet string) []Problem {
 	var list []Problem
 	need := []string{"part"}
-	if l.long {
+	lacks := func(name string) bool { return *fields[name] < 0 && !likely[name] }
+	switch {
+	case l.long && l.trial >= 0 && lacks("appraiser") && lacks("call"):
+		list = append(list, Problem{Column: l.trial + 1, Found: "the column trial without appraiser and call",
+			Expected: `one call a row, with part, appraiser, trial and call, or one part a row, with a column for each appraiser and trial, such as "early-1"`})
+	case l.long:
 		need = append(need, longOnly...)
 	}
 	for _, name := range need {
-		if *fields[name] >= 0 || likely[name] {
+		if !lacks(name) {
 			continue
 		}
 		p := Problem{Found: "no column " + quote(name), Expected: "it in the header line"}

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 	"sync"
 
 	"samecall/agreement"
@@ -129,6 +130,7 @@ func (m *merge) mergeWords() {
 		return
 	}
 	m.sight(unknown)
+	m.measuredReferences(unknown, spelt)
 	for w, at := range unknown {
 		p := v.unknown(spelt[w])
 		p.Line, p.Column = at.line, at.field+1
@@ -138,6 +140,32 @@ func (m *merge) mergeWords() {
 		p.Found += " in " + m.layout.place(at.field)
 		m.add(p)
 	}
+}
+
+// measuredReferences takes numbers out that stand first in the column
+// reference, and makes one problem of them: they may be measured values.
+func (m *merge) measuredReferences(unknown map[string]*sighting, spelt map[string]string) {
+	var first *sighting
+	word, count := "", 0
+	for w, at := range unknown {
+		if at.field != m.layout.reference || !strings.ContainsAny(w, decimalSigns) || !isNumber(w) {
+			continue
+		}
+		if first == nil || at.line < first.line {
+			first, word = at, w
+		}
+		count += at.count
+		delete(unknown, w)
+	}
+	if first == nil {
+		return
+	}
+	found := quote(spelt[word])
+	if count > 1 {
+		found += fmt.Sprintf(" and other numbers (%d times)", count)
+	}
+	m.add(Problem{Line: first.line, Column: first.field + 1, Found: found + " in " + m.layout.place(first.field), Expected: m.words.expected,
+		Text: "if the column holds measured values, name it value; the reference then follows from --lower and --upper"})
 }
 
 // sighting is where a word stands first, and how often it stands anywhere.
@@ -548,6 +576,9 @@ func (m *merge) contradiction(part string, list []statement) {
 			}
 			if err != nil {
 				valueDone = true
+				if blankWords[fold(s.value)] {
+					err = errNoValue
+				}
 				m.add(Problem{Line: s.line, Column: m.layout.value + 1, Found: quote(s.value) + " as the value of part " + quote(part),
 					Expected: "a number", Text: err.Error()})
 				continue

@@ -14,6 +14,7 @@ var (
 	errNotNumber = errors.New("write the number alone, without unit")
 	errThousands = errors.New("write the number without separators of thousands")
 	errComma     = errors.New("in a table separated by commas the decimal separator is a point")
+	errNoValue   = errors.New("leave the field empty where there is no value")
 	errTooLarge  = errors.New("the number is too large")
 )
 

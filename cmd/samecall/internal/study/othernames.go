@@ -11,7 +11,7 @@ import (
 // languages we know them in. Common practice, no source. They are not taken
 // for the column: the error says what to rename.
 var otherNames = map[string][]string{
-	"part": {"parts", "sample", "item", "piece", "workpiece", "specimen", "unit", "serial", "sn", "id",
+	"part": {"parts", "sample", "item", "piece", "workpiece", "specimen", "serial", "sn", "id", "no", "nr", "number",
 		"teil", "muster", "prüfling", "werkstück", "pièce", "échantillon", "pieza", "pezzo"},
 	"appraiser": {"operator", "inspector", "rater", "evaluator", "assessor", "examiner", "observer", "tester", "judge", "person", "shift",
 		"prüfer", "bediener", "opérateur", "contrôleur", "operador", "operatore"},

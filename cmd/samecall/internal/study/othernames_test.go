@@ -13,7 +13,7 @@ func TestAlsoCalled(t *testing.T) {
 		"Measured": "value", "Measurement": "value", "Size": "value", "Dimension": "value", "Messwert": "value", "Meßwert": "value", "Mesure": "value",
 		"Measured value (mm)": "value", "Value [mm]": "value", "BORE_DIAMETER": "value", "Result": "call value",
 		"Operator": "appraiser", "Inspector": "appraiser", "Operator name": "appraiser", "Prüfer": "appraiser",
-		"Sample": "part", "Part No.": "part", "part_id": "part", "Serial number": "part", "Teil-Nr.": "part",
+		"Sample": "part", "No.": "part", "Part No.": "part", "part_id": "part", "Serial number": "part", "Teil-Nr.": "part",
 		"Run": "trial", "Replicate": "trial", "Trial no": "trial", "Decision": "call", "Judgement": "call",
 		"Standard": "reference", "Master": "reference",
 		"Remark": "", "Date": "", "": "", "(mm)": "", "Inspected": "", "1": "",

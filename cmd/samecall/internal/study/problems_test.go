@@ -15,7 +15,7 @@ func ptr(x float64) *float64 { return &x }
 // calls.csv.
 func TestProblems(t *testing.T) {
 	const unknown = "accept or reject, or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0)"
-	const settingsHint = "say what other words mean by accept and reject, or list kinds by categories, grades by order"
+	const settingsHint = "say what other words mean with --accept and --reject, or list kinds with --categories, grades with --order"
 	for _, c := range []struct {
 		name, in string
 		settings Settings
@@ -72,6 +72,17 @@ calls.csv:1:3: found the column "Anna1" without a trial number, expected part, r
 		{"appraisers who are called like a column", "part,Operator,Run,run-1\n1,2,3,go\n", Settings{},
 			`calls.csv:1:2: found the column "Operator" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "Operator-1"; to leave the column out: --ignore Operator, or ignore = ["Operator"] in a study file
 calls.csv:1:3: found the column "Run" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "Run-1"; to leave the column out: --ignore Run, or ignore = ["Run"] in a study file`},
+		{"an appraiser's columns named alike", "part,ann,Ann,ben2\n1,go,go,go\n", Settings{},
+			`calls.csv:1: found no column with calls, expected either the columns appraiser, trial and call, or a column for each appraiser and trial, such as "early-1"
+calls.csv:1:2: found the column "ann" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "ann-1"; to leave the column out: --ignore ann, or ignore = ["ann"] in a study file
+calls.csv:1:3: found the column "Ann" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "Ann-2"; to leave the column out: --ignore Ann, or ignore = ["Ann"] in a study file
+calls.csv:1:4: found the column "ben2" without a trial number, expected part, reference, value or an appraiser's trial; the column of an appraiser is named appraiser-trial, such as "ben-2"; to leave the column out: --ignore ben2, or ignore = ["ben2"] in a study file`},
+		{"a row for each trial, a column for each appraiser", "part,trial,ann\n1,1,go\n", Settings{},
+			`calls.csv:1:2: found the column trial without appraiser and call, expected one call a row, with part, appraiser, trial and call, or one part a row, with a column for each appraiser and trial, such as "early-1"
+calls.csv:1:3: found the unknown column "ann", expected appraiser, call, part, reference, trial or value; to leave the column out: --ignore ann, or ignore = ["ann"] in a study file`},
+		{"measured values as the reference", "part,reference,a-1\n1,10.02,go\n2,9.5,og\n3,9.50,go\n", Settings{},
+			`calls.csv:2:2: found "10.02" and other numbers (3 times) in column 2 (reference), expected ` + unknown + `; if the column holds measured values, name it value; the reference then follows from --lower and --upper
+calls.csv:3:3: found "og" in column 3 (a-1), expected ` + unknown + `; did you mean go? Else ` + settingsHint},
 		{"column without a name", ",part,appraiser,trial,call\n0,1,a,1,go\n", Settings{}, "calls.csv:1:1: column 1 has no name; name it, or take it out of the table"},
 		{"no column of calls", "part,reference\n1,go\n", Settings{},
 			`calls.csv:1: found no column with calls, expected either the columns appraiser, trial and call, or a column for each appraiser and trial, such as "early-1"`},
@@ -84,7 +95,7 @@ calls.csv:1:3: found the column "Run" without a trial number, expected part, ref
 		{"values that are none", "part,value,a-1\n1,1.0 mm,go\n2,\"1,5\",go\n3,nan,go\n4,1e999,go\n5,\"1,234.5\",go\n6,0x10,go\n", Settings{},
 			`calls.csv:2:2: found "1.0 mm" as the value of part "1", expected a number; write the number alone, without unit
 calls.csv:3:2: found "1,5" as the value of part "2", expected a number; in a table separated by commas the decimal separator is a point
-calls.csv:4:2: found "nan" as the value of part "3", expected a number; write the number alone, without unit
+calls.csv:4:2: found "nan" as the value of part "3", expected a number; leave the field empty where there is no value
 calls.csv:5:2: found "1e999" as the value of part "4", expected a number; the number is too large
 calls.csv:6:2: found "1,234.5" as the value of part "5", expected a number; write the number without separators of thousands
 calls.csv:7:2: found "0x10" as the value of part "6", expected a number; write the number alone, without unit`},
@@ -96,9 +107,9 @@ calls.csv:6:4: found the call of a on part "1" in trial 1 a second time, expecte
 calls.csv:5:1: found the part "1" a second time, expected each part on one line; it stands on line 2 already`},
 		{"a part twice with words that mean nothing", "part,reference,a-1\n1,go,go\n1,oops,oops\n1,go,what\n", Settings{},
 			`calls.csv:3:1: found the part "1" a second time, expected each part on one line; it stands on line 2 already
-calls.csv:3:2: found "oops" (2 times) in column 2 (reference), expected accept or reject, or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0); say what other words mean by accept and reject, or list kinds by categories, grades by order
+calls.csv:3:2: found "oops" (2 times) in column 2 (reference), expected accept or reject, or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0); say what other words mean with --accept and --reject, or list kinds with --categories, grades with --order
 calls.csv:4:1: found the part "1" a second time, expected each part on one line; it stands on line 2 already
-calls.csv:4:3: found "what" in column 3 (a-1), expected accept or reject, or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0); say what other words mean by accept and reject, or list kinds by categories, grades by order`},
+calls.csv:4:3: found "what" in column 3 (a-1), expected accept or reject, or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0); say what other words mean with --accept and --reject, or list kinds with --categories, grades with --order`},
 		{"appraiser without calls, wide", "part,a-1,b-1,b-2\n1,go,,\n", Settings{},
 			`calls.csv:1:3: found the appraiser "b" without any call, expected one call or more of each appraiser; take the appraiser out of the table if there are none`},
 		{"appraiser without calls, long", "part,appraiser,trial,call\n1,a,1,go\n1,b,1,\n", Settings{},
@@ -110,12 +121,12 @@ calls.csv:4:3: found "what" in column 3 (a-1), expected accept or reject, or a u
 			`calls.csv:2: found 1 field, expected 2, as in the header; a missing call is an empty field
 calls.csv:3:3: found 3 fields, expected 2, as in the header; a separator inside a field needs quotes around the field
 calls.csv:5:1: found no part, expected a name`},
-		{"appraisers and trials", "part,appraiser,trial,call\n1,,1,go\n1,a,,go\n1,a,0,go\n1,a,1.5,go\n1,a,two,go\n1,a,1000001,go\n", Settings{},
+		{"appraisers and trials", "part,appraiser,trial,call\n1,,1,go\n1,a,,go\n1,a,0,go\n1,a,1.5,go\n1,a,T2,go\n1,a,1000001,go\n", Settings{},
 			`calls.csv:2:2: found no appraiser, expected a name
 calls.csv:3:3: found nothing, expected a trial number from 1 to 1000000
 calls.csv:4:3: found "0", expected a trial number from 1 to 1000000
 calls.csv:5:3: found "1.5", expected a trial number from 1 to 1000000
-calls.csv:6:3: found "two", expected a trial number from 1 to 1000000
+calls.csv:6:3: found "T2", expected a trial number from 1 to 1000000; write the number alone
 calls.csv:7:3: found "1000001", expected a trial number from 1 to 1000000`},
 		{"quote inside a field", "part,a-1\n2,go\n1\" pipe,go\n", Settings{},
 			`calls.csv:3: found a quote (") in byte 2 of the line, inside a field that does not begin with one, expected the whole field in quotes and each quote in it doubled, as in "12"" pipe"`},

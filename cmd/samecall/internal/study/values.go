@@ -40,6 +40,9 @@ func ReadValues(src Source, sheet, column string) (*Values, error) {
 		}
 		x, err := parseNumber([]byte(s), t.comma)
 		if err != nil {
+			if blankWords[fold(s)] {
+				err = errNoValue
+			}
 			t.at(r, field, quote(s), what, err.Error())
 			continue
 		}

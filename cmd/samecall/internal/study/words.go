@@ -158,7 +158,7 @@ func passFail(s Settings) *vocabulary {
 	const usual = "a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0)"
 	if len(s.Accept)+len(s.Reject) == 0 {
 		v.expected = "accept or reject, or " + usual
-		v.hint = "say what other words mean by accept and reject, or list kinds by categories, grades by order"
+		v.hint = "say what other words mean with --accept and --reject, or list kinds with --categories, grades with --order"
 		return v
 	}
 	v.expected = "accept" + inBrackets(s.Accept) + " or reject" + inBrackets(s.Reject)
