@@ -22,7 +22,7 @@ func newJudge(s streams) *cobra.Command {
 	var src source
 	opt := agreement.DefaultOptions()
 	var pairing, require string
-	var full bool
+	var full, shown bool
 	var out outputs
 	cmd := &cobra.Command{
 		Use:   "judge [FILE]",
@@ -56,7 +56,7 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 			if opt.Resamples != 0 && opt.Resamples < fewestResamples || opt.Resamples > agreement.MaxResamples {
 				return fmt.Errorf("--resamples is %d; expected 0, or %d to %d", opt.Resamples, fewestResamples, agreement.MaxResamples)
 			}
-			level, err := parseRequirement(require)
+			required, err := parseRequirement(require, shown)
 			if err != nil {
 				return err
 			}
@@ -87,10 +87,7 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 					return err
 				}
 			}
-			if level.reached(result.Verdict.Overall) {
-				return nil
-			}
-			return statusError{status: exitShort}
+			return required.check(result.Verdict, result.Options.Confidence)
 		},
 	}
 	f := cmd.Flags()
@@ -98,6 +95,7 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 	f.BoolVar(&full, "full", false, "every table, not the one screen")
 	out.addFlags(f)
 	f.StringVar(&require, "require", "", "end with status 1 unless the verdict is at least this good: accept or conditional")
+	f.BoolVar(&shown, "shown", false, "with --require: hold the one-sided limit of every figure to that level, not the estimate")
 	f.StringVar(&pairing, "pairing", "matched", "calls of two appraisers side by side: matched, trial by trial, or all trials with all")
 	f.IntVar(&opt.Resamples, "resamples", opt.Resamples, "resamples of whole parts for the intervals of kappas; 0 for linearised ones")
 	f.Uint64Var(&opt.Seed, "seed", opt.Seed, "of the resampling; the same seed gives the same answer")

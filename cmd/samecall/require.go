@@ -1,31 +1,47 @@
 package main
 
 import (
+	"errors"
 	"fmt"
 
+	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/verdict"
 )
 
-// requirement is the verdict that --require asks for; nil asks for nothing.
-type requirement []verdict.Level
-
-func parseRequirement(s string) (requirement, error) {
-	switch s {
-	case "":
-		return nil, nil
-	case "accept":
-		return requirement{verdict.Accept}, nil
-	case "conditional":
-		return requirement{verdict.Accept, verdict.Conditional}, nil
-	}
-	return nil, fmt.Errorf("--require is %q; expected accept or conditional", s)
+// requirement is the verdict that --require asks for.
+type requirement struct {
+	asked bool
+	level verdict.Level // Accept or Conditional
+	shown bool          // the data must show it: --shown
 }
 
-func (r requirement) reached(l verdict.Level) bool {
-	for _, good := range r {
-		if l == good {
-			return true
-		}
+func parseRequirement(level string, shown bool) (requirement, error) {
+	switch {
+	case level == "" && shown:
+		return requirement{}, errors.New("--shown goes with --require")
+	case level == "":
+		return requirement{}, nil
+	case level == "accept":
+		return requirement{true, verdict.Accept, shown}, nil
+	case level == "conditional":
+		return requirement{true, verdict.Conditional, shown}, nil
 	}
-	return r == nil
+	return requirement{}, fmt.Errorf("--require is %q; expected accept or conditional", level)
+}
+
+// check returns the exit status of a verdict that is not as good as required.
+// The answer tells why, but not that --shown asks for more than the verdict.
+func (r requirement) check(v *verdict.Verdict, confidence float64) error {
+	switch {
+	case !r.asked:
+		return nil
+	case v.Overall > r.level: // not shown, too, is worse than conditional
+		return statusError{status: exitShort}
+	case !r.shown:
+		return nil
+	}
+	if open := v.Unshown(r.level); open != "" {
+		return statusError{exitShort, fmt.Errorf("--require %s --shown: at %s confidence the data do not show that level for: %s", r.level, format.Percent(confidence), open)}
+	}
+	return nil
 }

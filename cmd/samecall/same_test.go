@@ -193,6 +193,9 @@ func turn(v any) any {
 		if pair, ok := v["appraisers"].([]any); ok && v["table"] != nil && pair[0].(string) > pair[1].(string) {
 			v["appraisers"] = []any{pair[1], pair[0]}
 			v["table"] = transposed(v["table"].([]any))
+			r := v["rejects"].(map[string]any)
+			r["first"], r["second"] = r["second"], r["first"]
+			r["only_first"], r["only_second"] = r["only_second"], r["only_first"]
 		}
 		for key, member := range v {
 			if names, ok := member.([]any); ok && key == "appraisers" && len(names) > 0 {

@@ -49,7 +49,7 @@ func (s *source) addFlags(cmd *cobra.Command) {
 		{"effectiveness", "accept and conditional level, such as 0.9,0.8"},
 		{"miss", "accept and conditional level of the miss rate, such as 0.02,0.05"},
 		{"false-alarm", "accept and conditional level of the false-alarm rate, such as 0.05,0.10"},
-		{"kappa", "accept and conditional level of kappa against the reference, such as 0.75,0.40"},
+		{"kappa", "accept and conditional level of kappa, against the reference and between appraisers, such as 0.75,0.40"},
 	} {
 		s.pairs[c.name] = f.Float64Slice(c.name, nil, c.usage)
 	}

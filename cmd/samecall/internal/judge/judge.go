@@ -16,6 +16,7 @@ type Result struct {
 	Study     *study.Study
 	Options   agreement.Options
 	Agreement *agreement.Analysis
+	Leans     []Lean // of each pair of appraisers; nil without accepting categories
 	// Detection holds the detection indices of each appraiser; nil entries
 	// where bad or good parts are lacking.
 	Detection []*signal.Detection
@@ -39,7 +40,7 @@ func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, 
 	if err != nil {
 		return nil, err
 	}
-	r := &Result{Study: s, Options: opt, Agreement: a}
+	r := &Result{Study: s, Options: opt, Agreement: a, Leans: leans(s.Ratings, a)}
 	for _, n := range s.Notes {
 		r.Warnings = append(r.Warnings, Warning{n.Code, n.Text})
 	}

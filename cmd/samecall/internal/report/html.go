@@ -137,7 +137,7 @@ func sections(r *Record) []pageSection {
 	add("appraisers", "Appraisers", []string{"errors"}, appraisers...)
 	square := []Table{withinTable(r)}
 	if len(r.Study.Appraisers) > 1 {
-		square = append(square, leastAlike(pairsTable(r)))
+		square = append(square, cutPairs(pairsTable(r), "share", "agree least"), cutPairs(leanTable(r), "p", "lean most"))
 	}
 	square = append(square, coefficientsTable(r), weightedTable(r), categoriesTable(r))
 	add("agreement", "Agreement", []string{"square"}, square...)
@@ -148,23 +148,23 @@ func sections(r *Record) []pageSection {
 	return out
 }
 
-// leastAlike cuts a table of pairs down to those that agree least, where it
-// would fill page after page.
-func leastAlike(t Table) Table {
+// cutPairs cuts a table of pairs down to those with the lowest number in a
+// column, where it would fill page after page.
+func cutPairs(t Table, column, says string) Table {
 	const most = 120
 	if len(t.Rows) <= most {
 		return t
 	}
-	share := slices.IndexFunc(t.Columns, func(c Column) bool { return c.Name == "share" })
+	at := slices.IndexFunc(t.Columns, func(c Column) bool { return c.Name == column })
 	value := func(row []Cell) float64 {
-		if x, ok := row[share].Value.(float64); ok {
+		if x, ok := row[at].Value.(float64); ok {
 			return x
 		}
 		return 2 // not known: last
 	}
 	rows := slices.Clone(t.Rows)
 	slices.SortStableFunc(rows, func(a, b []Cell) int { return cmp.Compare(value(a), value(b)) })
-	t.Note = fmt.Sprintf("The %d pairs that agree least, of %s; the JSON, the CSV and the workbook have them all. %s", most, format.Count(len(rows)), t.Note)
+	t.Note = fmt.Sprintf("The %d pairs that %s, of %s; the JSON, the CSV and the workbook have them all. %s", most, says, format.Count(len(rows)), t.Note)
 	t.Rows = rows[:most]
 	return t
 }
@@ -292,6 +292,9 @@ func methods(r *Record) []string {
 	}
 	if r.Agreement.All != nil {
 		out = append(out, "Direction of errors: exact test of McNemar (1947) with two categories; Bowker (1948), Stuart (1955) and Maxwell (1970) with more. Detection indices with the log-linear correction of Hautus (1995).")
+	}
+	if r.Agreement.All == nil && len(r.Leans) > 0 {
+		out = append(out, "Who rejects more: exact test of McNemar (1947).")
 	}
 	if r.Zone != nil {
 		out = append(out, "Grey zone: unanimous zone and signal detection as in the Measurement Systems Analysis reference manual, 4th ed. 2010, chapter III C; acceptance curve by maximum likelihood with profile-likelihood intervals; where calls are separated, bias-reduced (Firth, 1993).")

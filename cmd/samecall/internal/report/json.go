@@ -146,6 +146,17 @@ type pairJSON struct {
 	Share      shareJSON       `json:"share"`
 	Kappa      estimateJSON    `json:"kappa"`
 	weightedJSON
+	Lean *leanJSON `json:"rejects,omitempty"`
+}
+
+// leanJSON is who of two appraisers rejects more.
+type leanJSON struct {
+	Pairs      int       `json:"pairs"`
+	First      int       `json:"first"`
+	Second     int       `json:"second"`
+	OnlyFirst  int       `json:"only_first"`
+	OnlySecond int       `json:"only_second"`
+	McNemar    *testJSON `json:"mcnemar,omitempty"`
 }
 
 // weightedJSON holds the kappas of ordered categories.
@@ -290,7 +301,7 @@ func newBetween(r *Record) betweenJSON {
 	if b.Share.Absent == nil {
 		out.Agreement = &b.Agreement
 	}
-	for _, p := range b.Pairs {
+	for i, p := range b.Pairs {
 		pair := pairJSON{
 			Appraisers:   [2]string{r.Study.Appraisers[p.A], r.Study.Appraisers[p.B]},
 			Table:        p.Table,
@@ -302,9 +313,17 @@ func newBetween(r *Record) betweenJSON {
 			share := float64(p.Alike) / float64(p.Pairs)
 			pair.Agreement = &share
 		}
+		if r.Leans != nil {
+			pair.Lean = newLean(r.Leans[i])
+		}
 		out.Pairs = append(out.Pairs, pair)
 	}
 	return out
+}
+
+func newLean(l judge.Lean) *leanJSON {
+	byA, byB := l.Rejected()
+	return &leanJSON{l.Pairs(), byA, byB, l.OnlyA(), l.OnlyB(), newTest(l.Test)}
 }
 
 func newAgainstAppraiser(r *Record, a int) againstAppraiserJSON {

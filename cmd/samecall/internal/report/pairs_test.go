@@ -40,3 +40,13 @@ func TestManyPairs(t *testing.T) {
 		t.Errorf("the CSV has %d lines; expected one for each of %d pairs", got, pairs)
 	}
 }
+
+// Likewise of the pairs that lean, without a reference.
+func TestManyLeaningPairs(t *testing.T) {
+	page := output(t, plan{appraisers: some(30), parts: 20, trials: 2, noReference: true, noValues: true, lenient: true}.record(t), report.HTML)
+	for _, says := range []string{"The 120 pairs that agree least, of 435;", "The 120 pairs that lean most, of 435;"} {
+		if !bytes.Contains(page, []byte(says)) {
+			t.Errorf("the record does not say %q", says)
+		}
+	}
+}

@@ -31,6 +31,7 @@ type plan struct {
 	noLower, noUpper      bool
 	sharp                 bool                  // no call is ever mixed
 	wrong                 func(int) bool        // of part i: every call is wrong
+	lenient               bool                  // the second appraiser accepts parts just beyond the lower limit
 	missing               float64               // share of calls
 	ragged                bool                  // each appraiser has one trial less than the one before
 	categories            []string              // of a study that is not pass/fail: grades if ordered, else kinds
@@ -124,6 +125,9 @@ func (p plan) csv() string {
 					}
 				default:
 					seen := value + softness*random.NormFloat64()*(1+0.2*float64(a))
+					if p.lenient && a == 1 {
+						seen += 3 * softness
+					}
 					call = 0
 					if (seen >= lowerLimit || p.noLower) && (seen <= upperLimit || p.noUpper) {
 						call = 1

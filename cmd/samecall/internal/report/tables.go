@@ -22,7 +22,7 @@ func Tables(r *Record) []Table {
 	}
 	out = append(out, zoneTable(r), cutsTable(r), zonesTable(r), withinTable(r))
 	if len(r.Study.Appraisers) > 1 {
-		out = append(out, newSquare(r).table(true), pairsTable(r))
+		out = append(out, newSquare(r).table(true), pairsTable(r), leanTable(r))
 	}
 	out = append(out, coefficientsTable(r), weightedTable(r), categoriesTable(r))
 	out = append(out, crossTables(r)...)
@@ -179,7 +179,10 @@ func againstTable(r *Record, all bool) Table {
 		Name:    "appraisers",
 		Title:   "Against the reference",
 		Columns: []Column{{Name: "appraiser"}, {Name: "effectiveness", Numbers: true}, {Name: "miss rate", Numbers: true}, {Name: "false-alarm rate", Numbers: true}, {Name: "kappa", Numbers: true}},
-		Note:    fmt.Sprintf("In brackets the %s interval by parts.", format.Percent(r.Options.Confidence)),
+		Note:    fmt.Sprintf("In brackets the two-sided %s interval by parts.", format.Percent(r.Options.Confidence)),
+	}
+	if len(r.Study.Categories) > 2 {
+		t.Note += " Effectiveness asks for the exact category on every trial, not only for accept or reject: it may be low without a miss."
 	}
 	if all && len(r.Agreement.Against) > 1 {
 		t.Note += " All together: right in every call of every appraiser."
@@ -362,8 +365,8 @@ func coefficientsTable(r *Record) Table {
 	add("Fleiss' kappa", kappaCell(b.Fleiss), "agreement of all calls beyond chance")
 	add("Gwet's AC1", kappaCell(b.AC1), "the same, not pulled down where one category prevails")
 	add("Krippendorff's alpha", kappaCell(b.Alpha), "the same, corrected for few calls")
-	add("same appraiser", kappaCell(b.SameAppraiser), "two calls on a part by one appraiser")
-	add("different appraisers", kappaCell(b.DifferentAppraisers), "two calls on a part by two appraisers")
+	add("kappa within appraisers", kappaCell(b.SameAppraiser), "pairs of calls on a part by one appraiser")
+	add("kappa between appraisers", kappaCell(b.DifferentAppraisers), "pairs of calls on a part by two appraisers")
 	return t
 }
 
@@ -487,6 +490,12 @@ func partsTable(r *Record) Table {
 	if all := r.Agreement.All; all != nil && len(r.Study.Appraisers) > 1 {
 		add(together, "wrong every time", all.WrongEveryTime)
 	}
+	for _, l := range parting(r) {
+		onlyA, onlyB := r.Parted(l)
+		a, b := r.Study.Appraisers[l.A], r.Study.Appraisers[l.B]
+		add(a, "rejects, "+b+" accepts", onlyA)
+		add(b, "rejects, "+a+" accepts", onlyB)
+	}
 	return t
 }
 
@@ -536,25 +545,22 @@ func criteriaTable(r *Record) Table {
 		Keys:  2,
 		Columns: []Column{{Name: "appraiser"}, {Name: "figure"}, {Name: "found", Numbers: true}, {Name: "accept", Numbers: true},
 			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: "data"}, {Name: "to settle it", Long: true}},
-		Note: levelsFrom(r) + " " + fmt.Sprintf("Shown, contradicted or open at %s confidence, one-sided, for the level that the estimate reaches (for a reject, the conditional level).", format.Percent(r.Options.Confidence)),
+		Note: levelsFrom(r) + " " + fmt.Sprintf("Shown: at %s confidence, one-sided, the data show what the estimate says (of a reject, that the conditional level is missed). Open: they do not.", format.Percent(r.Options.Confidence)),
 	}
-	add := func(name string, c verdict.Criterion) {
+	add := func(name, figure string, c verdict.Criterion) {
 		found, evidence, settle := say(format.Dash), "", ""
 		if c.Met != verdict.NotShown {
-			found, evidence = valueCell(c.Number(c.Estimate.Value), c.Estimate.Value), c.Evidence.String()
-			if c.More > 0 {
-				settle = format.Counted(c.More, c.Kind) + " more"
-			}
+			found, evidence, settle = valueCell(c.Found(), c.Estimate.Value), c.Shows(), c.ToSettle()
 		}
-		t.Rows = append(t.Rows, []Cell{say(name), say(c.Label()), found, valueCell(c.Level(c.Levels[0]), c.Levels[0]), valueCell(c.Level(c.Levels[1]), c.Levels[1]), say(c.Met.String()), say(evidence), say(settle)})
+		t.Rows = append(t.Rows, []Cell{say(name), say(figure), found, valueCell(c.Level(c.Levels[0]), c.Levels[0]), valueCell(c.Level(c.Levels[1]), c.Levels[1]), say(c.Met.String()), say(evidence), say(settle)})
 	}
 	for _, a := range r.Verdict.Appraisers {
 		for _, c := range a.Criteria {
-			add(a.Name, c)
+			add(a.Name, c.Label(), c)
 		}
 	}
 	if b := r.Verdict.Between; b != nil {
-		add("between", *b)
+		add("between", "kappa", *b)
 	}
 	return t
 }

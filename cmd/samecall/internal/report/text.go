@@ -330,12 +330,15 @@ func (p *printer) between(r *Record) {
 		return
 	}
 	s := fmt.Sprintf("All calls of all appraisers are alike on %s of %s parts: %s.", format.Count(b.Share.Count), format.Count(b.Share.Of), format.Share(b.Share))
-	if b.Fleiss.Absent != nil {
-		s += " Kappa: " + b.Fleiss.Absent.Error() + "."
+	if k := b.DifferentAppraisers; k.Absent != nil {
+		s += " Kappa: " + k.Absent.Error() + "."
 	} else {
-		s += fmt.Sprintf(" Fleiss' kappa %s.", format.Kappa(b.Fleiss))
+		s += fmt.Sprintf(" Kappa between appraisers %s; Fleiss' kappa of all calls %s.", format.Kappa(k), format.Kappa(b.Fleiss))
 	}
 	p.wrap(s, "")
+	for _, l := range leanLines(r) {
+		p.wrap(l, "")
+	}
 }
 
 func (p *printer) warnings(r *Record) {

@@ -5,6 +5,7 @@ import (
 	"testing"
 	"testing/fstest"
 
+	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/study"
 )
 
@@ -70,8 +71,32 @@ func TestBetween(t *testing.T) {
 	}
 	// Appraisers that do not agree fail together, each right or not.
 	_, v = decide(t, calls("part,A-1,B-1\n1,1,0\n2,0,1\n3,1,0\n4,0,1\n", ""))
-	if v.Overall != Reject || !strings.HasPrefix(v.Reasons[0], "between appraisers: kappa −1.00") {
+	if v.Overall != Reject || !strings.HasPrefix(v.Reasons[0], "Kappa between appraisers −1.00") {
 		t.Errorf("calls all different: %v, %q", v.Overall, v.Reasons)
+	}
+}
+
+// Between appraisers counts what different ones say of a part: not that each
+// repeats itself, as Fleiss' kappa of all calls does. Verdict and cause name
+// one figure.
+func TestBetweenCountsDifferentAppraisers(t *testing.T) {
+	r, v := decide(t, causeTest(t, "one apart").files(1))
+	b := r.Agreement.Between
+	if v.Between.Estimate.Value != b.DifferentAppraisers.Value || b.Fleiss.Value-b.DifferentAppraisers.Value < 0.02 {
+		t.Errorf("judged by %v; different appraisers %v, all calls %v", v.Between.Estimate.Value, b.DifferentAppraisers.Value, b.Fleiss.Value)
+	}
+	if want := "kappa between appraisers " + format.Kappa(b.DifferentAppraisers); len(v.Causes) != 1 || !strings.Contains(v.Causes[0].Text, want) {
+		t.Errorf("%+v lacks %q", v.Causes, want)
+	}
+	// Told as a reason, it names nobody.
+	_, v = decide(t, calls("part,reference,A-1,A-2,B-1,B-2\n1,1,1,1,0,0\n2,0,0,0,0,0\n3,1,1,1,0,0\n4,0,0,0,1,1\n5,1,1,1,1,1\n", ""))
+	for _, s := range v.texts() {
+		if strings.Contains(s, "of between") || strings.Contains(s, "of kappa") || strings.Contains(s, "appraisers of") {
+			t.Errorf("%q", s)
+		}
+	}
+	if got := strings.Join(v.Reasons, " "); !strings.Contains(strings.ToLower(got), "kappa between appraisers") {
+		t.Errorf("%q", v.Reasons)
 	}
 }
 

@@ -62,6 +62,7 @@ func causes(r *judge.Result, levels map[string]Levels, missed bool) []Cause {
 	} {
 		f.found = append(f.found, rule(f)...)
 	}
+	alsoInconsistent(f)
 	return f.found
 }
 

@@ -5,6 +5,8 @@ import (
 	"math/rand/v2"
 	"strings"
 	"testing"
+
+	"samecall/cmd/samecall/internal/format"
 )
 
 // found writes the causes of a verdict as code:appraiser.
@@ -172,5 +174,35 @@ func TestEveryCodeHasAStudy(t *testing.T) {
 		if !strings.Contains(all, " "+code+":") {
 			t.Errorf("no study has the cause %s", code)
 		}
+	}
+}
+
+// Grades that lean do not hide that they are not repeated either: the cause
+// that keeps the other away says so, and nothing does of one who repeats.
+func TestLeaningGradesDoNotHideMixedParts(t *testing.T) {
+	r, v := decide(t, causeTest(t, "one strict").files(1))
+	low := r.Agreement.Within[0].Kappa
+	if low.Value >= Default[Kappa][0] {
+		t.Fatalf("kappa over the trials %v: the study does not show what it is to show", low.Value)
+	}
+	if want := " Nor does Ash repeat the same calls: kappa over the trials is " + format.Figure(low.Value) + ", less than 0.75."; len(v.Causes) != 1 || !strings.HasSuffix(v.Causes[0].Text, want) {
+		t.Errorf("%+v lacks %q", v.Causes, want)
+	}
+	_, v = decide(t, causeTest(t, "all strict").files(1))
+	if len(v.Causes) != 1 || !strings.Contains(v.Causes[0].Text, " Nor do Ash, Birch and Cedar repeat the same calls: kappa over the trials is 0.") {
+		t.Errorf("%+v", v.Causes)
+	}
+	// One who repeats every grade, one too strict on every third part.
+	csv := "part,reference,A-1,A-2,B-1,B-2\n"
+	for i := range 24 {
+		call := "a"
+		if i%3 == 0 {
+			call = "b"
+		}
+		csv += fmt.Sprintf("%d,a,%s,%[2]s,a,a\n%d,c,c,c,c,c\n", 2*i+1, call, 2*i+2)
+	}
+	_, v = decide(t, calls(csv, "order = [\"a\", \"b\", \"c\"]\naccept = [\"a\"]\n"))
+	if got := found(v); got != "grades_lean:A" || strings.Contains(v.Causes[0].Text, "repeat") {
+		t.Errorf("%q: %+v", got, v.Causes)
 	}
 }

@@ -1,6 +1,9 @@
 package verdict
 
 import (
+	"cmp"
+	"math"
+
 	"samecall/agreement"
 	"samecall/agreement/interval"
 	"samecall/cmd/samecall/internal/study"
@@ -56,7 +59,8 @@ type Criterion struct {
 	Parts      int     // how many there are
 	// More is how many parts more, of that kind, would settle an open
 	// criterion if the rate stayed as it is; 0 where none would.
-	More int
+	More    int
+	between bool // the kappa between appraisers, not that of one
 	// Best is the level that so many parts can show at the very best, without
 	// a single error; meaningful for rates and shares.
 	Best float64
@@ -68,10 +72,22 @@ func (c Criterion) atMost() bool { return c.Name == Miss || c.Name == FalseAlarm
 // meets reports whether x is good enough for a level.
 func (c Criterion) meets(x, level float64) bool {
 	if c.atMost() {
-		return x <= level
+		return side(x, level) <= 0
 	}
-	return x >= level
+	return side(x, level) >= 0
 }
+
+// side tells on which side of a level a figure lies: −1, 1, or 0 on it. A
+// kappa of three quarters, computed from sums, may differ from it in its last
+// digit.
+func side(x, level float64) int {
+	if onLevel(x, level) {
+		return 0
+	}
+	return cmp.Compare(x, level)
+}
+
+func onLevel(x, level float64) bool { return math.Abs(x-level) <= 1e-12 }
 
 // newCriterion holds an estimate against its levels.
 func newCriterion(name string, levels Levels, e agreement.Estimate, kind string, parts int, confidence float64) Criterion {

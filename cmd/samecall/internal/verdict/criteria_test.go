@@ -70,13 +70,13 @@ func TestOpenIsTold(t *testing.T) {
 		more  int
 		text  string
 	}{
-		{Miss, one(0.063, 0.017, 0.2), 16, 6, "Open: at 95 % confidence it may be as low as 1.7 %, within the 5 % allowed; 6 parts more at this rate would show it. 16 parts cannot show a miss rate below 5 %: at best 17.1 %."},
-		{Miss, one(0.063, 0.017, 0.2), 100, 1, "Open: at 95 % confidence it may be as low as 1.7 %, within the 5 % allowed; 1 part more at this rate would show it."},
-		{Miss, one(0.0501, 0.017, 0.2), 100, 0, "Open: at 95 % confidence it may be as low as 1.7 %, within the 5 % allowed; not even 1\u00a0000 times the parts would show it."},
-		{Effectiveness, one(0.75, 0.6, 0.87), 16, 9, "Open: at 95 % confidence it may be as high as 87 %, above the 80 % required; 9 parts more at this share would show it."},
-		{Effectiveness, one(0.75, 0.6, 0.8001), 16, 9, "Open: at 95 % confidence it may be as high as 80.01 %, above the 80 % required; 9 parts more at this share would show it."},
-		{Miss, one(0.5, 0.00001, 0.9), 100, 9, "Open: at 95 % confidence it may be less than 0.01 %, within the 5 % allowed; 9 parts more at this rate would show it."},
-		{Kappa, one(0.3, 0.1, 0.5), 16, 9, "Open: at 95 % confidence it may be as high as 0.50, above the 0.40 required; 9 parts more at this kappa would show it."},
+		{Miss, one(0.063, 0.017, 0.2), 16, 6, "Open: it may be as low as 1.7 % (one-sided, 95 %), within the 5 % allowed; 6 parts more at this rate would show it. 16 parts cannot show a miss rate below 5 %: at best 17.1 %."},
+		{Miss, one(0.063, 0.017, 0.2), 100, 1, "Open: it may be as low as 1.7 % (one-sided, 95 %), within the 5 % allowed; 1 part more at this rate would show it."},
+		{Miss, one(0.0501, 0.017, 0.2), 100, 0, "Open: it may be as low as 1.7 % (one-sided, 95 %), within the 5 % allowed; not even 1\u00a0000 times the parts would show it."},
+		{Effectiveness, one(0.75, 0.6, 0.87), 16, 9, "Open: it may be as high as 87 % (one-sided, 95 %), above the 80 % required; 9 parts more at this share would show it."},
+		{Effectiveness, one(0.75, 0.6, 0.8001), 16, 9, "Open: it may be as high as 80.01 % (one-sided, 95 %), above the 80 % required; 9 parts more at this share would show it."},
+		{Miss, one(0.5, 0.00001, 0.9), 100, 9, "Open: it may be less than 0.01 % (one-sided, 95 %), within the 5 % allowed; 9 parts more at this rate would show it."},
+		{Kappa, one(0.3, 0.1, 0.5), 16, 9, "Open: it may be as high as 0.50 (one-sided, 95 %), above the 0.40 required; 9 parts more at this kappa would show it."},
 		{Miss, one(0, 0, 0.171), 16, 133, "Open: 16 parts cannot show less than 17.1 %; 133 parts more without an error would settle it."},
 	} {
 		got := newCriterion(c.name, Default[c.name], c.e, "part", c.parts, 0.95)
@@ -84,6 +84,78 @@ func TestOpenIsTold(t *testing.T) {
 		if got.EvidenceText() != c.text {
 			t.Errorf("%s %v: %q, want %q", c.name, c.e.Value, got.EvidenceText(), c.text)
 		}
+	}
+}
+
+// Rounded, a figure may read as if it stood otherwise to a level that it stands
+// beside: then it has more digits.
+func TestFigureBesideALevel(t *testing.T) {
+	for _, c := range []struct {
+		name  string
+		x     float64
+		level Levels
+		want  string
+	}{
+		{Kappa, 0.7478, Default[Kappa], "0.7478"},
+		{Kappa, 0.749996, Default[Kappa], "0.749996"},
+		{Kappa, 0.7521, Default[Kappa], "0.7521"},
+		{Kappa, 0.75, Default[Kappa], "0.75"},
+		{Kappa, 0.75 - 1e-16, Default[Kappa], "0.75"}, // computed from sums
+		{Kappa, 0.76, Default[Kappa], "0.76"},
+		{Kappa, 0.7460, Levels{0.747, 0.40}, "0.746"}, // 0.75 would read as met
+		{Kappa, 0.995, Levels{0.99, 0.40}, "0.995"},
+		{Kappa, -0.0049, Levels{0, -0.5}, "−0.0049"},
+		{Miss, 0.0501, Default[Miss], "5.01 %"},
+		{Miss, 0.05, Default[Miss], "5.0 %"},
+		{Miss, 0.063, Default[Miss], "6.3 %"},
+		{Miss, 0.00003, Default[Miss], "<0.01 %"},
+		{Effectiveness, 54.0 / 60, Default[Effectiveness], "90 %"},
+		{Effectiveness, 0.8045, Default[Effectiveness], "80.45 %"},
+		{Effectiveness, 0.84, Levels{0.843, 0.8}, "84 %"},
+	} {
+		got := newCriterion(c.name, c.level, one(c.x, 0, 1), "part", 50, 0.95)
+		if got.Found() != c.want {
+			t.Errorf("%s %v: %q, want %q", c.name, c.x, got.Found(), c.want)
+		}
+	}
+	if c := newCriterion(Kappa, Default[Kappa], one(0.75-1e-16, 0, 1), "part", 50, 0.95); c.Met != Accept {
+		t.Errorf("kappa on its level but for the last digit: %v", c.Met)
+	}
+}
+
+// For people one word in sentence and table: a rejection that the data show is
+// shown. What is open has what would settle it, or why nothing would.
+func TestShownAndToSettle(t *testing.T) {
+	unbounded := one(0.5, 0, 0)
+	unbounded.Unbounded = errors.New("a single part")
+	for _, c := range []struct {
+		name          string
+		e             agreement.Estimate
+		more          int
+		shows, settle string
+	}{
+		{Miss, one(0.07, 0.051, 0.08), 0, "shown", ""},
+		{Miss, one(0, 0, 0.02), 0, "shown", ""},
+		{Effectiveness, one(0.85, 0.81, 0.9), 0, "shown", ""},
+		{Miss, one(0.07, 0.04, 0.08), 12, "open", "12 parts more"},
+		{Miss, one(0.05, 0.04, 0.08), 0, "open", "on its level: more parts cannot"},
+		{Miss, one(0.0501, 0.04, 0.08), 0, "open", "not even 1\u00a0000 times the parts"},
+		{Kappa, unbounded, 0, "open", "a single part"},
+		{Miss, agreement.Estimate{Absent: errors.New("no bad part")}, 0, "", ""},
+	} {
+		got := newCriterion(c.name, Default[c.name], c.e, "part", 50, 0.95)
+		got.More = c.more
+		if got.Shows() != c.shows || got.ToSettle() != c.settle {
+			t.Errorf("%s %v: %q, %q; want %q, %q", c.name, c.e.Value, got.Shows(), got.ToSettle(), c.shows, c.settle)
+		}
+		if told := strings.HasPrefix(got.EvidenceText(), "The data show"); told != (c.shows == "shown") {
+			t.Errorf("%s %v: the table says %q, the sentence %q", c.name, c.e.Value, got.Shows(), got.EvidenceText())
+		}
+	}
+	// A level that leaves no room for an error.
+	got := newCriterion(Miss, Levels{0, 0.05}, one(0, 0, 0.06), "bad part", 50, 0.95)
+	if got.ToSettle() != "no number of parts can" {
+		t.Error(got.ToSettle())
 	}
 }
 

@@ -2,6 +2,7 @@ package verdict
 
 import (
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -10,13 +11,23 @@ import (
 
 // Label is the criterion's name as people read it.
 func (c Criterion) Label() string {
-	switch c.Name {
-	case Miss:
+	switch {
+	case c.Name == Miss:
 		return "miss rate"
-	case FalseAlarm:
+	case c.Name == FalseAlarm:
 		return "false-alarm rate"
+	case c.between:
+		return "kappa between appraisers"
 	}
 	return c.Name
+}
+
+// of names the criterion and whose it is.
+func (c Criterion) of(who []string) string {
+	if c.between {
+		return c.Label()
+	}
+	return c.Label() + " of " + some(who)
 }
 
 // Number writes a value of the criterion's kind.
@@ -38,23 +49,35 @@ func (c Criterion) Level(x float64) string {
 	return strconv.FormatFloat(100*x, 'g', 4, 64) + " %"
 }
 
-// found writes the estimate.
-func (c Criterion) found() string { return c.exact(c.Estimate.Value) }
+// Found writes the estimate.
+func (c Criterion) Found() string { return c.exact(c.Estimate.Value) }
 
-// exact writes a value, with more digits where it would read like a level
-// that it is not.
-func (c Criterion) exact(x float64) string {
-	text := c.Number(x)
-	for _, level := range c.Levels {
-		if x == level || (text != c.Number(level) && text != c.Level(level)) {
-			continue
-		}
-		if c.Name == Kappa {
-			return strconv.FormatFloat(x, 'g', 4, 64)
-		}
-		return strconv.FormatFloat(100*x, 'g', 4, 64) + " %"
+// exact writes a value beside the levels of the criterion.
+func (c Criterion) exact(x float64) string { return besides(x, c.Number(x), c.Levels[:]...) }
+
+// besides writes a figure that stands beside levels: as the text given or,
+// where that stands otherwise to a level than the figure does (on it and not
+// below, as 0.7478 rounded and 0.75), with more digits, four at least.
+func besides(x float64, text string, levels ...float64) string {
+	number, percent := strings.CutSuffix(text, " %")
+	value, unit := x, ""
+	if percent {
+		value, unit = 100*x, "e-2"
 	}
-	return text
+	for n := 4; n < 17 && misleads(x, number+unit, levels); n++ {
+		number = strings.ReplaceAll(strconv.FormatFloat(value, 'g', n, 64), "-", "−")
+	}
+	if percent {
+		number += " %"
+	}
+	return number
+}
+
+// misleads reports whether a number as it is read stands otherwise to a level
+// than x does.
+func misleads(x float64, number string, levels []float64) bool {
+	read, err := strconv.ParseFloat(strings.NewReplacer("−", "-", "<", "").Replace(number), 64)
+	return err != nil || slices.ContainsFunc(levels, func(level float64) bool { return side(read, level) != side(x, level) })
 }
 
 // Text says what was found against what was asked: "miss rate 6.3 %, more
@@ -67,7 +90,7 @@ func (c Criterion) Text() string {
 	if c.atMost() {
 		short, enough, asked = "more than", "at most", "allowed"
 	}
-	text := c.Label() + " " + c.found() + ", "
+	text := c.Label() + " " + c.Found() + ", "
 	switch c.Met {
 	case Accept:
 		return text + enough + " " + c.Level(c.Levels[0])
@@ -112,24 +135,22 @@ func (c Criterion) otherSide() string {
 		return c.Estimate.Unbounded.Error()
 	}
 	limit := c.deciding(c.Estimate.OneSided)
-	side, level := "high", "the "+c.Level(c.Against)+" required"
+	far, level := "high", "the "+c.Level(c.Against)+" required"
 	if c.atMost() {
-		side, level = "low", "the "+c.Level(c.Against)+" allowed"
+		far, level = "low", "the "+c.Level(c.Against)+" allowed"
 	}
 	reach := "above "
 	switch {
-	case limit == c.Against:
+	case onLevel(limit, c.Against):
 		reach = "on "
 	case c.atMost():
 		reach = "within "
 	}
-	bound := "as " + side + " as " + c.exact(limit)
-	if x, yes := strings.CutPrefix(c.Number(limit), "<"); yes {
+	bound := "as " + far + " as " + c.exact(limit)
+	if x, yes := strings.CutPrefix(c.exact(limit), "<"); yes {
 		bound = "less than " + x
-	} else if x, yes := strings.CutPrefix(c.Number(limit), ">"); yes {
-		bound = "more than " + x
 	}
-	text := fmt.Sprintf("at %s confidence it may be %s, %s%s", strconv.FormatFloat(100*c.Confidence, 'g', 4, 64)+" %", bound, reach, level)
+	text := fmt.Sprintf("it may be %s (one-sided, %s), %s%s", bound, strconv.FormatFloat(100*c.Confidence, 'g', 4, 64)+" %", reach, level)
 	if c.More > 0 {
 		return text + fmt.Sprintf("; %s more at this %s would show it", format.Counted(c.More, c.Kind), c.measure())
 	}
@@ -142,7 +163,7 @@ func (c Criterion) tooFew() string {
 	if !c.atMost() || c.meets(c.Best, c.Against) {
 		return ""
 	}
-	return fmt.Sprintf(" %s cannot show a %s below %s: at best %s.", format.Counted(c.Parts, c.Kind), c.Label(), c.Level(c.Against), c.Number(c.Best))
+	return fmt.Sprintf(" %s cannot show a %s below %s: at best %s.", format.Counted(c.Parts, c.Kind), c.Label(), c.Level(c.Against), c.exact(c.Best))
 }
 
 // open says why a criterion is open and what would settle it.
@@ -156,7 +177,7 @@ func (c Criterion) open() string {
 		if c.atMost() {
 			than = "less"
 		}
-		text = fmt.Sprintf("%s cannot show %s than %s; ", format.Counted(c.Parts, c.Kind), than, c.Number(c.Best))
+		text = fmt.Sprintf("%s cannot show %s than %s; ", format.Counted(c.Parts, c.Kind), than, c.exact(c.Best))
 	}
 	switch {
 	case c.More > 0 && c.errorFree():
@@ -165,10 +186,40 @@ func (c Criterion) open() string {
 		return text + fmt.Sprintf("%s more at this %s would settle it", format.Counted(c.More, c.Kind), c.measure())
 	case c.errorFree(): // and the level leaves no room for an error
 		return text + "no number of parts can show that it is " + c.claim()
-	case c.Estimate.Value == c.Against:
+	case onLevel(c.Estimate.Value, c.Against):
 		return text + "it lies on its level, which more parts would not settle"
 	}
 	return text + fmt.Sprintf("it lies so close to its level that not even %s times the parts would settle it", format.Count(manyTimes))
+}
+
+// Shows says in a word whether the data show what the estimate says: that it
+// meets the level it reaches or, of a rejection, that it misses the
+// conditional level.
+func (c Criterion) Shows() string {
+	switch {
+	case c.Met == NotShown:
+		return ""
+	case c.Evidence == Open:
+		return "open"
+	}
+	return "shown"
+}
+
+// ToSettle says in a few words what would settle a criterion that is open.
+func (c Criterion) ToSettle() string {
+	switch {
+	case c.Met == NotShown || c.Evidence != Open:
+		return ""
+	case c.More > 0:
+		return format.Counted(c.More, c.Kind) + " more"
+	case c.Estimate.Unbounded != nil:
+		return c.Estimate.Unbounded.Error()
+	case c.errorFree():
+		return "no number of parts can"
+	case onLevel(c.Estimate.Value, c.Against):
+		return "on its level: more parts cannot"
+	}
+	return fmt.Sprintf("not even %s times the parts", format.Count(manyTimes))
 }
 
 // errorFree reports whether not one error was found.

@@ -62,7 +62,7 @@ func TestManualsEvidence(t *testing.T) {
 		if want := 1 - math.Pow(0.05, 1.0/16); math.Abs(miss.Best-want) > 1e-12 {
 			t.Errorf("%s: 16 bad parts can show %v, want %v", a.Name, miss.Best, want)
 		}
-		for _, want := range []string{"Open: at 95 % confidence it may be as low as ", ", within the 5 % allowed; ", " would show it. 16 bad parts cannot show a miss rate below 5 %: at best 17.1 %."} {
+		for _, want := range []string{"Open: it may be as low as ", " (one-sided, 95 %), within the 5 % allowed; ", " would show it. 16 bad parts cannot show a miss rate below 5 %: at best 17.1 %."} {
 			if got := miss.EvidenceText(); !strings.Contains(got, want) {
 				t.Errorf("%s: %q lacks %q", a.Name, got, want)
 			}

@@ -29,10 +29,13 @@ func next(r *judge.Result, v *Verdict) []string {
 			add(c.Do)
 		}
 	}
-	add(containment(r, v))
+	if !v.peopleOnly() {
+		add(containment(r, v))
+	}
 	for _, c := range v.Causes {
 		add(c.Do)
 	}
+	add(containment(r, v))
 	for _, text := range wrongCallsOf(r, v) {
 		add(text)
 	}
@@ -170,20 +173,19 @@ func moreParts(r *judge.Result, v *Verdict) string {
 // settleReject says what would settle a rejection that the data leave open,
 // and what a study after the correction takes.
 func settleReject(r *judge.Result, v *Verdict) string {
-	var best Criterion
-	who := ""
+	var best *ground
 	for _, g := range v.grounds() {
 		if g.c.Evidence == Contradicted {
 			return repeatStudy(r, v)
 		}
-		if g.c.More > 0 && (who == "" || g.c.More < best.More) {
-			best, who = g.c, some(g.who)
+		if g.c.More > 0 && (best == nil || g.c.More < best.c.More) {
+			best = &g
 		}
 	}
-	if who == "" || best.More > largerStudy*best.Parts {
+	if best == nil || best.c.More > largerStudy*best.c.Parts {
 		return repeatStudy(r, v)
 	}
-	return fmt.Sprintf("The rejection itself is open: with %s more at the same %s, the %s of %s would settle it.", format.Counted(best.More, best.Kind), best.measure(), best.Label(), who)
+	return stop(fmt.Sprintf("The rejection itself is open: %s more at the same %s would settle the %s", format.Counted(best.c.More, best.c.Kind), best.c.measure(), best.c.of(best.who)))
 }
 
 // repeatStudy says what a new study takes to show the miss rate, where the

@@ -1,10 +1,13 @@
 package verdict
 
 import (
+	"fmt"
 	"math/rand/v2"
 	"slices"
 	"strings"
 	"testing"
+
+	"samecall/cmd/samecall/internal/study"
 )
 
 // at is the place of the first step that holds a text; −1 if none does.
@@ -104,6 +107,41 @@ func TestGaugeFirst(t *testing.T) {
 		if got := at(v.Next, "Consider parts passed with this gauge since its last good check as suspect") == 1; got != c.suspect {
 			t.Errorf("%s, %q: %q", c.model, c.sizes, v.Next)
 		}
+	}
+}
+
+// Where the only cause is one person, what to do with that person comes first,
+// and the parts in doubt are those that it passed.
+func TestPeopleFirst(t *testing.T) {
+	csv := "part,reference,A-1,A-2,A-3,B-1,B-2,B-3\n"
+	for i := range 40 { // B accepts half of the bad parts, now and then
+		ref, calls := 1, "1,1,1"
+		if i < 20 {
+			ref, calls = 0, []string{"0,1,0", "1,0,1", "1,1,0", "0,0,1"}[i%4]
+		}
+		csv += fmt.Sprintf("%d,%d,%d,%d,%d,%s\n", i+1, ref, ref, ref, ref, calls)
+	}
+	_, v := decide(t, calls(csv, ""))
+	if got := found(v); got != "inconsistent:B" {
+		t.Fatalf("causes %q", got)
+	}
+	if first, then := at(v.Next, "Go through the mixed parts with B"), at(v.Next, "Consider parts passed by B since the last good check as suspect, by your own rules."); first != 0 || then != 1 {
+		t.Errorf("%q", v.Next)
+	}
+	// A gauge that all use is not one person's.
+	_, v = decide(t, causeTest(t, "all inconsistent").files(1))
+	for _, s := range v.Next {
+		if strings.Contains(s, "parts passed by") && !strings.Contains(s, "by this inspection") {
+			t.Errorf("%q", s)
+		}
+	}
+}
+
+// What would settle an open rejection is the parts, not the rate.
+func TestOpenRejectionIsSettledByParts(t *testing.T) {
+	v := manual(t, study.Settings{})
+	if got := v.Next[len(v.Next)-1]; got != "The rejection itself is open: 6 bad parts more at the same rate would settle the miss rate of C." {
+		t.Errorf("%q", v.Next)
 	}
 }
 

@@ -36,6 +36,11 @@ func TestPrevalentCategoryDoesNotReject(t *testing.T) {
 	if v.Between == nil || v.Between.Met != Reject {
 		t.Fatalf("kappa between appraisers %+v: the study does not show what it is to show", v.Between)
 	}
+	for _, g := range v.grounds() {
+		if g.c.between {
+			t.Errorf("what does not count is told as a ground: %q", g.text())
+		}
+	}
 	if v.Overall != NotShown { // there is no bad part
 		t.Errorf("verdict %v, want not shown; reasons %q", v.Overall, v.Reasons)
 	}

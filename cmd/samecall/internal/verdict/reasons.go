@@ -9,14 +9,23 @@ import (
 	"samecall/cmd/samecall/internal/judge"
 )
 
-// ground is a figure that decides the verdict, and those whose it is.
+// ground is a figure that decides the verdict, and those whose it is; nobody
+// where it is that between appraisers.
 type ground struct {
 	who []string
 	c   Criterion
 }
 
-// betweenAll stands for all appraisers in a ground.
-const betweenAll = "between appraisers"
+// text is the figure with those whose it is, against what is asked.
+func (g ground) text() string {
+	if g.c.between {
+		return capital(g.c.Text())
+	}
+	return some(g.who) + ": " + g.c.Text()
+}
+
+// figures is how many figures read so.
+func (g ground) figures() int { return max(1, len(g.who)) }
 
 // mostReasons is how many reasons are told in full, and mostAlso how many
 // more by name.
@@ -40,7 +49,7 @@ func reasons(r *judge.Result, v *Verdict) (why, carry []string) {
 	// The furthest from its level first.
 	slices.SortStableFunc(grounds, func(a, b ground) int { return cmp.Compare(b.c.distance(), a.c.distance()) })
 	for _, g := range grounds[:min(mostReasons, len(grounds))] {
-		why = append(why, stop(some(g.who)+": "+g.c.Text()))
+		why = append(why, stop(g.text()))
 		carry = append(carry, g.c.EvidenceText())
 	}
 	if len(grounds) > mostReasons {
@@ -59,11 +68,14 @@ func also(grounds []ground) string {
 		if i > 0 {
 			text += "; "
 		}
-		text += fmt.Sprintf("%s: %s", some(g.who), g.c.Label())
+		if !g.c.between {
+			text += some(g.who) + ": "
+		}
+		text += g.c.Label()
 		if g.c.Met == NotShown {
 			text += " not known"
 		} else {
-			text += " " + g.c.found()
+			text += " " + g.c.Found()
 		}
 	}
 	return stop("Also " + text)
@@ -82,25 +94,22 @@ func some(who []string) string {
 func (v *Verdict) grounds() []ground {
 	var out []ground
 	at := make(map[string]int)
-	add := func(who string, c Criterion) {
-		if c.Met != v.Overall {
-			return
-		}
-		key := c.Text() + c.EvidenceText()
-		if i, ok := at[key]; ok && who != betweenAll {
-			out[i].who = append(out[i].who, who)
-			return
-		}
-		at[key] = len(out)
-		out = append(out, ground{[]string{who}, c})
-	}
 	for _, a := range v.Appraisers {
 		for _, c := range a.Criteria {
-			add(a.Name, c)
+			if c.Met != v.Overall {
+				continue
+			}
+			key := c.Text() + c.EvidenceText()
+			if i, ok := at[key]; ok {
+				out[i].who = append(out[i].who, a.Name)
+				continue
+			}
+			at[key] = len(out)
+			out = append(out, ground{[]string{a.Name}, c})
 		}
 	}
-	if v.Between != nil && v.Between.Met != NotShown { // calls all alike are no fault
-		add(betweenAll, *v.Between)
+	if v.counts && v.Between.Met == v.Overall {
+		out = append(out, ground{c: *v.Between})
 	}
 	return out
 }
@@ -122,15 +131,15 @@ func (c Criterion) distance() float64 {
 // which is furthest from being shown.
 func shownOf(v *Verdict) string {
 	n, open := 0, 0
-	var furthest ground
+	var furthest *ground
 	for _, g := range v.grounds() {
-		n += len(g.who)
+		n += g.figures()
 		if g.c.Evidence != Open {
 			continue
 		}
-		open += len(g.who)
-		if furthest.who == nil || needsMore(g.c, furthest.c) {
-			furthest = g
+		open += g.figures()
+		if furthest == nil || needsMore(g.c, furthest.c) {
+			furthest = &g
 		}
 	}
 	switch {
@@ -143,7 +152,7 @@ func shownOf(v *Verdict) string {
 }
 
 func (g ground) say() string {
-	return stop(fmt.Sprintf("Furthest from being shown is that the %s of %s is %s: %s", g.c.Label(), some(g.who), g.c.claim(), g.c.open()))
+	return stop(fmt.Sprintf("Furthest from being shown is that the %s is %s: %s", g.c.of(g.who), g.c.claim(), g.c.open()))
 }
 
 // needsMore reports whether a takes more parts than b to be shown; a figure

@@ -5,6 +5,7 @@ import (
 
 	"samecall/agreement"
 	"samecall/cmd/samecall/internal/format"
+	"samecall/cmd/samecall/internal/judge"
 )
 
 // kappaGap is how far kappa between appraisers must be below kappa within for
@@ -19,12 +20,12 @@ func apart(f *finder) []Cause {
 	}
 	b := f.Agreement.Between
 	same, other := b.SameAppraiser, b.DifferentAppraisers
-	if same.Absent != nil || other.Absent != nil || same.Value < f.levels[Kappa][0] || same.Value-other.Value < kappaGap {
+	if same.Absent != nil || other.Absent != nil || side(same.Value, f.levels[Kappa][0]) < 0 || same.Value-other.Value < kappaGap {
 		return nil
 	}
-	text := fmt.Sprintf("Each appraiser repeats the same calls (kappa %s), but the appraisers differ from each other (kappa %s).", format.Kappa(same), format.Kappa(other))
+	text := fmt.Sprintf("Each appraiser repeats the same calls (kappa within appraisers %s), but they differ from each other (kappa between appraisers %s).", format.Kappa(same), format.Kappa(other))
 	do := "Have all appraisers call together, beside one standard, the parts on which they differ"
-	who := f.standsApart()
+	who := Apart(f.Result)
 	if who != Everyone {
 		text += fmt.Sprintf(" %s stands apart; the others agree with each other.", f.name(who))
 		do = fmt.Sprintf("Compare the calls of %s with those of the others, beside one standard, on the parts on which they differ", f.name(who))
@@ -35,17 +36,16 @@ func apart(f *finder) []Cause {
 	return []Cause{{Code: codeApart, Appraiser: who, Text: text, Do: stop(do)}}
 }
 
-// standsApart returns the appraiser with whom every pair agrees less, by the
-// gap of kappas that counts, than every pair without; Everyone if there is no
-// such one.
-func (f *finder) standsApart() int {
-	n := len(f.Study.Appraisers)
+// Apart returns the appraiser with whom every pair agrees less, by the gap of
+// kappas that counts, than every pair without; Everyone if there is no such one.
+func Apart(r *judge.Result) int {
+	n := len(r.Study.Appraisers)
 	if n < 3 {
 		return Everyone
 	}
 	for a := range n {
 		bestWith, worstWithout := -1.0, 1.0
-		for _, p := range f.Agreement.Between.Pairs {
+		for _, p := range r.Agreement.Between.Pairs {
 			switch {
 			case p.Kappa.Absent != nil:
 				return Everyone

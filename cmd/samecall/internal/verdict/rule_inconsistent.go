@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"slices"
 
+	"samecall/agreement"
 	"samecall/cmd/samecall/internal/format"
 	"samecall/signal"
 )
@@ -29,7 +30,7 @@ func inconsistent(f *finder) []Cause {
 	n := 0
 	level := f.levels[Kappa][0]
 	for a, w := range f.Agreement.Within {
-		if w.Kappa.Absent != nil || w.Kappa.Value >= level || f.has(a, codeKinds, codeGrades) {
+		if w.Kappa.Absent != nil || side(w.Kappa.Value, level) >= 0 || f.has(a, codeKinds, codeGrades) {
 			continue
 		}
 		if n++; f.asSureAsOthers(a) {
@@ -37,8 +38,8 @@ func inconsistent(f *finder) []Cause {
 		}
 		out = append(out, Cause{
 			Code: codeInconsistent, Appraiser: a,
-			Text: fmt.Sprintf("%s does not repeat the same calls: %s of %s %s mixed; kappa over the trials is %s, less than %s.",
-				f.name(a), format.Count(len(w.Mixed)), format.Counted(w.Share.Of, "part"), are(len(w.Mixed)), format.Kappa(w.Kappa), format.Figure(level)),
+			Text: fmt.Sprintf("%s does not repeat the same calls: %s of %s %s mixed; kappa over the trials is %s.",
+				f.name(a), format.Count(len(w.Mixed)), format.Counted(w.Share.Of, "part"), are(len(w.Mixed)), below(w.Kappa, level)),
 			Do: stop(fmt.Sprintf("Go through the mixed parts with %s: lighting, handling, what counts as a reject. Then repeat the trials. Mixed: %s",
 				f.name(a), f.list(w.Mixed))),
 		})
@@ -49,9 +50,52 @@ func inconsistent(f *finder) []Cause {
 	return []Cause{{
 		Code: codeInconsistent, Appraiser: Everyone,
 		Text: fmt.Sprintf("%d of %d appraisers do not repeat their own calls (kappa over their trials is less than %s). That points to the method or the gauge, not to one person.%s",
-			n, len(f.Study.Appraisers), format.Figure(level), f.zoneWidth()),
+			n, len(f.Study.Appraisers), levelText(level), f.zoneWidth()),
 		Do: stop("Look at the method first: gauge and fixture, lighting, the written standard for the call. " + f.mixedForMany()),
 	}}
+}
+
+// levelText writes a level of kappa.
+func levelText(level float64) string { return Criterion{Name: Kappa}.Level(level) }
+
+// below tells a kappa that is less than a level.
+func below(e agreement.Estimate, level float64) string {
+	text := besides(e.Value, format.Figure(e.Value), level)
+	if e.Unbounded == nil {
+		text += " " + format.FigureRange(e.Interval)
+	}
+	return text + ", less than " + levelText(level)
+}
+
+// alsoInconsistent completes a cause that keeps the rule above from an
+// appraiser, confused kinds or leaning grades: its calls may differ from trial
+// to trial as well.
+func alsoInconsistent(f *finder) {
+	level := f.levels[Kappa][0]
+	told := make(map[int]bool)
+	for i, c := range f.found {
+		if c.Code != codeKinds && c.Code != codeGrades {
+			continue
+		}
+		var who, kappas []string
+		for a, w := range f.Agreement.Within {
+			if c.Appraiser != a && c.Appraiser != Everyone || told[a] || w.Kappa.Absent != nil || side(w.Kappa.Value, level) >= 0 {
+				continue
+			}
+			told[a] = true
+			who, kappas = append(who, f.name(a)), append(kappas, besides(w.Kappa.Value, format.Figure(w.Kappa.Value), level))
+		}
+		verb, found := "do", "is "+and(kappas)+", "
+		if len(who) == 1 {
+			verb = "does"
+		}
+		if len(who) > manyNames {
+			found = "is "
+		}
+		if len(who) > 0 {
+			f.found[i].Text += fmt.Sprintf(" Nor %s %s repeat the same calls: kappa over the trials %sless than %s.", verb, some(who), found, levelText(level))
+		}
+	}
 }
 
 // asSureAsOthers reports whether an appraiser is in doubt over a width of

@@ -12,12 +12,16 @@ import (
 type Verdict struct {
 	Overall    Level
 	Appraisers []Appraiser
-	Between    *Criterion // Fleiss' kappa of all calls against the levels of kappa; nil with one appraiser
-	Reasons    []string   // the one or two that decide, and what else misses its level
-	Carry      []string   // how far the data carry each of the deciding reasons
-	Causes     []Cause
-	Next       []string
-	Cautions   []string
+	// Between is the kappa of calls by different appraisers against the levels
+	// of kappa; nil with one appraiser.
+	Between  *Criterion
+	Reasons  []string // the one or two that decide, and what else misses its level
+	Carry    []string // how far the data carry each of the deciding reasons
+	Causes   []Cause
+	Next     []string
+	Cautions []string
+
+	counts bool // Between is among what the verdict rests on
 }
 
 // Appraiser is the verdict on one appraiser.
@@ -44,12 +48,13 @@ func Decide(r *judge.Result) *Verdict {
 		v.Overall = max(v.Overall, ap.Verdict)
 	}
 	if b := r.Agreement.Between; b.Share.Absent == nil {
-		c := newCriterion(Kappa, levels[Kappa], b.Fleiss, "part", b.Share.Of, r.Options.Confidence)
-		c.settle(coefficient(b.Fleiss, c.Parts))
+		c := newCriterion(Kappa, levels[Kappa], b.DifferentAppraisers, "part", b.Share.Of, r.Options.Confidence)
+		c.settle(coefficient(b.DifferentAppraisers, c.Parts))
+		c.between = true
 		v.Between = &c
 		// Calls that are all alike have no kappa, and are no fault; nor can a
 		// kappa that one prevailing category pulls down decide by itself.
-		if c.Met != NotShown && !prevalent(r) {
+		if v.counts = c.Met != NotShown && !prevalent(r); v.counts {
 			v.Overall = max(v.Overall, c.Met)
 		}
 	}

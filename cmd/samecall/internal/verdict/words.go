@@ -44,3 +44,6 @@ func are(n int) string {
 	}
 	return "are"
 }
+
+// capital begins a sentence with a text of our own.
+func capital(s string) string { return strings.ToUpper(s[:1]) + s[1:] }
