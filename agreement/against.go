@@ -26,13 +26,14 @@ type Against struct {
 }
 
 var (
-	errNoReference  = errors.New("no part has a reference: nothing is known to be right or wrong")
-	errNeverCalled  = errors.New("no part with a reference was called")
-	errNoBad        = errors.New("no bad part was called: the miss rate is unknown")
-	errNoGood       = errors.New("no good part was called: the false-alarm rate is unknown")
-	errNoAccept     = errors.New("no category is set as acceptable: there are no misses and no false alarms")
-	errOneReference = errors.New("the parts called are all of one reference category: kappa against it has nothing to measure")
-	errOneSided     = errors.New("the calls and the reference are of one category only, the same: kappa has nothing to measure")
+	errNoReference          = errors.New("no part has a reference: nothing is known to be right or wrong")
+	errNeverCalled          = errors.New("no part with a reference was called")
+	errNoBad                = errors.New("no bad part was called: the miss rate is unknown")
+	errNoGood               = errors.New("no good part was called: the false-alarm rate is unknown")
+	errNoAccept             = errors.New("no category is set as acceptable: there are no misses and no false alarms")
+	errOneReference         = errors.New("the parts called are all of one reference category: kappa against it has nothing to measure")
+	errOneReferenceCategory = errors.New("of the parts called, none or all are of this reference category: kappa against it has nothing to measure")
+	errOneSided             = errors.New("the calls and the reference are of one category only, the same: kappa has nothing to measure")
 )
 
 // against compares the calls in some columns of each row with the reference.
@@ -104,9 +105,14 @@ func (s *study) against(calls func(row []Category) []Category, mixed []int) Agai
 	out.Kappa = kappa(Nominal)
 	if s.Categories() > 2 {
 		for k := range s.Categories() {
-			out.Categories = append(out.Categories, s.cross(Nominal, out.Table.only(k), func(i int, add func(j, k Category)) {
+			only := out.Table.only(k)
+			e := s.cross(Nominal, only, func(i int, add func(j, k Category)) {
 				pairs(i, func(j, ref Category) { add(Category(is(int(j), k)), Category(is(int(ref), k))) })
-			}, nothing, errCategoryUnused))
+			}, nothing, errCategoryUnused)
+			if e.Absent == nil && only.columnsUsed() < 2 {
+				e = absent(errOneReferenceCategory)
+			}
+			out.Categories = append(out.Categories, e)
 		}
 	}
 	if s.weighted() {

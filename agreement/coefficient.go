@@ -1,5 +1,7 @@
 package agreement
 
+import "slices"
+
 // A coefficient is an agreement beyond chance,
 //
 //	1 − observed / expected disagreement,
@@ -14,17 +16,24 @@ type coefficient interface {
 	disagreements(sums []float64) (observed, expected float64, ok bool)
 	// gradient writes the derivative of the coefficient by each sum.
 	gradient(sums, into []float64)
+	// shares returns the share of each category among all calls; nil where
+	// categories disagree unequally.
+	shares(sums []float64) []float64
 }
 
 // evaluate returns the coefficient. It is undefined when nothing can be
 // compared, or when no disagreement is to be expected since all calls are alike.
 func evaluate(c coefficient, sums []float64) (float64, bool) {
 	observed, expected, ok := c.disagreements(sums)
-	if !ok || expected <= 0 {
+	if !ok || expected <= noDisagreement {
 		return 0, false
 	}
 	return 1 - observed/expected, true
 }
+
+// noDisagreement is what rounding may leave of an expected disagreement of 0;
+// one pair in ten million calls expects more.
+const noDisagreement = 1e-13
 
 // contributions are the vectors of a coefficient: one for each pattern, with
 // the number of parts that have it.
@@ -98,6 +107,14 @@ func (m oneMargin) squares(s []float64) float64 {
 	return S / (n * n)
 }
 
+func (m oneMargin) shares(s []float64) []float64 {
+	out := slices.Clone(s[inOneMargin+1:])
+	for k := range out {
+		out[k] /= s[inOneMargin]
+	}
+	return out
+}
+
 func (m oneMargin) disagreements(s []float64) (observed, expected float64, ok bool) {
 	if s[compared] <= 0 || s[inOneMargin] <= 0 {
 		return 0, 0, false
@@ -133,6 +150,18 @@ func (m twoMargins) size() int { return 2 + 2*m.categories }
 
 func (m twoMargins) margins(s []float64) (rows, columns []float64) {
 	return s[2 : 2+m.categories], s[2+m.categories : 2+2*m.categories]
+}
+
+func (m twoMargins) shares(s []float64) []float64 {
+	if m.weights != nil {
+		return nil
+	}
+	rows, columns := m.margins(s)
+	out := make([]float64, m.categories)
+	for k := range out {
+		out[k] = (rows[k] + columns[k]) / (2 * s[compared])
+	}
+	return out
 }
 
 func (m twoMargins) disagreements(s []float64) (observed, expected float64, ok bool) {

@@ -21,6 +21,10 @@ type Estimate struct {
 	StandardError float64
 	Absent        error
 	Unbounded     error
+	// Prevalent marks a coefficient that is pulled down since one category
+	// holds nearly all of the calls, while AC1 of the same calls is not: it
+	// understates the agreement.
+	Prevalent bool
 	// Independent is the interval that treats calls as independent, which
 	// they are not: of a kappa, estimate ± z standard errors of 1969 (Cohen)
 	// or 1979 (Fleiss), not cut at ±1; of a rate, Clopper–Pearson over

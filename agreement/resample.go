@@ -16,6 +16,13 @@ const (
 	// fewestResamples is how many resamples must have a value for limits to
 	// be read from them.
 	fewestResamples = 100
+	// mostWeights bounds what is kept of the resampled studies, two bytes each.
+	// Beyond it no group of coefficients would be within the budget either.
+	mostWeights = 1e8
+	// fewestBeyond is how many resampled values should lie beyond a limit: of
+	// fewer, the limit hardly goes further however high the confidence. Our own
+	// choice, no source.
+	fewestBeyond = 5
 	// resamplingBudget bounds the additions spent on resampling one study.
 	// A group of coefficients that would go beyond it, those of all pairs of
 	// two hundred appraisers, say, is linearised.
@@ -39,7 +46,7 @@ type resampler struct {
 func newResampler(p patterns, opt Options, coefficients int) *resampler {
 	r := &resampler{opt: opt, width: len(p.rows), budget: resamplingBudget, total: coefficients}
 	parts := len(p.pattern)
-	if opt.Resamples == 0 || parts > manyParts || parts < 2 {
+	if opt.Resamples == 0 || parts > manyParts || parts < 2 || opt.Resamples*r.width > mostWeights {
 		return r
 	}
 	rng := rand.New(rand.NewPCG(opt.Seed, 0))
@@ -66,7 +73,7 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 	if !ok {
 		return absent(undefined)
 	}
-	e := Estimate{Value: value}
+	e := Estimate{Value: value, Prevalent: prevalent(c, sums, value)}
 	parts, disagreeing := z.disagreeing()
 	if parts == 1 {
 		e.Unbounded = errOnePart
