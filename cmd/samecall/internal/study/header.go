@@ -135,7 +135,7 @@ func (l *layout) likelyTrial(field int) string {
 // title above the header.
 func oneColumn(name, sheet string) Problem {
 	p := Problem{Column: 1, Found: "one column, " + quote(name), Expected: "several, separated by comma, semicolon or tab",
-		Text: "the first line that is not blank and no comment is the header"}
+		Text: "the first line that is not blank and no comment (#) is the header"}
 	if sheet != "" {
 		p.Expected = "the columns of a header"
 		p.Text = "the first row that is not blank is the header: take a title above it out; " + sheet
@@ -230,7 +230,7 @@ func (l *layout) missing(fields map[string]*int, likely map[string]bool, sheet s
 		case name == "part" && sheet != "":
 			p.Text = "the first row that is not blank is read as the header; " + sheet
 		case name == "part" && !l.long:
-			p.Text = "the first line that is not blank and no comment is read as the header"
+			p.Text = "the first line that is not blank and no comment (#) is read as the header"
 		}
 		list = append(list, p)
 	}

@@ -87,7 +87,7 @@ calls.csv:3:3: found "og" in column 3 (a-1), expected ` + unknown + `; did you m
 		{"no column of calls", "part,reference\n1,go\n", Settings{},
 			`calls.csv:1: found no column with calls, expected either the columns appraiser, trial and call, or a column for each appraiser and trial, such as "early-1"`},
 		{"other separator", "part|appraiser|trial|call\n1|a|1|go\n", Settings{},
-			`calls.csv:1:1: found one column, "part|appraiser|trial|call", expected several, separated by comma, semicolon or tab; the first line that is not blank and no comment is the header`},
+			`calls.csv:1:1: found one column, "part|appraiser|trial|call", expected several, separated by comma, semicolon or tab; the first line that is not blank and no comment (#) is the header`},
 		{"two references", "part,appraiser,trial,call,reference\n1,a,1,go,go\n1,a,2,go,pass\n\n1,a,3,go,no\n1,a,4,go,no\n", Settings{},
 			`calls.csv:5:5: found the reference "no" of part "1", expected "go", as on line 2; a part has one reference`},
 		{"two values", "part,appraiser,trial,call,value\n1,a,1,go,\n1,a,2,go,1.0\n1,a,3,go,1\n1,a,4,go,1.5\n1,a,5,go,1.5\n", Settings{},
