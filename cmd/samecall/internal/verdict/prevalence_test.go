@@ -45,3 +45,27 @@ func TestPrevalentCategoryDoesNotReject(t *testing.T) {
 		t.Errorf("verdict %v, want not shown; reasons %q", v.Overall, v.Reasons)
 	}
 }
+
+// A category that prevails in the calls of one appraiser is no excuse for
+// appraisers who differ: A accepts nearly all, B half of it.
+func TestPrevalenceOfOneAppraiserCounts(t *testing.T) {
+	var text strings.Builder
+	text.WriteString("part,a-1,a-2,b-1,b-2\n")
+	for part := range 60 {
+		first, other := "ok", "ok"
+		if part == 7 {
+			first = "nok"
+		}
+		if part%2 == 0 {
+			other = "nok"
+		}
+		fmt.Fprintf(&text, "%d,%s,ok,%s,%[3]s\n", part, first, other)
+	}
+	r, v := decide(t, calls(text.String(), ""))
+	if !r.Agreement.Within[0].Kappa.Prevalent {
+		t.Fatal("no category prevails in the calls of a: the study does not show what it is to show")
+	}
+	if v.Overall != Reject || !strings.HasPrefix(v.Reasons[0], "Kappa between appraisers") {
+		t.Errorf("%v, %q", v.Overall, v.Reasons)
+	}
+}

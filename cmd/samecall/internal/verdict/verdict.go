@@ -1,8 +1,6 @@
 package verdict
 
 import (
-	"slices"
-
 	"samecall/agreement"
 	"samecall/agreement/interval"
 	"samecall/cmd/samecall/internal/judge"
@@ -54,7 +52,7 @@ func Decide(r *judge.Result) *Verdict {
 		v.Between = &c
 		// Calls that are all alike have no kappa, and are no fault; nor can a
 		// kappa that one prevailing category pulls down decide by itself.
-		if v.counts = c.Met != NotShown && !prevalent(r); v.counts {
+		if v.counts = c.Met != NotShown && !c.Estimate.Prevalent; v.counts {
 			v.Overall = max(v.Overall, c.Met)
 		}
 	}
@@ -65,11 +63,6 @@ func Decide(r *judge.Result) *Verdict {
 	v.Reasons, v.Carry = reasons(r, v)
 	v.Next = next(r, v)
 	return v
-}
-
-// prevalent reports whether the result warns that one category prevails.
-func prevalent(r *judge.Result) bool {
-	return slices.ContainsFunc(r.Warnings, func(w judge.Warning) bool { return w.Code == "prevalence" })
 }
 
 func worst(criteria []Criterion) Level {
