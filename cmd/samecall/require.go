@@ -41,7 +41,7 @@ func (r requirement) check(v *verdict.Verdict, confidence float64) error {
 		return nil
 	}
 	if open := v.Unshown(r.level); open != "" {
-		return statusError{exitShort, fmt.Errorf("--require %s --shown: at %s confidence the data do not show that level for: %s", r.level, format.Percent(confidence), open)}
+		return statusError{exitShort, fmt.Errorf("--require %s --shown: at %s confidence the data do not show that level for: %s", r.level, format.Confidence(confidence), open)}
 	}
 	return nil
 }

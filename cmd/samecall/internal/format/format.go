@@ -15,6 +15,11 @@ import (
 // only, never for nearly so.
 func Percent(share float64) string { return digits(share, 19.95) + " %" }
 
+// Confidence writes a confidence level in percent, with the digits it has.
+func Confidence(level float64) string {
+	return strconv.FormatFloat(100*level, 'g', 6, 64) + " %"
+}
+
 // digits writes a share in percent, with one decimal below the percentage given.
 func digits(share, oneDecimal float64) string {
 	p := 100 * share
@@ -110,6 +115,9 @@ func Short(x float64) string {
 func decimal(x float64, decimals int) string {
 	const readable = 20
 	s := strconv.FormatFloat(x, 'f', decimals, 64)
+	if strings.Trim(s, "-0.") == "" {
+		s = strings.TrimPrefix(s, "-")
+	}
 	if len(s) > readable {
 		s = strings.Replace(strconv.FormatFloat(x, 'g', 6, 64), "e+", "e", 1)
 	}

@@ -231,3 +231,21 @@ func TestScale(t *testing.T) {
 		}
 	}
 }
+
+func TestConfidence(t *testing.T) {
+	for level, want := range map[float64]string{0.5: "50 %", 0.95: "95 %", 0.975: "97.5 %", 0.9995: "99.95 %", 0.9999: "99.99 %"} {
+		if got := Confidence(level); got != want {
+			t.Errorf("Confidence(%v) = %q, want %q", level, got, want)
+		}
+	}
+}
+
+// A zero has no sign, whether it is one or rounds to one.
+func TestNoNegativeZero(t *testing.T) {
+	minus := math.Copysign(0, -1)
+	for _, got := range append(Alike(minus, 0.25), Number(minus), Short(minus), decimal(-0.0001, 2)) {
+		if strings.ContainsAny(got, "-−") {
+			t.Errorf("%q has a sign", got)
+		}
+	}
+}

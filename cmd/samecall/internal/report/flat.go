@@ -29,7 +29,7 @@ func (t Table) flat() (heads []string, rows [][]flatCell) {
 			share := strings.Contains(c.Text, "%")
 			switch {
 			case c.Value != nil:
-				cells = append(cells, flatCell{c.Value, share})
+				cells = append(cells, flatCell{positiveZero(c.Value), share})
 			case c.Text == "":
 				cells = append(cells, flatCell{})
 			default:
@@ -39,7 +39,7 @@ func (t Table) flat() (heads []string, rows [][]flatCell) {
 				continue
 			}
 			if c.Bounded {
-				cells = append(cells, flatCell{c.Lower, share}, flatCell{c.Upper, share})
+				cells = append(cells, flatCell{positiveZero(c.Lower), share}, flatCell{positiveZero(c.Upper), share})
 			} else {
 				cells = append(cells, flatCell{}, flatCell{})
 			}
@@ -47,6 +47,14 @@ func (t Table) flat() (heads []string, rows [][]flatCell) {
 		rows = append(rows, cells)
 	}
 	return heads, rows
+}
+
+// positiveZero takes the sign from a zero.
+func positiveZero(v any) any {
+	if x, ok := v.(float64); ok {
+		return x + 0
+	}
+	return v
 }
 
 // harmless keeps a text from being run as a formula by a spreadsheet that

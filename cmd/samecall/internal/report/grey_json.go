@@ -1,7 +1,6 @@
 package report
 
 import (
-	"encoding/json"
 	"io"
 	"math"
 
@@ -164,12 +163,7 @@ func GreyJSON(w io.Writer, g *judge.Grey, opt signal.Options) error {
 }
 
 // writeJSON writes a document as every command does.
-func writeJSON(w io.Writer, d any) error {
-	e := json.NewEncoder(w)
-	e.SetIndent("", "  ")
-	e.SetEscapeHTML(false)
-	return e.Encode(d)
-}
+func writeJSON(w io.Writer, d any) error { return encode(w, d, true) }
 
 // finiteOr0 guards a figure that is one Newton step, which may overshoot.
 func finiteOr0(x float64) float64 {

@@ -280,7 +280,7 @@ func plainLines(lines []string) []string {
 // methods says in short how the figures of a record are found.
 func methods(r *Record) []string {
 	out := []string{
-		fmt.Sprintf("The part is the sampled unit: several calls on one part are not several parts. All intervals are at %s confidence.", format.Percent(r.Options.Confidence)),
+		fmt.Sprintf("The part is the sampled unit: several calls on one part are not several parts. All intervals are at %s confidence.", format.Confidence(r.Options.Confidence)),
 		"Shares of parts: exact binomial limits (Clopper & Pearson, Biometrika 26, 1934).",
 		"Miss and false-alarm rates: exact limits on the effective number of calls (Korn & Graubard, Survey Methodology 24, 1998); without an event, on the number of parts.",
 		"Kappa: Cohen (1960) for pairs and against the reference, Fleiss (1971) for more calls, in Gwet's form (2014) where calls are missing; AC1: Gwet (2008); alpha: Krippendorff.",

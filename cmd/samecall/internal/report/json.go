@@ -1,7 +1,6 @@
 package report
 
 import (
-	"encoding/json"
 	"io"
 
 	"samecall/agreement"
@@ -20,12 +19,7 @@ const manyNames = 10_000
 // JSON writes a result for programs.
 func JSON(w io.Writer, r *Record) error {
 	d := newDocument(r)
-	e := json.NewEncoder(w)
-	if d.names() <= manyNames {
-		e.SetIndent("", "  ")
-	}
-	e.SetEscapeHTML(false)
-	return e.Encode(d)
+	return encode(w, d, d.names() <= manyNames)
 }
 
 // names returns how many parts are named in all lists together.

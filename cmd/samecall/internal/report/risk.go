@@ -199,7 +199,7 @@ func riskTable(r *judge.Risks) Table {
 	add("good among rejected", percentCell(n.GoodAmongRejected))
 	t.Note = "Escapes are made bad and accepted, false rejects made good and rejected; both, like made bad, of all parts made; ppm where there is no %."
 	if r.Curve != nil {
-		t.Note += fmt.Sprintf(" In brackets the %s interval, which carries the uncertainty of the curve; the process is taken as given.", format.Percent(r.Curve.Options.Confidence))
+		t.Note += fmt.Sprintf(" In brackets the %s interval, which carries the uncertainty of the curve; the process is taken as given.", format.Confidence(r.Curve.Options.Confidence))
 	}
 	return t
 }

@@ -167,7 +167,7 @@ func shortTable(st SmallStudy, s *signal.ShortStudy) Table {
 	add("t(0.975, 19)", func(x float64) string { return fmt.Sprintf("%.3f", x) }, s.Critical, nil)
 	t.Note = "Repeatability is the distance from 0.5 to 99.5 % acceptance over 1.08; t is 31.3 |bias| over repeatability."
 	if fit != nil {
-		t.Note += fmt.Sprintf(" In brackets the %s interval, by profile likelihood.", format.Percent(s.Fit.Options.Confidence))
+		t.Note += fmt.Sprintf(" In brackets the %s interval, by profile likelihood.", format.Confidence(s.Fit.Options.Confidence))
 	}
 	return t
 }

@@ -87,7 +87,7 @@ func studyTable(r *Record) Table {
 	add("words that reject", strings.Join(set.Reject, ", "))
 	add("reference", d.Reference)
 	add("verdict", r.Verdict.Overall.String())
-	add("confidence", format.Percent(r.Options.Confidence))
+	add("confidence", format.Confidence(r.Options.Confidence))
 	add("resamples", fmt.Sprintf("%d, seed %d", r.Options.Resamples, r.Options.Seed))
 	add("pairing of trials", r.Options.Pairing.String())
 	if r.Zone != nil && r.Zone.Curves != nil {
@@ -179,7 +179,7 @@ func againstTable(r *Record, all bool) Table {
 		Name:    "appraisers",
 		Title:   "Against the reference",
 		Columns: []Column{{Name: "appraiser"}, {Name: "effectiveness", Numbers: true}, {Name: "miss rate", Numbers: true}, {Name: "false-alarm rate", Numbers: true}, {Name: "kappa", Numbers: true}},
-		Note:    fmt.Sprintf("In brackets the two-sided %s interval by parts.", format.Percent(r.Options.Confidence)),
+		Note:    fmt.Sprintf("In brackets the two-sided %s interval by parts.", format.Confidence(r.Options.Confidence)),
 	}
 	if len(r.Study.Categories) > 2 {
 		t.Note += " Effectiveness asks for the exact category on every trial, not only for accept or reject: it may be low without a miss."
@@ -545,7 +545,7 @@ func criteriaTable(r *Record) Table {
 		Keys:  2,
 		Columns: []Column{{Name: "appraiser"}, {Name: "figure"}, {Name: "found", Numbers: true}, {Name: "accept", Numbers: true},
 			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: "data"}, {Name: "to settle it", Long: true}},
-		Note: levelsFrom(r) + " " + fmt.Sprintf("Shown: at %s confidence, one-sided, the data show what the estimate says (of a reject, that the conditional level is missed). Open: they do not.", format.Percent(r.Options.Confidence)),
+		Note: levelsFrom(r) + " " + fmt.Sprintf("Shown: at %s confidence, one-sided, the data show what the estimate says (of a reject, that the conditional level is missed). Open: they do not.", format.Confidence(r.Options.Confidence)),
 	}
 	add := func(name, figure string, c verdict.Criterion) {
 		found, evidence, settle := say(format.Dash), "", ""

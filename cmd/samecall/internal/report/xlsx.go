@@ -103,6 +103,9 @@ const (
 
 func writeSheet(f *excelize.File, sheet string, t Table, l look) error {
 	heads, rows := t.flat()
+	if headRow+len(rows)+2 > excelize.TotalRows { // with the note
+		return fmt.Errorf("the table %q has %s rows, and a sheet of a workbook holds %s; write it as --csv or --json", t.Name, format.Count(len(rows)), format.Count(excelize.TotalRows))
+	}
 	put := func(column, row int, c flatCell, style int) error {
 		at, err := excelize.CoordinatesToCellName(column, row)
 		if err != nil {

@@ -7,6 +7,7 @@ import (
 
 	"samecall/agreement"
 	"samecall/agreement/interval"
+	"samecall/cmd/samecall/internal/format"
 )
 
 // Summary is what a study holds and what it can show, as plain facts.
@@ -259,7 +260,7 @@ func (s *Study) rateShown(code, none string, n int, kind, wrong, rate, events st
 	limit := interval.UpperLimit(0, n, s.Settings.Confidence)
 	return Showing{Code: code, Parts: n, Limit: limit,
 		Text: fmt.Sprintf("%s, none ever %s, would still leave a %s of up to %s possible (one-sided limit at %s confidence).",
-			counted(n, kind+" part", kind+" parts"), wrong, rate, percent(limit), percent(s.Settings.Confidence))}
+			counted(n, kind+" part", kind+" parts"), wrong, rate, percent(limit), format.Confidence(s.Settings.Confidence))}
 }
 
 // zoneShown tells what can be said about the grey zone.

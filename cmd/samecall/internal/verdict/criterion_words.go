@@ -150,7 +150,7 @@ func (c Criterion) otherSide() string {
 	if x, yes := strings.CutPrefix(c.exact(limit), "<"); yes {
 		bound = "less than " + x
 	}
-	text := fmt.Sprintf("it may be %s (one-sided, %s), %s%s", bound, strconv.FormatFloat(100*c.Confidence, 'g', 4, 64)+" %", reach, level)
+	text := fmt.Sprintf("it may be %s (one-sided, %s), %s%s", bound, format.Confidence(c.Confidence), reach, level)
 	if c.More > 0 {
 		return text + fmt.Sprintf("; %s more at this %s would show it", format.Counted(c.More, c.Kind), c.measure())
 	}
