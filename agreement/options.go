@@ -51,5 +51,8 @@ func (o Options) check() error {
 	if o.Resamples < 0 || o.Resamples > MaxResamples {
 		return fmt.Errorf("agreement: %d resamples, want 0 to %d", o.Resamples, MaxResamples)
 	}
+	if o.Pairing != Matched && o.Pairing != All {
+		return fmt.Errorf("agreement: pairing %d, want Matched or All", int(o.Pairing))
+	}
 	return nil
 }

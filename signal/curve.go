@@ -27,6 +27,9 @@ func (o Options) check() (Options, error) {
 	if o.Link != Probit && o.Link != Logit {
 		return o, fmt.Errorf("link %d: want Probit or Logit", int(o.Link))
 	}
+	if o.LackOfFit < WidenIfFound || o.LackOfFit > WidenNever {
+		return o, fmt.Errorf("lack-of-fit rule %d: want WidenIfFound, WidenAlways or WidenNever", int(o.LackOfFit))
+	}
 	return o, checkConfidence(o.Confidence)
 }
 

@@ -170,14 +170,13 @@ func (d *dataset) maximum(from, to int, has [2]bool, hs [2]half) (*block, error)
 			b.s.fallback()
 		}
 		last = b.s.maximise(absent, convergence)
-		if last.converged && !last.atBound && last.loglik > b.loglik+1e-9 {
-			if cov, ok := b.s.definite(); ok {
-				b.theta, b.loglik, b.covariance = append(b.theta[:0], b.s.theta...), last.loglik, cov
-			}
-		}
+		b.keepIfHigher(last)
 		if b.theta != nil && has != [2]bool{true, true} {
 			break // the likelihood of one limit has one maximum
 		}
+	}
+	if g := b.m.groups[0]; b.theta != nil && has == [2]bool{true, true} && g.logSigma[0] != g.logSigma[1] {
+		b.unequal()
 	}
 	if b.theta == nil {
 		reason := "the likelihood has no verified maximum"
@@ -193,6 +192,37 @@ func (d *dataset) maximum(from, to int, has [2]bool, hs [2]half) (*block, error)
 	}
 	copy(b.s.theta, b.theta)
 	return b, nil
+}
+
+// unequal looks for a higher maximum where one σ is far smaller than the other:
+// with two σs the likelihood can have several, one nearly a step. Each cut is
+// tried about where it was.
+func (b *block) unequal() {
+	g := b.m.groups[0]
+	first := append([]float64(nil), b.theta...)
+	for k := range 2 {
+		narrow, wide := g.logSigma[k], g.logSigma[1-k]
+		for _, change := range [...][2]float64{{1, 0.4}, {2.5, 0.1}, {2.5, 0.7}} {
+			for _, aside := range [...]float64{-0.9, -0.45, 0, 0.45, 0.9} { // in σ as it was
+				copy(b.s.theta, first)
+				b.s.theta[narrow] -= change[0]
+				b.s.theta[wide] += change[1]
+				b.s.theta[g.cut[k]] += aside * math.Exp(first[narrow])
+				b.keepIfHigher(b.s.maximise(absent, convergence))
+			}
+		}
+	}
+}
+
+// keepIfHigher takes the solver's point if it is a verified maximum above the
+// one there is.
+func (b *block) keepIfHigher(out outcome) {
+	if !out.converged || out.atBound || !(out.loglik > b.loglik+1e-9) {
+		return
+	}
+	if cov, ok := b.s.definite(); ok {
+		b.theta, b.loglik, b.covariance = append(b.theta[:0], b.s.theta...), out.loglik, cov
+	}
 }
 
 func boolInt(b bool) int {
@@ -284,11 +314,8 @@ func (d *dataset) lapse(c *Curve, blocks *[]*block, hs [2]half) {
 		}
 		b.s.theta[b.m.lapse] = [...]float64{-4, -4, -1.5, -1.5}[try]
 		out := b.s.maximise(absent, convergence)
-		if out.converged && !out.atBound && out.loglik > b.loglik+1e-9 {
-			if cov, ok := b.s.definite(); ok {
-				b.theta, b.loglik, b.covariance = append(b.theta[:0], b.s.theta...), out.loglik, cov
-			}
-		} else if out.converged && out.atBound && out.loglik > b.loglik+1e-3 && out.loglik > plain.loglik+1e-3 {
+		b.keepIfHigher(out)
+		if out.converged && out.atBound && out.loglik > b.loglik+1e-3 && out.loglik > plain.loglik+1e-3 {
 			c.warn(WarnNoLapse, "no lapse rate: with one, σ is no longer determined; too few mixed parts lie near the limit")
 			return
 		}

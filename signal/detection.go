@@ -96,7 +96,7 @@ func detection(h, f, varH, varF, confidence float64, method string) Detection {
 	half := twoSided(confidence) * se
 	d := interval(zh-zf, half, confidence, method)
 	d.SE = se
-	c := interval(-(zh+zf)/2, half/2, confidence, method)
+	c := interval(0-(zh+zf)/2, half/2, confidence, method)
 	c.SE = se / 2
 	a := d.map1(func(d float64) float64 { return normalCDF(d / math.Sqrt2) }, normalDensity(d.Value/math.Sqrt2)/math.Sqrt2)
 	return Detection{Hit: h, FalseAlarm: f, DPrime: d, Criterion: c, Area: a}

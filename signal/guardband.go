@@ -156,11 +156,12 @@ func GuardForCost(p Process, in Inspection, costEscape, costReject float64) (Cos
 	// Steps of a fraction of σ near the cuts, coarser farther out.
 	sigma := math.Max(g.LowerSigma, g.UpperSigma)
 	var grid []float64
-	for b := 0.0; b < most; b += math.Max(sigma/4, b/10) {
+	step := math.Max(sigma/4, 1e-5*most) // however small σ is, the grid ends
+	for b := 0.0; b < most; b += math.Max(step, b/10) {
 		grid = append(grid, b)
 	}
 	grid = append(grid, most)
-	for b := sigma / 4; b < most; b += math.Max(sigma/4, b/10) {
+	for b := step; b < most; b += math.Max(step, b/10) {
 		grid = append([]float64{-b}, grid...)
 	}
 	best, least := 0, math.Inf(1)

@@ -420,3 +420,44 @@ func TestPartsWithoutCut(t *testing.T) {
 		}
 	}
 }
+
+// A part called once shows no scatter: its term of X² is its odds, whatever the
+// curve. With the curve true, the test found lack of fit in a third of such
+// studies.
+func TestNoLackOfFitOfSingleCalls(t *testing.T) {
+	parts := simulate(rand.New(rand.NewPCG(5, 5)), 60, 1, 0, 1, 0.12, -0.3, 1.3)
+	c := mustFit(t, parts, Between(0, 1), Options{LackOfFit: WidenAlways})
+	if f := c.LackOfFit; f.Tested || f.Applied || !strings.Contains(f.Why, "called more than once") {
+		t.Errorf("%+v", f)
+	}
+}
+
+// With two σs and few parts the likelihood can have several maxima; the one
+// returned is hardly ever beaten from forty random starts: in one study of a
+// hundred at most.
+func TestMaximumOfTwoSigmas(t *testing.T) {
+	rng := rand.New(rand.NewPCG(6, 6))
+	fitted, beaten := 0, 0
+	for range 300 {
+		parts := simulate(rng, 24, 3, 0, 1, 0.05+0.2*rng.Float64(), -0.5, 1.5)
+		c, err := Fit(parts, Between(0, 1), Options{TwoSigmas: true, LackOfFit: WidenNever})
+		if err != nil || len(c.blocks) != 1 || c.separatedAnywhere() || !c.Lower.Known() || !c.Upper.Known() {
+			continue
+		}
+		fitted++
+		b := c.blocks[0]
+		s := newSolver(b.m)
+		for range 40 {
+			for i := range s.theta {
+				s.theta[i] = b.theta[i] + rng.NormFloat64()*math.Min(2, 4*math.Sqrt(b.cov(i, i)))
+			}
+			if out := s.maximise(absent, convergence); out.converged && !out.atBound && out.loglik > b.loglik+1e-3 {
+				beaten++
+				break
+			}
+		}
+	}
+	if fitted < 200 || beaten > fitted/100 {
+		t.Errorf("%d of %d maxima are beaten", beaten, fitted)
+	}
+}

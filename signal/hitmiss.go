@@ -4,6 +4,8 @@ import (
 	"errors"
 	"fmt"
 	"math"
+
+	"gonum.org/v1/gonum/stat/distuv"
 )
 
 // Flaw is one flaw of known size and how often it was looked for and found.
@@ -34,10 +36,11 @@ const a9095Confidence = 0.95
 // FitHitMiss fits the probability that a flaw is found as F((ln a − µ)/σ), the
 // hit/miss model of MIL-HDBK-1823A (2009), to flaws of known size a. The bound
 // a90/95 is where twice the log-likelihood lost by holding a90 reaches the
-// square of the one-sided normal quantile 1.645. Options.Confidence governs the
-// two-sided intervals of A50 and A90. Where found and missed sizes do not
-// overlap the curve is bias-reduced as in Fit, and the bound is measured from
-// the likelihood's supremum.
+// square of the one-sided normal quantile 1.645, widened for lack of fit where
+// that is found. Options.Confidence governs the two-sided intervals of A50 and
+// A90 alone. Where found and missed sizes do not overlap the curve is
+// bias-reduced as in Fit, and there is no bound: how the chance rises is not
+// known.
 //
 // It returns an error if a size is not above 0, a count cannot be, or larger
 // flaws are not found more often.
@@ -149,15 +152,17 @@ func (h *HitMiss) a90(d *dataset, c *Curve) error {
 		h.A90.Upper, h.A90.HasUpper, h.A90.Why = 0, false, whyFlat
 	}
 	oneSided := normalQuantile(a9095Confidence)
-	if c.LackOfFit.Applied {
-		oneSided *= math.Sqrt(c.crit) / twoSided(d.options.Confidence)
+	if f := c.LackOfFit; f.Applied {
+		oneSided = math.Sqrt(c.factor) * distuv.StudentsT{Sigma: 1, Nu: float64(f.DF)}.Quantile(a9095Confidence)
 	}
-	if at, ok := bound(oneSided, 1); ok {
+	if c.Lower.Status != Fitted {
+		h.Why = "hits and misses do not overlap in size, so the study does not tell how the chance rises"
+	} else if at, ok := bound(oneSided, 1); ok {
 		if a := out(at); finite(a) {
 			h.A9095, h.HasA9095 = math.Max(a, out(value)), true
 		}
 	}
-	if !h.HasA9095 {
+	if !h.HasA9095 && h.Why == "" {
 		h.Why = whyFlat
 	}
 	if !finite(h.A50.Value, h.A50.Lower, h.A50.Upper, h.A50.SE, h.A90.Value, h.A90.Lower, h.A90.Upper, h.A90.SE) {

@@ -2,6 +2,7 @@ package signal
 
 import (
 	"math"
+	"strings"
 	"testing"
 )
 
@@ -61,7 +62,7 @@ func TestHitMissHardCases(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if h.Curve.Lower.Status != Separated || !h.HasA9095 || h.A9095 < 3 || !(h.A90.Value <= h.A9095) {
+	if h.Curve.Lower.Status != Separated || h.HasA9095 || !strings.Contains(h.Why, "do not overlap") {
 		t.Errorf("%+v", h)
 	}
 	for name, flaws := range map[string][]Flaw{
@@ -74,5 +75,31 @@ func TestHitMissHardCases(t *testing.T) {
 		if _, err := FitHitMiss(flaws, Options{}); err == nil {
 			t.Errorf("%s: no error", name)
 		}
+	}
+}
+
+// a90/95 is one-sided at 95 % whatever confidence the intervals have, with lack
+// of fit too: there 1.645 becomes √factor·t(0.95, df).
+func TestA9095IsOneBound(t *testing.T) {
+	var flaws []Flaw
+	for i, found := range []int{0, 3, 0, 5, 1, 9, 2, 10, 7, 10, 10, 4, 10, 10} {
+		flaws = append(flaws, Flaw{Size: math.Exp(0.2 * float64(i)), Found: found, Looked: 10})
+	}
+	var bounds []float64
+	for _, confidence := range []float64{0.8, 0.95, 0.99} {
+		h, err := FitHitMiss(flaws, Options{Confidence: confidence})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if !h.Curve.LackOfFit.Applied || !h.HasA9095 {
+			t.Fatalf("%+v", h)
+		}
+		bounds = append(bounds, h.A9095)
+	}
+	nearRel(t, "at 80 %", bounds[0], bounds[1], 1e-6)
+	nearRel(t, "at 99 %", bounds[2], bounds[1], 1e-6)
+	plain, err := FitHitMiss(flaws, Options{LackOfFit: WidenNever})
+	if err != nil || bounds[1] <= plain.A9095*1.01 {
+		t.Errorf("a90/95 %v with lack of fit, %v without: %v", bounds[1], plain.A9095, err)
 	}
 }

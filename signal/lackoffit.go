@@ -26,7 +26,8 @@ const (
 // Pearson's X² is summed over the parts with n·P·Q of at least 0.1 by the
 // fitted curve: a part that is nearly sure to be accepted or rejected carries
 // no information on scatter, and one stray call there would swamp the sum
-// (such a part is an outlier's matter). Even so the counts are small, so the
+// (such a part is an outlier's matter), nor does a part called once, whose X² is
+// its odds whatever the curve. Even so the counts are small, so the
 // tail is that of a gamma distribution with the exact mean and variance of X²
 // given the curve, rather than chi-square. The factor X²/df follows Finney
 // (Probit Analysis, 3rd ed. 1971, heterogeneity factor); where it applies, the
@@ -55,7 +56,7 @@ func (c *Curve) judgeFit() {
 	f := &c.LackOfFit
 	at := c.at()
 	var variance float64
-	parts := 0
+	parts, once := 0, false
 	for i := range c.Parts {
 		p := &c.Parts[i]
 		if p.NoCut {
@@ -65,7 +66,8 @@ func (c *Curve) judgeFit() {
 		f.Deviance += p.Residual * p.Residual
 		pr := p.Fitted
 		npq := float64(p.Calls) * pr * (1 - pr)
-		if npq < mixingFloor || !c.likelihoodNear(at, c.sc.in(p.Value)) {
+		if p.Calls < 2 || npq < mixingFloor || !c.likelihoodNear(at, c.sc.in(p.Value)) {
+			once = once || p.Calls == 1
 			continue
 		}
 		f.Parts++
@@ -82,6 +84,9 @@ func (c *Curve) judgeFit() {
 	}
 	if f.DF < 1 {
 		f.DF, f.Why = 0, "too few parts near the limits with both kinds of call to be expected"
+		if once {
+			f.Why = "too few parts near the limits were called more than once: only repeated calls show whether parts scatter"
+		}
 		return
 	}
 	mean := float64(f.DF)

@@ -100,6 +100,8 @@ func checkRisk(p Process, g Gauge, limits Limits) error {
 		if _, err := NormalProcess(p.Mean, p.SD); err != nil {
 			return err
 		}
+	} else if !finite(p.Values...) {
+		return errors.New("a value of the process is not a number")
 	}
 	return g.check()
 }

@@ -157,32 +157,82 @@ func (r *riskProfile) at(theta []float64) *riskPoint {
 }
 
 // limit returns the extreme of a quantity, the largest for sign 1 and the
-// smallest for −1, and false if it was not found.
+// smallest for −1, and false if it was not found. With two σs the extreme of
+// one way to it need not be the greatest: the way starts from the ends of each σ
+// too.
 func (r *riskProfile) limit(q int, sign float64) (float64, bool) {
-	start := r.at(r.best)
-	if start == nil || !start.defined[q] {
+	best := r.at(r.best)
+	if best == nil || !best.defined[q] {
 		return 0, false
 	}
-	at := start
+	found, ok := math.Inf(-1), false
+	for _, theta := range r.starts() {
+		start := r.at(theta)
+		if start == nil || !start.defined[q] {
+			continue
+		}
+		if at := r.climb(start, q, sign); at != nil && sign*(at.logit[q]-best.logit[q]) >= 0 {
+			found, ok = math.Max(found, sign*at.logit[q]), true
+		}
+	}
+	if !ok {
+		return r.search(q, sign)
+	}
+	return logistic(sign * found), true
+}
+
+// starts are the maximum of the likelihood and, with more than one σ, points on
+// its cut-off towards either end of each.
+func (r *riskProfile) starts() [][]float64 {
+	starts := [][]float64{r.best}
+	if !r.twoSigmas() {
+		return starts
+	}
+	for i, b := range r.blocks {
+		for _, at := range b.m.groups[0].logSigma {
+			if at == absent {
+				continue
+			}
+			se := math.Sqrt(b.cov(at, at))
+			for _, way := range [...]float64{-1, 1} {
+				theta := append([]float64(nil), r.best...)
+				for j := range b.m.n {
+					theta[r.first[i]+j] += way * math.Sqrt(r.c.crit) * b.cov(j, at) / se
+				}
+				starts = append(starts, theta)
+			}
+		}
+	}
+	return starts
+}
+
+func (r *riskProfile) twoSigmas() bool {
+	if len(r.blocks) != 1 {
+		return len(r.blocks) > 1
+	}
+	g := r.blocks[0].m.groups[0]
+	return g.logSigma[0] != absent && g.logSigma[1] != absent && g.logSigma[0] != g.logSigma[1]
+}
+
+// climb goes from a point to the extreme that its steps lead to; nil where they
+// do not settle.
+func (r *riskProfile) climb(at *riskPoint, q int, sign float64) *riskPoint {
 	for range 60 {
 		step, ok := r.step(at, q, sign)
 		if !ok {
-			break
+			return nil
 		}
 		next := r.move(at, step, q)
 		if next == nil {
-			break
+			return nil
 		}
 		change := math.Abs(next.logit[q] - at.logit[q])
 		at = next
 		if change <= 1e-7*(1+math.Abs(at.logit[q])) && math.Abs(at.lost-r.c.crit) <= 1e-6*r.c.crit {
-			if sign*(at.logit[q]-start.logit[q]) >= 0 {
-				return logistic(at.logit[q]), true
-			}
-			break // the best of its surroundings only
+			return at
 		}
 	}
-	return r.search(q, sign)
+	return nil
 }
 
 // search finds the extreme by Nelder and Mead's simplex where the steps do not

@@ -115,3 +115,38 @@ func TestRiskProfileOfManyParts(t *testing.T) {
 		}
 	}
 }
+
+// No curve that the likelihood does not rule out lies beyond the limits: curves
+// are drawn about the maximum, and those within the cut-off compared.
+func TestRiskLimitsHoldEveryCurve(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		rng := rand.New(rand.NewPCG(rapid.Uint64().Draw(t, "seed"), 2))
+		parts := simulate(rng, rapid.IntRange(20, 40).Draw(t, "parts"), rapid.IntRange(2, 6).Draw(t, "calls"), 0, 10, rapid.Float64Range(0.3, 1.5).Draw(t, "sigma"), -3, 13)
+		c, err := Fit(parts, Between(0, 10), Options{TwoSigmas: rapid.Bool().Draw(t, "two")})
+		if err != nil || c.separatedAnywhere() || !c.Lower.Known() || !c.Upper.Known() {
+			t.Skip("no likelihood region")
+		}
+		region := newRiskProfile(c, Process{Mean: 5, SD: 2.5}, rapid.Float64Range(0, 1).Draw(t, "band"))
+		b := region.blocks[0]
+		for _, q := range []int{qEscape, qFalseReject} {
+			lower, okLower := region.limit(q, -1)
+			upper, okUpper := region.limit(q, 1)
+			if !okLower || !okUpper {
+				t.Fatalf("quantity %d: no limit", q)
+			}
+			for range 60 {
+				theta := append([]float64(nil), region.best...)
+				for i := range theta {
+					theta[i] += 1.5 * rng.NormFloat64() * math.Sqrt(b.cov(i, i))
+				}
+				x := region.at(theta)
+				if x == nil || !x.defined[q] || x.lost > c.crit {
+					continue
+				}
+				if l := x.logit[q]; l < logit(lower)-1e-3 || l > logit(upper)+1e-3 {
+					t.Fatalf("quantity %d: %v of a curve within the cut-off, limits %v and %v", q, logistic(l), lower, upper)
+				}
+			}
+		}
+	})
+}

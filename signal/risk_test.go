@@ -210,6 +210,18 @@ func TestGuardBands(t *testing.T) {
 	}
 }
 
+// However small σ is, the search for the cheapest band ends.
+func TestGuardForCostOfAStep(t *testing.T) {
+	known := Known{Gauge{LowerCut: 0, LowerSigma: 1e-300, HasLower: true}, AtLeast(0)}
+	got, err := GuardForCost(Process{Mean: 1, SD: 1}, known, 10, 1)
+	if err != nil || math.Abs(got.Risk.GuardBand) > 1e-3 {
+		t.Errorf("band %v, %v", got.Risk.GuardBand, err)
+	}
+	if _, err := Assess(Process{Values: []float64{1, math.NaN()}}, known, 0); err == nil {
+		t.Error("a value that is no number: no error")
+	}
+}
+
 func TestNoInspection(t *testing.T) {
 	p := Process{Mean: 0.5, SD: 0.02}
 	for _, in := range []Inspection{nil, (*Curve)(nil), Known{}} {

@@ -221,7 +221,7 @@ func (s *ShortStudy) line() {
 	s.Cut = centre - scale*a/b
 	s.Intercept = a - b*centre/scale
 	s.Sigma = scale / math.Abs(b)
-	s.Bias = outward * (s.Cut - s.Limit)
+	s.Bias = outward*(s.Cut-s.Limit) + 0 // never −0
 	s.Repeatability = 2 * Probit.greyQuantile() * s.Sigma / shortAdjustment
 	s.T = shortTFactor * math.Abs(s.Bias) / s.Repeatability
 	s.Significant = s.T > s.Critical

@@ -67,6 +67,9 @@ func Explain(l *LimitFit, m Member) (*Explanation, error) {
 	if !finite(m.Size, m.Uncertainty, m.WearLimit) || m.Uncertainty < 0 {
 		return nil, fmt.Errorf("gauge member at the %s limit: size %v, uncertainty %v, wear limit %v: want finite numbers, the uncertainty not negative", m.Side, m.Size, m.Uncertainty, m.WearLimit)
 	}
+	if !l.Offset.HasLower && !l.Offset.HasUpper {
+		return nil, fmt.Errorf("the offset at the %s limit has no interval to compare the gauge with: %s", m.Side, l.Offset.Why)
+	}
 	e := &Explanation{Member: m, Deviation: m.Size - l.Limit, Offset: l.Offset}
 	e.Lower, e.Upper = e.Deviation-m.Uncertainty, e.Deviation+m.Uncertainty
 	r := Estimate{Value: l.Offset.Value - e.Deviation, Confidence: l.Offset.Confidence, Method: "offset's interval and expanded uncertainty (k = 2), added in quadrature", Why: l.Offset.Why}

@@ -34,6 +34,11 @@ func TestExplain(t *testing.T) {
 			}
 		})
 	}
+	bare := *l
+	bare.Offset = Estimate{Value: -0.004, Why: whySkipped}
+	if _, err := Explain(&bare, Member{Size: 11}); err == nil {
+		t.Error("no interval: no error")
+	}
 	if _, err := Explain(nil, Member{}); err == nil {
 		t.Error("no fit: no error")
 	}

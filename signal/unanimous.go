@@ -20,9 +20,10 @@ type Zone struct {
 	Width      float64 // distance between them, d
 	// Mixed is the number of parts between them. With none, d is the gap
 	// between neighbours and only an upper bound of the zone.
-	Mixed int
-	Found bool
-	Why   string // why there is no zone
+	Between int // parts in between, whatever their calls
+	Mixed   int // mixed parts among them
+	Found   bool
+	Why     string // why there is no zone
 }
 
 // Unanimity is the unanimous zone at each limit and what follows from its
@@ -171,7 +172,12 @@ func zone(side Side, parts []Part, row []int, outside []int) *Zone {
 	if side == Upper {
 		z.Width = -z.Width
 	}
-	z.Mixed = len(outside) - r - a
+	z.Between = len(outside) - r - a
+	for _, i := range outside[r : r+z.Between] {
+		if p := parts[i]; p.Accepted > 0 && p.Accepted < p.Calls {
+			z.Mixed++
+		}
+	}
 	z.Found = true
 	return z
 }

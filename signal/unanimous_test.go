@@ -75,7 +75,7 @@ func TestUnanimousHardCases(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if u.Lower.Reject != -2 || u.Lower.Accept != 1 || u.Lower.Mixed != 2 || u.HasGRR {
+	if u.Lower.Reject != -2 || u.Lower.Accept != 1 || u.Lower.Between != 2 || u.Lower.Mixed != 0 || u.HasGRR {
 		t.Errorf("%+v", u.Lower)
 	}
 }

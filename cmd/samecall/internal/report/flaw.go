@@ -49,7 +49,9 @@ func Flaw(w io.Writer, st SmallStudy, rows []study.Tally, h *signal.HitMiss, ter
 		}
 		p.wrap(fmt.Sprintf("A flaw of %s is found at least nine times in ten, with 95 %% confidence (a90/95)%s.", s.WithUnit(s.Value(h.A9095)), few), "")
 	case h.HasA9095:
-		p.wrap("a90/95 is not shown: "+why+". "+whatItNeeds(h), "")
+		p.wrap("a90/95 is not shown: "+why+". Larger flaws are needed.", "")
+	case h.Curve.Lower.Status != signal.Fitted:
+		p.wrap("a90/95 is not shown: "+why+". Flaws of the sizes between are needed.", "")
 	default:
 		p.wrap("The study gives no a90/95: "+why+". More flaws are needed, above all around a90 and above it.", "")
 	}
@@ -94,27 +96,10 @@ func whyNoA9095(st SmallStudy, h *signal.HitMiss) string {
 	switch {
 	case !h.HasA9095:
 		return h.Why
-	case h.Curve.Lower.Status != signal.Fitted:
-		return "hits and misses do not overlap in size, so the study does not tell how the chance rises"
 	case beyondTried(h, h.A9095):
 		return "it lies beyond the largest flaw tried (" + s.WithUnit(s.Value(largestFlaw(h))) + ")"
 	}
 	return ""
-}
-
-// hasA9095 reports whether there is a number for a90/95. Where hits and misses
-// do not overlap nothing is known of how the curve rises (MIL-HDBK-1823A wants
-// an overlap; from memory).
-func hasA9095(h *signal.HitMiss) bool {
-	return h.HasA9095 && h.Curve.Lower.Status == signal.Fitted
-}
-
-// whatItNeeds says what would give a study its a90/95.
-func whatItNeeds(h *signal.HitMiss) string {
-	if h.Curve.Lower.Status != signal.Fitted {
-		return "More flaws of the sizes between are needed."
-	}
-	return "Larger flaws are needed."
 }
 
 // flawSize writes a size; one beyond the largest flaw tried is an
@@ -135,7 +120,7 @@ func flawTable(st SmallStudy, h *signal.HitMiss) Table {
 		[]Cell{say("a50"), boundedCell(s, h.A50, flawSize(s, h)), say("found half of the time")},
 		[]Cell{say("a90"), boundedCell(s, h.A90, flawSize(s, h)), say("found nine times in ten")})
 	bound := say(format.Dash)
-	if hasA9095(h) {
+	if h.HasA9095 {
 		bound = valueCell(flawSize(s, h)(h.A9095), h.A9095)
 	}
 	t.Rows = append(t.Rows, []Cell{say("a90/95"), bound, say("a90 is not larger than this, with 95 % confidence, one-sided, by likelihood ratio")})
@@ -213,7 +198,7 @@ func flawNotes(st SmallStudy, rows []study.Tally, h *signal.HitMiss) []string {
 		from, to := s.Value(math.Exp(gap.Reject)), s.WithUnit(s.Value(math.Exp(gap.Accept)))
 		out = append(out, fmt.Sprintf("Hits and misses do not overlap in size: flaws up to %s were missed and flaws from %s found (one size at most had both). The curve is a bias-reduced one; where it turns between these sizes, and how steeply, the study does not tell.", from, to))
 	}
-	if hasA9095(h) && beyondTried(h, h.A9095) {
+	if h.HasA9095 && beyondTried(h, h.A9095) {
 		out = append(out, fmt.Sprintf("The number given for a90/95 is an extrapolation beyond the largest flaw tried, %s: it rests on the shape of the curve alone.", s.WithUnit(s.Value(largestFlaw(h)))))
 	}
 	for _, i := range c.Outliers {

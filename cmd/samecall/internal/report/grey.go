@@ -265,7 +265,7 @@ func WhyTheyDiffer(g *judge.Grey) []string {
 		case !l.Curve.Known():
 			out = append(out, at+"the curve has no cut: "+whyNoCut(g, l)+".")
 			continue
-		case z.Mixed == 0:
+		case z.Between == 0:
 			out = append(out, at+"no part is mixed: the unanimous zone is only the gap between two neighbouring parts, and the true zone is narrower.")
 			continue
 		case !informs(l.Curve):
@@ -342,14 +342,19 @@ func greyPartsTable(g *judge.Grey, every bool) Table {
 		if !limits.Inside(r.Value) {
 			notes = append(notes, "bad")
 		}
+		fitted, residual := say(format.Dash), say(format.Dash)
+		if r.NoCut {
+			notes = append(notes, "no cut here")
+		} else {
+			fitted, residual = valueCell(format.Percent(r.Fitted), r.Fitted), valueCell(signedFigure(r.Residual), r.Residual)
+		}
 		change, log := r.CutChange[r.Side], r.LogSigmaChange[r.Side]
 		cut, sigma := say(format.Dash), say(format.Dash)
 		if change != 0 || log != 0 { // a limit without mixed parts has no such fit
 			cut, sigma = valueCell(finer.Signed(change), change), valueCell(changePercent(log), math.Expm1(log))
 		}
 		t.Rows = append(t.Rows, []Cell{say(r.Name), valueCell(written[i], r.Value), valueCell(fmt.Sprintf("%d of %d", r.Accepted, r.Calls), r.Accepted),
-			valueCell(format.Percent(r.Fitted), r.Fitted), valueCell(signedFigure(r.Residual), r.Residual),
-			cut, sigma, say(strings.Join(notes, ", "))})
+			fitted, residual, cut, sigma, say(strings.Join(notes, ", "))})
 	}
 	notes := []string{"Residual: how far the calls lie from the fitted share, beyond ±2 is much. Without it: by how much cut and σ would change if the part were left out."}
 	if more > 0 {

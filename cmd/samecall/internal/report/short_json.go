@@ -158,7 +158,7 @@ func FlawJSON(w io.Writer, st SmallStudy, rows []study.Tally, h *signal.HitMiss)
 	}
 	// The curve runs over the logarithm of the size; its cuts there are a50.
 	d.Likelihood.Limit = nil
-	if hasA9095(h) {
+	if h.HasA9095 {
 		d.A9095.Estimate, d.A9095.Method = &h.A9095, flawBound
 	}
 	for _, p := range flawSizes(rows, h) {

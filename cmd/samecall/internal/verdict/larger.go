@@ -48,8 +48,9 @@ func shareOfParts(share, confidence float64) projection {
 	}
 }
 
-// rateOverCalls projects a rate over calls: the limits of Korn & Graubard
-// (interval.KornGraubard) in a study that holds each part of this one so many
+// rateOverCalls projects a rate over calls: the limits of Korn & Graubard, no
+// surer than the number of parts (interval.Rate.NoSurerThanParts), in a study
+// that holds each part of this one so many
 // times, which need not be a whole number.
 func rateOverCalls(clusters []interval.Cluster, confidence float64) projection {
 	now := interval.KornGraubard(clusters, confidence)
@@ -73,7 +74,9 @@ func rateOverCalls(clusters []interval.Cluster, confidence float64) projection {
 			ratio := min(1, student(tail, callsThen-1)/t)
 			effective *= ratio * ratio
 		}
-		return interval.Exact(rate*effective, effective, eachSide(confidence))
+		i := interval.Exact(rate*effective, effective, eachSide(confidence))
+		none, all := interval.Exact(0, parts, eachSide(confidence)), interval.Exact(parts, parts, eachSide(confidence))
+		return interval.Interval{Lower: min(i.Lower, all.Lower), Upper: max(i.Upper, none.Upper)}
 	}
 }
 
