@@ -48,6 +48,27 @@ func TestDetectByHand(t *testing.T) {
 	phi := math.Exp(-z*z/2) / math.Sqrt(2*math.Pi)
 	near(t, "se", d.DPrime.SE, math.Sqrt(2*(20.5/26)*(5.5/26)/25)/phi, 1e-12)
 	near(t, "half width", d.DPrime.Upper-d.DPrime.Value, 1.959963984540054*d.DPrime.SE, 1e-9)
+	// c is half the sum of the same two quantiles: half the standard error.
+	near(t, "half width of c", d.Criterion.Upper-d.Criterion.Value, 1.959963984540054*d.DPrime.SE/2, 1e-9)
+}
+
+// The variance of a rate whose parts scatter less than calls by chance would is
+// the binomial one: here every part is rejected in one of two calls, so that
+// nothing scatters. With no rejection at all the number of parts bounds it.
+func TestDetectByPartFloor(t *testing.T) {
+	half := []Tally{{Rejected: 1, Calls: 2, Parts: 10}}
+	none := []Tally{{Rejected: 0, Calls: 4, Parts: 10}}
+	d, err := DetectByPart(half, none, 0.95)
+	if err != nil {
+		t.Fatal(err)
+	}
+	hit, alarm := 10.5/21, 0.5/41
+	density := func(p float64) float64 {
+		z := math.Sqrt2 * math.Erfinv(2*p-1)
+		return math.Exp(-z*z/2) / math.Sqrt(2*math.Pi)
+	}
+	want := math.Sqrt(hit*(1-hit)/20/sq(density(hit)) + alarm*(1-alarm)/10/sq(density(alarm)))
+	nearRel(t, "se", d.DPrime.SE, want, 1e-9)
 }
 
 func TestDetectRefuses(t *testing.T) {

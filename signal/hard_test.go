@@ -8,6 +8,7 @@ import (
 	"strings"
 	"testing"
 
+	"gonum.org/v1/gonum/stat/distuv"
 	"pgregory.net/rapid"
 )
 
@@ -460,4 +461,43 @@ func TestMaximumOfTwoSigmas(t *testing.T) {
 	if fitted < 200 || beaten > fitted/100 {
 		t.Errorf("%d of %d maxima are beaten", beaten, fitted)
 	}
+}
+
+// Where the curve is true, lack of fit is found at its level: in 10 % of the
+// studies, give or take what so few calls a part and 400 studies leave. By the
+// chi-square tail, which such calls do not have, it is found in 17 %.
+func TestLackOfFitKeepsItsLevel(t *testing.T) {
+	rng := rand.New(rand.NewPCG(9, 9))
+	tested, found := 0, 0
+	for range 400 {
+		parts := simulate(rng, 40, 3, 0, 1, 0.08, -0.25, 1.25)
+		c, err := Fit(parts, Between(0, 1), Options{SkipIntervals: true})
+		if err != nil || !c.LackOfFit.Tested {
+			continue
+		}
+		tested++
+		if c.LackOfFit.P < 0.10 {
+			found++
+		}
+	}
+	if share := float64(found) / float64(tested); tested < 300 || share < 0.06 || share > 0.14 {
+		t.Errorf("found in %d of %d", found, tested)
+	}
+}
+
+// With lack of fit the cut-off is the factor times the quantile of F(1, df), by
+// distuv's F, and the intervals end there.
+func TestLackOfFitCutOff(t *testing.T) {
+	parts := []Part{{Value: -3, Calls: 20}, {Value: -2, Calls: 20, Accepted: 2}, {Value: -1, Calls: 20, Accepted: 2}, {Value: 0, Calls: 20, Accepted: 13},
+		{Value: 0.5, Calls: 20, Accepted: 9}, {Value: 1, Calls: 20, Accepted: 18}, {Value: 2, Calls: 20, Accepted: 17}, {Value: 3, Calls: 20, Accepted: 20}}
+	c := mustFit(t, parts, AtLeast(0), Options{LackOfFit: WidenAlways})
+	f := c.LackOfFit
+	if !f.Applied {
+		t.Fatalf("%+v", f)
+	}
+	cutoff := f.Factor * distuv.F{D1: 1, D2: float64(f.DF)}.Quantile(0.95)
+	nearRel(t, "cut-off", c.crit, cutoff, 1e-9)
+	b := c.blocks[0]
+	p := newProfiler(newSolver(b.m), b.theta, b.loglik, b.cov, b.m.groups[0].cut[0])
+	nearRel(t, "lost at the upper end of the cut", sq(p.root(c.sc.in(c.Lower.Cut.Upper))), cutoff, 1e-5)
 }
