@@ -40,11 +40,3 @@ func (c *curve) options(confidence float64) (signal.Options, error) {
 	}
 	return o, nil
 }
-
-// wantConfidence checks --confidence of a command that reads no study file.
-func wantConfidence(c float64) error {
-	if !(c > 0 && c < 1) {
-		return fmt.Errorf("--confidence is %v; expected a number between 0 and 1, such as 0.95", c)
-	}
-	return nil
-}

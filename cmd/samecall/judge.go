@@ -2,6 +2,7 @@ package main
 
 import (
 	"bufio"
+	"errors"
 	"fmt"
 	"io"
 
@@ -78,14 +79,13 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 			}
 			result.Command = commandLine(cmd, args)
 			result.FlagLevels = src.flagLevels(cmd)
-			if err := out.write(s.out, result); err != nil {
-				return err
-			}
+			failed := out.write(s.out, result)
 			if !out.toStandardOutput() {
 				err := buffered(s.out, func(w io.Writer) error { return report.Text(w, result, terminal(s.out), full) })
-				if err != nil {
-					return err
-				}
+				failed = errors.Join(failed, err)
+			}
+			if failed != nil {
+				return failed
 			}
 			return required.check(result.Verdict, result.Options.Confidence)
 		},

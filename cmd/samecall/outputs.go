@@ -69,14 +69,19 @@ func (o *outputs) check() error {
 	if len(to) > 1 {
 		return fmt.Errorf("%s both go to standard output; give all but one a file", strings.Join(to, " and "))
 	}
-	if o.xlsx == "-" {
+	switch {
+	case o.xlsx == "-":
 		return errors.New("--xlsx writes a workbook, not text; give it a file")
+	case o.figures == "-":
+		return errors.New("--figures writes several pictures; give it a folder")
 	}
 	return nil
 }
 
-// write writes every file that was asked for.
+// write writes every file that was asked for; one that fails does not keep
+// the others from being written.
 func (o *outputs) write(standard io.Writer, r *report.Record) error {
+	var failed []error
 	for _, w := range o.writers() {
 		write := func(to io.Writer) error { return w.write(to, r) }
 		var err error
@@ -88,27 +93,28 @@ func (o *outputs) write(standard io.Writer, r *report.Record) error {
 			err = output.File(w.file, write)
 		}
 		if err != nil {
-			return fmt.Errorf("%s: %w", w.flag, err)
+			failed = append(failed, fmt.Errorf("%s: %w", w.flag, err))
 		}
 	}
-	if o.figures == "" {
-		return nil
+	if o.figures != "" {
+		failed = append(failed, writeFigures(o.figures, r))
 	}
-	return writeFigures(o.figures, r)
+	return errors.Join(failed...)
 }
 
 func writeFigures(dir string, r *report.Record) error {
 	if err := os.MkdirAll(dir, 0o777); err != nil {
 		return fmt.Errorf("--figures: %w", err)
 	}
+	var failed []error
 	for _, f := range report.Figures(r) {
 		for ending, write := range map[string]func(io.Writer) error{".svg": f.SVG, ".png": f.PNG} {
 			if err := output.File(filepath.Join(dir, f.Name+ending), write); err != nil {
-				return fmt.Errorf("--figures: %w", err)
+				failed = append(failed, fmt.Errorf("--figures: %w", err))
 			}
 		}
 	}
-	return nil
+	return errors.Join(failed...)
 }
 
 // commandLine is the line that computes a record again: the command with
@@ -126,9 +132,7 @@ func commandLine(cmd *cobra.Command, args []string) string {
 			return
 		}
 		value := f.Value.String()
-		if numbers, err := cmd.Flags().GetFloat64Slice(f.Name); err == nil {
-			value = (*numberList)(&numbers).String() // as short as it reads back
-		} else if list, ok := f.Value.(pflag.SliceValue); ok {
+		if list, ok := f.Value.(pflag.SliceValue); ok {
 			value = joined(list.GetSlice())
 		}
 		words = append(words, "--"+f.Name+"="+value)

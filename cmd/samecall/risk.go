@@ -4,8 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
-	"math"
-	"strconv"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -111,33 +110,6 @@ func (a *riskFlags) addFlags(cmd *cobra.Command) {
 	_ = cmd.RegisterFlagCompletionFunc("towards", cobra.FixedCompletions([]string{"lower", "upper"}, cobra.ShellCompDirectiveNoFileComp))
 }
 
-// numberList is a flag of numbers with commas between them. The error names the
-// one that is none.
-type numberList []float64
-
-func (n *numberList) String() string {
-	var out []string
-	for _, x := range *n {
-		out = append(out, strconv.FormatFloat(x, 'g', -1, 64))
-	}
-	return strings.Join(out, ",")
-}
-
-func (n *numberList) Type() string { return "floats" }
-
-func (n *numberList) Set(text string) error {
-	var out []float64
-	for _, field := range strings.Split(text, ",") {
-		x, err := strconv.ParseFloat(strings.TrimSpace(field), 64)
-		if err != nil || math.IsNaN(x) || math.IsInf(x, 0) {
-			return fmt.Errorf("%q is not a number; expected numbers with commas between them, such as 0.002,0.004", field)
-		}
-		out = append(out, x)
-	}
-	*n = append(*n, out...)
-	return nil
-}
-
 // given reports whether any of the flags was given.
 func given(cmd *cobra.Command, names ...string) bool {
 	for _, n := range names {
@@ -238,10 +210,10 @@ func (a *riskFlags) process(cmd *cobra.Command, limits signal.Limits, in streams
 
 // fitted assesses the curve of a study.
 func (a *riskFlags) fitted(cmd *cobra.Command, src *source, in streams, args []string, opt signal.Options, want judge.RiskAsk) (*judge.Risks, *report.Record, error) {
-	if len(args) == 0 && src.example == "" && src.study == "" {
+	if !src.named(args) {
 		return nil, nil, errors.New("no study is named; give a calls file, a study file or --example NAME, or --cut-lower, --cut-upper and --sigma without a study")
 	}
-	if a.values == "-" && len(args) == 1 && args[0] == "-" {
+	if a.values == "-" && (slices.Contains(args, "-") || src.study == "-" || src.settings.Calls == "-") {
 		return nil, nil, errors.New("the study and --process-values both come from standard input; give one of them a file")
 	}
 	st, err := src.read(cmd, args, in)
@@ -250,6 +222,9 @@ func (a *riskFlags) fitted(cmd *cobra.Command, src *source, in streams, args []s
 	}
 	if err := needValues(st); err != nil {
 		return nil, nil, statusError{exitWrongData, err}
+	}
+	if a.appraiser != "" && !slices.Contains(st.Appraisers, a.appraiser) {
+		return nil, nil, fmt.Errorf("--appraiser: no appraiser is named %q; there are %s", a.appraiser, strings.Join(st.Appraisers, ", "))
 	}
 	opt.Confidence = st.Settings.Confidence
 	c, err := judge.PooledCurve(st, opt, a.appraiser)
@@ -274,7 +249,7 @@ func (a *riskFlags) known(cmd *cobra.Command, src *source, in streams, args []st
 	if err != nil {
 		return nil, err
 	}
-	if len(args) > 0 || src.example != "" || src.study != "" {
+	if src.named(args) {
 		return nil, errors.New("a study and --cut-lower, --cut-upper or --sigma are both given; the cuts come from one of them")
 	}
 	switch {
@@ -306,6 +281,9 @@ func (a *riskFlags) known(cmd *cobra.Command, src *source, in streams, args []st
 		return nil, errors.New("--sigma is missing: the σ of the inspection at its cuts")
 	case len(a.sigma) > 2 || len(a.sigma) == 2 && !(g.HasLower && g.HasUpper):
 		return nil, fmt.Errorf("--sigma has %d numbers; expected one, or two where there are two cuts", len(a.sigma))
+	}
+	if g.HasLower && g.HasUpper && g.LowerCut >= g.UpperCut {
+		return nil, fmt.Errorf("--cut-lower is %v and --cut-upper %v; the lower cut must lie below the upper one", g.LowerCut, g.UpperCut)
 	}
 	g.LowerSigma, g.UpperSigma = a.sigma[0], a.sigma[len(a.sigma)-1]
 	var file study.Input

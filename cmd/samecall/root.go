@@ -9,6 +9,7 @@ import (
 
 	"github.com/spf13/cobra"
 
+	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/study"
 )
 
@@ -38,17 +39,36 @@ func run(args []string, in io.Reader, out, errs io.Writer) int {
 	var status statusError
 	if errors.As(err, &status) {
 		if status.err != nil {
-			fmt.Fprintln(errs, "samecall:", status.err)
+			say(errs, status.err)
 		}
 		return status.status
 	}
+	say(errs, err)
 	var problems *study.Problems
 	if errors.As(err, &problems) {
-		fmt.Fprintln(errs, problems)
 		return exitWrongData
 	}
-	fmt.Fprintln(errs, "samecall:", err)
 	return exitUsage
+}
+
+// say writes an error to people, a line for each thing that is wrong. Names
+// in it are those of files and of what stands in them: each line is made safe
+// for a terminal.
+func say(w io.Writer, err error) {
+	var problems *study.Problems
+	joined, several := err.(interface{ Unwrap() []error })
+	switch {
+	case errors.As(err, &problems):
+		for _, line := range problems.Lines() {
+			fmt.Fprintln(w, format.Plain(line))
+		}
+	case several:
+		for _, e := range joined.Unwrap() {
+			say(w, e)
+		}
+	default:
+		fmt.Fprintln(w, "samecall:", format.Plain(err.Error()))
+	}
 }
 
 // statusError ends the program with a status of its own, and a message
@@ -89,7 +109,7 @@ how many good ones are thrown out, and how far the study can show it.`,
 			}
 			return nil
 		},
-		PersistentPreRunE: keep,
+		PersistentPreRunE: checkLine,
 		RunE:              func(cmd *cobra.Command, args []string) error { return cmd.Help() },
 	}
 	root.SetIn(s.in)

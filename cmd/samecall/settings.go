@@ -1,10 +1,12 @@
 package main
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
 	"io/fs"
 	"os"
+	"path/filepath"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -20,7 +22,7 @@ type source struct {
 	example, study string
 	settings       study.Settings
 	lower, upper   float64
-	pairs          map[string]*[]float64
+	pairs          map[string]*levels
 	members        [2]string // of the gauge, at the lower and the upper limit
 }
 
@@ -38,20 +40,21 @@ func (s *source) addFlags(cmd *cobra.Command) {
 	f.StringVar(&s.settings.Unit, "unit", "", "unit of values and limits")
 	f.Float64Var(&s.lower, "lower", 0, "lower specification limit")
 	f.Float64Var(&s.upper, "upper", 0, "upper specification limit")
-	f.StringSliceVar(&s.settings.Accept, "accept", nil, "words that accept a part, such as go,pass")
-	f.StringSliceVar(&s.settings.Reject, "reject", nil, "words that reject a part")
-	f.StringSliceVar(&s.settings.Order, "order", nil, "grades from best to worst, where calls are grades")
-	f.StringSliceVar(&s.settings.Categories, "categories", nil, "kinds of calls, where they have no order")
-	f.StringSliceVar(&s.settings.Ignore, "ignore", nil, "columns of the calls file to leave out")
+	addWords(f, &s.settings.Accept, "accept", "words that accept a part, such as go,pass")
+	addWords(f, &s.settings.Reject, "reject", "words that reject a part")
+	addWords(f, &s.settings.Order, "order", "grades from best to worst, where calls are grades")
+	addWords(f, &s.settings.Categories, "categories", "kinds of calls, where they have no order")
+	addWords(f, &s.settings.Ignore, "ignore", "columns of the calls file to leave out")
 	f.Float64Var(&s.settings.Confidence, "confidence", 0, "of every interval; 0.95 if not given")
-	s.pairs = make(map[string]*[]float64)
+	s.pairs = make(map[string]*levels)
 	for _, c := range []struct{ name, usage string }{
 		{"effectiveness", "accept and conditional level, such as 0.9,0.8"},
 		{"miss", "accept and conditional level of the miss rate, such as 0.02,0.05"},
 		{"false-alarm", "accept and conditional level of the false-alarm rate, such as 0.05,0.10"},
 		{"kappa", "accept and conditional level of kappa, against the reference and between appraisers, such as 0.75,0.40"},
 	} {
-		s.pairs[c.name] = f.Float64Slice(c.name, nil, c.usage)
+		s.pairs[c.name] = new(levels)
+		f.Var(s.pairs[c.name], c.name, c.usage)
 	}
 	f.StringVar(&s.members[0], "gauge-sizes-lower", "", "calibrated gauge member at the lower limit, such as size=9.997,uncertainty=0.0008,wear_limit=9.999")
 	f.StringVar(&s.members[1], "gauge-sizes-upper", "", "calibrated gauge member at the upper limit, likewise")
@@ -66,7 +69,7 @@ func (s *source) read(cmd *cobra.Command, args []string, in streams) (*study.Stu
 	}
 	src := study.Source{Stdin: in.in, Study: s.study}
 	switch {
-	case s.example != "" && (len(args) > 0 || s.study != ""):
+	case s.example != "" && (len(args) > 0 || s.study != "" || flags.Calls != ""):
 		return nil, errors.New("--example and a file are both given; leave one out")
 	case s.example != "":
 		files, err := example.FS(s.example)
@@ -76,14 +79,30 @@ func (s *source) read(cmd *cobra.Command, args []string, in streams) (*study.Stu
 		src.FS, src.Path = files, example.StudyFile
 	case len(args) == 1:
 		src.Path = args[0]
-	case s.study == "":
+	case !s.named(args):
 		return nil, fmt.Errorf("no study is named; give a calls file, a study file or --example NAME (%s --help)", cmd.CommandPath())
 	}
 	st, err := study.Read(src, flags)
+	if err == nil && src.FS == nil && flags.Calls == "" && st.Settings.Calls != "" {
+		err = keepRead(cmd, callsOf(cmp.Or(src.Study, src.Path), st.Settings.Calls))
+	}
 	if errors.Is(err, fs.ErrNotExist) && src.FS == nil {
 		err = fmt.Errorf("%w; the folder is %s", err, folder())
 	}
 	return st, err
+}
+
+// callsOf is the calls file that a study file names.
+func callsOf(studyFile, calls string) namedFile {
+	if !filepath.IsAbs(calls) {
+		calls = filepath.Join(filepath.Dir(studyFile), filepath.FromSlash(calls))
+	}
+	return namedFile{"the calls file of " + studyFile, calls}
+}
+
+// named reports whether a study is named.
+func (s *source) named(args []string) bool {
+	return len(args) > 0 || s.example != "" || s.study != "" || s.settings.Calls != ""
 }
 
 func folder() string {
@@ -109,7 +128,7 @@ func (s *source) flags(cmd *cobra.Command) (study.Settings, error) {
 		"false-alarm":   &out.Criteria.FalseAlarm,
 		"kappa":         &out.Criteria.Kappa,
 	} {
-		levels := *s.pairs[name]
+		levels := s.pairs[name].numbers()
 		switch {
 		case !cmd.Flags().Changed(name):
 		case len(levels) != 2:
@@ -128,9 +147,6 @@ func (s *source) flags(cmd *cobra.Command) (study.Settings, error) {
 			return out, fmt.Errorf("--%s: %w", flag, err)
 		}
 		*to = m
-	}
-	if cmd.Flags().Changed("confidence") && out.Confidence == 0 {
-		return out, errors.New("--confidence is 0; expected a number between 0 and 1, such as 0.95")
 	}
 	return out, out.Validate()
 }
@@ -175,6 +191,9 @@ func flagError(cmd *cobra.Command, err error) error {
 	var invalid *pflag.InvalidValueError
 	if errors.As(err, &invalid) {
 		flag := invalid.GetFlag()
+		if errors.Is(err, errTwice) {
+			return fmt.Errorf("--%s is given twice; give both levels at once, with a comma between them", flag.Name)
+		}
 		if expected := flagValues[flag.Value.Type()]; expected != "" {
 			return fmt.Errorf("--%s is %q; expected %s", flag.Name, invalid.GetValue(), expected)
 		}

@@ -24,15 +24,12 @@ func (s *smallSource) addFlags(cmd *cobra.Command) {
 	f.StringVar(&s.title, "title", "", "what the study is called in the answer")
 	f.StringVar(&s.unit, "unit", "", "unit of the values")
 	f.StringVar(&s.sheet, "sheet", "", "sheet of a workbook; the first if not given")
-	f.StringSliceVar(&s.ignore, "ignore", nil, "columns of the file to leave out")
+	addWords(f, &s.ignore, "ignore", "columns of the file to leave out")
 	f.Float64Var(&s.confidence, "confidence", study.DefaultConfidence, "of the intervals")
 }
 
 // read reads the table that the command line names.
 func (s *smallSource) read(args []string, in streams, read func(study.Source, string, []string) (*study.Tallies, error)) (*study.Tallies, report.SmallStudy, error) {
-	if err := wantConfidence(s.confidence); err != nil {
-		return nil, report.SmallStudy{}, err
-	}
 	t, err := read(study.Source{Path: args[0], Stdin: in.in}, s.sheet, s.ignore)
 	if err != nil {
 		return nil, report.SmallStudy{}, err

@@ -100,14 +100,15 @@ func addJSON(cmd *cobra.Command, file *string) {
 // jsonOrText writes the JSON to the file, if one is named, and the text to
 // standard output unless the JSON went there.
 func jsonOrText(s streams, file string, json, text func(io.Writer) error) error {
+	var failed error
 	switch file {
 	case "":
 	case "-":
 		return buffered(s.out, json)
 	default:
 		if err := output.File(file, json); err != nil {
-			return fmt.Errorf("--json: %w", err)
+			failed = fmt.Errorf("--json: %w", err)
 		}
 	}
-	return buffered(s.out, text)
+	return errors.Join(failed, buffered(s.out, text))
 }

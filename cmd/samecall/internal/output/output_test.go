@@ -5,8 +5,10 @@ import (
 	"fmt"
 	"io"
 	"os"
+	"os/exec"
 	"path/filepath"
 	"runtime"
+	"strings"
 	"testing"
 )
 
@@ -113,6 +115,48 @@ func TestDescriptorIsAppendedTo(t *testing.T) {
 	before, _ := f.Stat()
 	if after, err := os.Stat(f.Name()); err != nil || !os.SameFile(before, after) {
 		t.Errorf("the file was replaced: %v", err)
+	}
+}
+
+// A program that ends in the middle leaves nothing behind. What Abandon does
+// is for good, so it is done in a process of its own.
+func TestAbandon(t *testing.T) {
+	if dir := os.Getenv("ABANDON"); dir != "" {
+		_ = File(filepath.Join(dir, "x"), func(io.Writer) error {
+			if entries, err := os.ReadDir(dir); err != nil || len(entries) != 1 {
+				t.Errorf("while it is written: %v, %v", entries, err)
+			}
+			Abandon()
+			os.Exit(7)
+			return nil
+		})
+	}
+	dir := t.TempDir()
+	again := exec.Command(os.Args[0], "-test.run=^TestAbandon$")
+	again.Env = append(os.Environ(), "ABANDON="+dir)
+	err := again.Run()
+	if code := again.ProcessState.ExitCode(); code != 7 {
+		t.Fatalf("exit status %d: %v", code, err)
+	}
+	if entries, err := os.ReadDir(dir); err != nil || len(entries) != 0 {
+		t.Errorf("left behind: %v, %v", entries, err)
+	}
+}
+
+func TestLongName(t *testing.T) {
+	name := filepath.Join(t.TempDir(), strings.Repeat("n", 250))
+	if err := File(name, text("x")); err != nil || read(t, name) != "x" {
+		t.Error(err)
+	}
+}
+
+func TestReadOnlyIsNotReplaced(t *testing.T) {
+	name := filepath.Join(t.TempDir(), "x")
+	if err := os.WriteFile(name, []byte("kept"), 0o444); err != nil {
+		t.Fatal(err)
+	}
+	if err := File(name, text("x")); err == nil || !strings.Contains(err.Error(), name+" is read-only") || read(t, name) != "kept" {
+		t.Errorf("error %v", err)
 	}
 }
 

@@ -55,7 +55,7 @@ func TestFarValues(t *testing.T) {
 		{"two kinds of parts", "1 1.1 1.2 1 100 101 102 100", Settings{}, ""},
 		{"too few", "1 1.1 1.2 1 100", Settings{}, ""},
 		{"all alike", "1 1 1 1 1 1 1 2", Settings{}, ""},
-		{"huge", "1e308 -1e308 1e307 -1e307 1 2 3", Settings{}, ""},
+		{"huge", "1e100 -1e100 1e99 -1e99 1 2 3", Settings{}, ""},
 	} {
 		if got := farNotes(t, c.values, c.settings); got != c.want {
 			t.Errorf("%s: %s\nwant %s", c.name, got, c.want)

@@ -2,7 +2,6 @@ package study
 
 import (
 	"fmt"
-	"math"
 	"strings"
 )
 
@@ -68,8 +67,11 @@ func ParseGaugeMember(s string, upper bool) (*GaugeMember, error) {
 			return nil, badValue{key + " twice", "it once"}
 		}
 		table[key] = value
-		if x, err := parseNumber([]byte(value), false); err == nil {
+		switch x, err := parseNumber([]byte(value), false); err {
+		case nil:
 			table[key] = x
+		case errTooLarge, errTooSmall:
+			return nil, fmt.Errorf("found %s: %w", value, err)
 		}
 	}
 	m, err := newMember(table, upper)
@@ -118,8 +120,8 @@ func newMember(table map[string]any, upper bool) (*GaugeMember, error) {
 // fault is what about a member cannot be, nil if all is well.
 func (m *GaugeMember) fault() error {
 	for _, x := range []float64{m.Size, m.Uncertainty, m.WearLimit} {
-		if math.IsNaN(x) || math.IsInf(x, 0) {
-			return fmt.Errorf("%v is no finite number", x)
+		if err := CheckNumber(x); err != nil {
+			return fmt.Errorf("found %v: %w", x, err)
 		}
 	}
 	if m.Uncertainty < 0 {

@@ -51,7 +51,7 @@ func TestGaugeSizesWrong(t *testing.T) {
 		"[gauge_sizes]\n\nupper = {sise = 9.997, uncertainty = 0}\n":                       `s.toml:3: found the unknown key "sise", expected size, uncertainty, wear_limit or wears`,
 		"[gauge_sizes]\nlower = {size = '9.997', uncertainty = 0}\n":                       `s.toml:2: found the text "9.997", expected a number for size`,
 		"[gauge_sizes]\nlower = {size = 9.997, uncertainty = -1}\n":                        "s.toml:2: gauge_sizes.lower: the uncertainty is -1; expected 0 or more",
-		"[gauge_sizes]\nlower = {size = nan, uncertainty = 0}\n":                           "s.toml:2: gauge_sizes.lower: NaN is no finite number",
+		"[gauge_sizes]\nlower = {size = nan, uncertainty = 0}\n":                           "s.toml:2: gauge_sizes.lower: found NaN: expected a finite number",
 		"[gauge_sizes]\nlower = {size = 1, uncertainty = 0, wears = 'up', wear_limit=1}\n": `expected "smaller" or "larger" for wears`,
 		"[gauge_sizes]\nlower = {size = 1, uncertainty = 0, wears = 'larger'}\n":           "wears is given without wear_limit",
 		"gauge_sizes = 3\n":                "s.toml:1: found the key gauge_sizes with a value, expected a table",
@@ -73,7 +73,7 @@ func TestGaugeSizesWrong(t *testing.T) {
 		"size=1,size=1":                     "found size twice",
 		"size=1,uncertainty=-1":             "the uncertainty is -1",
 		"size=1,uncertainty=0,x=1":          `found the unknown key "x"`,
-		"size=1e999,uncertainty=0":          `expected a number for size`,
+		"size=1e999,uncertainty=0":          `found 1e999: the number is too large (expected at most 1e100 in size)`,
 		"":                                  `found ""`,
 		"size=1,uncertainty=0,wears=larger": "wears is given without wear_limit",
 	} {

@@ -15,8 +15,28 @@ var (
 	errThousands = errors.New("write the number without separators of thousands")
 	errComma     = errors.New("in a table separated by commas the decimal separator is a point")
 	errNoValue   = errors.New("leave the field empty where there is no value")
-	errTooLarge  = errors.New("the number is too large")
+	errTooLarge  = errors.New("the number is too large (expected at most 1e100 in size)")
+	errTooSmall  = errors.New("the number is too small (expected 0, or at least 1e-100 in size)")
+	errNotFinite = errors.New("expected a finite number")
 )
+
+// smallest and largest are sizes beyond which no number is taken, 0 aside.
+const smallest, largest = 1e-100, 1e100
+
+// CheckNumber refuses a number that is not finite or of a size that nothing
+// measured has: squares and quotients of such numbers leave what a float64
+// can hold.
+func CheckNumber(x float64) error {
+	switch size := math.Abs(x); {
+	case math.IsNaN(x) || math.IsInf(x, 0):
+		return errNotFinite
+	case size > largest:
+		return errTooLarge
+	case size > 0 && size < smallest:
+		return errTooSmall
+	}
+	return nil
+}
 
 // parseNumber reads a finite decimal number; comma says that the decimal
 // separator may be a comma.
@@ -48,7 +68,7 @@ func parseNumber(b []byte, comma bool) (float64, error) {
 	if err != nil {
 		return 0, errNotNumber
 	}
-	return x + 0, nil // never −0
+	return x + 0, CheckNumber(x) // never −0
 }
 
 // wholeNumber reads a trial number from 1 on. A spreadsheet or a data frame

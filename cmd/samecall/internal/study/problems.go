@@ -65,18 +65,19 @@ type Problems struct {
 }
 
 // Error prints one line a problem.
-func (p *Problems) Error() string {
-	var b strings.Builder
-	for i, q := range p.List {
-		if i > 0 {
-			b.WriteByte('\n')
-		}
-		b.WriteString(q.String())
+func (p *Problems) Error() string { return strings.Join(p.Lines(), "\n") }
+
+// Lines returns the lines of the error. Names in them stand as they are in
+// the data.
+func (p *Problems) Lines() []string {
+	var lines []string
+	for _, q := range p.List {
+		lines = append(lines, q.String())
 	}
 	if p.More > 0 {
-		fmt.Fprintf(&b, "\nand at least %d more", p.More)
+		lines = append(lines, fmt.Sprintf("and at least %d more", p.More))
 	}
-	return b.String()
+	return lines
 }
 
 // problemsOf returns the error for a list of problems and a number of

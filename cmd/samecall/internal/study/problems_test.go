@@ -96,7 +96,7 @@ calls.csv:3:3: found "og" in column 3 (a-1), expected ` + unknown + `; did you m
 			`calls.csv:2:2: found "1.0 mm" as the value of part "1", expected a number; write the number alone, without unit
 calls.csv:3:2: found "1,5" as the value of part "2", expected a number; in a table separated by commas the decimal separator is a point
 calls.csv:4:2: found "nan" as the value of part "3", expected a number; leave the field empty where there is no value
-calls.csv:5:2: found "1e999" as the value of part "4", expected a number; the number is too large
+calls.csv:5:2: found "1e999" as the value of part "4", expected a number; the number is too large (expected at most 1e100 in size)
 calls.csv:6:2: found "1,234.5" as the value of part "5", expected a number; write the number without separators of thousands
 calls.csv:7:2: found "0x10" as the value of part "6", expected a number; write the number alone, without unit`},
 		{"a call twice", "part,appraiser,trial,call\n1,a,1,go\n2,a,1,go\n1,a,01,no\n1,a,1.0,\n1,a,1,go\n", Settings{},

@@ -3,7 +3,6 @@ package study
 import (
 	"errors"
 	"fmt"
-	"math"
 	"os"
 	"regexp"
 	"slices"
@@ -35,7 +34,7 @@ type Settings struct {
 	Calls string // calls file; in a study file, relative to it
 	Sheet string // sheet of a workbook
 
-	Confidence float64 // of intervals, between 0 and 1
+	Confidence float64 // of intervals, from 0.5 to 0.9999
 	Criteria   Criteria
 
 	GaugeSizes GaugeSizes // as calibrated, where they are known
@@ -48,6 +47,16 @@ type Criteria struct {
 	Miss          *[2]float64
 	FalseAlarm    *[2]float64
 	Kappa         *[2]float64
+}
+
+const confidences = "a number from 0.5 to 0.9999, such as 0.95"
+
+// CheckConfidence refuses a confidence at which limits say nothing.
+func CheckConfidence(c float64) error {
+	if !(c >= 0.5 && c <= 0.9999) {
+		return fmt.Errorf("confidence is %v; expected %s", c, confidences)
+	}
+	return nil
 }
 
 // Merge returns s with everything that over says in place of what s says.
@@ -118,15 +127,22 @@ func (s Settings) faults() []fault {
 		key string
 		v   *float64
 	}{{"lower", s.Lower}, {"upper", s.Upper}} {
-		if l.v != nil && (math.IsNaN(*l.v) || math.IsInf(*l.v, 0)) {
-			add(l.key, "%s is no finite number; leave it out where there is no such limit", l.key)
+		if l.v == nil {
+			continue
+		}
+		if err := CheckNumber(*l.v); err != nil {
+			add(l.key, "%s is %v: %v; leave it out where there is no such limit", l.key, *l.v, err)
 		}
 	}
 	if s.Lower != nil && s.Upper != nil && *s.Lower >= *s.Upper {
 		add("upper", "lower is %v and upper is %v; lower must be less than upper", *s.Lower, *s.Upper)
+	} else if s.Lower != nil && s.Upper != nil && *s.Upper-*s.Lower < smallest {
+		add("upper", "lower is %v and upper is %v; the tolerance between them is too small (expected at least %v)", *s.Lower, *s.Upper, smallest)
 	}
-	if c := s.Confidence; c != 0 && !(c > 0 && c < 1) {
-		add("confidence", "confidence is %v; expected a number between 0 and 1, such as 0.95", c)
+	if s.Confidence != 0 {
+		if err := CheckConfidence(s.Confidence); err != nil {
+			add("confidence", "%v", err)
+		}
 	}
 	for _, c := range []struct {
 		key        string
@@ -279,8 +295,8 @@ func limitKey(to **float64) func(any) error {
 func confidenceKey(to *float64) func(any) error {
 	return func(v any) error {
 		f, ok := number(v)
-		if !ok || !(f > 0 && f < 1) {
-			return wrongType(v, "a number between 0 and 1, such as 0.95")
+		if !ok || CheckConfidence(f) != nil {
+			return wrongType(v, confidences)
 		}
 		*to = f
 		return nil

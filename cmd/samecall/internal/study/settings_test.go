@@ -59,10 +59,15 @@ func TestReadSettingsWrong(t *testing.T) {
 s.toml:2: found 5, expected text in quotes; the key is title
 s.toml:3: found the text "go", expected a list of words in quotes, such as ["go", "pass"]; the key is accept
 s.toml:4: found 1, expected a list of words in quotes, such as ["go", "pass"]; the key is reject`},
-		{"confidence = 95\n", `s.toml:1: found 95, expected a number between 0 and 1, such as 0.95; the key is confidence`},
+		{"confidence = 95\n", `s.toml:1: found 95, expected a number from 0.5 to 0.9999, such as 0.95; the key is confidence`},
 		{"lower = 3\nupper = 3\n", `s.toml:2: lower is 3 and upper is 3; lower must be less than upper`},
-		{"lower = nan\n", `s.toml:1: lower is no finite number; leave it out where there is no such limit`},
-		{"upper = inf\n", `s.toml:1: upper is no finite number; leave it out where there is no such limit`},
+		{"lower = nan\n", `s.toml:1: lower is NaN: expected a finite number; leave it out where there is no such limit`},
+		{"lower = 1e101\n", `s.toml:1: lower is 1e+101: the number is too large (expected at most 1e100 in size); leave it out where there is no such limit`},
+		{"lower = 3e-320\n", `s.toml:1: lower is 3e-320: the number is too small (expected 0, or at least 1e-100 in size); leave it out where there is no such limit`},
+		{"lower = 1e-100\nupper = 1.5e-100\n", `s.toml:2: lower is 1e-100 and upper is 1.5e-100; the tolerance between them is too small (expected at least 1e-100)`},
+		{"confidence = 0.4999\n", `s.toml:1: found 0.4999, expected a number from 0.5 to 0.9999, such as 0.95; the key is confidence`},
+		{"[gauge_sizes]\nlower = {size = 1e308, uncertainty = 1}\n", `s.toml:2: gauge_sizes.lower: found 1e+308: the number is too large (expected at most 1e100 in size)`},
+		{"upper = inf\n", `s.toml:1: upper is +Inf: expected a finite number; leave it out where there is no such limit`},
 		{"[criteria]\neffectiveness = [0.8, 0.9]\nmiss = [0.05, 0.02]\nkappa = [2, 0]\nfalse_alarm = [0.1]\n",
 			`s.toml:5: found a list of 1 value, expected the accept and the conditional level, such as [0.90, 0.80]; the key is criteria.false_alarm`},
 		{"[criteria]\neffectiveness = [0.8, 0.9]\nmiss = [0.05, 0.02]\nkappa = [2, 0]\n",

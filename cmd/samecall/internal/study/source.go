@@ -46,7 +46,10 @@ func Read(src Source, flags Settings) (*Study, error) {
 		inputs = append(inputs, Input{studyFile, hex.EncodeToString(sum[:])})
 	}
 	name := calls
-	if name == "" {
+	switch {
+	case calls != "" && flags.Calls != "":
+		return nil, fmt.Errorf("two calls files are named: %s and, by --calls, %s; leave one out", calls, flags.Calls)
+	case name == "":
 		calls, name = flags.Calls, flags.Calls
 	}
 	if name == "" && settings.Calls != "" {
