@@ -1,10 +1,11 @@
 package report
 
 import (
-	"encoding/csv"
+	"bufio"
 	"fmt"
 	"io"
 	"strconv"
+	"strings"
 
 	"samecall/cmd/samecall/internal/format"
 )
@@ -12,24 +13,35 @@ import (
 // CSV writes every table one below the other, each under its title, with a
 // blank line between. Numbers have a decimal point; shares are fractions.
 func CSV(w io.Writer, r *Record) error {
-	c := csv.NewWriter(w)
+	out := bufio.NewWriter(w)
 	for i, t := range numberTables(r) {
 		if i > 0 {
-			if err := c.Write([]string{""}); err != nil {
-				return err
-			}
+			writeLine(out, nil)
 		}
 		heads, rows := t.flat()
-		lines := [][]string{{harmless(format.Plain(t.Title))}, texts(heads)}
+		writeLine(out, []string{harmless(format.Plain(t.Title))})
+		writeLine(out, texts(heads))
 		for _, row := range rows {
-			lines = append(lines, record(row))
-		}
-		if err := c.WriteAll(lines); err != nil {
-			return err
+			writeLine(out, record(row))
 		}
 	}
-	c.Flush()
-	return c.Error()
+	return out.Flush()
+}
+
+// writeLine writes a row as RFC 4180 has it. Other than encoding/csv it quotes
+// what has a semicolon or a tab, too, at which many a spreadsheet ends a field.
+// Errors stay with the writer.
+func writeLine(w *bufio.Writer, fields []string) {
+	for i, f := range fields {
+		if i > 0 {
+			w.WriteByte(',')
+		}
+		if strings.ContainsAny(f, ",;\t\"\r\n") || f != strings.TrimSpace(f) {
+			f = `"` + strings.ReplaceAll(f, `"`, `""`) + `"`
+		}
+		w.WriteString(f)
+	}
+	w.WriteByte('\n')
 }
 
 func texts(s []string) []string {

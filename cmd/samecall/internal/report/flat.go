@@ -1,6 +1,9 @@
 package report
 
-import "strings"
+import (
+	"strings"
+	"unicode"
+)
 
 // flatCell is a cell for spreadsheets: string, int, float64 or nil.
 type flatCell struct {
@@ -59,10 +62,28 @@ func positiveZero(v any) any {
 
 // harmless keeps a text from being run as a formula by a spreadsheet that
 // opens a CSV: an apostrophe before the signs that begin one, of either
-// width, also behind spaces.
+// width, also behind spaces and what cannot be seen. So too behind a semicolon
+// or a tab: a spreadsheet that separates fields by these may end one there,
+// whether or not it stands in quotes (which for it are in the middle of one).
 func harmless(s string) string {
-	if strings.IndexAny(strings.TrimSpace(s), "=+-@＝＋－＠") == 0 {
-		return "'" + s
+	var b strings.Builder
+	for {
+		n := strings.IndexAny(s, ";\t") + 1
+		if n == 0 {
+			n = len(s)
+		}
+		if strings.IndexAny(strings.TrimLeftFunc(s[:n], unseen), "=+-@＝＋－＠") == 0 {
+			b.WriteByte('\'')
+		}
+		b.WriteString(s[:n])
+		if s = s[n:]; s == "" {
+			return b.String()
+		}
 	}
-	return s
+}
+
+// unseen tells characters that a reader does not see: white space, marks of
+// direction and of word ends.
+func unseen(r rune) bool {
+	return unicode.IsSpace(r) || unicode.IsControl(r) || unicode.In(r, unicode.Cf, unicode.Other_Default_Ignorable_Code_Point, unicode.Variation_Selector)
 }
