@@ -129,7 +129,7 @@ func flawTable(st SmallStudy, h *signal.HitMiss) Table {
 		way = "bias-reduced (Firth), since the likelihood has no maximum"
 	}
 	t.Note = fmt.Sprintf("Hit/miss model of MIL-HDBK-1823A (2009): %s curve over the logarithm of the size, %s. In brackets the two-sided %s interval.",
-		h.Curve.Options.Link, way, format.Percent(h.Curve.Options.Confidence))
+		h.Curve.Options.Link, way, format.Confidence(h.Curve.Options.Confidence))
 	return t
 }
 

@@ -132,7 +132,7 @@ func greyLimitsTable(g *judge.Grey) Table {
 		}
 		t.Columns = append(t.Columns, Column{Name: name, Numbers: true})
 	}
-	t.Note = fmt.Sprintf("The grey zone runs from 0.5 to 99.5 %% acceptance. In brackets the %s interval, by profile likelihood.", format.Percent(g.Result.Options.Confidence))
+	t.Note = fmt.Sprintf("The grey zone runs from 0.5 to 99.5 %% acceptance. In brackets the %s interval, by profile likelihood.", format.Confidence(g.Result.Options.Confidence))
 	return t
 }
 
