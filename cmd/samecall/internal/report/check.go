@@ -65,11 +65,15 @@ func holds(s *study.Study, sum study.Summary) [][]Cell {
 		}
 		add("parts by reference", strings.Join(by, ", "))
 	}
-	add("reference", map[study.ReferenceKind]string{
+	reference := map[study.ReferenceKind]string{
 		study.Given:   "given in the calls file",
 		study.Derived: "derived from values and limits",
 		study.None:    "none",
-	}[s.Reference])
+	}[s.Reference]
+	if n := s.DerivedParts; n > 0 {
+		reference += ", of " + format.Counted(n, "part") + " derived from value and limits"
+	}
+	add("reference", reference)
 	categories := make([]string, len(s.Categories))
 	for k, c := range s.Categories {
 		categories[k] = c
@@ -103,7 +107,11 @@ func holds(s *study.Study, sum study.Summary) [][]Cell {
 		}
 	}
 	for _, in := range s.Inputs {
-		add("read", in.File+", SHA-256 "+in.SHA256[:16]+"…")
+		sheet := ""
+		if in.Sheet != "" {
+			sheet = fmt.Sprintf(", sheet %q", in.Sheet)
+		}
+		add("read", in.File+sheet+", SHA-256 "+in.SHA256[:16]+"…")
 	}
 	return rows
 }

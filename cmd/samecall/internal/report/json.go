@@ -62,6 +62,7 @@ type studyJSON struct {
 	Accept         []string    `json:"accept"`
 	Ordered        bool        `json:"ordered"`
 	Reference      string      `json:"reference"`
+	DerivedParts   int         `json:"derived_parts,omitempty"`
 	Limits         limitsJSON  `json:"limits"`
 	Inputs         []inputJSON `json:"inputs"`
 }
@@ -75,6 +76,7 @@ type limitsJSON struct {
 type inputJSON struct {
 	File   string `json:"file"`
 	SHA256 string `json:"sha256"`
+	Sheet  string `json:"sheet,omitempty"`
 }
 
 type settingsJSON struct {
@@ -249,6 +251,7 @@ func newStudy(r *Record) studyJSON {
 		Accept:         []string{},
 		Ordered:        r.Options.Ordered,
 		Reference:      s.Reference.String(),
+		DerivedParts:   s.DerivedParts,
 		Limits:         limitsJSON{s.Settings.Lower, s.Settings.Upper, s.Settings.Unit},
 		Inputs:         []inputJSON{},
 	}

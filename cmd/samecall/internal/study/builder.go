@@ -174,7 +174,9 @@ func (b *builder) fit(fields [][]byte, line int) [][]byte {
 			return fields[:n]
 		}
 		hint := "a separator inside a field needs quotes around the field"
-		if v := b.layout.value; !b.comma && v >= 0 && digits(bytes.TrimLeft(trim(fields[v]), "+-")) && digits(trim(fields[v+1])) {
+		if b.padded {
+			hint = beyondHeader
+		} else if v := b.layout.value; !b.comma && v >= 0 && digits(bytes.TrimLeft(trim(fields[v]), "+-")) && digits(trim(fields[v+1])) {
 			hint = "a decimal comma needs quotes, or semicolons between fields"
 		}
 		b.problem(line, n, counted(len(fields), "field", "fields"), fmt.Sprintf("%d, as in the header", n), hint)
@@ -189,6 +191,9 @@ func (b *builder) fit(fields [][]byte, line int) [][]byte {
 	b.problem(line, -1, counted(len(fields), "field", "fields"), fmt.Sprintf("%d, as in the header", n), "a missing call is an empty field")
 	return nil
 }
+
+// beyondHeader is what to do about a row of a workbook that is too long.
+const beyondHeader = "name the column in the header, or clear the cells beyond it"
 
 func digits(field []byte) bool {
 	return len(field) > 0 && len(bytes.Trim(field, "0123456789")) == 0

@@ -246,7 +246,7 @@ func (s *Study) canShow(sum *Summary, alike agreement.Category) []Showing {
 		say("one_trial_some", "%s with one trial only: nothing can be said about how far they agree with themselves.", counted(single, "appraiser", "appraisers"))
 	}
 	if alike != agreement.Missing {
-		say("calls_alike", "Every call is %s: the appraisers agree, but parts of which all are called alike cannot show that they tell parts apart.", s.Categories[alike])
+		say("calls_alike", "Every call is %s: the appraisers agree, but parts of which all are called alike cannot show that they tell parts apart.", shown(s.Categories[alike]))
 	}
 	return append(list, s.zoneShown(sum)...)
 }

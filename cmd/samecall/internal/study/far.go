@@ -107,6 +107,14 @@ func (m *merge) valueLines(parts []uint32) []int {
 	return lines
 }
 
+// on says on which line something stands, or in which row of a workbook.
+func (m *merge) on(line int) string {
+	if m.sheet != "" {
+		return fmt.Sprintf("in row %d", line)
+	}
+	return fmt.Sprintf("on line %d", line)
+}
+
 // at says where something stands: on a line, or in a cell of a workbook.
 func (m *merge) at(line, field int) string {
 	if m.sheet != "" {

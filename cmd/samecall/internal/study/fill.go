@@ -11,8 +11,22 @@ import (
 // calls in less than one of a hundred.
 const roomyCells = 1 << 26
 
+// Where there are more appraisers than this and more than parts, the two
+// columns are taken to be swapped: every pair of appraisers has its kappa, so
+// that thousands of them do not fit. Our own choice, no source.
+const maxCrowd = 300
+
 // fill puts the calls into Ratings.
 func (m *merge) fill(trials []int) {
+	if n := len(trials); n > maxCrowd && n > len(m.study.Parts) {
+		p := Problem{Line: m.line, Found: fmt.Sprintf("%d appraisers on %s", n, counted(len(m.study.Parts), "part", "parts")),
+			Expected: fmt.Sprintf("no more appraisers than parts, or at most %d", maxCrowd), Text: "are the columns part and appraiser swapped?"}
+		if !m.layout.long {
+			p.Text = "is there a row for each part, and a column for each appraiser and trial?"
+		}
+		m.add(p)
+		return
+	}
 	columns, calls := 0, 0
 	for _, n := range trials {
 		columns += n
@@ -84,8 +98,8 @@ func (m *merge) callsGivenTwice(columns int) {
 			m.add(Problem{
 				Line: line, Column: m.layout.call + 1,
 				Found: fmt.Sprintf("the call of %s on part %s in trial %d a second time",
-					b.appraisers.list[key.appraiser], quote(m.study.Parts[m.rankOf(b)[r.part]]), key.trial),
-				Expected: "each call once", Text: fmt.Sprintf("it stands on line %d already", f),
+					quote(b.appraisers.list[key.appraiser]), quote(m.study.Parts[m.rankOf(b)[r.part]]), key.trial),
+				Expected: "each call once", Text: "it stands " + m.on(f) + " already",
 			})
 		}
 	})

@@ -5,6 +5,7 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+	"unicode"
 )
 
 // layout tells what stands in which field of a row. A field that is not there
@@ -29,10 +30,13 @@ type wideCell struct {
 
 const maxTrial = 1_000_000
 
+// maxTyped is how long a name may be for an error to write it out.
+const maxTyped = 200
+
 // place names a field for a message: `column 4 (call)`.
 func (l *layout) place(field int) string {
 	if field < len(l.header) {
-		return fmt.Sprintf("column %d (%s)", field+1, l.header[field])
+		return fmt.Sprintf("column %d (%s)", field+1, shown(l.header[field]))
 	}
 	return fmt.Sprintf("column %d", field+1)
 }
@@ -98,7 +102,7 @@ func readHeader(header, ignore []string, sheet string) (*layout, []Problem) {
 				problem(i, "the unknown column "+quote(h), listOf(sortedKeys(fields), "or"), hint+leaveOut(h, ignore))
 				continue
 			}
-			hint += fmt.Sprintf("the column of an appraiser is named appraiser-trial, such as %q; ", l.likelyTrial(i))
+			hint += fmt.Sprintf("the column of an appraiser is named appraiser-trial, such as %s; ", quote(l.likelyTrial(i)))
 			problem(i, "the column "+quote(h)+" without a trial number", "part, reference, value or an appraiser's trial", hint+leaveOut(h, ignore))
 			continue
 		}
@@ -196,8 +200,11 @@ func meant(h string, free []string) (columns []string, hint string) {
 }
 
 // leaveOut says how an unknown column is left out, beside those that are
-// ignored already.
+// ignored already. A name that cannot be typed as it is shown has no flag.
 func leaveOut(h string, ignore []string) string {
+	if len(h) > maxTyped || strings.ContainsFunc(h, func(r rune) bool { return !unicode.IsPrint(r) }) {
+		return "to leave the column out, give it a plain name and list that by ignore"
+	}
 	all := append(slices.Clone(ignore), h)
 	var words []string
 	for _, w := range all {

@@ -33,6 +33,7 @@ func (t *table) study(s Settings) (*Study, []Problem, int) {
 		m.problems = append(m.problems, b.problems...)
 		m.more += b.more
 	}
+	m.notRead()
 	m.unusedSettings()
 	m.mergeWords()
 	trials := m.mergeColumns()
@@ -47,6 +48,7 @@ func (t *table) study(s Settings) (*Study, []Problem, int) {
 	m.rareWords()
 	m.similarAppraisers()
 	m.farValues()
+	m.emptyColumns()
 	m.setReference()
 	if len(m.problems) > 0 {
 		return nil, m.problems, m.more
@@ -67,6 +69,36 @@ func (m *merge) note(code, format string, args ...any) {
 	m.study.Notes = append(m.study.Notes, Note{code, fmt.Sprintf(format, args...)})
 }
 
+// notRead notes what the file holds that is not read.
+func (m *merge) notRead() {
+	if len(m.others) > 0 {
+		m.note("other_sheets", "The sheet read is %s; %s, too. The setting sheet names the one to read.", quote(m.sheet),
+			listOf(firstFew(m.others), "and")+either(len(m.others), " holds something", " hold something"))
+	}
+}
+
+// emptyColumns notes a column reference or value in which nothing stands.
+func (m *merge) emptyColumns() {
+	empty := func(name string) {
+		m.note("empty_column", "The column %s is there, but every field of it is empty.", name)
+	}
+	if m.layout.reference >= 0 && !slices.ContainsFunc(m.builders, func(b *builder) bool { return b.hasReference() }) {
+		empty("reference")
+	}
+	if m.layout.value >= 0 && m.study.Values == nil {
+		empty("value")
+	}
+}
+
+func (b *builder) hasReference() bool {
+	for id := range b.parts.n {
+		if b.parts.entry(id).ref != 0 {
+			return true
+		}
+	}
+	return false
+}
+
 // unusedSettings notes settings that name something that is not there.
 func (m *merge) unusedSettings() {
 	header := make(map[string]bool)
@@ -79,7 +111,7 @@ func (m *merge) unusedSettings() {
 		}
 		hint := "."
 		if near := nearest(name, m.layout.header); near != "" {
-			hint = "; did you mean " + near + "?"
+			hint = "; did you mean " + shown(near) + "?"
 		}
 		m.note("unknown_ignore", "The setting ignore names the column %s, which the table does not have%s", quote(name), hint)
 	}
@@ -277,13 +309,17 @@ func (m *merge) mergeColumns() []int {
 		m.study.Appraisers = append(m.study.Appraisers, name)
 		m.study.TrialNames = append(m.study.TrialNames, numbers)
 		if len(without) > 0 {
-			m.note("empty_trial", "Appraiser %s has no call in trial %s, which is left out.", name, joinInts(without))
+			m.note("empty_trial", "Appraiser %s has no call in trial %s, which is left out.", quote(name), joinInts(without))
 		}
 	}
 	switch {
 	case len(trials) == 0 && len(m.problems) > 0: // rows were left out
 	case len(trials) == 0 && !slices.ContainsFunc(m.builders, func(b *builder) bool { return b.rows > 0 }):
-		m.add(Problem{Line: m.line, Text: "no rows stand below the header; lines that begin with # are comments"})
+		p := Problem{Line: m.line, Text: "no rows stand below the header"}
+		if m.sheet == "" {
+			p.Text += "; lines that begin with # are comments"
+		}
+		m.add(p)
 	case len(trials) == 0:
 		m.add(Problem{Line: m.line, Text: "the table holds no call: every field for a call is empty"})
 	case len(trials) > 0:
@@ -561,14 +597,14 @@ func (m *merge) contradiction(part string, list []statement) {
 			row = s
 		case s.row && !m.layout.long:
 			m.add(Problem{Line: s.line, Column: m.layout.part + 1, Found: "the part " + quote(part) + " a second time",
-				Expected: "each part on one line", Text: fmt.Sprintf("it stands on line %d already", row.line)})
+				Expected: "each part once", Text: "it stands " + m.on(row.line) + " already"})
 		case s.word != "" && s.ref == noCategory: // is a problem already
 		case s.word != "" && ref == nil:
 			ref = s
 		case s.word != "" && s.ref != ref.ref && !refDone:
 			refDone = true
 			m.add(Problem{Line: s.line, Column: m.layout.reference + 1, Found: fmt.Sprintf("the reference %s of part %s", quote(s.word), quote(part)),
-				Expected: fmt.Sprintf("%s, as on line %d", quote(ref.word), ref.line), Text: "a part has one reference"})
+				Expected: quote(ref.word) + ", as " + m.on(ref.line), Text: "a part has one reference"})
 		case s.value != "":
 			x, err := parseNumber([]byte(s.value), m.builders[0].comma)
 			if valueDone {
@@ -590,7 +626,7 @@ func (m *merge) contradiction(part string, list []statement) {
 			if y, _ := parseNumber([]byte(value.value), m.builders[0].comma); x != y {
 				valueDone = true
 				m.add(Problem{Line: s.line, Column: m.layout.value + 1, Found: fmt.Sprintf("the value %s of part %s", s.value, quote(part)),
-					Expected: fmt.Sprintf("%s, as on line %d", value.value, value.line), Text: "a part has one value"})
+					Expected: value.value + ", as " + m.on(value.line), Text: "a part has one value"})
 			}
 		}
 	}

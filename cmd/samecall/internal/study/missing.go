@@ -62,6 +62,9 @@ func (v *vocabulary) setUnsure(s Settings, spelt map[string]string, unsure map[s
 		case !v.passFail:
 			return "list it with all other words by categories"
 		}
+		if !slices.Equal(allShown(rejects), rejects) {
+			return "list it by reject"
+		}
 		return fmt.Sprintf("list it by reject (%s)", asFlag("reject", append([]string{word}, rejects...)...))
 	}
 }
@@ -73,7 +76,7 @@ func (v *vocabulary) missing(spelling string) Problem {
 	if strings.Trim(spelling, "-–—− ") == "" {
 		what = "a dash may be meant as a missing call or as a reject"
 		if len(v.beside) > 0 {
-			what = "a dash beside " + listOf(firstFew(v.beside), "and") + " may be meant as a missing call or as a reject"
+			what = "a dash beside " + listOf(firstFew(allShown(v.beside)), "and") + " may be meant as a missing call or as a reject"
 		}
 	}
 	p.Text = what + ": leave the field empty for a missing call, or " + v.list(spelling)

@@ -38,6 +38,9 @@ func CheckNumber(x float64) error {
 	return nil
 }
 
+// minus is the sign that a printed number has.
+var minus = []byte("−")
+
 // parseNumber reads a finite decimal number; comma says that the decimal
 // separator may be a comma.
 func parseNumber(b []byte, comma bool) (float64, error) {
@@ -49,6 +52,8 @@ func parseNumber(b []byte, comma bool) (float64, error) {
 		case c == ',':
 			commas++
 		case c >= '0' && c <= '9', c == '+', c == '-', c == 'e', c == 'E':
+		case bytes.Contains(b, minus):
+			return parseNumber(bytes.ReplaceAll(b, minus, []byte{'-'}), comma)
 		default:
 			return 0, errNotNumber
 		}

@@ -109,6 +109,23 @@ func quote(s string) string {
 	return fmt.Sprintf("%q", s)
 }
 
+// shown is a name as it stands, and in quotes where it would mislead as it
+// stands: it is long, or has characters that cannot be seen.
+func shown(s string) string {
+	if q := quote(s); q[1:len(q)-1] != s {
+		return q
+	}
+	return s
+}
+
+func allShown(names []string) []string {
+	out := make([]string, len(names))
+	for i, n := range names {
+		out[i] = shown(n)
+	}
+	return out
+}
+
 // listOf joins words as a sentence does: a, b or c.
 func listOf(words []string, last string) string {
 	switch n := len(words); n {
@@ -122,6 +139,14 @@ func listOf(words []string, last string) string {
 		}
 		return strings.Join(words[:n-1], ", ") + " " + last + " " + words[n-1]
 	}
+}
+
+// either returns the word for one, or the one for any other number.
+func either(n int, one, many string) string {
+	if n == 1 {
+		return one
+	}
+	return many
 }
 
 // counted returns "1 part" and "2 parts".

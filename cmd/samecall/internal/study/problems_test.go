@@ -100,15 +100,15 @@ calls.csv:5:2: found "1e999" as the value of part "4", expected a number; the nu
 calls.csv:6:2: found "1,234.5" as the value of part "5", expected a number; write the number without separators of thousands
 calls.csv:7:2: found "0x10" as the value of part "6", expected a number; write the number alone, without unit`},
 		{"a call twice", "part,appraiser,trial,call\n1,a,1,go\n2,a,1,go\n1,a,01,no\n1,a,1.0,\n1,a,1,go\n", Settings{},
-			`calls.csv:4:4: found the call of a on part "1" in trial 1 a second time, expected each call once; it stands on line 2 already
-calls.csv:6:4: found the call of a on part "1" in trial 1 a second time, expected each call once; it stands on line 2 already`},
+			`calls.csv:4:4: found the call of "a" on part "1" in trial 1 a second time, expected each call once; it stands on line 2 already
+calls.csv:6:4: found the call of "a" on part "1" in trial 1 a second time, expected each call once; it stands on line 2 already`},
 		{"a part twice", "part,a-1\n1,go\n2,go\n1,no\n1,no\n", Settings{},
-			`calls.csv:4:1: found the part "1" a second time, expected each part on one line; it stands on line 2 already
-calls.csv:5:1: found the part "1" a second time, expected each part on one line; it stands on line 2 already`},
+			`calls.csv:4:1: found the part "1" a second time, expected each part once; it stands on line 2 already
+calls.csv:5:1: found the part "1" a second time, expected each part once; it stands on line 2 already`},
 		{"a part twice with words that mean nothing", "part,reference,a-1\n1,go,go\n1,oops,oops\n1,go,what\n", Settings{},
-			`calls.csv:3:1: found the part "1" a second time, expected each part on one line; it stands on line 2 already
+			`calls.csv:3:1: found the part "1" a second time, expected each part once; it stands on line 2 already
 calls.csv:3:2: found "oops" (2 times) in column 2 (reference), expected accept or reject, or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0); say what other words mean with --accept and --reject, or list kinds with --categories, grades with --order
-calls.csv:4:1: found the part "1" a second time, expected each part on one line; it stands on line 2 already
+calls.csv:4:1: found the part "1" a second time, expected each part once; it stands on line 2 already
 calls.csv:4:3: found "what" in column 3 (a-1), expected accept or reject, or a usual word for one of them (pass, go, ok, 1; fail, nogo, nok, 0); say what other words mean with --accept and --reject, or list kinds with --categories, grades with --order`},
 		{"appraiser without calls, wide", "part,a-1,b-1,b-2\n1,go,,\n", Settings{},
 			`calls.csv:1:3: found the appraiser "b" without any call, expected one call or more of each appraiser; take the appraiser out of the table if there are none`},

@@ -8,30 +8,47 @@ import (
 	"samecall/agreement"
 )
 
-// setReference takes the reference from its column, else from values and
-// limits.
+// setReference takes each part's reference from the column; where that says
+// nothing of it, from value and limits.
 func (m *merge) setReference() {
 	reference := m.givenReference()
 	derived := m.derivedReference()
+	lack := "a reference"
 	switch {
 	case reference != nil:
 		m.study.Reference = Given
 		m.agree(reference, derived)
-		if n := count(reference, agreement.Missing); n > 0 {
-			m.note("partial_reference", "%s of %d without a reference; calls on such parts count for agreement only.", counted(n, "part is", "parts are"), len(reference))
+		if n := complete(reference, derived); n > 0 {
+			m.study.DerivedParts = n
+			m.note("completed_reference", "%s without a given reference: %s from value and limits.",
+				counted(n, "part", "parts"), either(n, "its own follows", "theirs follows"))
 		}
 	case derived != nil:
 		m.study.Reference = Derived
 		reference = derived
-		if n := count(reference, agreement.Missing); n > 0 {
-			m.note("partial_reference", "%s of %d without a value, hence without a reference; calls on such parts count for agreement only.", counted(n, "part is", "parts are"), len(reference))
-		}
+		lack = "a value, hence without a reference"
 	default:
 		return
+	}
+	if n := count(reference, agreement.Missing); n > 0 {
+		m.note("partial_reference", "%d of %s %s without %s; calls on such parts count for agreement only.",
+			n, counted(len(reference), "part", "parts"), either(n, "is", "are"), lack)
 	}
 	if err := m.study.Ratings.SetReference(reference); err != nil {
 		m.add(Problem{Text: err.Error()})
 	}
+}
+
+// complete fills what the table leaves blank of a reference with the one that
+// follows from value and limits, and counts the parts.
+func complete(given, derived []agreement.Category) (n int) {
+	for p, d := range derived {
+		if given[p] == agreement.Missing && d != agreement.Missing {
+			given[p] = d
+			n++
+		}
+	}
+	return n
 }
 
 func count(list []agreement.Category, c agreement.Category) (n int) {

@@ -67,8 +67,9 @@ func readText(in io.Reader, s Settings, size int) (*table, error) {
 // table is what was read of a table, before it is a study.
 type table struct {
 	layout   *layout
-	line     int    // of the header
-	sheet    string // of a workbook
+	line     int      // of the header
+	sheet    string   // of a workbook
+	others   []string // its other sheets that hold anything, where none was named
 	builders []*builder
 	problems []Problem
 }
@@ -106,8 +107,8 @@ func (t *table) header(c *chunker, s Settings) (rest chunk, comma byte, err erro
 			k.data, k.line = k.data[n:], k.line+bytes.Count(k.data[:n], []byte{'\n'})
 			if plain := strings.TrimSpace(text); plain == "" || text[0] == '#' || strings.Trim(plain, ",;\t") == "" {
 				continue
-			} else if sep, ok := strings.CutPrefix(strings.ToLower(plain), "sep="); ok && len(sep) == 1 && strings.Contains(",;\t", sep) {
-				comma = sep[0]
+			} else if sep, ok := namedSeparator(text); ok {
+				comma = sep
 				continue
 			}
 			if comma == 0 {
@@ -146,6 +147,20 @@ func firstRow(data []byte) (row string, n int, open bool) {
 		}
 	}
 	return string(data), len(data), inQuotes
+}
+
+// namedSeparator returns the separator that a line such as sep=; names.
+func namedSeparator(row string) (comma byte, ok bool) {
+	const key = "sep="
+	row = strings.TrimLeft(row, " ")
+	if len(row) <= len(key) || !strings.EqualFold(row[:len(key)], key) {
+		return 0, false
+	}
+	sep := strings.TrimRight(row[len(key):], " ")
+	if len(sep) != 1 || !strings.Contains(",;\t", sep) {
+		return 0, false
+	}
+	return sep[0], true
 }
 
 // separator tells the separator of a table from its header: one that makes

@@ -28,6 +28,8 @@ type smallTable struct {
 	bare    bool // one column of numbers without a header
 	list    []Problem
 	columns map[string]int // of the names that were asked for, where they are
+
+	formulas []Problem // of a workbook: formulas without a result
 }
 
 type smallRow struct {
@@ -57,7 +59,7 @@ func (src Source) readSmall(file, sheet string) (*smallTable, error) {
 		return nil, fmt.Errorf("%s: %w", name, err)
 	}
 	sum := sha256.Sum256(data)
-	t := &smallTable{input: Input{name, hex.EncodeToString(sum[:])}}
+	t := &smallTable{input: Input{File: name, SHA256: hex.EncodeToString(sum[:])}}
 	switch {
 	case len(data) > maxSmall:
 		t.list = append(t.list, Problem{Text: fmt.Sprintf("the file is larger than %d bytes; is it the table that is meant?", maxSmall)})
@@ -88,12 +90,12 @@ func (t *smallTable) wrong() error {
 }
 
 func (t *smallTable) readSheet(data []byte, want string) error {
-	f, sheet, err := openSheet(bytes.NewReader(data), want)
+	f, sheet, err := openSheet(data, want)
 	if err != nil {
 		return err
 	}
 	defer f.Close()
-	t.sheet, t.comma = sheet, true
+	t.sheet, t.input.Sheet, t.comma = sheet, sheet, true
 	t.which = whichSheet(f, sheet)
 	rows, err := newCellRows(f, sheet)
 	if err != nil {
@@ -113,7 +115,19 @@ func (t *smallTable) readSheet(data []byte, want string) error {
 	if t.header == nil {
 		t.list = append(t.list, noTable(t.which))
 	}
+	t.formulas = withoutResult(data, sheet, t.line, func(int) bool { return true })
+	t.unanswered(func(field int) bool { return false })
 	return nil
+}
+
+// unanswered makes problems of the formulas without a result in the header
+// and in the columns that are read.
+func (t *smallTable) unanswered(reads func(field int) bool) {
+	for _, p := range t.formulas {
+		if p.Line <= t.line || reads(p.Column-1) {
+			t.list = append(t.list, p)
+		}
+	}
 }
 
 func (t *smallTable) readText(data []byte) error {
@@ -125,8 +139,8 @@ func (t *smallTable) readText(data []byte) error {
 	for len(text) > 0 {
 		row, n, _ := firstRow(text)
 		plain := strings.TrimSpace(row)
-		if sep, ok := strings.CutPrefix(strings.ToLower(plain), "sep="); ok && len(sep) == 1 && strings.Contains(",;\t", sep) {
-			separated = sep[0]
+		if sep, ok := namedSeparator(row); ok {
+			separated = sep
 		} else if strings.Trim(plain, ",;\t") != "" && row[0] != '#' {
 			break
 		}
@@ -196,7 +210,7 @@ func (t *smallTable) add(line int, cells []string) {
 		fields = fields[:len(fields)-1]
 	}
 	switch {
-	case len(fields) == 0 || strings.HasPrefix(fields[0], "#"):
+	case len(fields) == 0 || t.sheet == "" && strings.HasPrefix(fields[0], "#"):
 	case t.header == nil && len(fields) == 1 && isNumber(fields[0]):
 		t.bare, t.header, t.line = true, []string{""}, line
 		t.rows = append(t.rows, smallRow{line, fields})
@@ -217,7 +231,7 @@ func (t *smallTable) pick(columns []smallColumn, ignore []string) error {
 	leave := folded(ignore)
 	t.columns = make(map[string]int)
 	if t.bare {
-		t.list = append(t.list, Problem{Line: t.line, Found: "the number " + t.rows[0].fields[0], Expected: "a header line with the columns " + listOf(names, "and")})
+		t.list = append(t.list, Problem{Line: t.line, Found: "the number " + shown(t.rows[0].fields[0]), Expected: "a header line with the columns " + listOf(names, "and")})
 		return t.wrong()
 	}
 	if len(t.header) == 1 && len(names) > 1 && !slices.Contains(names, fold(t.header[0])) {
@@ -258,19 +272,38 @@ func (t *smallTable) pick(columns []smallColumn, ignore []string) error {
 			t.list = append(t.list, Problem{Line: t.line, Found: "no column " + quote(c.name), Expected: "it in the header line"})
 		}
 	}
+	t.unanswered(func(field int) bool {
+		for _, i := range t.columns {
+			if i == field {
+				return true
+			}
+		}
+		return false
+	})
 	if err := t.wrong(); err != nil {
 		return err
 	}
+	hint := "is a decimal comma taken for a separator?"
+	if t.sheet != "" {
+		hint = beyondHeader
+	}
 	for _, r := range t.rows {
 		if len(r.fields) > len(t.header) {
-			t.at(r, len(t.header), quote(r.fields[len(t.header)]), fmt.Sprintf("%d fields, as the header has", len(t.header)),
-				"is a decimal comma taken for a separator?")
+			t.at(r, len(t.header), quote(r.fields[len(t.header)]), fmt.Sprintf("%d fields, as the header has", len(t.header)), hint)
 		}
 	}
 	if len(t.rows) == 0 {
 		t.list = append(t.list, Problem{Line: t.line, Text: "there is a header and no row below it"})
 	}
 	return t.wrong()
+}
+
+// lines is what the lines of the table are called.
+func (t *smallTable) lines() string {
+	if t.sheet != "" {
+		return "row"
+	}
+	return "line"
 }
 
 // has tells whether a column of this name was found.
@@ -312,8 +345,12 @@ func (t *smallTable) number(r smallRow, name string) (float64, bool) {
 func (t *smallTable) count(r smallRow, name string) (int, bool) {
 	const most = 1_000_000_000
 	x, ok := t.number(r, name)
-	if ok && !(x >= 0 && x <= most && x == float64(int(x))) {
-		t.at(r, t.columns[name], t.text(r, name), "a whole number of 0 or more in column "+name, "")
+	switch {
+	case ok && x > most:
+		t.at(r, t.columns[name], shown(t.text(r, name)), fmt.Sprintf("a whole number of at most %d in column %s", most, name), "the number is too large")
+		return 0, false
+	case ok && !(x >= 0 && x == float64(int(x))):
+		t.at(r, t.columns[name], shown(t.text(r, name)), "a whole number of 0 or more in column "+name, "")
 		return 0, false
 	}
 	return int(x), ok

@@ -43,7 +43,7 @@ func Read(src Source, flags Settings) (*Study, error) {
 			return nil, err
 		}
 		sum := sha256.Sum256(data)
-		inputs = append(inputs, Input{studyFile, hex.EncodeToString(sum[:])})
+		inputs = append(inputs, Input{File: studyFile, SHA256: hex.EncodeToString(sum[:])})
 	}
 	name := calls
 	switch {
@@ -182,7 +182,7 @@ func (src Source) readCalls(file, name string, s Settings) (*Study, Input, error
 	if _, err := io.Copy(io.Discard, whole); err != nil { // what a reader may have left, for the sum
 		return nil, Input{}, fmt.Errorf("%s: %w", name, err)
 	}
-	return study, Input{name, hex.EncodeToString(in.sum.Sum(nil))}, nil
+	return study, Input{File: name, SHA256: hex.EncodeToString(in.sum.Sum(nil)), Sheet: t.sheet}, nil
 }
 
 // placed adds the file, and the cell of a workbook, to a problem.

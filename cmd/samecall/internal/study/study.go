@@ -32,7 +32,11 @@ type Study struct {
 	HasValue []bool    // which parts have one; nil with Values
 
 	Reference ReferenceKind
-	PassFail  bool // two categories, the first of a bad part, the second of a good one
+	// DerivedParts counts the parts of a given reference of which the table
+	// leaves it blank: theirs follows from value and limits.
+	DerivedParts int
+
+	PassFail bool // two categories, the first of a bad part, the second of a good one
 
 	Inputs []Input
 	Notes  []Note
@@ -41,8 +45,8 @@ type Study struct {
 // ReferenceKind tells where the reference comes from.
 type ReferenceKind int
 
-// A reference is given by the calls file, derived from values and limits, or
-// the study has none.
+// A reference is given by the calls file, of some parts at least, derived from
+// values and limits alone, or the study has none.
 const (
 	None ReferenceKind = iota
 	Derived
@@ -66,6 +70,7 @@ func (k ReferenceKind) String() string {
 type Input struct {
 	File   string
 	SHA256 string
+	Sheet  string // of a workbook: the one that was read; else empty
 }
 
 // Note is something to say that is no error.

@@ -69,7 +69,7 @@ func TestManual(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if want := fmt.Sprintf("%x", sha256.Sum256(data)); len(s.Inputs) != 1 || s.Inputs[0] != (Input{file, want}) {
+	if want := fmt.Sprintf("%x", sha256.Sum256(data)); len(s.Inputs) != 1 || s.Inputs[0] != (Input{File: file, SHA256: want}) {
 		t.Errorf("inputs %v", s.Inputs)
 	}
 
@@ -110,12 +110,12 @@ func TestStudyFile(t *testing.T) {
 		inputs []Input
 		upper  float64
 	}{
-		{"study file", Source{Path: studyFile}, Settings{}, []Input{{studyFile, sum(file)}, {"data/calls.csv", sum(calls)}}, 2},
-		{"study file by Study", Source{Study: studyFile}, Settings{}, []Input{{studyFile, sum(file)}, {"data/calls.csv", sum(calls)}}, 2},
-		{"both", Source{Path: callsFile, Study: studyFile}, Settings{}, []Input{{studyFile, sum(file)}, {callsFile, sum(calls)}}, 2},
-		{"calls by flag", Source{Study: filepath.Join(dir, "empty.toml")}, Settings{Calls: callsFile, Upper: ptr(3)}, []Input{{filepath.Join(dir, "empty.toml"), sum("unit = \"mm\"\n")}, {callsFile, sum(calls)}}, 3},
-		{"standard input and flag", Source{Path: "-", Study: studyFile, Stdin: strings.NewReader(calls)}, Settings{Upper: ptr(1)}, []Input{{studyFile, sum(file)}, {StdinName, sum(calls)}}, 1},
-		{"built in", Source{Path: "x/study.toml", FS: mapped}, Settings{}, []Input{{"x/study.toml", sum(file)}, {"data/calls.csv", sum(calls)}}, 2},
+		{"study file", Source{Path: studyFile}, Settings{}, []Input{{File: studyFile, SHA256: sum(file)}, {File: "data/calls.csv", SHA256: sum(calls)}}, 2},
+		{"study file by Study", Source{Study: studyFile}, Settings{}, []Input{{File: studyFile, SHA256: sum(file)}, {File: "data/calls.csv", SHA256: sum(calls)}}, 2},
+		{"both", Source{Path: callsFile, Study: studyFile}, Settings{}, []Input{{File: studyFile, SHA256: sum(file)}, {File: callsFile, SHA256: sum(calls)}}, 2},
+		{"calls by flag", Source{Study: filepath.Join(dir, "empty.toml")}, Settings{Calls: callsFile, Upper: ptr(3)}, []Input{{File: filepath.Join(dir, "empty.toml"), SHA256: sum("unit = \"mm\"\n")}, {File: callsFile, SHA256: sum(calls)}}, 3},
+		{"standard input and flag", Source{Path: "-", Study: studyFile, Stdin: strings.NewReader(calls)}, Settings{Upper: ptr(1)}, []Input{{File: studyFile, SHA256: sum(file)}, {File: StdinName, SHA256: sum(calls)}}, 1},
+		{"built in", Source{Path: "x/study.toml", FS: mapped}, Settings{}, []Input{{File: "x/study.toml", SHA256: sum(file)}, {File: "data/calls.csv", SHA256: sum(calls)}}, 2},
 	} {
 		s, err := Read(c.src, c.flags)
 		if err != nil {

@@ -71,7 +71,7 @@ func ReadFlaws(src Source, sheet string, ignore []string) (*Tallies, error) {
 	for _, r := range t.rows {
 		size, hasSize := t.number(r, "size")
 		if hasSize && size <= 0 {
-			t.at(r, t.columns["size"], t.text(r, "size"), "a size above 0", "the curve runs over the logarithm of the size")
+			t.at(r, t.columns["size"], shown(t.text(r, "size")), "a size above 0", "the curve runs over the logarithm of the size")
 			hasSize = false
 		}
 		var row Tally
@@ -145,7 +145,7 @@ func (t *smallTable) tallies(rows []Tally, what string) (*Tallies, error) {
 			first[r.Name] = r
 		} else if f.Value != r.Value {
 			t.list = append(t.list, Problem{Line: r.inLine, Column: t.columns[what] + 1, Found: fmt.Sprintf("the %s %v of %s", what, r.Value, quote(r.Name)),
-				Expected: fmt.Sprintf("%v, as in line %d", f.Value, f.inLine), Text: "one name is one part"})
+				Expected: fmt.Sprintf("%v, as in %s %d", f.Value, t.lines(), f.inLine), Text: "one name is one part"})
 		}
 	}
 	if err := t.wrong(); err != nil {

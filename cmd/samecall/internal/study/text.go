@@ -183,12 +183,25 @@ func endLines(b []byte, atEnd bool) {
 func (c *chunker) decode(b []byte) (chunk, error) {
 	k := chunk{data: b, line: c.line + 1}
 	c.line += bytes.Count(b, []byte{'\n'})
+	if nul := bytes.IndexByte(b, 0); nul >= 0 {
+		return k, &textError{
+			Line: k.line + bytes.Count(b[:nul], []byte{'\n'}), Found: "the byte 0x0", Expected: "text",
+			Text: "the file is damaged, or no table of calls; save it again as CSV",
+		}
+	}
 	i := beyondASCII(b)
 	switch {
 	case i < 0:
 		return k, nil
 	case c.latin || !c.utf8 && !startsUTF8(b[i:]):
 		c.latin = true
+		if j := alsoUTF8(b[i:]); j >= 0 {
+			_, n := utf8.DecodeRune(b[i+j:])
+			return k, &textError{
+				Line: k.line + bytes.Count(b[:i+j], []byte{'\n'}), Found: fmt.Sprintf("the bytes %#x, a character in UTF-8", b[i+j:i+j+n]),
+				Expected: "Windows-1252, as the text before is", Text: "save the file in one encoding, UTF-8 at best",
+			}
+		}
 		var err error
 		k.data, err = charmap.Windows1252.NewDecoder().Bytes(b)
 		return k, err
@@ -205,6 +218,25 @@ func (c *chunker) decode(b []byte) (chunk, error) {
 		Line: k.line + bytes.Count(b[:i], []byte{'\n'}), Found: fmt.Sprintf("the byte %#x", b[i]), Expected: "UTF-8, as the text before is",
 		Text: "save the file in one encoding, UTF-8 at best",
 	}
+}
+
+// alsoUTF8 returns the index of a character that is UTF-8 beyond doubt, in text
+// that is not, or −1. A letter and a sign, as É» is, may happen to be UTF-8; such
+// two bytes count where they begin with Â or Ã (Latin letters and signs in
+// UTF-8), and else where another one follows.
+func alsoUTF8(b []byte) int {
+	for i := 0; i < len(b); {
+		if b[i] < utf8.RuneSelf {
+			i++
+			continue
+		}
+		r, n := utf8.DecodeRune(b[i:])
+		if r != utf8.RuneError && (n > 2 || b[i] == 0xc2 || b[i] == 0xc3 || i+n < len(b) && b[i+n] >= utf8.RuneSelf && startsUTF8(b[i+n:])) {
+			return i
+		}
+		i += n
+	}
+	return -1
 }
 
 func startsUTF8(b []byte) bool {

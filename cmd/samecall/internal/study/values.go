@@ -25,9 +25,13 @@ func ReadValues(src Source, sheet, column string) (*Values, error) {
 		return nil, err
 	}
 	out := &Values{Column: t.header[field], Input: t.input}
+	t.unanswered(func(f int) bool { return f == field })
+	if err := t.wrong(); err != nil {
+		return nil, err
+	}
 	what := "a number"
 	if out.Column != "" {
-		what += " in column " + out.Column
+		what += " in column " + shown(out.Column)
 	}
 	for _, r := range t.rows {
 		s := ""

@@ -20,9 +20,14 @@ var (
 var passFailNames = []string{"reject", "accept"}
 
 // fold returns the form in which words are compared: white space around it
-// trimmed, lower case, composed Unicode.
+// trimmed, lower case, composed Unicode. A spreadsheet or a data frame may have
+// written 1 as 1.0, as with trial numbers.
 func fold(word string) string {
-	return norm.NFC.String(strings.ToLower(strings.TrimSpace(word)))
+	word = norm.NFC.String(strings.ToLower(strings.TrimSpace(word)))
+	if whole, zeros, ok := strings.Cut(word, "."); ok && digits([]byte(whole)) && zeros != "" && strings.Trim(zeros, "0") == "" {
+		return whole
+	}
+	return word
 }
 
 // vocabulary is the meaning of the words of one study.
@@ -110,7 +115,7 @@ func listed(s Settings, words []string, key string) *vocabulary {
 			v.accept[i] = good(w)
 		}
 	}
-	v.expected = listOf(firstFew(words), "or") + ", as " + key + " lists"
+	v.expected = listOf(firstFew(allShown(words)), "or") + ", as " + key + " lists"
 	v.hint = "add the word to " + key + " if it is right"
 	return v
 }
@@ -173,7 +178,7 @@ func inBrackets(words []string) string {
 	if len(words) == 0 {
 		return ""
 	}
-	return " (" + listOf(firstFew(words), "or") + ")"
+	return " (" + listOf(firstFew(allShown(words)), "or") + ")"
 }
 
 // acceptOnly is a study in which each word that neither accepts nor rejects a
@@ -274,15 +279,15 @@ func absent(s Settings, spelt map[string]string) (problems []Problem, notes []No
 		}
 		what := quote(l.words[0])
 		if len(l.words) > 1 {
-			what = "one of " + listOf(firstFew(l.words), "and")
+			what = "one of " + listOf(firstFew(allShown(l.words)), "and")
 		}
 		hint := ""
 		for _, w := range l.words {
 			if near := nearest(w, found); near != "" && hint == "" {
-				hint = "did you mean " + near + "? "
+				hint = "did you mean " + shown(near) + "? "
 			}
 		}
-		there := "the table has " + listOf(firstFew(found), "and")
+		there := "the table has " + listOf(firstFew(allShown(found)), "and")
 		if l.fatal {
 			problems = append(problems, Problem{Found: "no call or reference " + what + ", which the setting " + l.key + " lists",
 				Expected: "it somewhere in the table", Text: hint + there})
@@ -299,7 +304,7 @@ func (v *vocabulary) tooMany() (Problem, bool) {
 		return Problem{}, false
 	}
 	return Problem{
-		Found: fmt.Sprintf("%d different calls, such as %s", len(v.names), listOf(firstFew(v.names), "and")), Expected: fmt.Sprintf("at most %d", agreement.MaxCategories),
+		Found: fmt.Sprintf("%d different calls, such as %s", len(v.names), listOf(firstFew(allShown(v.names)), "and")), Expected: fmt.Sprintf("at most %d", agreement.MaxCategories),
 		Text: "is this the column of the calls?",
 	}, true
 }
@@ -311,7 +316,7 @@ func (v *vocabulary) unknown(spelling string) Problem {
 	}
 	p := Problem{Found: quote(spelling), Expected: v.expected, Text: v.hint}
 	if near := nearest(spelling, v.candidates); near != "" {
-		p.Text = "did you mean " + near + "? Else " + p.Text
+		p.Text = "did you mean " + shown(near) + "? Else " + p.Text
 	}
 	return p
 }

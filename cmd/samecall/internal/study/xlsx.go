@@ -1,6 +1,7 @@
 package study
 
 import (
+	"bytes"
 	"fmt"
 	"io"
 	"slices"
@@ -24,25 +25,42 @@ func readWorkbook(in io.Reader, s Settings) (t *table, err error) {
 			t, err = nil, &textError{Text: "the workbook is damaged; save it again as .xlsx, or as CSV"}
 		}
 	}()
-	f, sheet, err := openSheet(in, s.Sheet)
+	data, err := io.ReadAll(in)
+	if err != nil {
+		return nil, err
+	}
+	f, sheet, err := openSheet(data, s.Sheet)
 	if err != nil {
 		return nil, err
 	}
 	defer f.Close()
 	t = &table{sheet: sheet}
+	if s.Sheet == "" {
+		t.others = otherSheets(f, sheet)
+	}
 	if err := t.readSheet(f, s); err != nil {
 		return nil, sheetError(sheet, err)
 	}
 	if t.layout == nil && len(t.problems) == 0 {
 		t.problems = append(t.problems, noTable(whichSheet(f, sheet)))
 	}
+	if list := withoutResult(data, sheet, t.line, t.reads); len(list) > 0 { // what else is wrong may follow from it
+		t.problems, t.builders = list, nil
+	}
 	return t, nil
 }
 
+// reads tells whether a field counts: no column is read that ignore names.
+func (t *table) reads(field int) bool {
+	l := t.layout
+	return l == nil || slices.Contains([]int{l.part, l.reference, l.value, l.appraiser, l.trial, l.call}, field) ||
+		slices.ContainsFunc(l.cells, func(c wideCell) bool { return c.field == field })
+}
+
 // openSheet opens a workbook and returns the name of the sheet that is
-// wanted, the first if none is.
-func openSheet(in io.Reader, want string) (*excelize.File, string, error) {
-	f, err := excelize.OpenReader(in, excelize.Options{RawCellValue: true, UnzipSizeLimit: maxUnzipped})
+// wanted, the first that is not hidden if none is.
+func openSheet(data []byte, want string) (*excelize.File, string, error) {
+	f, err := excelize.OpenReader(bytes.NewReader(data), excelize.Options{RawCellValue: true, UnzipSizeLimit: maxUnzipped})
 	if err != nil {
 		return nil, "", &textError{Text: "this is no readable .xlsx workbook (" + err.Error() + "); save it as .xlsx or CSV"}
 	}
@@ -52,7 +70,7 @@ func openSheet(in io.Reader, want string) (*excelize.File, string, error) {
 		return nil, "", &textError{Text: "the workbook has no sheet"}
 	}
 	if want == "" {
-		return f, sheets[0], nil
+		return f, sheets[max(slices.IndexFunc(sheets, func(n string) bool { return !hidden(f, n) }), 0)], nil
 	}
 	i := slices.IndexFunc(sheets, func(n string) bool { return n == want })
 	if i < 0 {
@@ -67,6 +85,43 @@ func openSheet(in io.Reader, want string) (*excelize.File, string, error) {
 		return nil, "", &textError{Found: "no sheet " + quote(want), Expected: "one of the sheets " + listOf(list, "or")}
 	}
 	return f, sheets[i], nil
+}
+
+func hidden(f *excelize.File, sheet string) bool {
+	visible, err := f.GetSheetVisible(sheet)
+	return err == nil && !visible
+}
+
+// otherSheets names the sheets beside the one that is read that hold anything.
+func otherSheets(f *excelize.File, sheet string) (list []string) {
+	for _, n := range f.GetSheetList() {
+		if n == sheet || !holdsAnything(f, n) {
+			continue
+		}
+		name := quote(n)
+		if hidden(f, n) {
+			name += " (hidden)"
+		}
+		list = append(list, name)
+	}
+	return list
+}
+
+func holdsAnything(f *excelize.File, sheet string) bool {
+	rows, err := newSheetRows(f, sheet, true)
+	if err != nil {
+		return false
+	}
+	defer rows.Close()
+	for {
+		cells, err := rows.next()
+		if err != nil {
+			return false
+		}
+		if slices.ContainsFunc(cells, func(c string) bool { return strings.TrimSpace(c) != "" }) {
+			return true
+		}
+	}
 }
 
 func sheetError(sheet string, err error) error {
