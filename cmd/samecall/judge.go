@@ -71,7 +71,11 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 				at.end()
 				return err
 			}
-			opt.Progress = func(done, of int) { at.at(fmt.Sprintf("resampling, %d of %d figures", done, of)) }
+			opt.Progress = func(done, of int) {
+				if at.at(fmt.Sprintf("resampling, %d of %d figures", done, of)); done == of {
+					at.at("fitting the acceptance curves")
+				}
+			}
 			result, err := judgeStudy(st, opt)
 			at.end()
 			if err != nil {

@@ -13,6 +13,7 @@ import (
 type progress struct {
 	stage atomic.Pointer[string]
 	stop  chan struct{}
+	once  sync.Once
 	done  sync.WaitGroup
 }
 
@@ -46,8 +47,9 @@ func newProgress(w io.Writer) *progress {
 
 func (p *progress) at(stage string) { p.stage.Store(&stage) }
 
-// end clears the line; nothing is shown after it returns.
+// end clears the line; nothing is shown after it returns. It may be called
+// again.
 func (p *progress) end() {
-	close(p.stop)
+	p.once.Do(func() { close(p.stop) })
 	p.done.Wait()
 }

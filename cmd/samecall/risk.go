@@ -216,10 +216,14 @@ func (a *riskFlags) fitted(cmd *cobra.Command, src *source, in streams, args []s
 	if a.values == "-" && (slices.Contains(args, "-") || src.study == "-" || src.settings.Calls == "-") {
 		return nil, nil, errors.New("the study and --process-values both come from standard input; give one of them a file")
 	}
+	at := newProgress(in.err)
+	defer at.end()
+	at.at("reading the calls")
 	st, err := src.read(cmd, args, in)
 	if err != nil {
 		return nil, nil, err
 	}
+	at.at("fitting the acceptance curve and its risks")
 	if err := needValues(st); err != nil {
 		return nil, nil, statusError{exitWrongData, err}
 	}

@@ -48,6 +48,9 @@ written, 3 the data is wrong or holds no values or limits.`,
 			if err != nil {
 				return err
 			}
+			at := newProgress(s.err)
+			defer at.end()
+			at.at("reading the calls")
 			st, err := src.read(cmd, args, s)
 			if err != nil {
 				return err
@@ -56,7 +59,9 @@ written, 3 the data is wrong or holds no values or limits.`,
 				return statusError{exitWrongData, err}
 			}
 			opt.Confidence = st.Settings.Confidence
+			at.at("fitting the acceptance curves")
 			g, err := judge.NewGrey(st, opt, spread)
+			at.end()
 			if err != nil {
 				return statusError{exitWrongData, err}
 			}
