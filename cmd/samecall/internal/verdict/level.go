@@ -1,5 +1,7 @@
 package verdict
 
+import "fmt"
+
 // Level is how far a criterion, an appraiser or an inspection is good enough.
 type Level int
 
@@ -13,7 +15,7 @@ const (
 )
 
 func (l Level) String() string {
-	return [...]string{"accept", "conditional", "not shown", "reject"}[l]
+	return word("Level", int(l), "accept", "conditional", "not shown", "reject")
 }
 
 // Evidence is what the data say of the level that an estimate reaches.
@@ -29,5 +31,13 @@ const (
 )
 
 func (e Evidence) String() string {
-	return [...]string{"open", "shown", "contradicted"}[e]
+	return word("Evidence", int(e), "open", "shown", "contradicted")
+}
+
+// word is one of several or, of a value that is none, its type and number.
+func word(kind string, i int, words ...string) string {
+	if i < 0 || i >= len(words) {
+		return fmt.Sprintf("%s(%d)", kind, i)
+	}
+	return words[i]
 }

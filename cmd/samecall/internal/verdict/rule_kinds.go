@@ -27,9 +27,10 @@ func confusedKinds(f *finder) []Cause {
 	shared := make(map[kinds]int)
 	var order []kinds
 	for a, g := range f.Agreement.Against {
+		wrong := wrongCalls(g.Table)
 		for y := range g.Table {
 			for x := range y {
-				n, wrong := g.Table[x][y]+g.Table[y][x], wrongCalls(g.Table)
+				n := g.Table[x][y] + g.Table[y][x]
 				if n < confusedCalls || float64(n) < confusedShare*float64(wrong) || float64(n) < confusedRate*float64(callsOn(g.Table, x)+callsOn(g.Table, y)) {
 					continue
 				}
@@ -42,7 +43,7 @@ func confusedKinds(f *finder) []Cause {
 					Code: codeKinds, Appraiser: a,
 					Text: fmt.Sprintf("%s confuses %s and %s: %s of %s (%s called %s where it was %s, %s the other way).",
 						f.name(a), nameX, nameY, format.Count(n), format.Counted(wrong, "wrong call"), format.Count(g.Table[x][y]), nameX, nameY, format.Count(g.Table[y][x])),
-					Do: fmt.Sprintf("Show %s the two beside each other: a boundary sample of %s and one of %s, and what tells them apart.", f.name(a), nameX, nameY),
+					Do: fmt.Sprintf("Show %s a boundary sample of %s beside one of %s, and what tells them apart.", f.name(a), nameX, nameY),
 				})
 			}
 		}
