@@ -6,8 +6,9 @@ import (
 	"samecall/signal"
 )
 
-// The figures of these examples were checked by a plain search over the
-// likelihood and a midpoint sum, apart from this package.
+// The figures of these examples come out of a plain search over the likelihood and
+// a midpoint sum as well, apart from this package:
+// testdata/reference-extra/examples.py.
 
 // Ten shafts of an invented study, each called six times by a ring gauge with
 // an upper limit of 20.000 mm.
