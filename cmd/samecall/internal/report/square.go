@@ -49,6 +49,9 @@ func (s square) table(kappas bool) Table {
 		t.Note += " · kappa"
 	}
 	t.Note += "; in brackets, each appraiser with itself."
+	if note := belowNote(withinKappas(s.within)...); kappas && note != "" {
+		t.Note += " " + note
+	}
 	for _, n := range s.names {
 		t.Columns = append(t.Columns, Column{Name: n, Numbers: true})
 	}

@@ -302,6 +302,7 @@ func withinTable(r *Record) Table {
 	for a, w := range r.Agreement.Within {
 		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), ofCell(w.Share), shareCell(w.Share), kappaCell(w.Kappa)})
 	}
+	t.Note = belowNote(withinKappas(r.Agreement.Within)...)
 	return t
 }
 
@@ -368,6 +369,7 @@ func coefficientsTable(r *Record) Table {
 	add("Krippendorff's alpha", kappaCell(b.Alpha), "the same, corrected for few calls")
 	add("kappa within appraisers", kappaCell(b.SameAppraiser), "pairs of calls on a part by one appraiser")
 	add("kappa between appraisers", kappaCell(b.DifferentAppraisers), "pairs of calls on a part by two appraisers")
+	t.Note = belowNote(b.Fleiss, b.AC1, b.Alpha, b.SameAppraiser, b.DifferentAppraisers)
 	return t
 }
 
@@ -548,10 +550,12 @@ func criteriaTable(r *Record) Table {
 			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: "data"}, {Name: "to settle it", Long: true}},
 		Note: levelsFrom(r) + " " + fmt.Sprintf("Shown: at %s confidence, one-sided, the data show what the estimate says (of a reject, that the conditional level is missed). Open: they do not.", format.Confidence(r.Options.Confidence)),
 	}
+	setAside := false
 	add := func(name, figure string, c verdict.Criterion) {
 		found, evidence, settle := say(format.Dash), "", ""
 		if c.Met != verdict.NotShown {
 			found, evidence, settle = valueCell(c.Found(), c.Estimate.Value), c.Shows(), c.ToSettle()
+			setAside = setAside || c.Aside != ""
 		}
 		t.Rows = append(t.Rows, []Cell{say(name), say(figure), found, valueCell(c.Level(c.Levels[0]), c.Levels[0]), valueCell(c.Level(c.Levels[1]), c.Levels[1]), say(c.Met.String()), say(evidence), say(settle)})
 	}
@@ -562,6 +566,9 @@ func criteriaTable(r *Record) Table {
 	}
 	if b := r.Verdict.Between; b != nil {
 		add("between", "kappa", *b)
+	}
+	if setAside {
+		t.Note += " Set aside: the verdict does not rest on it, for the reason given."
 	}
 	return t
 }

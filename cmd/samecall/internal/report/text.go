@@ -334,6 +334,9 @@ func (p *printer) between(r *Record) {
 		s += " Kappa: " + k.Absent.Error() + "."
 	} else {
 		s += fmt.Sprintf(" Kappa between appraisers %s; Fleiss' kappa of all calls %s.", format.Kappa(k), format.Kappa(b.Fleiss))
+		if note := belowNote(k, b.Fleiss); note != "" {
+			s += " " + note
+		}
 	}
 	p.wrap(s, "")
 	for _, l := range leanLines(r) {

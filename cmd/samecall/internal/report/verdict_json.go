@@ -33,7 +33,9 @@ type criterionJSON struct {
 	Kind      string   `json:"kind"`
 	Parts     int      `json:"parts"`
 	MoreParts int      `json:"more_parts,omitempty"`
-	Reason    string   `json:"reason,omitempty"`
+	// NotCounted says why the verdict does not rest on the figure.
+	NotCounted string `json:"not_counted,omitempty"`
+	Reason     string `json:"reason,omitempty"`
 }
 
 type causeJSON struct {
@@ -78,7 +80,7 @@ func newVerdict(v *verdict.Verdict) verdictJSON {
 func newCriterionJSON(c verdict.Criterion) criterionJSON {
 	out := criterionJSON{
 		Name: c.Name, Met: c.Met.String(), Accept: c.Levels[0], Conditional: c.Levels[1],
-		Kind: c.Kind, Parts: c.Parts, MoreParts: c.More,
+		Kind: c.Kind, Parts: c.Parts, MoreParts: c.More, NotCounted: c.Aside,
 	}
 	if c.Estimate.Absent != nil {
 		out.Reason = c.Estimate.Absent.Error()

@@ -88,10 +88,10 @@ func zoneNotes(r *Record) []string {
 		var widths []string
 		for _, l := range []*signal.Zone{u.Lower, u.Upper} {
 			if l != nil && l.Found {
-				widths = append(widths, s.Value(l.Width)+" at the "+l.Side.String()+" limit")
+				widths = append(widths, s.Value(l.Width)+" wide at the "+l.Side.String()+" limit")
 			}
 		}
-		out = append(out, fmt.Sprintf("Unanimous zone: wide %s. As %.2f σ, %%GRR is %.0f %% of the tolerance: %s by common practice (below 10 good, to 30 conditional). See zone.",
+		out = append(out, fmt.Sprintf("Unanimous zone: %s. As %.2f σ, %%GRR is %.0f %% of the tolerance: %s by common practice (below 10 good, to 30 conditional). See zone.",
 			strings.Join(widths, ", "), u.Spread, u.PercentGRR, signal.BandGRR(u.PercentGRR)))
 	}
 	return out

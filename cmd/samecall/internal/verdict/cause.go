@@ -1,6 +1,7 @@
 package verdict
 
 import (
+	"cmp"
 	"slices"
 
 	"samecall/cmd/samecall/internal/judge"
@@ -63,6 +64,8 @@ func causes(r *judge.Result, levels map[string]Levels, missed bool) []Cause {
 		f.found = append(f.found, rule(f)...)
 	}
 	alsoInconsistent(f)
+	// Told in the order in which something is to be done about them.
+	slices.SortStableFunc(f.found, func(a, b Cause) int { return cmp.Compare(a.rank(), b.rank()) })
 	return f.found
 }
 
@@ -89,6 +92,14 @@ func (f *finder) name(a int) string { return f.Study.Appraisers[a] }
 
 // several reports whether the study has more than one appraiser.
 func (f *finder) several() bool { return len(f.Study.Appraisers) > 1 }
+
+// rank is 0 of a cause that comes before people, 1 of the others.
+func (c Cause) rank() int {
+	if c.beforePeople() {
+		return 0
+	}
+	return 1
+}
 
 // beforePeople reports whether what to do about a cause comes before anything
 // with people: it begins at the gauge, or at the records.

@@ -49,6 +49,8 @@ type Criterion struct {
 	Levels   Levels
 	Estimate agreement.Estimate
 	Met      Level // by the estimate; NotShown if there is none
+	// Aside says why the verdict does not rest on it; empty where it does.
+	Aside    string
 	Evidence Evidence
 	// Against is the level that Evidence speaks of: the accept level if the
 	// estimate meets it, else the conditional level.

@@ -194,20 +194,25 @@ func (c Criterion) open() string {
 
 // Shows says in a word whether the data show what the estimate says: that it
 // meets the level it reaches or, of a rejection, that it misses the
-// conditional level.
+// conditional level; or that the figure is not counted.
 func (c Criterion) Shows() string {
 	switch {
 	case c.Met == NotShown:
 		return ""
+	case !c.counts():
+		return "set aside"
 	case c.Evidence == Open:
 		return "open"
 	}
 	return "shown"
 }
 
-// ToSettle says in a few words what would settle a criterion that is open.
+// ToSettle says in a few words what would settle a criterion that is open, or
+// why it is not counted.
 func (c Criterion) ToSettle() string {
 	switch {
+	case c.Met != NotShown && !c.counts():
+		return c.Aside
 	case c.Met == NotShown || c.Evidence != Open:
 		return ""
 	case c.More > 0:

@@ -79,7 +79,7 @@ func expected(r *judge.Result, part int) bool {
 // lacks says what the study lacks for its figures to be known.
 func lacks(r *judge.Result, v *Verdict) []string {
 	if r.Agreement.All == nil {
-		return []string{"Give each part a reference (a column reference, or values and limits): without one, nobody knows whether the calls are right."}
+		return []string{"Give each part a reference: a column reference, or values and limits."}
 	}
 	if !r.Study.Ratings.HasAccept() {
 		return []string{"Say which categories a part may have to be used (accept): without them there are no misses and no false alarms."}
@@ -147,7 +147,7 @@ func moreParts(r *judge.Result, v *Verdict) string {
 	for _, a := range v.Appraisers {
 		for _, c := range a.Criteria {
 			switch most := need[c.Kind]; {
-			case c.Evidence != Open || c.More == 0:
+			case !c.counts() || c.Evidence != Open || c.More == 0:
 			case c.More > most.More:
 				need[c.Kind], whose[c.Kind] = c, []string{a.Name}
 			case c.More == most.More && c.Name == most.Name:
@@ -185,7 +185,7 @@ func settleReject(r *judge.Result, v *Verdict) string {
 	if best == nil || best.c.More > largerStudy*best.c.Parts {
 		return repeatStudy(r, v)
 	}
-	return stop(fmt.Sprintf("The rejection itself is open: %s more at the same %s would settle the %s", format.Counted(best.c.More, best.c.Kind), best.c.measure(), best.c.of(best.who)))
+	return fmt.Sprintf("To settle the rejection, which is open, add %s like those of the study (%s).", format.Counted(best.c.More, best.c.Kind), best.c.of(best.who))
 }
 
 // repeatStudy says what a new study takes to show the miss rate, where the

@@ -72,7 +72,7 @@ func TestWrongCallsOfOthers(t *testing.T) {
 		return right(r, ref)
 	}
 	_, v := decide(t, d.files(1))
-	if at(v.Next, "Show Birch the two") < 0 || slices.ContainsFunc(v.Next, func(s string) bool { return strings.Contains(s, "with Birch") && strings.Contains(s, "wrong category") }) || at(v.Next, "wrong calls with Ash (bad parts accepted: P") < 0 {
+	if at(v.Next, "Show Birch a boundary sample of run beside one of pinhole") < 0 || slices.ContainsFunc(v.Next, func(s string) bool { return strings.Contains(s, "with Birch") && strings.Contains(s, "wrong category") }) || at(v.Next, "wrong calls with Ash (bad parts accepted: P") < 0 {
 		t.Errorf("%q", v.Next)
 	}
 	csv := "part,reference,A-1,B-1,C-1,D-1\n1,1,1,1,1,1\n2,0,1,0,0,0\n3,0,0,1,0,0\n4,0,0,0,1,0\n5,0,0,0,0,1\n6,1,1,1,1,1\n7,1,1,1,1,1\n"
@@ -140,7 +140,7 @@ func TestPeopleFirst(t *testing.T) {
 // What would settle an open rejection is the parts, not the rate.
 func TestOpenRejectionIsSettledByParts(t *testing.T) {
 	v := manual(t, study.Settings{})
-	if got := v.Next[len(v.Next)-1]; got != "The rejection itself is open: 6 bad parts more at the same rate would settle the miss rate of C." {
+	if got := v.Next[len(v.Next)-1]; got != "To settle the rejection, which is open, add 6 bad parts like those of the study (miss rate of C)." {
 		t.Errorf("%q", v.Next)
 	}
 }

@@ -4,6 +4,7 @@ import (
 	"cmp"
 	"fmt"
 	"slices"
+	"strings"
 
 	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/judge"
@@ -35,9 +36,17 @@ const (
 )
 
 // reasons returns the one or two sentences that decide the verdict, how far
-// the data carry each, and, after them, what else misses its level.
+// the data carry each, and, after them, what else misses its level and what
+// would if it counted.
 func reasons(r *judge.Result, v *Verdict) (why, carry []string) {
+	why, carry = deciding(r, v)
+	return append(why, v.asides()...), carry
+}
+
+func deciding(r *judge.Result, v *Verdict) (why, carry []string) {
 	switch {
+	case v.Overall == Accept && len(v.asides()) > 0:
+		return []string{"Every figure that counts meets its accept level."}, []string{shownOf(v)}
 	case v.Overall == Accept:
 		return []string{"Every figure meets its accept level."}, []string{shownOf(v)}
 	case len(v.Appraisers) == 0:
@@ -48,9 +57,16 @@ func reasons(r *judge.Result, v *Verdict) (why, carry []string) {
 	grounds := v.grounds()
 	// The furthest from its level first.
 	slices.SortStableFunc(grounds, func(a, b ground) int { return cmp.Compare(b.c.distance(), a.c.distance()) })
+	tooFew := ""
 	for _, g := range grounds[:min(mostReasons, len(grounds))] {
 		why = append(why, stop(g.text()))
-		carry = append(carry, g.c.EvidenceText())
+		// What so few parts cannot show is said once.
+		text, few := g.c.EvidenceText(), g.c.tooFew()
+		if few != "" && few == tooFew {
+			text = strings.TrimSuffix(text, few)
+		}
+		tooFew = few
+		carry = append(carry, text)
 	}
 	if len(grounds) > mostReasons {
 		why = append(why, also(grounds[mostReasons:]))
@@ -96,7 +112,7 @@ func (v *Verdict) grounds() []ground {
 	at := make(map[string]int)
 	for _, a := range v.Appraisers {
 		for _, c := range a.Criteria {
-			if c.Met != v.Overall {
+			if !c.counts() || c.Met != v.Overall {
 				continue
 			}
 			key := c.Text() + c.EvidenceText()
@@ -108,7 +124,7 @@ func (v *Verdict) grounds() []ground {
 			out = append(out, ground{[]string{a.Name}, c})
 		}
 	}
-	if v.counts && v.Between.Met == v.Overall {
+	if v.betweenCounts() && v.Between.Met == v.Overall {
 		out = append(out, ground{c: *v.Between})
 	}
 	return out

@@ -23,7 +23,17 @@ func apart(f *finder) []Cause {
 	if same.Absent != nil || other.Absent != nil || side(same.Value, f.levels[Kappa][0]) < 0 || same.Value-other.Value < kappaGap {
 		return nil
 	}
-	text := fmt.Sprintf("Each appraiser repeats the same calls (kappa within appraisers %s), but they differ from each other (kappa between appraisers %s).", format.Kappa(same), format.Kappa(other))
+	if all := called(f.Result, Everyone); unusable(same, comparedBySame(f.Result), all) != "" || unusable(other, b.Share.Of, all) != "" {
+		return nil
+	}
+	differ := "kappa between appraisers " + format.Kappa(other)
+	if other.Prevalent {
+		if !f.tooFewAlike(b.Share) {
+			return nil
+		}
+		differ = f.alikeText(b.Share)
+	}
+	text := fmt.Sprintf("Each appraiser repeats the same calls, kappa within appraisers %s, but they differ from each other, %s.", format.Kappa(same), differ)
 	do := "Have all appraisers call together, beside one standard, the parts on which they differ"
 	who := Apart(f.Result)
 	if who != Everyone {

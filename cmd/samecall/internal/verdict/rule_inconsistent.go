@@ -22,37 +22,70 @@ func (f *finder) most(n int) bool {
 // for its doubt to be its own, where σ is known. Our own choice, no source.
 const widerSigma = 1.5
 
-// inconsistent: kappa over an appraiser's own trials is below the accept
-// level of kappa. If that goes for most, it is not the person; nor is it
-// where all are in doubt over the same width.
+// leastRepeated is how many parts an appraiser must have called twice for the
+// calls to be known to differ: one part tells of itself only. Our own choice,
+// no source.
+const leastRepeated = 2
+
+// inconsistent: the data show that an appraiser's calls differ from trial to
+// trial. If that goes for most, it is not the person; nor is it where all are
+// in doubt over the same width.
 func inconsistent(f *finder) []Cause {
 	var out []Cause
-	n := 0
-	level := f.levels[Kappa][0]
+	var all []unrepeated
 	for a, w := range f.Agreement.Within {
-		if w.Kappa.Absent != nil || side(w.Kappa.Value, level) >= 0 || f.has(a, codeKinds, codeGrades) {
+		u := f.unrepeated(a)
+		if !u.known || f.has(a, codeKinds, codeGrades) {
 			continue
 		}
-		if n++; f.asSureAsOthers(a) {
+		if all = append(all, u); f.asSureAsOthers(a) {
 			continue
 		}
 		out = append(out, Cause{
 			Code: codeInconsistent, Appraiser: a,
-			Text: fmt.Sprintf("%s does not repeat the same calls: %s of %s %s mixed; kappa over the trials is %s.",
-				f.name(a), format.Count(len(w.Mixed)), format.Counted(w.Share.Of, "part"), are(len(w.Mixed)), below(w.Kappa, level)),
+			Text: fmt.Sprintf("%s does not repeat the same calls: %s of %s %s mixed; %s.",
+				f.name(a), format.Count(len(w.Mixed)), format.Counted(w.Share.Of, "part"), are(len(w.Mixed)), u.text),
 			Do: stop(fmt.Sprintf("Go through the mixed parts with %s: lighting, handling, what counts as a reject. Then repeat the trials. Mixed: %s",
 				f.name(a), f.list(w.Mixed))),
 		})
 	}
-	if !f.most(n) {
+	if !f.most(len(all)) {
 		return out
+	}
+	why := "kappa over their trials is less than " + levelText(f.levels[Kappa][0])
+	if slices.ContainsFunc(all, func(u unrepeated) bool { return u.byShare }) {
+		why += ", or less than " + Criterion{Name: Effectiveness}.Level(f.levels[Effectiveness][0]) + " of the parts are called alike"
 	}
 	return []Cause{{
 		Code: codeInconsistent, Appraiser: Everyone,
-		Text: fmt.Sprintf("%d of %d appraisers do not repeat their own calls (kappa over their trials is less than %s). That points to the method or the gauge, not to one person.%s",
-			n, len(f.Study.Appraisers), levelText(level), f.zoneWidth()),
+		Text: fmt.Sprintf("%d of %d appraisers do not repeat their own calls (%s). That points to the method or the gauge, not to one person.%s",
+			len(all), len(f.Study.Appraisers), why, f.zoneWidth()),
 		Do: stop("Look at the method first: gauge and fixture, lighting, the written standard for the call. " + f.mixedForMany()),
 	}}
+}
+
+// unrepeated is what shows that an appraiser's calls differ from trial to trial.
+type unrepeated struct {
+	known   bool
+	byShare bool // by the share of parts called alike, since one category prevails
+	text    string
+}
+
+// unrepeated: kappa over an appraiser's trials is below the accept level of
+// kappa, and the data show it. Where one category prevails, which pulls kappa
+// down, the share of parts called alike must show it instead.
+func (f *finder) unrepeated(a int) unrepeated {
+	w, level := f.Agreement.Within[a], f.levels[Kappa][0]
+	k := w.Kappa
+	switch {
+	case k.Absent != nil || side(k.Value, level) >= 0 || w.Share.Of < leastRepeated:
+		return unrepeated{}
+	case k.Prevalent:
+		return unrepeated{known: f.tooFewAlike(w.Share), byShare: true, text: f.alikeText(w.Share)}
+	case k.Unbounded != nil || side(k.OneSided.Upper, level) >= 0 || unusable(k, w.Share.Of, called(f.Result, a)) != "":
+		return unrepeated{}
+	}
+	return unrepeated{known: true, text: "kappa over the trials is " + below(k, level)}
 }
 
 // levelText writes a level of kappa.
@@ -79,11 +112,17 @@ func alsoInconsistent(f *finder) {
 		}
 		var who, kappas []string
 		for a, w := range f.Agreement.Within {
-			if c.Appraiser != a && c.Appraiser != Everyone || told[a] || w.Kappa.Absent != nil || side(w.Kappa.Value, level) >= 0 {
+			if c.Appraiser != a && c.Appraiser != Everyone || told[a] {
+				continue
+			}
+			u := f.unrepeated(a)
+			if !u.known {
 				continue
 			}
 			told[a] = true
-			who, kappas = append(who, f.name(a)), append(kappas, besides(w.Kappa.Value, format.Figure(w.Kappa.Value), level))
+			if who = append(who, f.name(a)); !u.byShare {
+				kappas = append(kappas, besides(w.Kappa.Value, format.Figure(w.Kappa.Value), level))
+			}
 		}
 		verb, found := "do", "is "+and(kappas)+", "
 		if len(who) == 1 {
@@ -92,7 +131,10 @@ func alsoInconsistent(f *finder) {
 		if len(who) > manyNames {
 			found = "is "
 		}
-		if len(who) > 0 {
+		switch {
+		case len(kappas) < len(who): // shares of parts among them
+			f.found[i].Text += fmt.Sprintf(" Nor %s %s repeat the same calls.", verb, some(who))
+		case len(who) > 0:
 			f.found[i].Text += fmt.Sprintf(" Nor %s %s repeat the same calls: kappa over the trials %sless than %s.", verb, some(who), found, levelText(level))
 		}
 	}

@@ -12,7 +12,7 @@ import (
 func (v *Verdict) Unshown(level Level) string {
 	var open []ground
 	add := func(who string, c Criterion) {
-		if c.shows(level) {
+		if !c.counts() || c.shows(level) {
 			return
 		}
 		i := slices.IndexFunc(open, func(g ground) bool { return g.c.Label() == c.Label() })
@@ -27,7 +27,7 @@ func (v *Verdict) Unshown(level Level) string {
 			add(a.Name, c)
 		}
 	}
-	if v.counts {
+	if v.betweenCounts() {
 		add("", *v.Between)
 	}
 	var out []string

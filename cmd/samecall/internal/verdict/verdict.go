@@ -1,6 +1,8 @@
 package verdict
 
 import (
+	"slices"
+
 	"samecall/agreement"
 	"samecall/agreement/interval"
 	"samecall/cmd/samecall/internal/judge"
@@ -18,8 +20,6 @@ type Verdict struct {
 	Causes   []Cause
 	Next     []string
 	Cautions []string
-
-	counts bool // Between is among what the verdict rests on
 }
 
 // Appraiser is the verdict on one appraiser.
@@ -38,7 +38,7 @@ var cautions = []string{
 // Decide returns the verdict on a result.
 func Decide(r *judge.Result) *Verdict {
 	levels := criteria(r.Study.Settings.Criteria)
-	v := &Verdict{Cautions: cautions}
+	v := &Verdict{Cautions: slices.Clone(cautions)}
 	for a, name := range r.Study.Appraisers {
 		ap := Appraiser{Name: name, Criteria: appraiserCriteria(r, a, levels)}
 		ap.Verdict = worst(ap.Criteria)
@@ -49,10 +49,9 @@ func Decide(r *judge.Result) *Verdict {
 		c := newCriterion(Kappa, levels[Kappa], b.DifferentAppraisers, "part", b.Share.Of, r.Options.Confidence)
 		c.settle(coefficient(b.DifferentAppraisers, c.Parts))
 		c.between = true
+		c.Aside = aside(c.Estimate, b.Share.Of, called(r, Everyone))
 		v.Between = &c
-		// Calls that are all alike have no kappa, and are no fault; nor can a
-		// kappa that one prevailing category pulls down decide by itself.
-		if v.counts = c.Met != NotShown && !c.Estimate.Prevalent; v.counts {
+		if v.betweenCounts() {
 			v.Overall = max(v.Overall, c.Met)
 		}
 	}
@@ -65,10 +64,19 @@ func Decide(r *judge.Result) *Verdict {
 	return v
 }
 
+// betweenCounts reports whether the verdict rests on the kappa between
+// appraisers. Calls that are all alike have none, and are no fault.
+func (v *Verdict) betweenCounts() bool {
+	return v.Between != nil && v.Between.Met != NotShown && v.Between.counts()
+}
+
+// worst is the worst level of the criteria that count.
 func worst(criteria []Criterion) Level {
 	level := Accept
 	for _, c := range criteria {
-		level = max(level, c.Met)
+		if c.counts() {
+			level = max(level, c.Met)
+		}
 	}
 	return level
 }
@@ -95,6 +103,7 @@ func appraiserCriteria(r *judge.Result, a int, levels map[string]Levels) []Crite
 	falseAlarm.settle(rateOverCalls(good, confidence))
 	kappa := newCriterion(Kappa, levels[Kappa], g.Kappa, "part", parts, confidence)
 	kappa.settle(coefficient(g.Kappa, parts))
+	kappa.Aside = aside(g.Kappa, parts, parts) // its chance is that of the calls it compares
 	return []Criterion{effectiveness, miss, falseAlarm, kappa}
 }
 

@@ -22,7 +22,7 @@ func wrongCallsOf(r *judge.Result, v *Verdict) []string {
 	}
 	var who []int
 	for a, ap := range v.Appraisers {
-		named := slices.ContainsFunc(ap.Criteria, func(c Criterion) bool { return c.Met == v.Overall })
+		named := slices.ContainsFunc(ap.Criteria, func(c Criterion) bool { return c.counts() && c.Met == v.Overall })
 		if named && !namesParts(v.Causes, a) && len(wrongParts(r, a, untold(v, a))) > 0 {
 			who = append(who, a)
 		}
