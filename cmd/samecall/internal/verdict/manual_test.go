@@ -68,6 +68,10 @@ func TestManualsEvidence(t *testing.T) {
 			}
 		}
 	}
+	// Said of C, and not again of A and B.
+	if got := strings.Join(v.Carry, " "); len(v.Carry) != 2 || strings.Count(got, "cannot show a miss rate") != 1 || !strings.HasSuffix(v.Carry[1], " would show it.") {
+		t.Errorf("%q", v.Carry)
+	}
 	eff := v.Appraisers[0].criterion(Effectiveness)
 	if got := eff.Estimate.OneSided.Lower; math.Abs(got-0.7297799224735874) > 1e-9 {
 		t.Errorf("42 of 50: lower limit %v", got)

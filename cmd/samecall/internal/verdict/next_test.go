@@ -80,6 +80,12 @@ func TestWrongCallsOfOthers(t *testing.T) {
 	if at(v.Next, "the wrong calls of A, B, C and D, part by part: 2, 3, 4 and 5.") < 0 {
 		t.Errorf("%q", v.Next)
 	}
+	// What to do comes first, then that no pattern tells more, once.
+	_, v = decide(t, calls("part,reference,A-1,A-2,B-1,B-2\n1,1,1,1,1,0\n2,0,0,0,1,1\n3,0,1,0,0,0\n4,1,1,1,1,1\n", ""))
+	if first, second := at(v.Next, "Go through the wrong calls with B (bad parts accepted: 2; good parts rejected: 1). No pattern tells what is behind the wrong calls."),
+		at(v.Next, "Go through the wrong calls with A (bad parts accepted: 3)."); first < 0 || second != first+1 || strings.Contains(v.Next[second], "No pattern") {
+		t.Errorf("%q", v.Next)
+	}
 }
 
 // The gauge comes first, by what is known of it, and what it passed before is

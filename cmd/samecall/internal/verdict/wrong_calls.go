@@ -30,9 +30,9 @@ func wrongCallsOf(r *judge.Result, v *Verdict) []string {
 	if len(who) == 0 {
 		return nil
 	}
-	lead := "Go through "
+	noPattern := ""
 	if len(v.Causes) == 0 {
-		lead = "No pattern tells what is behind the wrong calls. Go through "
+		noPattern = " No pattern tells what is behind the wrong calls."
 	}
 	if len(who) > mostSteps {
 		var people []string
@@ -42,7 +42,7 @@ func wrongCallsOf(r *judge.Result, v *Verdict) []string {
 			parts = append(parts, wrongParts(r, a, untold(v, a))...)
 		}
 		slices.Sort(parts)
-		return []string{stop(fmt.Sprintf("%sthe wrong calls of %s, part by part: %s", lead, some(people), list(r.Study.Parts, slices.Compact(parts))))}
+		return []string{stop(fmt.Sprintf("Go through the wrong calls of %s, part by part: %s", some(people), list(r.Study.Parts, slices.Compact(parts)))) + noPattern}
 	}
 	// Whoever let the most bad parts pass comes first, whatever the names.
 	slices.SortStableFunc(who, func(a, b int) int {
@@ -67,8 +67,8 @@ func wrongCallsOf(r *judge.Result, v *Verdict) []string {
 				told = append(told, kind.says+list(r.Study.Parts, parts))
 			}
 		}
-		out = append(out, stop(fmt.Sprintf("%sthe wrong calls with %s (%s)", lead, v.Appraisers[a].Name, strings.Join(told, "; "))))
-		lead = "Go through "
+		out = append(out, stop(fmt.Sprintf("Go through the wrong calls with %s (%s)", v.Appraisers[a].Name, strings.Join(told, "; ")))+noPattern)
+		noPattern = "" // said once
 	}
 	return out
 }
