@@ -28,7 +28,7 @@ func steadyErrors(f *finder) []Cause {
 			Code: codeStandard, Appraiser: Everyone,
 			Text: fmt.Sprintf("All appraisers are wrong about the same %s every time (%s). That points to a shifted standard or gauge, or to a wrong reference.",
 				format.Counted(len(t.steady), "part"), t.steadyCalls),
-			Do: fmt.Sprintf("Judge or measure the reference of %s again. If it holds, correct the standard or gauge that all work by.", f.list(t.steady)),
+			Do: fmt.Sprintf("Judge or measure the reference of parts %s again. If it holds, correct the standard or gauge that all work by.", f.list(t.steady)),
 		}}
 	}
 	var out []Cause
@@ -43,7 +43,7 @@ func steadyErrors(f *finder) []Cause {
 			Code: codeSteady, Appraiser: a,
 			Text: fmt.Sprintf("%s is wrong about the same parts every time: %s of %s, on %s (%s).",
 				f.name(a), format.Count(p.steadyCalls.total()), format.Counted(p.wrong, "wrong call"), format.Counted(len(p.steady), "part"), p.steadyCalls),
-			Do: fmt.Sprintf("Go through %s with %s beside the standard: it is the idea of a good part that is shifted, not attention that is at fault.", f.list(p.steady), f.name(a)),
+			Do: fmt.Sprintf("Go through parts %s with %s beside the standard: it is the idea of a good part that is shifted, not attention that is at fault.", f.list(p.steady), f.name(a)),
 		})
 	}
 	return out
