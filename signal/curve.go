@@ -51,7 +51,7 @@ const (
 )
 
 func (s Status) String() string {
-	return [...]string{"fitted", "separated", "quasi-separated", "one-sided"}[s]
+	return nameOf(s, "fitted", "separated", "quasi-separated", "one-sided")
 }
 
 // Gap is what a limit without mixed parts shows: the neighbouring values
@@ -192,7 +192,7 @@ func (c *Curve) side(k int) *LimitFit {
 	return c.Upper
 }
 
-// Each calls f for each limit that the curve has.
+// each calls f for each limit that the curve has.
 func (c *Curve) each(f func(l *LimitFit)) {
 	for k := range 2 {
 		if l := c.side(k); l != nil {

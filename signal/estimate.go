@@ -40,20 +40,6 @@ func (e Estimate) map1(f func(float64) float64, slope float64) Estimate {
 	return e
 }
 
-// flip returns the estimate of minus the quantity.
-func (e Estimate) flip() Estimate {
-	e.Value = -e.Value
-	e.Lower, e.Upper = -e.Upper, -e.Lower
-	e.HasLower, e.HasUpper = e.HasUpper, e.HasLower
-	if !e.HasLower {
-		e.Lower = 0
-	}
-	if !e.HasUpper {
-		e.Upper = 0
-	}
-	return e
-}
-
 // interval returns value ± half.
 func interval(value, half, confidence float64, method string) Estimate {
 	return Estimate{Value: value, Lower: value - half, Upper: value + half, HasLower: true, HasUpper: true, Confidence: confidence, Method: method}

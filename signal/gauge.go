@@ -38,6 +38,9 @@ func (c *Curve) Gauge() (Gauge, error) {
 }
 
 func (g Gauge) check() error {
+	if g.Link != Probit && g.Link != Logit {
+		return fmt.Errorf("link %d: want Probit or Logit", int(g.Link))
+	}
 	if !g.HasLower && !g.HasUpper {
 		return fmt.Errorf("the gauge has no cut")
 	}

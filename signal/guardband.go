@@ -6,20 +6,6 @@ import (
 	"math"
 )
 
-// GuardTable returns the risk with each cut moved inwards by each of bands,
-// with intervals where the inspection has any.
-func GuardTable(p Process, in Inspection, bands []float64) ([]Risk, error) {
-	rows := make([]Risk, 0, len(bands))
-	for _, b := range bands {
-		r, err := Assess(p, in, b)
-		if err != nil {
-			return nil, err
-		}
-		rows = append(rows, r)
-	}
-	return rows, nil
-}
-
 // GuardForEscapes returns the smallest guard band, 0 or more, at which the
 // share of escapes is at most target (a fraction, not ppm), and the risk there.
 // With shown, the upper bound of its interval is held under the target instead

@@ -501,3 +501,14 @@ func TestLackOfFitCutOff(t *testing.T) {
 	p := newProfiler(newSolver(b.m), b.theta, b.loglik, b.cov, b.m.groups[0].cut[0])
 	nearRel(t, "lost at the upper end of the cut", sq(p.root(c.sc.in(c.Lower.Cut.Upper))), cutoff, 1e-5)
 }
+
+func TestNamesOfNothing(t *testing.T) {
+	for _, name := range []string{Status(9).String(), Status(-1).String(), Finding(9).String(), GRRBand(9).String()} {
+		if !strings.HasPrefix(name, "signal.") {
+			t.Errorf("%q", name)
+		}
+	}
+	if s := QuasiSeparated.String(); s != "quasi-separated" {
+		t.Errorf("%q", s)
+	}
+}

@@ -74,99 +74,121 @@ func FitHitMiss(flaws []Flaw, options Options) (*HitMiss, error) {
 	return h, nil
 }
 
-// a90 fills A90 and its bound.
-func (h *HitMiss) a90(d *dataset, c *Curve) error {
-	shift := d.options.Link.quantile(0.9)
-	half := d.halves()[0]
-	sigma := math.Exp(c.local[logSigmaL])
-	value := c.local[cutL] + shift*sigma
-	q := Estimate{Value: value, Confidence: d.options.Confidence, Method: c.Lower.Cut.Method}
-	out := func(t float64) float64 { return math.Exp(d.sc.out(t)) }
+// a90Profile is the likelihood in terms of a90, on the scale of the fit, and
+// log σ.
+type a90Profile struct {
+	*profiler
+	value     float64 // the estimate of a90
+	se        float64 // its standard error by the information; 0 without a maximum
+	separated *half   // where found and missed sizes do not overlap
+	step      float64 // how far the search for a bound begins to go
+}
 
+// a90Profile sets the likelihood up so that its cut is the size found nine times
+// in ten.
+func (d *dataset) a90Profile(c *Curve) *a90Profile {
+	shift := d.options.Link.quantile(0.9)
+	sigma := math.Exp(c.local[logSigmaL])
 	m := d.model(0, len(d.x), d.has)
 	m.shift[0] = shift
-	s := newSolver(m)
-	best := []float64{value, c.local[logSigmaL]}
-	inside, loglik := value, c.blockLogLikelihood
-	var covariance func(i, j int) float64
-	first := sigma
-	if c.hasCov[cutL] {
-		// The covariance of (a90, log σ), from that of (cut, log σ).
-		a, b, v := c.cov[cutL][cutL], c.cov[cutL][logSigmaL], c.cov[logSigmaL][logSigmaL]
-		k := shift * sigma
-		va, vb := a+2*k*b+k*k*v, b+k*v
-		covariance = func(i, j int) float64 {
-			switch {
-			case i == 0 && j == 0:
-				return va
-			case i == 1 && j == 1:
-				return v
-			}
-			return vb
-		}
-		q.SE = math.Sqrt(va * c.factor)
-		first = math.Sqrt(va)
-	} else {
-		// Under separation the supremum is reached with all of the curve's
-		// turn at the smallest size always found.
-		inside, loglik = half.accept, d.supremum(half)
-		first = math.Max(sigma, 1e-6)
+	p := &a90Profile{value: c.local[cutL] + shift*sigma, step: math.Max(sigma, 1e-6)}
+	best := []float64{p.value, c.local[logSigmaL]}
+	if !c.hasCov[cutL] {
+		// Under separation the supremum is reached with all of the curve's turn
+		// between the missed and the found sizes.
+		h := d.halves()[0]
+		p.separated = &h
+		p.profiler = newProfiler(newSolver(m), best, d.supremum(h), nil, 0)
+		return p
 	}
+	// The covariance of (a90, log σ), from that of (cut, log σ).
+	a, b, v := c.cov[cutL][cutL], c.cov[cutL][logSigmaL], c.cov[logSigmaL][logSigmaL]
+	k := shift * sigma
+	va, vb := a+2*k*b+k*k*v, b+k*v
+	covariance := func(i, j int) float64 {
+		switch {
+		case i == 0 && j == 0:
+			return va
+		case i == 1 && j == 1:
+			return v
+		}
+		return vb
+	}
+	p.se = math.Sqrt(va)
+	p.step = p.se
+	p.profiler = newProfiler(newSolver(m), best, c.blockLogLikelihood, covariance, 0)
+	return p
+}
+
+// bound is where the square root of twice the log-likelihood lost reaches
+// target, upwards (way 1) or downwards (−1), and false if it does not.
+func (p *a90Profile) bound(target, way float64) (float64, bool) {
+	p.restart()
+	from := p.value
+	if p.separated != nil {
+		// The supremum is reached at the end of the gap on either side.
+		from = p.separated.accept
+		if way < 0 {
+			from = p.separated.reject
+		}
+		if r := p.root(from + way*1e-9); math.IsNaN(r) {
+			return 0, false
+		} else if r >= target {
+			return from, true
+		}
+		from += way * 1e-9
+	}
+	return crossing(from, way*target*p.step, cutReach, target, p.root)
+}
+
+// a90 fills A90 and its bound.
+func (h *HitMiss) a90(d *dataset, c *Curve) error {
+	out := func(t float64) float64 { return math.Exp(d.sc.out(t)) }
+	p := d.a90Profile(c)
+	q := Estimate{Value: p.value, Confidence: d.options.Confidence, Method: c.Lower.Cut.Method, SE: p.se * math.Sqrt(c.factor)}
 	if d.options.SkipIntervals {
-		q.Why = whySkipped
-		h.Why = whySkipped
-		h.A90 = q.map1(out, d.sc.scale*out(value))
-		return nil
-	}
-	p := newProfiler(s, best, loglik, covariance, 0)
-	bound := func(target, dir float64) (float64, bool) {
-		p.restart()
-		from := inside
-		if covariance == nil {
-			if dir < 0 {
-				from = half.reject
-			}
-			if r := p.root(from + dir*1e-9); math.IsNaN(r) {
-				return 0, false
-			} else if r >= target {
-				return from, true
-			}
-			from += dir * 1e-9
+		q.Why, h.Why = whySkipped, whySkipped
+	} else {
+		target := math.Sqrt(c.crit)
+		q.Upper, q.HasUpper = p.bound(target, 1)
+		q.Lower, q.HasLower = p.bound(target, -1)
+		if q.HasUpper {
+			q.Upper = math.Max(q.Upper, q.Value)
 		}
-		return crossing(from, dir*target*first, cutReach, target, p.root)
+		if q.HasLower {
+			q.Lower = math.Min(q.Lower, q.Value)
+		}
+		if !q.HasLower || !q.HasUpper {
+			q.Why = whyFlat
+		}
 	}
-	target := math.Sqrt(c.crit)
-	q.Upper, q.HasUpper = bound(target, 1)
-	q.Lower, q.HasLower = bound(target, -1)
-	if q.HasUpper {
-		q.Upper = math.Max(q.Upper, q.Value)
-	}
-	if q.HasLower {
-		q.Lower = math.Min(q.Lower, q.Value)
-	}
-	if !q.HasLower || !q.HasUpper {
-		q.Why = whyFlat
-	}
-	h.A90 = q.map1(out, d.sc.scale*out(value))
+	h.A90 = q.map1(out, d.sc.scale*out(p.value))
 	if h.A90.HasUpper && !finite(h.A90.Upper) {
 		h.A90.Upper, h.A90.HasUpper, h.A90.Why = 0, false, whyFlat
 	}
-	oneSided := normalQuantile(a9095Confidence)
-	if f := c.LackOfFit; f.Applied {
-		oneSided = math.Sqrt(c.factor) * distuv.StudentsT{Sigma: 1, Nu: float64(f.DF)}.Quantile(a9095Confidence)
-	}
-	if c.Lower.Status != Fitted {
-		h.Why = "hits and misses do not overlap in size, so the study does not tell how the chance rises"
-	} else if at, ok := bound(oneSided, 1); ok {
-		if a := out(at); finite(a) {
-			h.A9095, h.HasA9095 = math.Max(a, out(value)), true
-		}
-	}
-	if !h.HasA9095 && h.Why == "" {
-		h.Why = whyFlat
+	if !d.options.SkipIntervals {
+		h.a9095(c, p, out)
 	}
 	if !finite(h.A50.Value, h.A50.Lower, h.A50.Upper, h.A50.SE, h.A90.Value, h.A90.Lower, h.A90.Upper, h.A90.SE) {
 		return &NotConvergedError{What: "the hit/miss curve", Reason: "a size is not a finite number"}
 	}
 	return nil
+}
+
+// a9095 fills the bound of a90, which is one-sided.
+func (h *HitMiss) a9095(c *Curve, p *a90Profile, out func(float64) float64) {
+	if c.Lower.Status != Fitted {
+		h.Why = "hits and misses do not overlap in size, so the study does not tell how the chance rises"
+		return
+	}
+	target := normalQuantile(a9095Confidence)
+	if f := c.LackOfFit; f.Applied {
+		target = math.Sqrt(c.factor) * distuv.StudentsT{Sigma: 1, Nu: float64(f.DF)}.Quantile(a9095Confidence)
+	}
+	at, ok := p.bound(target, 1)
+	if a := out(at); ok && finite(a) {
+		h.A9095, h.HasA9095 = math.Max(a, h.A90.Value), true
+		return
+	}
+	h.Why = whyFlat
 }

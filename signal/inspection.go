@@ -5,8 +5,8 @@ import "errors"
 // Inspection is what decides on the parts of a process: a fitted *Curve, whose
 // risks carry its uncertainty, or a Known one.
 type Inspection interface {
-	// cuts returns how it accepts, and the limits that tell good from bad. It
-	// returns an error if there is no cut at one of the limits.
+	// cuts returns how it accepts, and the limits that tell good from bad. A
+	// curve without a cut at one of its limits is an error.
 	cuts() (Gauge, Limits, error)
 	// bound gives the quantities of r, whose values v are found with g, their
 	// intervals.
@@ -16,8 +16,8 @@ type Inspection interface {
 	mostEscapes(p Process, band float64) (float64, error)
 }
 
-// Known is an inspection whose cuts and σ are taken as known exactly; its
-// risks have no intervals.
+// Known is an inspection whose cuts and σ are taken as known exactly, a cut for
+// each limit; its risks have no intervals.
 type Known struct {
 	Gauge  Gauge
 	Limits Limits

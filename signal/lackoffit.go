@@ -66,8 +66,11 @@ func (c *Curve) judgeFit() {
 		f.Deviance += p.Residual * p.Residual
 		pr := p.Fitted
 		npq := float64(p.Calls) * pr * (1 - pr)
-		if p.Calls < 2 || npq < mixingFloor || !c.likelihoodNear(at, c.sc.in(p.Value)) {
-			once = once || p.Calls == 1
+		if npq < mixingFloor || !c.likelihoodNear(at, c.sc.in(p.Value)) {
+			continue
+		}
+		if p.Calls < 2 {
+			once = true
 			continue
 		}
 		f.Parts++

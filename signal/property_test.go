@@ -292,3 +292,17 @@ func BenchmarkFitParts(b *testing.B) {
 		})
 	}
 }
+
+// flip returns the estimate of minus the quantity.
+func (e Estimate) flip() Estimate {
+	e.Value = -e.Value
+	e.Lower, e.Upper = -e.Upper, -e.Lower
+	e.HasLower, e.HasUpper = e.HasUpper, e.HasLower
+	if !e.HasLower {
+		e.Lower = 0
+	}
+	if !e.HasUpper {
+		e.Upper = 0
+	}
+	return e
+}

@@ -103,6 +103,9 @@ func checkRisk(p Process, g Gauge, limits Limits) error {
 	} else if !finite(p.Values...) {
 		return errors.New("a value of the process is not a number")
 	}
+	if g.HasLower != limits.HasLower || g.HasUpper != limits.HasUpper {
+		return errors.New("a limit and a cut go together: a cut at each limit that there is, and no other")
+	}
 	return g.check()
 }
 
@@ -113,73 +116,114 @@ var nodes = func() (n struct{ x, w [16]float64 }) {
 	return n
 }()
 
-// shares integrates acceptance over the process. For a normal process the
-// range of ±12 standard deviations is cut at the limits and at multiples of
-// the process's and of each curve's σ, and each piece takes 16 Gauss–Legendre
-// points; the integrand is smooth within a piece however unequal the two σs
-// are.
-func (p Process) shares(g Gauge, limits Limits) (s shares) {
-	middle := 0.0
+// shares gives the shares of a process by region and call.
+func (p Process) shares(g Gauge, limits Limits) shares {
+	if len(p.Values) > 0 {
+		return p.sampledShares(g, limits)
+	}
+	return p.normalShares(g, limits)
+}
+
+// bounds are the lower limit, the middle between the limits and the upper limit,
+// infinite where there is none.
+func (l Limits) bounds() (lower, middle, upper float64) {
+	lower, upper = math.Inf(-1), math.Inf(1)
+	if l.HasLower {
+		lower = l.Lower
+	}
+	if l.HasUpper {
+		upper = l.Upper
+	}
 	switch {
-	case limits.HasLower && limits.HasUpper:
-		middle = limits.Lower/2 + limits.Upper/2
-	case limits.HasUpper:
+	case l.HasLower && l.HasUpper:
+		middle = l.Lower/2 + l.Upper/2
+	case l.HasUpper:
 		middle = math.Inf(-1)
 	default:
 		middle = math.Inf(1)
 	}
-	if len(p.Values) > 0 {
-		n := float64(len(p.Values))
-		for _, x := range p.Values {
-			r := goodLow
-			switch {
-			case limits.HasLower && x < limits.Lower:
-				r = badLow
-			case limits.HasUpper && x > limits.Upper:
-				r = badHigh
-			case x >= middle:
-				r = goodHigh
-			}
-			s.add(r, 1/n, g, x)
-			if r == badLow || r == badHigh {
-				s.bad += 1 / n
-			}
-		}
-		return s
+	return lower, middle, upper
+}
+
+// region tells where a value lies. A value on a limit is good.
+func region(x, lower, middle, upper float64) int {
+	switch {
+	case x < lower:
+		return badLow
+	case x > upper:
+		return badHigh
+	case x >= middle:
+		return goodHigh
 	}
-	// In standard deviations from the mean.
+	return goodLow
+}
+
+// sampledShares adds up the values.
+func (p Process) sampledShares(g Gauge, limits Limits) (s shares) {
+	lower, middle, upper := limits.bounds()
+	each := 1 / float64(len(p.Values))
+	for _, x := range p.Values {
+		r := region(x, lower, middle, upper)
+		s.add(r, each, g, x)
+		if r == badLow || r == badHigh {
+			s.bad += each
+		}
+	}
+	return s
+}
+
+// normalShares integrates acceptance over a normal process. It works in standard
+// deviations from the mean, so that 250 mm ± 0.02 µm keeps its digits; each of
+// the pieces takes 16 Gauss–Legendre points, and the integrand is smooth within
+// a piece however unequal the two σs are.
+func (p Process) normalShares(g Gauge, limits Limits) (s shares) {
 	in := func(x float64) float64 { return (x - p.Mean) / p.SD }
-	const reach = 12
+	lower, middle, upper := limits.bounds()
+	lower, middle, upper = in(lower), in(middle), in(upper)
+	s.bad = normalCDF(lower) + normalCDF(-upper)
+	g.LowerCut, g.UpperCut, g.LowerSigma, g.UpperSigma = in(g.LowerCut), in(g.UpperCut), g.LowerSigma/p.SD, g.UpperSigma/p.SD
 	var room [128]float64
-	cuts := room[:0]
+	cuts := g.pieces(room[:0], lower, middle, upper)
+	for i := 1; i < len(cuts); i++ {
+		a, b := cuts[i-1], cuts[i]
+		if !(b > a) {
+			continue
+		}
+		half, centre := (b-a)/2, a+(b-a)/2
+		r := region(centre, lower, middle, upper)
+		for k, x := range nodes.x {
+			t := centre + half*x
+			s.add(r, half*nodes.w[k]*normalDensity(t), g, t)
+		}
+	}
+	for r := range regions {
+		s.slope[cutL][r] /= p.SD
+		s.slope[cutU][r] /= p.SD
+	}
+	return s
+}
+
+// pieces appends the points between which acceptance by a gauge is smooth over a
+// standard normal process: its range of ±12, whole standard deviations, the
+// limits and their middle, and multiples of each σ about its cut.
+func (g Gauge) pieces(cuts []float64, lower, middle, upper float64) []float64 {
+	const reach = 12
+	for k := -reach; k <= reach; k++ {
+		cuts = append(cuts, float64(k))
+	}
 	add := func(t float64) {
 		if t > -reach && t < reach {
 			cuts = append(cuts, t)
 		}
 	}
-	cuts = append(cuts, -reach, reach)
-	for k := -reach + 1; k < reach; k++ {
-		cuts = append(cuts, float64(k))
-	}
-	lower, upper := math.Inf(-1), math.Inf(1)
-	if limits.HasLower {
-		lower = in(limits.Lower)
-		add(lower)
-		s.bad += normalCDF(lower)
-	}
-	if limits.HasUpper {
-		upper = in(limits.Upper)
-		add(upper)
-		s.bad += normalCDF(-upper)
-	}
-	mid := in(middle)
-	add(mid)
+	add(lower)
+	add(middle)
+	add(upper)
 	around := func(cut, sigma float64) {
-		t, w := in(cut), sigma/p.SD
-		add(t)
+		add(cut)
 		for _, k := range [...]float64{0.5, 1, 1.5, 2, 3, 4, 5, 6, 7, 8, 10, 12, 16, 20, 28, 36} {
-			add(t - k*w)
-			add(t + k*w)
+			add(cut - k*sigma)
+			add(cut + k*sigma)
 		}
 	}
 	if g.HasLower {
@@ -189,34 +233,7 @@ func (p Process) shares(g Gauge, limits Limits) (s shares) {
 		around(g.UpperCut, g.UpperSigma)
 	}
 	slices.Sort(cuts)
-	// The gauge in the same unit: 250 mm ± 0.02 µm keeps its digits.
-	scaled := g
-	scaled.LowerCut, scaled.UpperCut, scaled.LowerSigma, scaled.UpperSigma = in(g.LowerCut), in(g.UpperCut), g.LowerSigma/p.SD, g.UpperSigma/p.SD
-	for i := 1; i < len(cuts); i++ {
-		a, b := cuts[i-1], cuts[i]
-		if !(b > a) {
-			continue
-		}
-		half, centre := (b-a)/2, a+(b-a)/2
-		r := goodLow
-		switch {
-		case centre < lower:
-			r = badLow
-		case centre > upper:
-			r = badHigh
-		case centre >= mid:
-			r = goodHigh
-		}
-		for k, x := range nodes.x {
-			t := centre + half*x
-			s.add(r, half*nodes.w[k]*normalDensity(t), scaled, t)
-		}
-	}
-	for r := range regions {
-		s.slope[cutL][r] /= p.SD
-		s.slope[cutU][r] /= p.SD
-	}
-	return s
+	return cuts
 }
 
 // add adds so many parts of value x.

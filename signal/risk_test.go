@@ -142,11 +142,13 @@ func TestCapableProcess(t *testing.T) {
 func TestGuardBands(t *testing.T) {
 	c := mustFit(t, study(t), studyLimits, Options{})
 	p := Process{Mean: 0.4975, SD: 0.02}
-	rows, err := GuardTable(p, c, []float64{0, 0.005, 0.01, 0.02})
-	if err != nil {
-		t.Fatal(err)
-	}
-	for i, r := range rows {
+	var rows []Risk
+	for i, band := range []float64{0, 0.005, 0.01, 0.02} {
+		r, err := Assess(p, c, band)
+		if err != nil {
+			t.Fatal(err)
+		}
+		rows = append(rows, r)
 		if i > 0 && (r.Escape.Value >= rows[i-1].Escape.Value || r.FalseReject.Value <= rows[i-1].FalseReject.Value) {
 			t.Errorf("row %d: escapes must fall and false rejects rise", i)
 		}
@@ -233,6 +235,19 @@ func TestNoInspection(t *testing.T) {
 		}
 		if _, err := GuardForCost(p, in, 1, 1); err == nil {
 			t.Errorf("%T: no error of GuardForCost", in)
+		}
+	}
+	lower := Gauge{LowerCut: 0.4, LowerSigma: 0.01, HasLower: true}
+	for name, in := range map[string]Known{
+		"a limit without a cut": {lower, Between(0.4, 0.6)},
+		"a cut without a limit": {lower, AtMost(0.6)},
+		"a link of no name":     {Gauge{Link: 7, LowerCut: 0.4, LowerSigma: 0.01, HasLower: true}, AtLeast(0.4)},
+	} {
+		if _, err := Assess(p, in, 0); err == nil {
+			t.Errorf("%s: no error of Assess", name)
+		}
+		if _, err := GuardForCost(p, in, 1, 1); err == nil {
+			t.Errorf("%s: no error of GuardForCost", name)
 		}
 	}
 }

@@ -32,7 +32,7 @@ const (
 )
 
 func (f Finding) String() string {
-	return [...]string{"explained", "partly explained", "not explained"}[f]
+	return nameOf(f, "explained", "partly explained", "not explained")
 }
 
 // Explanation compares the offset of a cut with the calibrated size of the

@@ -2,6 +2,7 @@ package signal
 
 import (
 	"cmp"
+	"fmt"
 	"slices"
 )
 
@@ -18,9 +19,9 @@ type Zone struct {
 	RejectPart int     // their indices among the parts given
 	AcceptPart int
 	Width      float64 // distance between them, d
-	// Mixed is the number of parts between them. With none, d is the gap
-	// between neighbours and only an upper bound of the zone.
-	Between int // parts in between, whatever their calls
+	// Between is the number of parts between them, whatever their calls. With
+	// none, d is the gap between neighbours and only an upper bound of the zone.
+	Between int
 	Mixed   int // mixed parts among them
 	Found   bool
 	Why     string // why there is no zone
@@ -51,7 +52,7 @@ const (
 )
 
 func (b GRRBand) String() string {
-	return [...]string{"good", "conditional", "not acceptable"}[b]
+	return nameOf(b, "good", "conditional", "not acceptable")
 }
 
 // BandGRR returns the band of a percentage of the tolerance.
@@ -86,8 +87,11 @@ func Unanimous(parts []Part, limits Limits, spread float64) (*Unanimity, error) 
 	if err != nil {
 		return nil, err
 	}
-	if !(spread > 0) || !finite(spread) {
+	switch {
+	case spread == 0:
 		spread = Spread
+	case !(spread > 0) || !finite(spread):
+		return nil, fmt.Errorf("spread %v: want a number of σ above 0, or 0 for %v", spread, Spread)
 	}
 	by := make([]int, len(merged))
 	for i := range by {

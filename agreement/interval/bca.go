@@ -8,11 +8,13 @@ import (
 )
 
 // LeftOut is the value of a coefficient when one part is left out. Parts is
-// how many parts give this value, each left out alone.
+// how many parts give this value, each left out alone; 0 counts as one.
 type LeftOut struct {
 	Value float64
 	Parts int
 }
+
+func (l LeftOut) parts() float64 { return float64(max(1, l.Parts)) }
 
 // BCa returns the bias-corrected and accelerated interval of a coefficient
 // (Efron, Journal of the American Statistical Association 82 (1987)
@@ -56,8 +58,8 @@ func BCa(estimate float64, resampled []float64, leftOut []LeftOut, confidence fl
 func Acceleration(leftOut []LeftOut) float64 {
 	var n, sum float64
 	for _, l := range leftOut {
-		n += float64(l.Parts)
-		sum += l.Value * float64(l.Parts)
+		n += l.parts()
+		sum += l.Value * l.parts()
 	}
 	if n == 0 {
 		return 0
@@ -66,8 +68,8 @@ func Acceleration(leftOut []LeftOut) float64 {
 	var s2, s3 float64
 	for _, l := range leftOut {
 		d := mean - l.Value
-		s2 += d * d * float64(l.Parts)
-		s3 += d * d * d * float64(l.Parts)
+		s2 += d * d * l.parts()
+		s3 += d * d * d * l.parts()
 	}
 	if r := rounding(mean); s2 <= n*r*r { // alike, but for rounding: no skewness
 		return 0

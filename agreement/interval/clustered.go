@@ -8,10 +8,12 @@ import (
 
 // Cluster is what happened on one part, or on several parts alike: of Calls
 // calls on each part, Events were events (misses, say). Parts is how many
-// parts were so.
+// parts were so; 0 counts as one.
 type Cluster struct {
 	Events, Calls, Parts int
 }
+
+func (c Cluster) parts() int { return max(1, c.Parts) }
 
 // Rate is a rate over calls that come several to a part.
 type Rate struct {
@@ -36,9 +38,9 @@ func KornGraubard(clusters []Cluster, confidence float64) Rate {
 	var r Rate
 	for _, c := range clusters {
 		if c.Calls > 0 {
-			r.Events += c.Events * c.Parts
-			r.Calls += c.Calls * c.Parts
-			r.Parts += c.Parts
+			r.Events += c.Events * c.parts()
+			r.Calls += c.Calls * c.parts()
+			r.Parts += c.parts()
 		}
 	}
 	if r.Calls == 0 {
@@ -55,7 +57,7 @@ func KornGraubard(clusters []Cluster, confidence float64) Rate {
 	var variance float64
 	for _, c := range clusters {
 		d := float64(c.Events) - r.Value*float64(c.Calls)
-		variance += d * d * float64(c.Parts)
+		variance += d * d * float64(c.parts())
 	}
 	variance *= parts / (parts - 1) / (calls * calls)
 	r.Effective = calls

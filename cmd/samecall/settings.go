@@ -84,7 +84,8 @@ func (s *source) read(cmd *cobra.Command, args []string, in streams) (*study.Stu
 	}
 	st, err := study.Read(src, flags)
 	if err == nil && src.FS == nil && flags.Calls == "" && st.Settings.Calls != "" {
-		err = keepRead(cmd, callsOf(cmp.Or(src.Study, src.Path), st.Settings.Calls))
+		calls := callsOf(cmp.Or(src.Study, src.Path), st.Settings.Calls)
+		err = cmp.Or(keepRead(cmd, calls), keepFigures(cmd, []namedFile{calls}))
 	}
 	if errors.Is(err, fs.ErrNotExist) && src.FS == nil {
 		err = fmt.Errorf("%w; the folder is %s", err, folder())

@@ -3,7 +3,6 @@ package study
 import (
 	"errors"
 	"fmt"
-	"os"
 	"regexp"
 	"slices"
 	"sort"
@@ -359,16 +358,6 @@ func (k *keyOf) UnmarshalTOML(v any) error { return k.set(v) }
 
 // maxStudyFile bounds the study file, which people write by hand.
 const maxStudyFile = 1 << 20
-
-// ReadSettings reads a study file. The error is a *Problems where the file is
-// wrong, and another error where it cannot be read.
-func ReadSettings(path string) (Settings, error) {
-	data, err := os.ReadFile(path)
-	if err != nil {
-		return Settings{}, err
-	}
-	return parseSettings(path, data)
-}
 
 // parseSettings reads the text of a study file; name is for messages.
 func parseSettings(name string, data []byte) (Settings, error) {

@@ -1,8 +1,6 @@
 package study
 
 import (
-	"os"
-	"path/filepath"
 	"strings"
 	"testing"
 
@@ -30,11 +28,7 @@ kappa = [0.75, -0.40]
 `
 
 func TestReadSettings(t *testing.T) {
-	file := filepath.Join(t.TempDir(), "study.toml")
-	if err := os.WriteFile(file, []byte("\ufeff"+wholeStudyFile), 0o600); err != nil {
-		t.Fatal(err)
-	}
-	got, err := ReadSettings(file)
+	got, err := parseSettings("study.toml", []byte("\ufeff"+wholeStudyFile))
 	if err != nil {
 		t.Fatal(err)
 	}
