@@ -11,95 +11,36 @@ import (
 func (d *dataset) fit(search bool) (*Curve, error) {
 	c := &Curve{Options: d.options, Limits: d.limits, sc: d.sc, factor: 1}
 	hs := d.halves()
-	var overlap, turning int
-	for k := range hs {
-		if !d.has[k] {
-			continue
-		}
-		l := &LimitFit{Side: Side(k), Status: hs[k].status, Why: hs[k].why}
-		if k == 0 {
-			l.Limit, l.HasLimit = d.limits.Lower, d.limits.HasLower
-			c.Lower = l
-		} else {
-			l.Limit, l.HasLimit = d.limits.Upper, d.limits.HasUpper
-			c.Upper = l
-		}
-		switch l.Status {
-		case Fitted:
-			overlap, turning = overlap+1, turning+1
-		case Separated, QuasiSeparated:
-			turning++
-		}
-	}
-	if turning == 0 {
+	overlap := d.limitsOf(c, hs)
+	if !c.Lower.Known() && !c.Upper.Known() {
 		return nil, d.noTurn(hs)
 	}
-	// Blocks of maximum likelihood: both limits together where both overlap,
-	// else each by itself.
-	var blocks []*block
-	if overlap == 2 {
-		b, err := d.maximum(0, len(d.x), d.has, hs)
-		if err != nil {
-			return nil, err
-		}
-		blocks = append(blocks, b)
-	} else {
-		for k, h := range hs {
-			if !d.has[k] || h.status != Fitted {
-				continue
-			}
-			from, to := h.from, h.to
-			if other := hs[1-k]; d.has[1-k] && other.status == OneSided && !other.reversed && !other.hasReject {
-				from, to = 0, len(d.x) // nothing was rejected there: all parts tell of this limit
-			}
-			b, err := d.maximum(from, to, [2]bool{k == 0, k == 1}, hs)
-			if err != nil {
-				return nil, err
-			}
-			blocks = append(blocks, b)
-		}
+	blocks, err := d.maxima(hs, overlap)
+	if err != nil {
+		return nil, err
 	}
 	for _, b := range blocks {
 		c.take(b)
 	}
-	separated := [2]*firthFit{}
-	for k, h := range hs {
-		if d.has[k] && (h.status == Separated || h.status == QuasiSeparated) {
-			f, err := d.firth(h)
-			if err != nil {
-				// So few calls that even their turn is in doubt.
-				turning--
-				if turning == 0 {
-					return nil, err
-				}
-				hs[k].status, hs[k].reversed, hs[k].why = OneSided, true, err.Error()
-				l := c.side(k)
-				l.Status, l.Why = OneSided, err.Error()
-				continue
-			}
-			separated[k] = f
-			c.local[2*k], c.local[2*k+1] = f.cut, f.logSigma
-			c.known[2*k], c.known[2*k+1] = true, true
-			c.Parameters += 2
-		}
+	separated, err := d.biasReduced(c, &hs)
+	if err != nil {
+		return nil, err
 	}
 	if d.options.Lapse {
 		d.lapse(c, &blocks, hs)
 	}
+	c.blocks = blocks
 	c.summarise(d, hs)
 	c.judgeFit()
 	c.params(d)
 	for _, b := range blocks {
 		d.describe(c, b)
 	}
-	c.blocks = blocks
-	for k, f := range separated {
-		if f != nil {
-			d.describeSeparated(c, hs[k], f)
-		}
-	}
 	for k, h := range hs {
-		if d.has[k] && h.status == OneSided {
+		switch {
+		case separated[k] != nil:
+			d.describeSeparated(c, h, separated[k])
+		case d.has[k] && h.status == OneSided:
 			d.describeOneSided(c, h)
 		}
 	}
@@ -118,6 +59,87 @@ func (d *dataset) fit(search bool) (*Curve, error) {
 	}
 	c.order(d)
 	return c, nil
+}
+
+// limitsOf gives the curve its limits, and returns at how many of them rejected
+// and accepted calls overlap.
+func (d *dataset) limitsOf(c *Curve, hs [2]half) (overlap int) {
+	for k, h := range hs {
+		if !d.has[k] {
+			continue
+		}
+		l := &LimitFit{Side: Side(k), Status: h.status, Why: h.why}
+		if k == 0 {
+			l.Limit, l.HasLimit = d.limits.Lower, d.limits.HasLower
+			c.Lower = l
+		} else {
+			l.Limit, l.HasLimit = d.limits.Upper, d.limits.HasUpper
+			c.Upper = l
+		}
+		if l.Status == Fitted {
+			overlap++
+		}
+	}
+	return overlap
+}
+
+// maxima fits the limits at which calls overlap by maximum likelihood: both
+// together where both do, else the one by itself.
+func (d *dataset) maxima(hs [2]half, overlap int) ([]*block, error) {
+	if overlap == 2 {
+		b, err := d.maximum(0, len(d.x), d.has, hs)
+		if err != nil {
+			return nil, err
+		}
+		return []*block{b}, nil
+	}
+	for k, h := range hs {
+		if !d.has[k] || h.status != Fitted {
+			continue
+		}
+		from, to := h.from, h.to
+		if other := hs[1-k]; d.has[1-k] && other.status == OneSided && !other.reversed && !other.hasReject {
+			from, to = 0, len(d.x) // nothing was rejected there: all parts tell of this limit
+		}
+		b, err := d.maximum(from, to, [2]bool{k == 0, k == 1}, hs)
+		if err != nil {
+			return nil, err
+		}
+		return []*block{b}, nil
+	}
+	return nil, nil
+}
+
+// biasReduced fits the limits without an overlap. One whose calls are so few
+// that even their turn is in doubt is marked as one-sided, in hs too; it is an
+// error if there is no other limit.
+func (d *dataset) biasReduced(c *Curve, hs *[2]half) (fits [2]*firthFit, err error) {
+	turning := 0
+	for k, h := range hs {
+		if d.has[k] && h.status != OneSided {
+			turning++
+		}
+	}
+	for k, h := range hs {
+		if !d.has[k] || h.status != Separated && h.status != QuasiSeparated {
+			continue
+		}
+		f, err := d.firth(h)
+		if err != nil {
+			if turning--; turning == 0 {
+				return fits, err
+			}
+			hs[k].status, hs[k].reversed, hs[k].why = OneSided, true, err.Error()
+			l := c.side(k)
+			l.Status, l.Why = OneSided, err.Error()
+			continue
+		}
+		fits[k] = f
+		c.local[2*k], c.local[2*k+1] = f.cut, f.logSigma
+		c.known[2*k], c.known[2*k+1] = true, true
+		c.Parameters += 2
+	}
+	return fits, nil
 }
 
 // noTurn says why nothing can be fitted.
