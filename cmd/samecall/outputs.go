@@ -128,7 +128,7 @@ func commandLine(cmd *cobra.Command, args []string) string {
 	}
 	cmd.Flags().Visit(func(f *pflag.Flag) {
 		switch f.Name {
-		case "html", "json", "markdown", "csv", "xlsx", "figures", "full", "require":
+		case "html", "json", "markdown", "csv", "xlsx", "figures", "full", "require", "shown": // what is written, and the status
 			return
 		}
 		value := f.Value.String()

@@ -47,10 +47,12 @@ func TestRecompute(t *testing.T) {
 		{"judge", `calls of "bore" it's $HOME & co.csv`, "--accept", `"yes, it's fine"`, "--reject", "no", "--lower", "3.5"},
 		{"judge", "--accept", `"yes, it's fine"`, "--reject", "no", "--lower=-3.5", "--", "-odd name.csv"},
 		{"judge", "--example", "bore"},
+		{"judge", "--example", "bore", "--require", "accept", "--shown"}, // status 1
 	} {
 		record := func(name string, command *exec.Cmd) []byte {
 			command.Dir = folder
-			if out, err := command.CombinedOutput(); err != nil {
+			// A verdict that is not the required one has its record, too.
+			if out, err := command.CombinedOutput(); err != nil && command.ProcessState.ExitCode() != exitShort {
 				t.Fatalf("%q: %v\n%s", command.Args, err, out)
 			}
 			page, err := os.ReadFile(filepath.Join(folder, name))
