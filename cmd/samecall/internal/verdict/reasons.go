@@ -57,15 +57,17 @@ func deciding(r *judge.Result, v *Verdict) (why, carry []string) {
 	grounds := v.grounds()
 	// The furthest from its level first.
 	slices.SortStableFunc(grounds, func(a, b ground) int { return cmp.Compare(b.c.distance(), a.c.distance()) })
-	tooFew := ""
+	told := ""
 	for _, g := range grounds[:min(mostReasons, len(grounds))] {
 		why = append(why, stop(g.text()))
 		// What so few parts cannot show is said once.
 		text, few := g.c.EvidenceText(), g.c.tooFew()
-		if few != "" && few == tooFew {
-			text = strings.TrimSuffix(text, few)
+		if few != "" && strings.HasSuffix(text, few) {
+			if few == told {
+				text = strings.TrimSuffix(text, few)
+			}
+			told = few
 		}
-		tooFew = few
 		carry = append(carry, text)
 	}
 	if len(grounds) > mostReasons {
@@ -172,10 +174,15 @@ func (g ground) say() string {
 }
 
 // needsMore reports whether a takes more parts than b to be shown; a figure
-// that no number of parts would show takes most.
+// that no number of parts would show takes most. Bad parts are the scarcest, so
+// what rests on them goes before what rests on good ones or on all, in what to
+// do next as well.
 func needsMore(a, b Criterion) bool {
 	if a.More == 0 || b.More == 0 {
 		return a.More == 0 && b.More > 0
+	}
+	if x, y := slices.Index(scarcest, a.Kind), slices.Index(scarcest, b.Kind); x != y {
+		return x < y
 	}
 	return a.More > b.More
 }

@@ -185,3 +185,27 @@ func TestCalibratedSizes(t *testing.T) {
 		}
 	}
 }
+
+// What few parts cannot show stands beside the first reason that is open, not
+// only beside the first: of 16 bad parts A misses 12, which the data show, and B 2.
+func TestTooFewIsToldOfTheSecondReason(t *testing.T) {
+	var text strings.Builder
+	text.WriteString("part,reference,A-1,A-2,B-1,B-2\n")
+	for part := range 66 {
+		ref, a, b := "ok", "ok", "ok"
+		if part < 16 {
+			ref, a, b = "nok", "nok", "nok"
+		}
+		if part < 12 {
+			a = "ok"
+		}
+		if part < 2 {
+			b = "ok"
+		}
+		fmt.Fprintf(&text, "%d,%s,%s,%[3]s,%s,%[4]s\n", part, ref, a, b)
+	}
+	_, v := decide(t, calls(text.String(), ""))
+	if len(v.Carry) != 2 || v.Carry[0] != "The data show it." || !strings.HasSuffix(v.Carry[1], " 16 bad parts cannot show a miss rate below 5 %: at best 17.1 %.") {
+		t.Errorf("%q", v.Carry)
+	}
+}
