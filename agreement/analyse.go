@@ -10,8 +10,16 @@ type Analysis struct {
 	Against []Against // one for each appraiser; nil without a reference
 	All     *Against  // all appraisers together; nil without a reference
 
-	Warnings []Warning
-	Patterns Patterns
+	Intervals Intervals
+	Warnings  []Warning
+	Patterns  Patterns
+}
+
+// Intervals counts the coefficients of an analysis by how their intervals were
+// found. In neither number are those on which nothing disagreed, whose interval
+// is exact, and those without one.
+type Intervals struct {
+	Resampled, Linearised int
 }
 
 // study is what an analysis is computed from.
@@ -51,6 +59,7 @@ func Analyse(r *Ratings, opt Options) (*Analysis, error) {
 		out.All = &all
 	}
 	out.Between = s.between()
+	out.Intervals = s.intervals
 	out.Warnings = s.warnings(&out)
 	out.Patterns = s.patterns.public()
 	return &out, nil

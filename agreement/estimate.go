@@ -23,8 +23,10 @@ type Estimate struct {
 	Unbounded     error
 	// Prevalent marks a coefficient that is pulled down since one category
 	// holds nearly all of the calls, while AC1 of the same calls is not: it
-	// understates the agreement.
-	Prevalent bool
+	// understates the agreement. Prevailing is then the share which that
+	// category holds of what the coefficient compares.
+	Prevalent  bool
+	Prevailing float64
 	// Independent is the interval that treats calls as independent, which
 	// they are not: of a kappa, estimate ± z standard errors of 1969 (Cohen)
 	// or 1979 (Fleiss), not cut at ±1; of a rate, Clopper–Pearson over

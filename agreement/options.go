@@ -30,6 +30,9 @@ type Options struct {
 	Pairing     Pairing // of the trials of two appraisers
 	Ordered     bool    // categories are grades in order: weighted kappas too
 	Independent bool    // also the intervals that treat calls as independent
+	// Names are those of the appraisers, for the texts of warnings; without
+	// them an appraiser is told by number, the first as 1.
+	Names []string
 	// Progress, if not nil, is told from time to time how much of the
 	// resampling is done.
 	Progress func(done, of int)

@@ -38,15 +38,19 @@ type resampler struct {
 	width       int
 	weights     []uint16 // resample after resample, how often each pattern was drawn; nil: linearise
 	budget      float64
+	wanted      bool      // asked for, of no more parts than are resampled
 	affordable  bool      // the group of coefficients that was begun
+	additions   int       // of all groups that were begun, for each resample
 	resampled   []float64 // reused
+	intervals   Intervals // of the coefficients that were estimated
 	done, total int       // coefficients, for Options.Progress
 }
 
 func newResampler(p patterns, opt Options, coefficients int) *resampler {
 	r := &resampler{opt: opt, width: len(p.rows), budget: resamplingBudget, total: coefficients}
 	parts := len(p.pattern)
-	if opt.Resamples == 0 || parts > manyParts || parts < 2 || opt.Resamples*r.width > mostWeights {
+	r.wanted = opt.Resamples > 0 && parts >= 2 && parts <= manyParts
+	if !r.wanted || opt.Resamples*r.width > mostWeights {
 		return r
 	}
 	rng := rand.New(rand.NewPCG(opt.Seed, 0))
@@ -73,7 +77,8 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 	if !ok {
 		return absent(undefined)
 	}
-	e := Estimate{Value: value, Prevalent: prevalent(c, sums, value)}
+	e := Estimate{Value: value}
+	e.Prevailing, e.Prevalent = prevailing(c, sums, value)
 	parts, disagreeing := z.disagreeing()
 	if parts == 1 {
 		e.Unbounded = errOnePart
@@ -85,6 +90,13 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 		if values := r.resample(c, z); len(values) >= min(fewestResamples, r.opt.Resamples) {
 			b.resampled, b.leftOut = values, leaveOneOut(c, z, sums)
 		}
+	}
+	switch {
+	case disagreeing == 0:
+	case b.resampled != nil:
+		r.intervals.Resampled++
+	default:
+		r.intervals.Linearised++
 	}
 	e.Interval, e.Method = b.interval(r.opt.Confidence)
 	e.OneSided, _ = b.interval(eachSide(r.opt.Confidence))
@@ -129,11 +141,18 @@ func (b basis) interval(confidence float64) (interval.Interval, string) {
 // resample. All of the group are resampled or, beyond the budget, none: which
 // of two hundred appraisers comes first must not decide how it is treated.
 func (r *resampler) begin(additions int) {
+	r.additions += additions
 	cost := float64(additions) * float64(r.opt.Resamples)
 	r.affordable = r.weights != nil && cost <= r.budget
 	if r.affordable {
 		r.budget -= cost
 	}
+}
+
+// most returns how many resamples of the study are within the bounds, so that
+// every coefficient could be resampled. All groups have been begun.
+func (r *resampler) most() int {
+	return int(min(mostWeights/float64(max(1, r.width)), resamplingBudget/float64(max(1, r.additions)), MaxResamples))
 }
 
 // resample returns the coefficient of each resampled study that has one.

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 )
 
 // Warning is something to be said with the result, not a failure.
@@ -24,12 +25,14 @@ const (
 	prevalenceGap  = 0.1
 )
 
-// prevalent reports whether one category holds so many calls that a coefficient
-// is pulled down by it: AC1 of the same calls, which is not, is higher by far.
-func prevalent(c coefficient, sums []float64, value float64) bool {
+// prevailing returns the share of the commonest category of what a coefficient
+// compares, and whether it is so large that the coefficient is pulled down by
+// it: AC1 of the same calls, which is not, is higher by far. The share is 0
+// where it is not.
+func prevailing(c coefficient, sums []float64, value float64) (float64, bool) {
 	shares := c.shares(sums)
 	if len(shares) < 2 || slices.Max(shares) < prevalentShare {
-		return false
+		return 0, false
 	}
 	observed, _, _ := c.disagreements(sums)
 	var S float64
@@ -37,59 +40,153 @@ func prevalent(c coefficient, sums []float64, value float64) bool {
 		S += p * p
 	}
 	ac1 := 1 - observed/(1-(1-S)/float64(len(shares)-1))
-	return ac1-value >= prevalenceGap
+	if ac1-value < prevalenceGap {
+		return 0, false
+	}
+	return slices.Max(shares), true
 }
 
 func (s *study) warnings(a *Analysis) []Warning {
-	return slices.Concat(s.prevalence(a), s.fewResamples())
+	return slices.Concat(s.prevalence(a), s.fewResamples(), s.notResampled())
+}
+
+// enough is how many resamples the confidence asks for. The last digits of a
+// confidence such as 0.9999 are not to ask for one more.
+func (s *study) enough() int {
+	tail := (1 - s.opt.Confidence) / 2
+	return int(math.Ceil(fewestBeyond / tail * (1 - 1e-9)))
 }
 
 // fewResamples warns where the confidence asks for quantiles that so few
 // resamples do not have.
 func (s *study) fewResamples() []Warning {
-	tail := (1 - s.opt.Confidence) / 2
-	if s.weights == nil || float64(s.opt.Resamples)*tail >= fewestBeyond {
+	if s.intervals.Resampled == 0 || s.opt.Resamples >= s.enough() {
 		return nil
+	}
+	do := fmt.Sprintf("Ask for %d or more.", s.enough())
+	if s.enough() > s.most() {
+		do = fmt.Sprintf("%d would be enough, but take too long: ask for none, for linearised intervals, or for less confidence.", s.enough())
 	}
 	return []Warning{{"few_resamples", fmt.Sprintf(
-		"%d resamples are too few for limits of kappas at %.10g %%: fewer than %d lie beyond each. Ask for %.0f or more.",
-		s.opt.Resamples, 100*s.opt.Confidence, fewestBeyond, math.Ceil(fewestBeyond/tail))}}
+		"%d resamples are too few for limits of kappas at %.10g %%: fewer than %d lie beyond each. %s",
+		s.opt.Resamples, 100*s.opt.Confidence, fewestBeyond, do)}}
 }
 
-func (s *study) prevalence(a *Analysis) []Warning {
-	affected := a.Between.Fleiss.Prevalent || a.All != nil && a.All.Kappa.Prevalent
-	for i := range a.Within {
-		affected = affected || a.Within[i].Kappa.Prevalent || a.Against != nil && a.Against[i].Kappa.Prevalent
-	}
-	if !affected {
+// notResampled warns where resamples were asked for and are beyond the bounds.
+func (s *study) notResampled() []Warning {
+	most := s.most()
+	if !s.wanted || s.intervals.Linearised == 0 || s.opt.Resamples <= most {
 		return nil
 	}
-	beside := "the shares of parts"
-	if ac1 := a.Between.AC1; ac1.Absent == nil {
-		beside += fmt.Sprintf(" and AC1 (%.2f)", ac1.Value)
+	n := s.intervals.Linearised
+	text := fmt.Sprintf("The intervals of %d of the %d kappas and coefficients that were to be resampled are linearised: %d resamples of this study would take too long.",
+		n, n+s.intervals.Resampled, s.opt.Resamples)
+	if most >= max(s.enough(), fewestResamples) {
+		text += fmt.Sprintf(" Ask for %d or fewer.", most)
 	}
-	return []Warning{{"prevalence", fmt.Sprintf(
-		"%.3g %% of all calls are of one category: kappa is pulled down by that and understates the agreement. Read it beside %s.",
-		math.Floor(1000*s.commonest())/10, beside)}}
+	return []Warning{{"not_resampled", text}}
 }
 
-// commonest returns the share of all calls that the commonest category holds.
-func (s *study) commonest() float64 {
-	counts := make([]int, s.Categories())
-	calls := 0
-	for i, row := range s.rows {
-		one := make([]int, s.Categories())
-		calls += s.times[i] * tally(row, one)
-		for k, n := range one {
-			counts[k] += s.times[i] * n
+// prevalence warns of the kappas that are pulled down, each by the calls that
+// it compares itself.
+func (s *study) prevalence(a *Analysis) []Warning {
+	var found []string
+	kappas := 0
+	add := func(what string, g affected) {
+		if len(g.shares) > 0 {
+			of := ""
+			if len(found) == 0 {
+				of = " of what it compares"
+			}
+			found = append(found, fmt.Sprintf("%s (%s%s)", what, g.extent(), of))
+			kappas += len(g.shares)
 		}
 	}
-	most := 0
-	for _, n := range counts {
-		most = max(most, n)
+	var within, pairs, against, between, same, fleiss, all affected
+	for i, w := range a.Within {
+		within.add(w.Kappa, s.name(i))
 	}
-	if calls == 0 {
-		return 0
+	for _, p := range a.Between.Pairs {
+		pairs.add(p.Kappa, s.name(p.A)+" with "+s.name(p.B))
 	}
-	return float64(most) / float64(calls)
+	for i, g := range a.Against {
+		against.add(g.Kappa, s.name(i))
+	}
+	if s.Appraisers() > 1 { // else these are the same again
+		between.add(a.Between.DifferentAppraisers, "")
+		same.add(a.Between.SameAppraiser, "")
+		fleiss.add(a.Between.Fleiss, "")
+		if a.All != nil {
+			all.add(a.All.Kappa, "")
+		}
+	}
+	add("kappa within "+within.who("appraisers"), within)
+	add("kappa of "+pairs.who("pairs of appraisers"), pairs)
+	add("kappa between appraisers", between)
+	add("kappa within appraisers, all together", same)
+	add("Fleiss' kappa of all calls", fleiss)
+	add("kappa against the reference of "+against.who("appraisers"), against)
+	add("kappa against the reference of all together", all)
+	if kappas == 0 {
+		return nil
+	}
+	understates, it := "It understates", "it"
+	if kappas > 1 {
+		understates, it = "They understate", "them"
+	}
+	beside := "the shares of parts"
+	if ac1 := a.Between.AC1; len(fleiss.shares) > 0 && ac1.Absent == nil {
+		beside += fmt.Sprintf(", Fleiss' kappa also beside AC1 (%.2f)", ac1.Value)
+	}
+	return []Warning{{"prevalence", fmt.Sprintf(
+		"One category prevails and pulls down %s. %s the agreement: read %s beside %s.", list(found), understates, it, beside)}}
+}
+
+// affected are kappas of one kind that are pulled down.
+type affected struct {
+	names  []string
+	shares []float64 // of the commonest category
+}
+
+func (g *affected) add(e Estimate, name string) {
+	if e.Prevalent {
+		g.names = append(g.names, name)
+		g.shares = append(g.shares, e.Prevailing)
+	}
+}
+
+// who names those affected, or says how many there are.
+func (g affected) who(kind string) string {
+	const most = 4
+	if len(g.names) > most {
+		return fmt.Sprintf("%d %s", len(g.names), kind)
+	}
+	return list(g.names)
+}
+
+// extent is the share of the commonest category, or from where to where it
+// goes, cut down to a tenth of a percent: 99.96 % are not all.
+func (g affected) extent() string {
+	percent := func(x float64) float64 { return math.Floor(1000*x+1e-9) / 10 }
+	least, largest := percent(slices.Min(g.shares)), percent(slices.Max(g.shares))
+	if least == largest {
+		return fmt.Sprintf("%.3g %%", least)
+	}
+	return fmt.Sprintf("%.3g to %.3g %%", least, largest)
+}
+
+// name is an appraiser's name, or number where it has none.
+func (s *study) name(appraiser int) string {
+	if appraiser < len(s.opt.Names) {
+		return s.opt.Names[appraiser]
+	}
+	return fmt.Sprintf("appraiser %d", appraiser+1)
+}
+
+func list(names []string) string {
+	if len(names) < 2 {
+		return strings.Join(names, "")
+	}
+	last := len(names) - 1
+	return strings.Join(names[:last], ", ") + " and " + names[last]
 }

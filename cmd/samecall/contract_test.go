@@ -6,6 +6,7 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"regexp"
 	"strings"
 	"testing"
 
@@ -413,5 +414,43 @@ func TestContractIsDocumented(t *testing.T) {
 	}
 	for key := range undocumented {
 		t.Errorf("docs/json.md does not explain the key `%s`", key)
+	}
+}
+
+// warningCode is where the code of a warning or a note stands in the source.
+var warningCode = regexp.MustCompile(`(?:Note\{+|Warning\{+|\.note\()"([a-z_]+)"`)
+
+// Every code that a warning can have is in the document for programs.
+func TestWarningCodesAreDocumented(t *testing.T) {
+	read := func(file string) string {
+		data, err := os.ReadFile(file)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return string(data)
+	}
+	_, list, _ := strings.Cut(read("../../docs/json.md"), "\n## `warnings`\n")
+	list, _, _ = strings.Cut(list, "\n## ")
+	found := make(map[string]bool)
+	for _, pattern := range []string{"../../agreement/*.go", "*.go", "internal/*/*.go"} {
+		files, err := filepath.Glob(pattern)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, file := range files {
+			if strings.HasSuffix(file, "_test.go") {
+				continue
+			}
+			for _, m := range warningCode.FindAllStringSubmatch(read(file), -1) {
+				if found[m[1]] = true; !strings.Contains(list, "`"+m[1]+"`") {
+					t.Errorf("%s gives the warning %s, which docs/json.md does not list", file, m[1])
+				}
+			}
+		}
+	}
+	for _, m := range regexp.MustCompile("`([a-z_]+)`").FindAllStringSubmatch(list, -1) {
+		if !found[m[1]] && m[1] != "code" && m[1] != "text" {
+			t.Errorf("docs/json.md lists the warning %s, which nothing gives", m[1])
+		}
 	}
 }

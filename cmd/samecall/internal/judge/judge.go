@@ -36,6 +36,7 @@ type Warning struct {
 // Run computes the result of a study.
 func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, error) {
 	opt.Ordered = len(s.Settings.Order) > 0
+	opt.Names = s.Appraisers
 	a, err := agreement.Analyse(s.Ratings, opt)
 	if err != nil {
 		return nil, err

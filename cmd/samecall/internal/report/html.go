@@ -282,14 +282,10 @@ func methods(r *Record) []string {
 	out := []string{
 		fmt.Sprintf("The part is the sampled unit: several calls on one part are not several parts. All intervals are at %s confidence.", format.Confidence(r.Options.Confidence)),
 		"Shares of parts: exact binomial limits (Clopper & Pearson, Biometrika 26, 1934).",
-		"Miss and false-alarm rates: exact limits on the effective number of calls (Korn & Graubard, Survey Methodology 24, 1998); without an event, on the number of parts.",
+		"Miss and false-alarm rates: exact limits on the effective number of calls (Korn & Graubard, Survey Methodology 24, 1998); without an event, on the number of parts; and never surer than the number of parts allows.",
 		"Kappa: Cohen (1960) for pairs and against the reference, Fleiss (1971) for more calls, in Gwet's form (2014) where calls are missing; AC1: Gwet (2008); alpha: Krippendorff.",
 	}
-	if r.Options.Resamples > 0 {
-		out = append(out, fmt.Sprintf("Intervals of kappas: %d resamples of whole parts, bias-corrected and accelerated (Efron, 1987), never narrower than the exact limits of the share of parts that disagree. The seed is %d.", r.Options.Resamples, r.Options.Seed))
-	} else {
-		out = append(out, "Intervals of kappas: standard errors linearised over parts, never narrower than the exact limits of the share of parts that disagree.")
-	}
+	out = append(out, intervalsOfKappas(r))
 	if r.Agreement.All != nil {
 		out = append(out, "Direction of errors: exact test of McNemar (1947) with two categories; Bowker (1948), Stuart (1955) and Maxwell (1970) with more. Detection indices with the log-linear correction of Hautus (1995).")
 	}
@@ -300,4 +296,24 @@ func methods(r *Record) []string {
 		out = append(out, "Grey zone: unanimous zone and signal detection as in the Measurement Systems Analysis reference manual, 4th ed. 2010, chapter III C; acceptance curve by maximum likelihood with profile-likelihood intervals; where calls are separated, bias-reduced (Firth, 1993).")
 	}
 	return append(out, "Criteria: l"+strings.TrimPrefix(levelsFrom(r), "L")+" Causes are read from the pattern of the errors by fixed rules; they are leads, not proofs.")
+}
+
+// intervalsOfKappas says how they were found.
+func intervalsOfKappas(r *Record) string {
+	const floor = "the exact limits of the share of parts that disagree"
+	n := r.Agreement.Intervals
+	resampled := fmt.Sprintf("%d resamples of whole parts, bias-corrected and accelerated (Efron, 1987)", r.Options.Resamples)
+	seed := fmt.Sprintf(" The seed is %d.", r.Options.Seed)
+	const linearised = "standard errors linearised over parts"
+	how := "from " + floor + "."
+	switch {
+	case n.Resampled > 0 && n.Linearised > 0:
+		how = fmt.Sprintf("%s, for %s of %s kappas and coefficients; for the others %s; never narrower than %s.%s",
+			resampled, format.Count(n.Resampled), format.Count(n.Resampled+n.Linearised), linearised, floor, seed)
+	case n.Resampled > 0:
+		how = resampled + ", never narrower than " + floor + "." + seed
+	case n.Linearised > 0:
+		how = linearised + ", never narrower than " + floor + "."
+	}
+	return "Intervals of kappas: " + how
 }

@@ -88,7 +88,7 @@ func studyTable(r *Record) Table {
 	add("reference", d.Reference)
 	add("verdict", r.Verdict.Overall.String())
 	add("confidence", format.Confidence(r.Options.Confidence))
-	add("resamples", fmt.Sprintf("%d, seed %d", r.Options.Resamples, r.Options.Seed))
+	add("resamples", resamplesText(r))
 	add("pairing of trials", r.Options.Pairing.String())
 	if r.Zone != nil && r.Zone.Curves != nil {
 		sigma := "one σ for both limits"
@@ -104,6 +104,22 @@ func studyTable(r *Record) Table {
 	add("samecall", r.Version)
 	add("computed by", r.Command)
 	return t
+}
+
+// resamplesText says how many resamples the intervals of kappas rest on: those
+// that were drawn, not those that were asked for.
+func resamplesText(r *Record) string {
+	n := r.Agreement.Intervals
+	drawn := fmt.Sprintf("%d, seed %d", r.Options.Resamples, r.Options.Seed)
+	switch {
+	case n.Resampled > 0 && n.Linearised > 0:
+		return fmt.Sprintf("%s, for %s of %s kappas and coefficients; none for the others (linearised)", drawn, format.Count(n.Resampled), format.Count(n.Resampled+n.Linearised))
+	case n.Resampled > 0:
+		return drawn
+	case n.Linearised > 0:
+		return "none (linearised)"
+	}
+	return "none (no interval rests on them)"
 }
 
 // causesTable lists causes and what to do next.
