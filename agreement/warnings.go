@@ -90,19 +90,7 @@ func (s *study) notResampled() []Warning {
 // prevalence warns of the kappas that are pulled down, each by the calls that
 // it compares itself.
 func (s *study) prevalence(a *Analysis) []Warning {
-	var found []string
-	kappas := 0
-	add := func(what string, g affected) {
-		if len(g.shares) > 0 {
-			of := ""
-			if len(found) == 0 {
-				of = " of what it compares"
-			}
-			found = append(found, fmt.Sprintf("%s (%s%s)", what, g.extent(), of))
-			kappas += len(g.shares)
-		}
-	}
-	var within, pairs, against, between, same, fleiss, all affected
+	var within, pairs, against affected
 	for i, w := range a.Within {
 		within.add(w.Kappa, s.name(i))
 	}
@@ -112,34 +100,44 @@ func (s *study) prevalence(a *Analysis) []Warning {
 	for i, g := range a.Against {
 		against.add(g.Kappa, s.name(i))
 	}
+	var together affected
 	if s.Appraisers() > 1 { // else these are the same again
-		between.add(a.Between.DifferentAppraisers, "")
-		same.add(a.Between.SameAppraiser, "")
-		fleiss.add(a.Between.Fleiss, "")
+		together.add(a.Between.DifferentAppraisers, "")
+		together.add(a.Between.SameAppraiser, "")
+		together.add(a.Between.Fleiss, "")
 		if a.All != nil {
-			all.add(a.All.Kappa, "")
+			together.add(a.All.Kappa, "")
 		}
 	}
-	add("kappa within "+within.who("appraisers"), within)
-	add("kappa of "+pairs.who("pairs of appraisers"), pairs)
-	add("kappa between appraisers", between)
-	add("kappa within appraisers, all together", same)
-	add("Fleiss' kappa of all calls", fleiss)
-	add("kappa against the reference of "+against.who("appraisers"), against)
-	add("kappa against the reference of all together", all)
-	if kappas == 0 {
+	var kappas []string
+	for _, g := range []struct {
+		affected
+		of        int
+		each, all string
+	}{
+		{within, len(a.Within), "within ", "within appraisers"},
+		{pairs, len(a.Between.Pairs), "of ", "of each two appraisers"},
+		{against, len(a.Against), "against the reference of ", "against the reference"},
+		{together, len(together.names), "", "of all appraisers together"},
+	} {
+		switch n := len(g.names); {
+		case n == 0:
+		case n == g.of && (n > 1 || g.each == ""):
+			kappas = append(kappas, g.all)
+		default:
+			kappas = append(kappas, g.each+g.who())
+		}
+	}
+	if len(kappas) == 0 {
 		return nil
 	}
-	understates, it := "It understates", "it"
-	if kappas > 1 {
-		understates, it = "They understate", "them"
-	}
 	beside := "the shares of parts"
-	if ac1 := a.Between.AC1; len(fleiss.shares) > 0 && ac1.Absent == nil {
-		beside += fmt.Sprintf(", Fleiss' kappa also beside AC1 (%.2f)", ac1.Value)
+	if ac1 := a.Between.AC1; a.Between.Fleiss.Prevalent && ac1.Absent == nil {
+		beside += fmt.Sprintf(" and AC1 (%.2f)", ac1.Value)
 	}
+	shares := affected{shares: slices.Concat(within.shares, pairs.shares, against.shares, together.shares)}
 	return []Warning{{"prevalence", fmt.Sprintf(
-		"One category prevails and pulls down %s. %s the agreement: read %s beside %s.", list(found), understates, it, beside)}}
+		"One category holds %s of the calls compared and pulls down kappa %s: it understates the agreement. Read it beside %s.", shares.extent(), list(kappas), beside)}}
 }
 
 // affected are kappas of one kind that are pulled down.
@@ -156,10 +154,10 @@ func (g *affected) add(e Estimate, name string) {
 }
 
 // who names those affected, or says how many there are.
-func (g affected) who(kind string) string {
+func (g affected) who() string {
 	const most = 4
 	if len(g.names) > most {
-		return fmt.Sprintf("%d %s", len(g.names), kind)
+		return fmt.Sprintf("%d of them", len(g.names))
 	}
 	return list(g.names)
 }

@@ -51,7 +51,7 @@ func TestPrevalenceOfOneAppraiser(t *testing.T) {
 			t.Errorf("%s: kappa %v is not marked", name, e.Value)
 		}
 	}
-	if !has(a, "prevalence", "pulls down kappa within appraiser 1 (96 % of what it compares) and kappa against the reference of appraiser 1 (97 %). They understate the agreement: read them beside the shares of parts.") {
+	if !has(a, "prevalence", "One category holds 96 to 97 % of the calls compared and pulls down kappa within appraiser 1 and against the reference of appraiser 1: it understates the agreement. Read it beside the shares of parts.") {
 		t.Errorf("%v", a.Warnings)
 	}
 	even := analyse(t, onePassFail(t, 100, 104, 8), nil)
@@ -108,7 +108,7 @@ func pairOfAppraisers(t *testing.T, trials int, rows map[string]int) *Ratings {
 func TestPrevalenceTellsWhichKappas(t *testing.T) {
 	r := pairOfAppraisers(t, 2, map[string]int{"0000": 2, "0100": 4, "1100": 54, "1111": 40})
 	a := analyse(t, r, func(o *Options) { o.Names = []string{"Ada", "Ben"} })
-	const want = "One category prevails and pulls down kappa within Ada (96 % of what it compares). It understates the agreement: read it beside the shares of parts."
+	const want = "One category holds 96 % of the calls compared and pulls down kappa within Ada: it understates the agreement. Read it beside the shares of parts."
 	if len(a.Warnings) != 1 || a.Warnings[0].Text != want {
 		t.Errorf("%v, want %s", a.Warnings, want)
 	}
@@ -128,12 +128,12 @@ func TestPrevalenceBetweenAppraisersAlone(t *testing.T) {
 	if a.Between.Fleiss.Prevalent || !a.Between.DifferentAppraisers.Prevalent {
 		t.Fatal("the study does not show what it is to show")
 	}
-	if !has(a, "prevalence", "kappa of appraiser 1 with appraiser 2 (82 % of what it compares) and kappa between appraisers (82 %). They") || has(a, "prevalence", "AC1") {
+	if !has(a, "prevalence", "One category holds 82 % of the calls compared and pulls down kappa of appraiser 1 with appraiser 2 and of all appraisers together:") || has(a, "prevalence", "AC1") {
 		t.Errorf("%v", a.Warnings)
 	}
 	// With one trial, Fleiss' kappa is as well: all its pairs are of both.
 	r = pairOfAppraisers(t, 1, map[string]int{"00": 14, "01": 4, "10": 4, "11": 78})
-	if a := analyse(t, r, nil); !has(a, "prevalence", "Fleiss' kappa of all calls (82 %)") || !has(a, "prevalence", fmt.Sprintf("Fleiss' kappa also beside AC1 (%.2f)", a.Between.AC1.Value)) {
+	if a := analyse(t, r, nil); !has(a, "prevalence", fmt.Sprintf("Read it beside the shares of parts and AC1 (%.2f).", a.Between.AC1.Value)) {
 		t.Errorf("%v", a.Warnings)
 	}
 }
@@ -143,7 +143,7 @@ func TestManyAppraisersWithPrevalence(t *testing.T) {
 	for i, share := range []float64{0.9, 0.9996, 0.85, 0.85, 0.85} {
 		g.add(Estimate{Prevalent: true, Prevailing: share}, string(rune('A'+i)))
 	}
-	if who, extent := g.who("appraisers"), g.extent(); who != "5 appraisers" || extent != "85 to 99.9 %" {
+	if who, extent := g.who(), g.extent(); who != "5 of them" || extent != "85 to 99.9 %" {
 		t.Errorf("%s, %s", who, extent)
 	}
 }
@@ -194,7 +194,7 @@ func TestIntervalsAreCounted(t *testing.T) {
 		t.Errorf("nothing disagrees: %+v", a.Intervals)
 	}
 	// Nor is one of a kappa that is absent since the reference is of one category.
-	r := onePassFail(t, 0, 40, 4)
+	r := onePassFail(t, 0, 40, 24)
 	if a := analyse(t, r, nil); a.Intervals != (Intervals{2, 0}) || a.All.Kappa.Absent == nil {
 		t.Errorf("one reference category: %+v", a.Intervals)
 	}

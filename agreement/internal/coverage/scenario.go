@@ -8,11 +8,13 @@ import (
 	"samecall/agreement"
 )
 
-// scenario is a kind of study. One part in two is bad, rounded down.
+// scenario is a kind of study. One part in two is bad, rounded down, unless few
+// says how many.
 type scenario struct {
 	parts, appraisers, trials int
 	miss, falseAlarm          float64 // true rates
 	correlation               float64 // of two calls on one part being wrong
+	few                       int     // bad parts
 }
 
 // difficulty is the distribution over parts of the probability that a call
@@ -67,7 +69,12 @@ type truth struct {
 	kappaWithin, kappaPair, against float64
 }
 
-func (s scenario) bad() int { return s.parts / 2 }
+func (s scenario) bad() int {
+	if s.few > 0 {
+		return s.few
+	}
+	return s.parts / 2
+}
 
 func (s scenario) truth() truth {
 	bad := difficulty{s.miss, s.correlation}

@@ -135,9 +135,15 @@ func scenarios(quick bool) []scenario {
 			}
 			for _, miss := range []float64{0.01, 0.05, 0.15} {
 				for _, correlation := range []float64{0, 0.3} {
-					all = append(all, scenario{parts, at[0], at[1], miss, miss, correlation})
+					all = append(all, scenario{parts: parts, appraisers: at[0], trials: at[1], miss: miss, falseAlarm: miss, correlation: correlation})
 				}
 			}
+		}
+	}
+	// Few bad parts: one category prevails.
+	for _, size := range [][2]int{{60, 6}, {200, 6}} {
+		for _, miss := range []float64{0.01, 0.05, 0.15} {
+			all = append(all, scenario{parts: size[0], few: size[1], appraisers: 3, trials: 3, miss: miss, falseAlarm: miss, correlation: 0.3})
 		}
 	}
 	return all
@@ -174,7 +180,11 @@ func write(w io.Writer, rows []row, chosen []int) {
 	}
 	fmt.Fprintln(w)
 	for _, r := range rows {
-		fmt.Fprintf(w, "| %d | %d × %d | %g %% | %g |", r.parts, r.appraisers, r.trials, 100*r.miss, r.correlation)
+		parts := fmt.Sprint(r.parts)
+		if r.few > 0 {
+			parts += fmt.Sprintf(", %d bad", r.few)
+		}
+		fmt.Fprintf(w, "| %s | %d × %d | %g %% | %g |", parts, r.appraisers, r.trials, 100*r.miss, r.correlation)
 		for _, f := range chosen {
 			t := r.figures[f]
 			fmt.Fprintf(w, " %s", mark(t.hold, t.have))

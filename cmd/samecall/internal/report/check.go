@@ -65,15 +65,7 @@ func holds(s *study.Study, sum study.Summary) [][]Cell {
 		}
 		add("parts by reference", strings.Join(by, ", "))
 	}
-	reference := map[study.ReferenceKind]string{
-		study.Given:   "given in the calls file",
-		study.Derived: "derived from values and limits",
-		study.None:    "none",
-	}[s.Reference]
-	if n := s.DerivedParts; n > 0 {
-		reference += ", of " + format.Counted(n, "part") + " derived from value and limits"
-	}
-	add("reference", reference)
+	add("reference", referenceText(s))
 	categories := make([]string, len(s.Categories))
 	for k, c := range s.Categories {
 		categories[k] = c
@@ -167,4 +159,17 @@ func nearTable(v *study.ValueSummary, unit string) Table {
 	}
 	t.Note = "Only parts near a limit show where the calls turn; parts far away are called alike by anybody."
 	return t
+}
+
+// referenceText says where the reference is from.
+func referenceText(s *study.Study) string {
+	text := map[study.ReferenceKind]string{
+		study.Given:   "given in the calls file",
+		study.Derived: "derived from values and limits; a value on a limit is inside",
+		study.None:    "none",
+	}[s.Reference]
+	if n := s.DerivedParts; n > 0 {
+		text += ", of " + format.Counted(n, "part") + " derived from value and limits"
+	}
+	return text
 }

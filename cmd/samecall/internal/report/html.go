@@ -302,7 +302,7 @@ func methods(r *Record) []string {
 func intervalsOfKappas(r *Record) string {
 	const floor = "the exact limits of the share of parts that disagree"
 	n := r.Agreement.Intervals
-	resampled := fmt.Sprintf("%d resamples of whole parts, bias-corrected and accelerated (Efron, 1987)", r.Options.Resamples)
+	resampled := fmt.Sprintf("%d resamples of whole parts, bias-corrected and accelerated (Efron, 1987), at a confidence expanded for few parts (Hesterberg, 2015)", r.Options.Resamples)
 	seed := fmt.Sprintf(" The seed is %d.", r.Options.Seed)
 	const linearised = "standard errors linearised over parts"
 	how := "from " + floor + "."

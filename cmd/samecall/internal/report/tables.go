@@ -85,7 +85,7 @@ func studyTable(r *Record) Table {
 	add("accepted", strings.Join(d.Accept, ", "))
 	add("words that accept", strings.Join(set.Accept, ", "))
 	add("words that reject", strings.Join(set.Reject, ", "))
-	add("reference", d.Reference)
+	add("reference", referenceText(r.Study))
 	add("verdict", r.Verdict.Overall.String())
 	add("confidence", format.Confidence(r.Options.Confidence))
 	add("resamples", resamplesText(r))
@@ -148,7 +148,7 @@ func causesTable(r *Record) Table {
 func allNotes(r *Record) []string {
 	var out []string
 	if r.Zone != nil {
-		out = append(out, zoneNotes(r)...)
+		out = append(out, zoneNotes(r, false)...)
 	}
 	for _, w := range r.Warnings {
 		out = append(out, w.Text)
@@ -469,7 +469,7 @@ func directionTable(r *Record) Table {
 		Title:   "Do the errors lean one way?",
 		Keys:    2,
 		Columns: []Column{{Name: "appraiser"}, {Name: "test"}, {Name: "statistic", Numbers: true}, {Name: "degrees of freedom", Numbers: true}, {Name: "p", Numbers: true}},
-		Note:    "A small p: the calls differ from the reference more often one way than the other. The tests take calls as independent; with several calls on a part p is too small.",
+		Note:    "A small p: the calls differ from the reference more often one way than the other. Statistic of McNemar's test: the wrong calls of the rarer way, of all wrong calls. The tests take calls as independent; with several calls on a part p is too small.",
 	}
 	add := func(a int, name string, test *agreement.Test) {
 		if test == nil {
@@ -479,7 +479,12 @@ func directionTable(r *Record) Table {
 		if test.DF > 0 {
 			df = intCell(test.DF)
 		}
-		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), say(name), valueCell(fmt.Sprintf("%.2f", test.Statistic), test.Statistic), df, valueCell(format.Probability(test.P), test.P)})
+		statistic := fmt.Sprintf("%.2f", test.Statistic)
+		if test.DF == 0 { // the exact test has counts
+			table := r.Agreement.Against[a].Table
+			statistic = fmt.Sprintf("%.0f of %d", test.Statistic, table[0][1]+table[1][0])
+		}
+		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), say(name), valueCell(statistic, test.Statistic), df, valueCell(format.Probability(test.P), test.P)})
 	}
 	for a, g := range r.Agreement.Against {
 		add(a, "McNemar, exact", g.McNemar)

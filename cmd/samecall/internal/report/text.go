@@ -254,7 +254,7 @@ func (p *printer) zone(r *Record) {
 	} else {
 		p.line("")
 	}
-	for _, n := range zoneNotes(r) {
+	for _, n := range zoneNotes(r, true) {
 		p.wrap(n, "")
 	}
 }

@@ -60,8 +60,9 @@ func zoneTable(r *Record) Table {
 // is, from above and from below.
 func widthKnown(l *signal.LimitFit) bool { return informs(l) && l.Sigma.HasLower }
 
-// zoneNotes says in sentences what the table of the grey zone cannot.
-func zoneNotes(r *Record) []string {
+// zoneNotes says in sentences what the table of the grey zone cannot. On the
+// screen it points at the command that shows more; a record says it.
+func zoneNotes(r *Record, screen bool) []string {
 	z := r.Zone
 	s := r.Scale()
 	var out []string
@@ -76,7 +77,7 @@ func zoneNotes(r *Record) []string {
 		}
 		for _, i := range c.Outliers {
 			p := c.Parts[i]
-			out = append(out, fmt.Sprintf("Part %s at %s does not fit the curve: accepted in %d of %d calls where %s is expected. See zone for the fit without it.",
+			out = append(out, fmt.Sprintf("Part %s at %s does not fit the curve: accepted in %d of %d calls where %s is expected. The command samecall zone shows the fit without it.",
 				p.Name, s.Value(p.Value), p.Accepted, p.Calls, format.Percent(p.Fitted)))
 		}
 		if c.LackOfFit.Applied {
@@ -88,11 +89,19 @@ func zoneNotes(r *Record) []string {
 		var widths []string
 		for _, l := range []*signal.Zone{u.Lower, u.Upper} {
 			if l != nil && l.Found {
-				widths = append(widths, s.Value(l.Width)+" wide at the "+l.Side.String()+" limit")
+				width := s.Value(l.Width) + " wide at the " + l.Side.String() + " limit"
+				if !screen {
+					width += fmt.Sprintf(" (%s to %s)", s.Value(min(l.Reject, l.Accept)), s.Value(max(l.Reject, l.Accept)))
+				}
+				widths = append(widths, width)
 			}
 		}
-		out = append(out, fmt.Sprintf("Unanimous zone: %s. As %.2f σ, %%GRR is %.0f %% of the tolerance: %s by common practice (below 10 good, to 30 conditional). See zone.",
-			strings.Join(widths, ", "), u.Spread, u.PercentGRR, signal.BandGRR(u.PercentGRR)))
+		note := fmt.Sprintf("Unanimous zone: %s. As %.2f σ, %%GRR is %.0f %% of the tolerance: %s by common practice (below 10 good, to 30 conditional).",
+			strings.Join(widths, ", "), u.Spread, u.PercentGRR, signal.BandGRR(u.PercentGRR))
+		if screen {
+			note += " See samecall zone."
+		}
+		out = append(out, note)
 	}
 	return out
 }

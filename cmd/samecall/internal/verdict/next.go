@@ -137,6 +137,9 @@ func shows(c Criterion, kind string, confidence float64) string {
 	return fmt.Sprintf(". %s without an error show a %s of at most %s", format.Counted(n, kind), c.Label(), c.Level(c.Levels[0]))
 }
 
+// scarcest are the kinds of parts that figures rest on, the scarcest first.
+var scarcest = []string{"bad part", "good part", "part"}
+
 // moreParts says how many parts more would settle what is open.
 func moreParts(r *judge.Result, v *Verdict) string {
 	if v.Overall == Reject {
@@ -155,7 +158,7 @@ func moreParts(r *judge.Result, v *Verdict) string {
 			}
 		}
 	}
-	for _, kind := range []string{"bad part", "good part", "part"} {
+	for _, kind := range scarcest {
 		c, who := need[kind], some(whose[kind])
 		switch {
 		case c.More == 0:
@@ -189,14 +192,18 @@ func settleReject(r *judge.Result, v *Verdict) string {
 }
 
 // repeatStudy says what a new study takes to show the miss rate, where the
-// present one has too few bad parts for that.
+// present one has too few bad parts for that. Where nothing was found that
+// could be corrected and the rejection is open, it is too few that it is about.
 func repeatStudy(r *judge.Result, v *Verdict) string {
-	const again = "After the correction, repeat the study."
 	c := v.Appraisers[0].criterion(Miss)
 	for _, a := range v.Appraisers {
 		if other := a.criterion(Miss); other.Parts < c.Parts {
 			c = other
 		}
+	}
+	again := "After the correction, repeat the study."
+	if contradicted := func(g ground) bool { return g.c.Evidence == Contradicted }; c.Parts > 0 && len(v.Causes) == 0 && !slices.ContainsFunc(v.grounds(), contradicted) {
+		again = fmt.Sprintf("The rejection is open, and rests on %s: repeat the study with more.", format.Counted(c.Parts, "bad part"))
 	}
 	accept, conditional := withoutError(c.Levels[0], r.Options.Confidence), withoutError(c.Levels[1], r.Options.Confidence)
 	switch {

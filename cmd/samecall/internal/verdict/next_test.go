@@ -35,7 +35,7 @@ func TestNext(t *testing.T) {
 		{"no bad part, with limits", "part,reference,value,A-1,A-2\n1,1,9,1,1\n2,1,8,1,1\n", "upper = 10\n",
 			"The study holds no bad part. Add bad parts, some of them close to the limits.", nil, nil},
 		{"two decide, by different parts", "part,reference,A-1,A-2,B-1,B-2,C-1,C-2\n1,1,1,1,1,1,1,1\n2,0,1,1,0,0,0,0\n3,1,1,1,0,0,1,1\n4,0,0,0,1,1,0,0\n5,1,1,1,1,1,1,1\n", "",
-			"", []string{"Go through the wrong calls with A (bad parts accepted: 2).", "on which they differ: 2, 3 and 4."}, []string{"with C "}},
+			"", []string{"Go through the wrong calls with A (bad parts accepted: 2).", "on which they differ every time: 2, 3 and 4."}, []string{"with C "}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			_, v := decide(t, calls(c.csv, c.toml))
@@ -185,4 +185,40 @@ func TestFewGradesDoNotLean(t *testing.T) {
 			t.Errorf("%d wrong: %v", wrong, v.Causes)
 		}
 	}
+}
+
+// A rejection that rests on a handful of bad parts, with nothing found to
+// correct, asks for more of them; and what an acceptance lacks most is what the
+// step asks for, bad parts before all others.
+func TestFewBadParts(t *testing.T) {
+	study := func(misses, alarms int) string {
+		var b strings.Builder
+		b.WriteString("part,reference,A-1,A-2\n")
+		for p := range 200 {
+			ref := btoi(p >= 6)
+			first := ref
+			if p < misses || p >= 6 && p < 6+alarms {
+				first = 1 - ref
+			}
+			fmt.Fprintf(&b, "%d,%d,%d,%d\n", p, ref, first, ref)
+		}
+		return b.String()
+	}
+	_, v := decide(t, calls(study(1, 0), ""))
+	if at(v.Next, "The rejection is open, and rests on 6 bad parts: repeat the study with more. It takes 59 bad parts") < 0 || at(v.Next, "After the correction") >= 0 {
+		t.Errorf("%q", v.Next)
+	}
+	_, v = decide(t, calls(study(0, 1), ""))
+	if at(v.Next, "To show that the miss rate of A") < 0 || !slices.ContainsFunc(append(v.Reasons, v.Carry...), func(s string) bool {
+		return strings.Contains(s, "Furthest from being shown is that the miss rate of A")
+	}) {
+		t.Errorf("%q\n%q %q", v.Next, v.Reasons, v.Carry)
+	}
+}
+
+func btoi(b bool) int {
+	if b {
+		return 1
+	}
+	return 0
 }

@@ -34,11 +34,11 @@ func apart(f *finder) []Cause {
 		differ = f.alikeText(b.Share)
 	}
 	text := fmt.Sprintf("Each appraiser repeats the same calls, kappa within appraisers %s, but they differ from each other, %s.", format.Kappa(same), differ)
-	do := "Have all appraisers call together, beside one standard, the parts on which they differ"
+	do := "Have all appraisers call together, beside one standard, the parts on which they differ every time"
 	who := Apart(f.Result)
 	if who != Everyone {
 		text += fmt.Sprintf(" %s stands apart; the others agree with each other.", f.name(who))
-		do = fmt.Sprintf("Compare the calls of %s with those of the others, beside one standard, on the parts on which they differ", f.name(who))
+		do = fmt.Sprintf("Compare the calls of %s with those of the others, beside one standard, on the parts on which they differ every time", f.name(who))
 	}
 	if parts := f.differing(); len(parts) > 0 {
 		do += ": " + f.list(parts)
