@@ -580,9 +580,11 @@ func criteriaTable(r *Record) Table {
 		}
 		t.Rows = append(t.Rows, []Cell{say(name), say(figure), found, valueCell(c.Level(c.Levels[0]), c.Levels[0]), valueCell(c.Level(c.Levels[1]), c.Levels[1]), say(c.Met.String()), say(evidence), say(settle)})
 	}
-	for _, a := range r.Verdict.Appraisers {
-		for _, c := range a.Criteria {
-			add(a.Name, c.Label(), c)
+	if r.Agreement.All != nil { // else nothing is known of any of these
+		for _, a := range r.Verdict.Appraisers {
+			for _, c := range a.Criteria {
+				add(a.Name, c.Label(), c)
+			}
 		}
 	}
 	if b := r.Verdict.Between; b != nil {

@@ -194,7 +194,11 @@ func facts(r *Record) string {
 	if d.Missing > 0 {
 		calls += fmt.Sprintf(", %s missing", format.Count(d.Missing))
 	}
-	out = append(out, calls, "reference "+d.Reference)
+	reference := "reference " + d.Reference
+	if d.Reference == study.None.String() {
+		reference = "no reference"
+	}
+	out = append(out, calls, reference)
 	return strings.Join(out, " · ")
 }
 
