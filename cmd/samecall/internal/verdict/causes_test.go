@@ -206,3 +206,39 @@ func TestLeaningGradesDoNotHideMixedParts(t *testing.T) {
 		t.Errorf("%q: %+v", got, v.Causes)
 	}
 }
+
+// In a study too small to show it of one, the appraisers together do not repeat
+// their calls.
+func TestTogetherInconsistent(t *testing.T) {
+	study := func(mixed int) string {
+		var b strings.Builder
+		b.WriteString("part,A-1,A-2,B-1,B-2,C-1,C-2,D-1,D-2\n")
+		for p := range 24 {
+			fmt.Fprintf(&b, "%d", p+1)
+			for a := range 4 {
+				first := p % 2
+				second := first
+				if (p+6*a)%24 < mixed {
+					second = 1 - first
+				}
+				fmt.Fprintf(&b, ",%d,%d", first, second)
+			}
+			b.WriteString("\n")
+		}
+		return b.String()
+	}
+	// Of 24 parts each is mixed on six: kappa 1 − (6/24)/(1/2) = 0.50.
+	r, v := decide(t, calls(study(6), ""))
+	for a, w := range r.Agreement.Within {
+		if w.Kappa.OneSided.Upper < 0.75 {
+			t.Fatalf("appraiser %d alone shows it: %v", a, w.Kappa.OneSided)
+		}
+	}
+	if got := found(v); got != "inconsistent:everyone" || !strings.HasPrefix(v.Causes[0].Text, "The appraisers together do not repeat their own calls: kappa within appraisers is 0.50") {
+		t.Errorf("%s: %+v", got, v.Causes)
+	}
+	// Mixed on four, 0.67: not even together does the study show it.
+	if r, v := decide(t, calls(study(4), "")); found(v) != "" || r.Agreement.Between.SameAppraiser.Value >= 0.75 {
+		t.Errorf("%+v", v.Causes)
+	}
+}

@@ -49,6 +49,9 @@ func inconsistent(f *finder) []Cause {
 				f.name(a), f.list(w.Mixed))),
 		})
 	}
+	if len(all) == 0 {
+		return f.togetherInconsistent()
+	}
 	if !f.most(len(all)) {
 		return out
 	}
@@ -60,6 +63,27 @@ func inconsistent(f *finder) []Cause {
 		Code: codeInconsistent, Appraiser: Everyone,
 		Text: fmt.Sprintf("%d of %d appraisers do not repeat their own calls (%s). That points to the method or the gauge, not to one person.%s",
 			len(all), len(f.Study.Appraisers), why, f.zoneWidth()),
+		Do: stop("Look at the method first: gauge and fixture, lighting, the written standard for the call. " + f.mixedForMany()),
+	}}
+}
+
+// togetherInconsistent: no appraiser's own trials show it, but those of all
+// together do.
+func (f *finder) togetherInconsistent() []Cause {
+	k, level := f.Agreement.Between.SameAppraiser, f.levels[Kappa][0]
+	n := len(f.Study.Appraisers)
+	if n < 2 || k.Absent != nil || k.Prevalent || k.Unbounded != nil || side(k.OneSided.Upper, level) >= 0 {
+		return nil
+	}
+	for a := range n { // these have a cause of their own
+		if f.has(a, codeKinds, codeGrades) {
+			return nil
+		}
+	}
+	return []Cause{{
+		Code: codeInconsistent, Appraiser: Everyone,
+		Text: fmt.Sprintf("The appraisers together do not repeat their own calls: kappa within appraisers is %s. Of none alone does the study show it.%s",
+			below(k, level), f.zoneWidth()),
 		Do: stop("Look at the method first: gauge and fixture, lighting, the written standard for the call. " + f.mixedForMany()),
 	}}
 }
