@@ -96,27 +96,24 @@ func (s *study) against(calls func(row []Category) []Category, mixed []int) Agai
 		}
 	}
 	kappa := func(w Weights) Estimate {
-		before := s.intervals // an absent kappa counts in none
-		e := s.cross(w, out.Table, pairs, nothing, errOneSided)
-		if e.Absent == nil && out.Table.columnsUsed() < 2 {
-			s.intervals = before
+		if out.Table.oneColumn() {
+			s.progress()
 			return absent(errOneReference) // it would be 0, whatever the calls are
 		}
-		return e
+		return s.cross(w, out.Table, pairs, nothing, errOneSided)
 	}
 	out.Kappa = kappa(Nominal)
 	if s.Categories() > 2 {
 		for k := range s.Categories() {
 			only := out.Table.only(k)
-			before := s.intervals
-			e := s.cross(Nominal, only, func(i int, add func(j, k Category)) {
-				pairs(i, func(j, ref Category) { add(Category(is(int(j), k)), Category(is(int(ref), k))) })
-			}, nothing, errCategoryUnused)
-			if e.Absent == nil && only.columnsUsed() < 2 {
-				s.intervals = before
-				e = absent(errOneReferenceCategory)
+			if only.oneColumn() {
+				s.progress()
+				out.Categories = append(out.Categories, absent(errOneReferenceCategory))
+				continue
 			}
-			out.Categories = append(out.Categories, e)
+			out.Categories = append(out.Categories, s.cross(Nominal, only, func(i int, add func(j, k Category)) {
+				pairs(i, func(j, ref Category) { add(Category(is(int(j), k)), Category(is(int(ref), k))) })
+			}, nothing, errCategoryUnused))
 		}
 	}
 	if s.weighted() {

@@ -17,10 +17,10 @@ const (
 	// fewestResamples is how many resamples must have a value for limits to
 	// be read from them.
 	fewestResamples = 100
-	// mostlyOutside is the chance of a resampled study without two parts outside
-	// the commonest category above which there is no resampling: about seven
+	// hardlyAny is the chance of a resampled study without two parts outside the
+	// commonest category above which there is no resampling: about seven
 	// such parts in a study. Our own choice, no source.
-	mostlyOutside = 0.005
+	hardlyAny = 0.005
 	// mostWeights bounds what is kept of the resampled studies, two bytes each.
 	// Beyond it no group of coefficients would be within the budget either.
 	mostWeights = 1e8
@@ -45,6 +45,7 @@ type resampler struct {
 	budget      float64
 	wanted      bool      // asked for, of no more parts than are resampled
 	affordable  bool      // the group of coefficients that was begun
+	dear        int       // coefficients that were not resampled since they were not affordable
 	additions   int       // of all groups that were begun, for each resample
 	resampled   []float64 // reused
 	intervals   Intervals // of the coefficients that were estimated
@@ -91,7 +92,11 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 	}
 	e.StandardError = standardError(c, z, sums)
 	b := basis{c, z, sums, value, e.StandardError, parts, disagreeing, nil, nil}
-	if disagreeing > 0 && r.affordable && !lopsided(c.shares(sums), parts) {
+	switch {
+	case disagreeing == 0 || lopsided(c.shares(sums), parts):
+	case !r.affordable:
+		r.dear++
+	default:
 		if values := r.resample(c, z); len(values) >= min(fewestResamples, r.opt.Resamples) {
 			b.resampled, b.leftOut = values, leaveOneOut(c, z, sums)
 		}
@@ -119,7 +124,7 @@ func lopsided(shares []float64, parts int) bool {
 	n, outside := float64(parts), 1-slices.Max(shares)
 	// The chance that a resampled study holds one such part at most.
 	atMostOne := math.Pow(1-outside, n) + n*outside*math.Pow(1-outside, n-1)
-	return atMostOne > mostlyOutside
+	return atMostOne > hardlyAny
 }
 
 // basis is what the interval of a coefficient is made from.

@@ -82,16 +82,19 @@ func is(k, category int) int {
 	return 0
 }
 
-// columnsUsed returns how many columns have a count.
-func (t Table) columnsUsed() int {
-	n := 0
+// oneColumn reports whether all counts stand in one column, and not in its cell
+// on the diagonal alone.
+func (t Table) oneColumn() bool {
+	columns, beside := 0, false
 	for k := range t {
+		used := false
 		for j := range t {
-			if t[j][k] > 0 {
-				n++
-				break
-			}
+			used = used || t[j][k] > 0
+			beside = beside || j != k && t[j][k] > 0
+		}
+		if used {
+			columns++
 		}
 	}
-	return n
+	return columns == 1 && beside
 }

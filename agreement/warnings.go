@@ -74,11 +74,10 @@ func (s *study) fewResamples() []Warning {
 
 // notResampled warns where resamples were asked for and are beyond the bounds.
 func (s *study) notResampled() []Warning {
-	most := s.most()
-	if !s.wanted || s.intervals.Linearised == 0 || s.opt.Resamples <= most {
+	most, n := s.most(), s.dear
+	if !s.wanted || n == 0 || s.opt.Resamples <= most {
 		return nil
 	}
-	n := s.intervals.Linearised
 	text := fmt.Sprintf("The intervals of %d of the %d kappas and coefficients that were to be resampled are linearised: %d resamples of this study would take too long.",
 		n, n+s.intervals.Resampled, s.opt.Resamples)
 	if most >= max(s.enough(), fewestResamples) {
@@ -112,20 +111,20 @@ func (s *study) prevalence(a *Analysis) []Warning {
 	var kappas []string
 	for _, g := range []struct {
 		affected
-		of        int
-		each, all string
+		of              int
+		each, kind, all string
 	}{
-		{within, len(a.Within), "within ", "within appraisers"},
-		{pairs, len(a.Between.Pairs), "of ", "of each two appraisers"},
-		{against, len(a.Against), "against the reference of ", "against the reference"},
-		{together, len(together.names), "", "of all appraisers together"},
+		{within, len(a.Within), "within ", "appraisers", "within appraisers"},
+		{pairs, len(a.Between.Pairs), "of ", "pairs of appraisers", "of each two appraisers"},
+		{against, len(a.Against), "against the reference of ", "appraisers", "against the reference"},
+		{together, len(together.names), "", "", "of all appraisers together"},
 	} {
 		switch n := len(g.names); {
 		case n == 0:
 		case n == g.of && (n > 1 || g.each == ""):
 			kappas = append(kappas, g.all)
 		default:
-			kappas = append(kappas, g.each+g.who())
+			kappas = append(kappas, g.each+g.who(g.kind))
 		}
 	}
 	if len(kappas) == 0 {
@@ -154,10 +153,10 @@ func (g *affected) add(e Estimate, name string) {
 }
 
 // who names those affected, or says how many there are.
-func (g affected) who() string {
+func (g affected) who(kind string) string {
 	const most = 4
 	if len(g.names) > most {
-		return fmt.Sprintf("%d of them", len(g.names))
+		return fmt.Sprintf("%d %s", len(g.names), kind)
 	}
 	return list(g.names)
 }

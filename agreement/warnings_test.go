@@ -143,7 +143,7 @@ func TestManyAppraisersWithPrevalence(t *testing.T) {
 	for i, share := range []float64{0.9, 0.9996, 0.85, 0.85, 0.85} {
 		g.add(Estimate{Prevalent: true, Prevailing: share}, string(rune('A'+i)))
 	}
-	if who, extent := g.who(), g.extent(); who != "5 of them" || extent != "85 to 99.9 %" {
+	if who, extent := g.who("appraisers"), g.extent(); who != "5 appraisers" || extent != "85 to 99.9 %" {
 		t.Errorf("%s, %s", who, extent)
 	}
 }

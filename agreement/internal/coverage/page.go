@@ -15,10 +15,10 @@ brackets is the coverage of the usual interval that treats every call as indepen
 the calls for rates, Fleiss, Cohen & Everitt (1969) for Cohen's kappa, Fleiss, Nee & Landis (1979) for
 Fleiss' kappa.
 
-Half of the parts are bad, unless it says otherwise. On each part, calls are wrong with a probability of its own, drawn from a beta
-distribution: its mean is the column "wrong calls" (the true miss rate and the true false-alarm rate
-alike), and "correlation" is the correlation of two calls on one part being wrong, 0 when all parts are
-equally difficult. Figures named in the singular are those of the first appraiser, or of the first pair;
+Half of the parts are bad, unless it says otherwise. On each part, calls are wrong with a probability of its
+own, drawn from a beta distribution: its mean is the column "wrong calls" (the true miss rate and the true
+false-alarm rate alike), and "correlation" is the correlation of two calls on one part being wrong, 0 when all
+parts are equally difficult. Figures named in the singular are those of the first appraiser, or of the first pair;
 "all" pools the calls of all. Kappas were resampled %d times in each study. The standard error of a
 figure in the tables is about 0.7 at 95 %%.
 
@@ -47,8 +47,7 @@ short wherever calls on a part are correlated.
 Kappas are resampled by whole parts (BCa), at the confidence expanded for few parts, and are never
 narrower than the exact interval of the share of parts that disagree. The second matters where few parts
 disagree; resampling alone covered as little as 88 to 92 % there. With 2000 parts they are linearised, and
-where so few parts are bad that resampled studies often hold hardly one. With
-1 % wrong calls most small studies show no disagreement at all; the interval then is the exact one, and
-covers nearly always.
+where so few parts are bad that resampled studies often hold hardly one. With 1 % wrong calls most small
+studies show no disagreement at all; the interval then is the exact one, and covers nearly always.
 `)
 }

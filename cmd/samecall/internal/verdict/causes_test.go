@@ -237,6 +237,19 @@ func TestTogetherInconsistent(t *testing.T) {
 	if got := found(v); got != "inconsistent:everyone" || !strings.HasPrefix(v.Causes[0].Text, "The appraisers together do not repeat their own calls: kappa within appraisers is 0.50") {
 		t.Errorf("%s: %+v", got, v.Causes)
 	}
+	// A few parts called twice of many called once tell nothing of all.
+	var few strings.Builder
+	few.WriteString("part,A-1,A-2,B-1,B-2\n")
+	for p := range 60 {
+		second := ""
+		if p < 8 {
+			second = fmt.Sprint(1 - p%2)
+		}
+		fmt.Fprintf(&few, "%d,%d,%s,%d,%s\n", p+1, p%2, second, p%2, second)
+	}
+	if r, v := decide(t, calls(few.String(), "")); found(v) != "" || r.Agreement.Between.SameAppraiser.OneSided.Upper >= 0.75 {
+		t.Errorf("%v: %+v", r.Agreement.Between.SameAppraiser.OneSided, v.Causes)
+	}
 	// Mixed on four, 0.67: not even together does the study show it.
 	if r, v := decide(t, calls(study(4), "")); found(v) != "" || r.Agreement.Between.SameAppraiser.Value >= 0.75 {
 		t.Errorf("%+v", v.Causes)

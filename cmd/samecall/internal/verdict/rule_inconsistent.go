@@ -72,7 +72,8 @@ func inconsistent(f *finder) []Cause {
 func (f *finder) togetherInconsistent() []Cause {
 	k, level := f.Agreement.Between.SameAppraiser, f.levels[Kappa][0]
 	n := len(f.Study.Appraisers)
-	if n < 2 || k.Absent != nil || k.Prevalent || k.Unbounded != nil || side(k.OneSided.Upper, level) >= 0 {
+	if n < 2 || k.Absent != nil || k.Prevalent || k.Unbounded != nil || side(k.OneSided.Upper, level) >= 0 ||
+		unusable(k, comparedBySame(f.Result), called(f.Result, Everyone)) != "" {
 		return nil
 	}
 	for a := range n { // these have a cause of their own
