@@ -1,7 +1,6 @@
 package main
 
 import (
-	"encoding/csv"
 	"errors"
 	"fmt"
 	"io"
@@ -15,6 +14,7 @@ import (
 
 	"samecall/cmd/samecall/internal/output"
 	"samecall/cmd/samecall/internal/report"
+	"samecall/cmd/samecall/internal/shell"
 )
 
 // outputs are the files that a record is written to beside the terminal.
@@ -133,7 +133,7 @@ func commandLine(cmd *cobra.Command, args []string) string {
 		}
 		value := f.Value.String()
 		if list, ok := f.Value.(pflag.SliceValue); ok {
-			value = joined(list.GetSlice())
+			value = shell.List(list.GetSlice())
 		}
 		words = append(words, "--"+f.Name+"="+value)
 	})
@@ -141,27 +141,7 @@ func commandLine(cmd *cobra.Command, args []string) string {
 		words = append(append(words, "--"), args...)
 	}
 	for i, w := range words {
-		words[i] = quoted(w)
+		words[i] = shell.Word(w)
 	}
 	return strings.Join(words, " ")
-}
-
-// joined writes a list as a flag reads it: a line of CSV.
-func joined(list []string) string {
-	var line strings.Builder
-	w := csv.NewWriter(&line)
-	_ = w.Write(list) // a Builder takes everything
-	w.Flush()
-	return strings.TrimSuffix(line.String(), "\n")
-}
-
-// quoted makes a word safe for a shell.
-func quoted(s string) string {
-	plain := func(r rune) bool {
-		return r >= 'a' && r <= 'z' || r >= 'A' && r <= 'Z' || r >= '0' && r <= '9' || strings.ContainsRune("-_=./,:+@%", r)
-	}
-	if s != "" && strings.IndexFunc(s, func(r rune) bool { return !plain(r) }) < 0 {
-		return s
-	}
-	return "'" + strings.ReplaceAll(s, "'", `'\''`) + "'"
 }

@@ -9,6 +9,8 @@ import (
 	"strings"
 
 	"github.com/xuri/excelize/v2"
+
+	"samecall/cmd/samecall/internal/shell"
 )
 
 // maxUnzipped bounds what a workbook may unpack to, against files made to
@@ -138,7 +140,7 @@ func whichSheet(f *excelize.File, sheet string) string {
 	var flags []string
 	for _, n := range f.GetSheetList() {
 		if n != sheet {
-			flags = append(flags, "--sheet "+shellWord(n))
+			flags = append(flags, "--sheet "+shell.Word(n))
 		}
 	}
 	read := "the sheet read is " + quote(sheet)
