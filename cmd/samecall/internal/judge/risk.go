@@ -110,7 +110,11 @@ func (r *Risks) assess(in signal.Inspection, unit string) (err error) {
 		row.Risk, row.Error = r.at(in, b)
 		r.Guards = append(r.Guards, row)
 	}
-	if r.Ask.HasTarget {
+	switch n := r.Process.N; {
+	case !r.Ask.HasTarget:
+	case n > 0 && r.Ask.Target*float64(n) < 1: // a share of less than one value
+		r.Unreachable = fmt.Errorf("%s of the process cannot tell a share so small; give its mean and standard deviation, or more values", format.Counted(n, "value"))
+	default:
 		found, err := signal.GuardForEscapes(r.Ask.Process, in, r.Ask.Target, r.Ask.Shown)
 		if err != nil {
 			r.Unreachable = err

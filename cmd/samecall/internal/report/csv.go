@@ -1,11 +1,10 @@
 package report
 
 import (
-	"bufio"
+	"encoding/csv"
 	"fmt"
 	"io"
 	"strconv"
-	"strings"
 
 	"samecall/cmd/samecall/internal/format"
 )
@@ -13,35 +12,21 @@ import (
 // CSV writes every table one below the other, each under its title, with a
 // blank line between. Numbers have a decimal point; shares are fractions.
 func CSV(w io.Writer, r *Record) error {
-	out := bufio.NewWriter(w)
+	c := csv.NewWriter(w)
 	for i, t := range numberTables(r) {
-		if i > 0 {
-			writeLine(out, nil)
-		}
 		heads, rows := t.flat()
-		writeLine(out, []string{harmless(format.Plain(t.Title))})
-		writeLine(out, texts(heads))
-		for _, row := range rows {
-			writeLine(out, record(row))
-		}
-	}
-	return out.Flush()
-}
-
-// writeLine writes a row as RFC 4180 has it. Other than encoding/csv it quotes
-// what has a semicolon or a tab, too, at which many a spreadsheet ends a field.
-// Errors stay with the writer.
-func writeLine(w *bufio.Writer, fields []string) {
-	for i, f := range fields {
+		lines := [][]string{{harmless(format.Plain(t.Title))}, texts(heads)}
 		if i > 0 {
-			w.WriteByte(',')
+			lines = append([][]string{nil}, lines...)
 		}
-		if strings.ContainsAny(f, ",;\t\"\r\n") || f != strings.TrimSpace(f) {
-			f = `"` + strings.ReplaceAll(f, `"`, `""`) + `"`
+		for _, row := range rows {
+			lines = append(lines, record(row))
 		}
-		w.WriteString(f)
+		if err := c.WriteAll(lines); err != nil {
+			return err
+		}
 	}
-	w.WriteByte('\n')
+	return nil
 }
 
 func texts(s []string) []string {

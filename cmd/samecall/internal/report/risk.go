@@ -265,8 +265,6 @@ func riskFound(r *judge.Risks) []string {
 		switch {
 		case r.Unreachable != nil:
 			out = append(out, what+": "+r.Unreachable.Error()+".")
-		case tooFewFor(r):
-			out = append(out, fmt.Sprintf("%s: %s of the process cannot tell a share so small; give the process by --mean and --sd, or more values.", what, format.Counted(r.Process.N, "value")))
 		case r.Target.GuardBand == 0:
 			out = append(out, what+": no guard band is needed. "+then(*r.Target))
 		default:
@@ -291,12 +289,6 @@ func riskFound(r *judge.Risks) []string {
 		}
 	}
 	return out
-}
-
-// tooFewFor reports whether the target is a share of less than one value of the
-// process.
-func tooFewFor(r *judge.Risks) bool {
-	return r.Process.N > 0 && r.Ask.Target*float64(r.Process.N) < 1
 }
 
 // costText writes the cost of a thousand parts.
