@@ -17,6 +17,7 @@ type merge struct {
 	settings Settings
 	study    *Study
 	words    *vocabulary
+	unknown  map[string]*sighting   // words without a meaning
 	meaning  [][]agreement.Category // of each builder's words, by number plus 1; [0] is Missing
 	columns  [][]int32              // of each builder's columns, the column in Ratings; −1: none
 	rank     [][]uint32             // of each builder's parts, the part in Ratings
@@ -36,8 +37,9 @@ func (t *table) study(s Settings) (*Study, []Problem, int) {
 	m.notRead()
 	m.unusedSettings()
 	m.mergeWords()
-	trials := m.mergeColumns()
 	m.mergeParts()
+	m.unknownWords()
+	trials := m.mergeColumns()
 	m.contradictions()
 	if trials != nil {
 		m.fill(trials)
@@ -120,8 +122,8 @@ func (m *merge) unusedSettings() {
 	}
 }
 
-// mergeWords gives the words of all builders their meaning.
-func (m *merge) mergeWords() {
+// spelt returns the smallest spelling of each word, by its folded form.
+func (m *merge) spelt() map[string]string {
 	spelt := make(map[string]string)
 	for _, b := range m.builders {
 		for _, sp := range b.words.spellings {
@@ -131,6 +133,12 @@ func (m *merge) mergeWords() {
 			}
 		}
 	}
+	return spelt
+}
+
+// mergeWords gives the words of all builders their meaning.
+func (m *merge) mergeWords() {
+	spelt := m.spelt()
 	v := newVocabulary(m.settings, spelt)
 	m.words = v
 	m.study.Categories, m.study.PassFail = v.names, v.passFail
@@ -143,7 +151,7 @@ func (m *merge) mergeWords() {
 		p.Line = m.line
 		m.add(p)
 	}
-	unknown := make(map[string]*sighting)
+	m.unknown = make(map[string]*sighting)
 	for _, b := range m.builders {
 		meaning := []agreement.Category{agreement.Missing}
 		for _, w := range b.words.list {
@@ -151,20 +159,25 @@ func (m *merge) mergeWords() {
 			if !ok {
 				c = noCategory
 				if len(v.names) <= agreement.MaxCategories {
-					unknown[w] = &sighting{}
+					m.unknown[w] = &sighting{}
 				}
 			}
 			meaning = append(meaning, c)
 		}
 		m.meaning = append(m.meaning, meaning)
 	}
-	if len(unknown) == 0 {
+}
+
+// unknownWords makes a problem of each word without a meaning.
+func (m *merge) unknownWords() {
+	if len(m.unknown) == 0 {
 		return
 	}
-	m.sight(unknown)
-	m.measuredReferences(unknown, spelt)
-	for w, at := range unknown {
-		p := v.unknown(spelt[w])
+	m.sight(m.unknown)
+	spelt := m.spelt()
+	m.measuredReferences(m.unknown, spelt)
+	for w, at := range m.unknown {
+		p := m.words.unknown(spelt[w])
 		p.Line, p.Column = at.line, at.field+1
 		if at.count > 1 {
 			p.Found += fmt.Sprintf(" (%d times)", at.count)
@@ -200,37 +213,51 @@ func (m *merge) measuredReferences(unknown map[string]*sighting, spelt map[strin
 		Text: "if the column holds measured values, name it value; the reference then follows from --lower and --upper"})
 }
 
-// sighting is where a word stands first, and how often it stands anywhere.
+// sighting is where a word stands first, and how often it is said: in how
+// many calls, and of how many parts as the reference, which each row may repeat.
 type sighting struct{ line, field, count int }
 
-func (s *sighting) see(line, field int) {
+// see takes a place of the word, and whether it adds to the count.
+func (s *sighting) see(line, field int, counts bool) {
 	if s.count == 0 || line < s.line || line == s.line && field < s.field {
 		s.line, s.field = line, field
 	}
-	s.count++
+	if counts {
+		s.count++
+	}
 }
 
 // sight looks through all calls and references for words.
 func (m *merge) sight(words map[string]*sighting) {
-	for _, b := range m.builders {
+	type reference struct {
+		part uint32
+		word *sighting
+	}
+	seen := make(map[reference]bool)
+	for k, b := range m.builders {
+		see := func(s *sighting, part, row uint32) {
+			r := reference{m.rank[k][part], s}
+			s.see(b.line(row), b.layout.reference, !seen[r])
+			seen[r] = true
+		}
 		local := make([]*sighting, len(b.words.list)+1)
 		for i, w := range b.words.list {
 			local[i+1] = words[w]
 		}
 		b.eachRecord(func(row uint32, r record) {
 			if s := local[r.word]; s != nil {
-				s.see(b.line(row), b.field(r))
+				s.see(b.line(row), b.field(r), true)
 			}
 		})
 		for id := range b.parts.n {
 			e := b.parts.entry(id)
 			if s := local[e.ref]; s != nil {
-				s.see(b.line(b.refRow(id, e)), b.layout.reference)
+				see(s, id, b.refRow(id, e))
 			}
 		}
 		for _, a := range b.refs {
 			if s := local[a.word+1]; s != nil {
-				s.see(b.line(a.row), b.layout.reference)
+				see(s, a.part, a.row)
 			}
 		}
 	}

@@ -6,6 +6,7 @@ import (
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
+	"pgregory.net/rapid"
 )
 
 func ptr(x float64) *float64 { return &x }
@@ -26,6 +27,8 @@ func TestProblems(t *testing.T) {
 calls.csv:4:4: found "ZZZ" (2 times) in column 4 (call), expected ` + unknown + `; ` + settingsHint},
 		{"unknown word of the reference", "part,reference,a-1\n1,maybe,go\n", Settings{},
 			`calls.csv:2:2: found "maybe" in column 2 (reference), expected ` + unknown + `; ` + settingsHint},
+		{"unknown reference in each row of a part", "part,appraiser,trial,call,reference\n1,a,1,go,maybe\n2,a,1,go,go\n1,a,2,go,maybe\n1,b,1,go,maybe\n3,a,1,go,maybe\n1,b,2,go,maybe\n", Settings{},
+			`calls.csv:2:5: found "maybe" (2 times) in column 5 (reference), expected ` + unknown + `; ` + settingsHint},
 		{"word that categories do not list", "part,a-1\n1,maybe\n2,dent\n", Settings{Categories: []string{"dent", "ok"}},
 			`calls.csv:2:2: found "maybe" in column 2 (a-1), expected dent or ok, as categories lists; add the word to categories if it is right`},
 		{"word of neither accept nor reject", "part,a-1\n1,gone\n2,dent\n3,fine\n", Settings{Accept: []string{"fine"}, Reject: []string{"dent"}},
@@ -174,4 +177,52 @@ func TestManyProblems(t *testing.T) {
 	if !errors.As(err, &p) || len(p.List) != 20 || p.List[0].Line != 3 || p.List[19].Line != 22 || p.More != 50000-20 {
 		t.Fatalf("%v", err)
 	}
+}
+
+// What is wrong with a table, and how often, does not depend on how its text is
+// cut: whichever rows are read together.
+func TestProblemsHoweverCut(t *testing.T) {
+	field := func(of string) *rapid.Generator[string] { return rapid.SampledFrom(strings.Split(of, "|")) }
+	const parts, calls, values = "1|1|2|2|3| 1|1.0|x|X|é|", "go|go|nogo|dent|huh|Huh| go|1|-|n/a|", "1,5|1.5|1,50|2.5|oops|n/a||\"7\""
+	header := map[bool]string{
+		true:  "part;appraiser;trial;call;reference;value\n",
+		false: "part;a-1;a-2;b-1;reference;value\n",
+	}
+	columns := map[bool][]string{
+		true:  {parts, "a|a|A|b| b|", "1|1|2|3|two|0|1.0", calls, calls, values},
+		false: {parts, calls, calls, calls, calls, values},
+	}
+	rapid.Check(t, func(t *rapid.T) {
+		long := rapid.Bool().Draw(t, "long")
+		var b strings.Builder
+		b.WriteString(header[long])
+		for range rapid.IntRange(0, 12).Draw(t, "rows") {
+			switch rapid.IntRange(0, 15).Draw(t, "kind of row") {
+			case 0:
+				b.WriteString(field("|#|;;;;;|;|1;2|1;2;3;4;5;6;7|\"|  \r").Draw(t, "row"))
+			default:
+				for i, of := range columns[long] {
+					if i > 0 {
+						b.WriteByte(';')
+					}
+					b.WriteString(field(of).Draw(t, "field"))
+				}
+			}
+			b.WriteByte('\n')
+		}
+		which := rapid.SampledFrom(fuzzSettings).Draw(t, "settings")
+		read := func(chunk int) (*Study, error) {
+			return Read(Source{Path: "-", Stdin: strings.NewReader(b.String()), chunk: chunk}, which)
+		}
+		want, wantErr := read(0)
+		for _, chunk := range []int{16, 40, 100} {
+			got, err := read(chunk)
+			if d := cmp.Diff(want, got, sameStudy); d != "" {
+				t.Fatalf("chunks of %d bytes of %q: %s", chunk, b.String(), d)
+			}
+			if wantErr != nil && wantErr.Error() != err.Error() {
+				t.Fatalf("chunks of %d bytes of %q: %v\nwhole: %v", chunk, b.String(), err, wantErr)
+			}
+		}
+	})
 }

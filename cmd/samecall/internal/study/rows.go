@@ -20,8 +20,9 @@ const workers = 2
 // readText reads a table of text into builders.
 //
 // As long as no quote has come by, a line is a row and a separator separates:
-// chunks go to the workers, which split them directly. From the first chunk
-// with a quote on, the text goes through encoding/csv.
+// chunks go to the workers in turn, which split them directly. From the first
+// chunk with a quote on, the text goes through encoding/csv. So the same text
+// is always read in the same way, whichever worker is the quicker one.
 func readText(in io.Reader, s Settings, size int) (*table, error) {
 	c, err := newChunker(in, size)
 	if err != nil {
@@ -33,22 +34,25 @@ func readText(in io.Reader, s Settings, size int) (*table, error) {
 		return t, err
 	}
 	var wg sync.WaitGroup
-	jobs := make(chan chunk, 2*workers)
-	for range workers {
+	var jobs [workers]chan chunk
+	for i := range jobs {
+		jobs[i] = make(chan chunk, 2)
 		b := newBuilder(t.layout, comma != ',', false)
 		t.builders = append(t.builders, b)
 		wg.Go(func() {
-			for k := range jobs {
+			for k := range jobs[i] {
 				b.direct(k, comma)
 				c.release(k)
 			}
 		})
 	}
-	for err == nil && bytes.IndexByte(k.data, '"') < 0 {
-		jobs <- k
+	for turn := 0; err == nil && bytes.IndexByte(k.data, '"') < 0; turn = (turn + 1) % workers {
+		jobs[turn] <- k
 		k, err = c.next()
 	}
-	close(jobs)
+	for _, j := range jobs {
+		close(j)
+	}
 	if err == nil {
 		b := newBuilder(t.layout, comma != ',', false)
 		t.builders = append(t.builders, b)
