@@ -197,7 +197,7 @@ func TestHostileTextInMarkdown(t *testing.T) {
 		t.Fatal(err)
 	}
 	var cells []string
-	strong := 0
+	strong, commands := 0, 0
 	elements(root, func(n *html.Node) {
 		switch n.Data {
 		case "html", "head", "body", "h1", "h2", "p", "ul", "ol", "li", "table", "thead", "tbody", "tr":
@@ -205,10 +205,18 @@ func TestHostileTextInMarkdown(t *testing.T) {
 			strong++
 		case "td", "th":
 			cells = append(cells, textOf(n))
+		case "pre", "code": // the line that computes the record again, whatever stands in it
+			if textOf(n) != r.Command+"\n" {
+				t.Errorf("the command %q reads %q", r.Command, textOf(n))
+			}
+			commands++
 		default:
 			t.Errorf("a text became %s: %.80q", n.Data, textOf(n))
 		}
 	})
+	if commands != 2 {
+		t.Errorf("the command stands in %d elements; expected pre and code", commands)
+	}
 	if strong != 1 {
 		t.Errorf("%d texts are strong; expected the verdict alone", strong)
 	}

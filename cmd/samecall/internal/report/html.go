@@ -88,10 +88,10 @@ func newPage(r *Record) page {
 		Cautions:     v.Cautions,
 		Methods:      methods(r),
 	}
-	p.Study = newPageTable(studyTable(r))
+	p.Study = newPageTable(withCommand(studyTable(r), r))
 	p.Study.ID, p.Study.Title = "study", "" // the heading of its section
 	for _, row := range p.Study.Rows {
-		if what := row[0].Text; strings.HasPrefix(what, "SHA-256") || what == "computed by" {
+		if what := row[0].Text; strings.HasPrefix(what, "SHA-256") || what == computedBy {
 			row[1].Class = "code"
 		}
 	}

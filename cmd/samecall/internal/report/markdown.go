@@ -3,6 +3,7 @@ package report
 import (
 	"fmt"
 	"io"
+	"regexp"
 	"strings"
 
 	"samecall/cmd/samecall/internal/format"
@@ -12,7 +13,7 @@ import (
 func Markdown(w io.Writer, r *Record) error {
 	var s strings.Builder
 	v := r.Verdict
-	fmt.Fprintf(&s, "# %s\n\n%s\n\n", md(title(r)), md(facts(r)))
+	fmt.Fprintf(&s, "# %s\n\n%s\n\n", inline(title(r)), md(facts(r)))
 	fmt.Fprintf(&s, "**Verdict: %s**\n\n", strings.ToUpper(v.Overall.String()))
 	bullets := func(lines []string) {
 		for _, l := range lines {
@@ -37,11 +38,16 @@ func Markdown(w io.Writer, r *Record) error {
 	}
 	s.WriteByte('\n')
 	for _, t := range allTables(r) {
-		fmt.Fprintf(&s, "## %s\n\n", md(t.Title))
+		fmt.Fprintf(&s, "## %s\n\n", inline(t.Title))
 		t.markdown(&s)
 		s.WriteByte('\n')
 		if t.Note != "" {
 			fmt.Fprintf(&s, "%s\n\n", md(t.Note))
+		}
+		if t.Name == "study" {
+			fmt.Fprintf(&s, "%s\n\n", md(aboveCommand(r)))
+			codeBlock(&s, format.Plain(r.Command))
+			s.WriteByte('\n')
 		}
 	}
 	if notes := allNotes(r); len(notes) > 0 {
@@ -57,7 +63,7 @@ func (t Table) markdown(s *strings.Builder) {
 	line := func(cells []string) { s.WriteString("| " + strings.Join(cells, " | ") + " |\n") }
 	var heads, rules []string
 	for _, c := range t.Columns {
-		heads = append(heads, md(c.Name))
+		heads = append(heads, inline(c.Name))
 		if c.Numbers {
 			rules = append(rules, "---:")
 		} else {
@@ -69,29 +75,52 @@ func (t Table) markdown(s *strings.Builder) {
 	for _, row := range t.Rows {
 		var cells []string
 		for _, c := range row {
-			cells = append(cells, md(c.Text))
+			cells = append(cells, inline(c.Text))
 		}
 		line(cells)
 	}
 }
 
-// md keeps a text from being read as markup: everything that CommonMark, or
-// the extensions of the usual forges, would take for a sign is escaped.
+// md keeps a text that begins a line, or stands behind the sign of a list,
+// from being read as markup.
 func md(s string) string {
+	s = inline(s)
+	if sign := listSign.FindString(s); sign != "" {
+		at := strings.IndexAny(sign, "-+.)")
+		s = s[:at] + `\` + s[at:]
+	}
+	return s
+}
+
+// listSign is what begins an entry of a list, or a line across the page: only
+// with a space behind it, or nothing (CommonMark 0.31, 5.2), or again a dash
+// (4.1). A number such as 0.88 is none.
+var listSign = regexp.MustCompile(`^(?:[-+]|[0-9]+[.)])(?: |$)|^--`)
+
+// inline keeps a text from being read as markup within a line, as in a cell or
+// a heading: every sign of CommonMark, or of the extensions of the usual
+// forges, is escaped.
+func inline(s string) string {
 	s = strings.TrimSpace(format.Plain(s))
 	var out strings.Builder
-	number := true // so far there are but digits, as before an entry of a list
 	for i, r := range s {
 		switch {
 		case strings.ContainsRune("\\`*_[]<>|#~$&@", r),
-			i == 0 && strings.ContainsRune("-+=", r),
-			number && i > 0 && (r == '.' || r == ')'),
 			r == ':' && strings.HasPrefix(s[i:], "://"),                     // would become a link
 			r == '.' && strings.EqualFold(s[max(0, i-len("www")):i], "www"): // likewise
 			out.WriteByte('\\')
 		}
-		number = number && r >= '0' && r <= '9'
 		out.WriteRune(r)
 	}
 	return out.String()
+}
+
+// codeBlock sets a line as it is, between fences that no run of backticks in it
+// closes.
+func codeBlock(s *strings.Builder, line string) {
+	fence := "```"
+	for strings.Contains(line, fence) {
+		fence += "`"
+	}
+	fmt.Fprintf(s, "%s\n%s\n%s\n", fence, line, fence)
 }

@@ -12,6 +12,7 @@ type Record struct {
 	Verdict *verdict.Verdict
 	Version string // of the program
 	Command string // line that computes the record again
+	RunIn   string // where that line is run, in words; empty where it is all the same
 	// FlagLevels holds the names of the criteria whose levels the command line
 	// gave.
 	FlagLevels map[string]bool

@@ -34,6 +34,32 @@ func TestWidthOfStudies(t *testing.T) {
 	}
 }
 
+// The line that computes a record again is to be copied: it stands as it is
+// typed, on one line, however narrow the terminal is and whatever it holds.
+func TestCommandStandsWhole(t *testing.T) {
+	r := plan{}.record(t)
+	r.Command = `samecall judge calls.csv --title='A_1 & B  | *c* \ ` + "``` `d`" + ` <e> $f' --characteristic="` + strings.Repeat("word ", 30) + `"`
+	r.RunIn = "the folder of calls.csv"
+	const above = "Computed by this line, run in the folder of calls.csv:\n"
+	for _, width := range []int{60, 100} {
+		full := output(t, r, func(w io.Writer, r *report.Record) error {
+			return report.Text(w, r, report.Terminal{Width: width}, true)
+		})
+		if !bytes.Contains(full, []byte(above+r.Command+"\n")) {
+			t.Errorf("--full in %d columns breaks the command, or says not where to run it", width)
+		}
+	}
+	if md := output(t, r, report.Markdown); !bytes.Contains(md, []byte(above+"\n````\n"+r.Command+"\n````\n")) {
+		t.Error("the Markdown has no block with the command as it is typed")
+	}
+	for _, name := range []string{"HTML", "CSV"} {
+		write := map[string]func(io.Writer, *report.Record) error{"HTML": report.HTML, "CSV": report.CSV}[name]
+		if out := output(t, r, write); !bytes.Contains(out, []byte("the folder of calls.csv")) {
+			t.Errorf("the %s says not where to run the command", name)
+		}
+	}
+}
+
 // No line ends at a space that holds a number together.
 func TestLinesKeepNumbersWhole(t *testing.T) {
 	text := "false rejects 127\u00a0000 (115\u202f000 to 141\u00a0000) ppm, 5 % of σ at cut − limit"

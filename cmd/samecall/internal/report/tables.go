@@ -44,9 +44,12 @@ func allTables(r *Record) []Table {
 func numberTables(r *Record) []Table {
 	var out []Table
 	for _, t := range allTables(r) {
-		if t.Name == "square" {
+		switch t.Name {
+		case "study":
+			out = append(out, withCommand(t, r))
+		case "square":
 			out = append(out, newSquare(r).numbers()...)
-		} else {
+		default:
 			out = append(out, t)
 		}
 	}
@@ -102,8 +105,29 @@ func studyTable(r *Record) Table {
 		add("SHA-256 of "+in.File, in.SHA256)
 	}
 	add("samecall", r.Version)
-	add("computed by", r.Command)
 	return t
+}
+
+// withCommand adds the line that computes a record again, for outputs that
+// neither break nor escape what stands in a cell.
+func withCommand(t Table, r *Record) Table {
+	t.Rows = slices.Clip(t.Rows)
+	t.Rows = append(t.Rows, []Cell{say(computedBy), say(r.Command)})
+	if r.RunIn != "" {
+		t.Rows = append(t.Rows, []Cell{say("run in"), say(r.RunIn)})
+	}
+	return t
+}
+
+const computedBy = "computed by"
+
+// aboveCommand is read before the line that computes a record again, where it
+// stands on its own.
+func aboveCommand(r *Record) string {
+	if r.RunIn == "" {
+		return "Computed by this line:"
+	}
+	return "Computed by this line, run in " + r.RunIn + ":"
 }
 
 // resamplesText says how many resamples the intervals of kappas rest on: those

@@ -34,6 +34,7 @@ func Text(w io.Writer, r *Record, term Terminal, full bool) error {
 	p.verdict(r)
 	if full {
 		p.table(studyTable(r))
+		p.command(r)
 		for _, t := range Tables(r) {
 			p.table(t)
 		}
@@ -148,6 +149,13 @@ func (p *printer) table(t Table) {
 	if t.Note != "" {
 		p.wrap(t.Note, "")
 	}
+}
+
+// command writes the line that computes the record again as it is to be typed:
+// on one line, however wide the terminal is.
+func (p *printer) command(r *Record) {
+	p.wrap(aboveCommand(r), "")
+	p.line(format.Plain(r.Command))
 }
 
 func (p *printer) head(r *Record) {
