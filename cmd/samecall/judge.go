@@ -100,7 +100,7 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 	out.addFlags(f)
 	f.StringVar(&require, "require", "", "end with status 1 unless the verdict is at least this good: accept or conditional")
 	f.BoolVar(&shown, "shown", false, "with --require: hold the one-sided limit of every figure to that level, not the estimate")
-	f.StringVar(&pairing, "pairing", "matched", "calls of two appraisers side by side: matched, trial by trial, or all trials with all")
+	f.StringVar(&pairing, "pairing", "matched", "calls of two appraisers side by side: matched, of trials with the same number, or all trials with all")
 	f.IntVar(&opt.Resamples, "resamples", opt.Resamples, "resamples of whole parts for the intervals of kappas; 0 for linearised ones")
 	f.Uint64Var(&opt.Seed, "seed", opt.Seed, "of the resampling; the same seed gives the same answer")
 	f.BoolVar(&opt.Independent, "independent", false, "in the JSON, also the intervals that treat calls as independent, which they are not")

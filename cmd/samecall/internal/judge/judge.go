@@ -45,6 +45,9 @@ func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, 
 	for _, n := range s.Notes {
 		r.Warnings = append(r.Warnings, Warning{n.Code, n.Text})
 	}
+	if n, ok := s.UnmatchedTrials(); ok && opt.Pairing == agreement.Matched {
+		r.Warnings = append(r.Warnings, Warning{n.Code, n.Text})
+	}
 	if w, ok := missingCalls(s.Ratings); ok {
 		r.Warnings = append(r.Warnings, w)
 	}

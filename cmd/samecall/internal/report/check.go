@@ -3,7 +3,7 @@ package report
 import (
 	"fmt"
 	"io"
-	"strconv"
+	"slices"
 	"strings"
 
 	"samecall/cmd/samecall/internal/format"
@@ -15,7 +15,11 @@ func Check(w io.Writer, s *study.Study, term Terminal) error {
 	p := &printer{w: w, term: term}
 	sum := s.Summary()
 	p.title(studyTitle(s))
-	p.wrap("The study is read without a problem"+notesBelow(len(s.Notes))+".", "")
+	notes := s.Notes
+	if n, ok := s.UnmatchedTrials(); ok {
+		notes = append(slices.Clip(notes), n)
+	}
+	p.wrap("The study is read without a problem"+notesBelow(len(notes))+".", "")
 	p.table(Table{Columns: []Column{{Name: "what"}, {Name: "how many", Long: true}}, Rows: holds(s, sum)})
 	p.table(appraisersTable(sum))
 	if sum.Missing > 0 {
@@ -29,7 +33,7 @@ func Check(w io.Writer, s *study.Study, term Terminal) error {
 	for _, c := range sum.CanShow {
 		p.wrap("· "+c.Text, "  ")
 	}
-	for _, n := range s.Notes {
+	for _, n := range notes {
 		p.line("")
 		p.wrap("Note: "+n.Text, "      ")
 	}
@@ -111,7 +115,7 @@ func holds(s *study.Study, sum study.Summary) [][]Cell {
 func appraisersTable(sum study.Summary) Table {
 	t := Table{Title: "Appraisers", Columns: []Column{{Name: "appraiser"}, {Name: "trials", Numbers: true}, {Name: "parts called", Numbers: true}, {Name: "calls", Numbers: true}, {Name: "missing", Numbers: true}}}
 	for _, a := range sum.Appraisers {
-		t.Rows = append(t.Rows, []Cell{say(a.Appraiser), say(trialList(a.Trials)), intCell(a.Parts), intCell(a.Calls), intCell(a.Missing)})
+		t.Rows = append(t.Rows, []Cell{say(a.Appraiser), say(study.TrialNumbers(a.Trials)), intCell(a.Parts), intCell(a.Calls), intCell(a.Missing)})
 	}
 	return t
 }
@@ -125,18 +129,6 @@ func missingTable(sum study.Summary) Table {
 		t.Note = "and " + format.Count(more) + " more"
 	}
 	return t
-}
-
-// trialList writes trial numbers, a run of them as its ends.
-func trialList(numbers []int) string {
-	if n := len(numbers); n > 2 && numbers[n-1]-numbers[0] == n-1 {
-		return fmt.Sprintf("%d–%d", numbers[0], numbers[n-1])
-	}
-	var out []string
-	for _, n := range numbers {
-		out = append(out, strconv.Itoa(n))
-	}
-	return strings.Join(out, ", ")
 }
 
 func nearTable(v *study.ValueSummary, unit string) Table {

@@ -3,6 +3,7 @@ package study
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 
 	"samecall/agreement"
@@ -22,7 +23,7 @@ type Summary struct {
 	Calls      int           // calls made
 	Missing    int           // calls that a complete study would have beside them
 	Without    []MissingCall // the first of the missing calls, in the order of parts
-	Balanced   bool          // every appraiser called every part in each of the same number of trials
+	Balanced   bool          // every appraiser called every part in each of the same trials
 
 	Values  *ValueSummary // nil without values
 	CanShow []Showing     // what the study can and cannot show
@@ -155,7 +156,7 @@ func (s *Study) countCalls(sum *Summary) (alike agreement.Category) {
 		x.Missing = sum.Parts*len(x.Trials) - x.Calls
 		sum.Calls += x.Calls
 		sum.Missing += x.Missing
-		sum.Balanced = sum.Balanced && x.Missing == 0 && len(x.Trials) == len(sum.Appraisers[0].Trials)
+		sum.Balanced = sum.Balanced && x.Missing == 0 && slices.Equal(x.Trials, sum.Appraisers[0].Trials)
 	}
 	if differ {
 		return agreement.Missing
