@@ -82,7 +82,7 @@ func newPage(r *Record) page {
 		Style:        template.CSS(pageStyle + figure.Style()),
 		Verdict:      strings.ToUpper(v.Overall.String()),
 		VerdictClass: strings.ReplaceAll(v.Overall.String(), " ", "-"),
-		Reasons:      plainLines(reasonLines(r)),
+		Reasons:      plainLines(verdictLines(r)),
 		Next:         plainLines(v.Next),
 		Notes:        plainLines(allNotes(r)),
 		Cautions:     v.Cautions,

@@ -23,7 +23,7 @@ func Markdown(w io.Writer, r *Record) error {
 			s.WriteByte('\n')
 		}
 	}
-	bullets(reasonLines(r))
+	bullets(verdictLines(r))
 	if len(v.Causes) > 0 {
 		s.WriteString("## Causes\n\n")
 		var causes []string

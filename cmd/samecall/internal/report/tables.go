@@ -153,6 +153,9 @@ func causesTable(r *Record) Table {
 	for _, why := range reasonLines(r) {
 		add("reason", why)
 	}
+	if each := byAppraiser(r.Verdict); each != "" {
+		add("by appraiser", strings.TrimPrefix(each, "By appraiser: "))
+	}
 	for _, c := range r.Verdict.Causes {
 		add("cause", c.Text)
 	}
@@ -214,8 +217,9 @@ func ofCell(s agreement.Share) Cell {
 
 func intCell(n int) Cell { return valueCell(format.Count(n), n) }
 
-// againstTable is the table of appraisers against the reference.
-func againstTable(r *Record, all bool) Table {
+// againstTable is the table of appraisers against the reference, with the
+// verdict on each where there is room.
+func againstTable(r *Record, verdicts bool) Table {
 	t := Table{
 		Name:    "appraisers",
 		Title:   "Against the reference",
@@ -225,17 +229,29 @@ func againstTable(r *Record, all bool) Table {
 	if len(r.Study.Categories) > 2 {
 		t.Note += " Effectiveness asks for the exact category on every trial, not only for accept or reject: it may be low without a miss."
 	}
-	if all && len(r.Agreement.Against) > 1 {
+	if len(r.Agreement.Against) > 1 {
 		t.Note += " All together: right in every call of every appraiser."
 	}
-	row := func(name string, a agreement.Against) {
-		t.Rows = append(t.Rows, []Cell{say(name), shareCell(a.Effectiveness), shareCell(a.Miss), shareCell(a.FalseAlarm), kappaCell(a.Kappa)})
+	row := func(name string, a agreement.Against, v ...Cell) {
+		t.Rows = append(t.Rows, append([]Cell{say(name), shareCell(a.Effectiveness), shareCell(a.Miss), shareCell(a.FalseAlarm), kappaCell(a.Kappa)}, v...))
 	}
+	if !verdicts {
+		for i, a := range r.Agreement.Against {
+			row(r.Study.Appraisers[i], a)
+		}
+		if len(r.Agreement.Against) > 1 {
+			row(together, *r.Agreement.All)
+		}
+		return withoutRates(r, t)
+	}
+	t.Columns = append(t.Columns, Column{Name: "verdict"}, Column{Name: "data"})
+	t.Note += " Verdict: the worst of the appraiser's criteria that count. " + evidenceNote
 	for i, a := range r.Agreement.Against {
-		row(r.Study.Appraisers[i], a)
+		v := r.Verdict.Appraisers[i]
+		row(r.Study.Appraisers[i], a, say(v.Verdict.String()), say(evidenceWord(v)))
 	}
-	if all && len(r.Agreement.Against) > 1 {
-		row(together, *r.Agreement.All)
+	if len(r.Agreement.Against) > 1 {
+		row(together, *r.Agreement.All, say(""), say(""))
 	}
 	return withoutRates(r, t)
 }

@@ -54,7 +54,7 @@ func (p *printer) verdict(r *Record) {
 	v := r.Verdict
 	p.line("")
 	p.line(p.term.bold("Verdict: " + strings.ToUpper(v.Overall.String())))
-	for _, why := range reasonLines(r) {
+	for _, why := range verdictLines(r) {
 		p.wrap("  "+why, "  ")
 	}
 	for _, c := range v.Causes {
@@ -248,7 +248,7 @@ const manyAppraisers = 12
 func (p *printer) answer(r *Record) {
 	main := withinTable(r)
 	if r.Agreement.All != nil {
-		main = againstTable(r, true)
+		main = againstTable(r, false)
 	}
 	p.table(worst(r, main))
 	p.square(r)

@@ -17,6 +17,7 @@ type verdictJSON struct {
 type appraiserVerdictJSON struct {
 	Appraiser string          `json:"appraiser"`
 	Verdict   string          `json:"verdict"`
+	Evidence  string          `json:"evidence,omitempty"`
 	Criteria  []criterionJSON `json:"criteria"`
 }
 
@@ -56,7 +57,7 @@ func newVerdict(v *verdict.Verdict) verdictJSON {
 		Cautions:   list(v.Cautions),
 	}
 	for _, a := range v.Appraisers {
-		row := appraiserVerdictJSON{Appraiser: a.Name, Verdict: a.Verdict.String(), Criteria: []criterionJSON{}}
+		row := appraiserVerdictJSON{Appraiser: a.Name, Verdict: a.Verdict.String(), Evidence: evidenceWord(a), Criteria: []criterionJSON{}}
 		for _, c := range a.Criteria {
 			row.Criteria = append(row.Criteria, newCriterionJSON(c))
 		}

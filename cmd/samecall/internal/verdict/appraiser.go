@@ -1,0 +1,44 @@
+package verdict
+
+// Shown reports whether the data show the verdict on an appraiser: of a
+// rejection, that one figure misses the conditional level; of the others, that
+// every figure which counts meets the level. Nothing is shown of an appraiser
+// whose verdict is NotShown.
+func (a Appraiser) Shown() bool {
+	switch a.Verdict {
+	case NotShown:
+		return false
+	case Reject:
+		for _, c := range a.Criteria {
+			if c.counts() && c.Met == Reject && c.Evidence == Contradicted {
+				return true
+			}
+		}
+		return false
+	}
+	v := Verdict{Appraisers: []Appraiser{a}}
+	return v.Unshown(a.Verdict) == ""
+}
+
+// Deciding is the one-sided limit that the evidence for a criterion rests on,
+// and whether it is an upper one. There is none without an estimate, and where
+// nothing bounds it.
+func (c Criterion) Deciding() (limit float64, upper, ok bool) {
+	if c.Estimate.Absent != nil || c.Estimate.Unbounded != nil {
+		return 0, false, false
+	}
+	return c.deciding(c.Estimate.OneSided), c.atMost() == (c.Met != Reject), true
+}
+
+// DecidingText writes that limit as the sentences on a criterion do; empty if
+// there is none.
+func (c Criterion) DecidingText() string {
+	limit, upper, ok := c.Deciding()
+	switch {
+	case !ok:
+		return ""
+	case upper:
+		return "at most " + c.exact(limit)
+	}
+	return "at least " + c.exact(limit)
+}
