@@ -12,16 +12,20 @@ type flatCell struct {
 }
 
 // flat returns a table for spreadsheets: a figure with an interval takes
-// three columns, and numbers are numbers.
+// three columns, a count and what it is counted of two, and numbers are numbers.
 func (t Table) flat() (heads []string, rows [][]flatCell) {
-	bounded := make([]bool, len(t.Columns))
+	bounded, counted := make([]bool, len(t.Columns)), make([]bool, len(t.Columns))
 	for i := range t.Columns {
 		for _, row := range t.Rows {
 			bounded[i] = bounded[i] || row[i].Bounded
+			counted[i] = counted[i] || row[i].Of != nil
 		}
 	}
 	for i, c := range t.Columns {
 		heads = append(heads, c.Name)
+		if counted[i] {
+			heads = append(heads, c.Of)
+		}
 		if bounded[i] {
 			heads = append(heads, c.Name+", lower", c.Name+", upper")
 		}
@@ -37,6 +41,9 @@ func (t Table) flat() (heads []string, rows [][]flatCell) {
 				cells = append(cells, flatCell{})
 			default:
 				cells = append(cells, flatCell{Value: c.Text})
+			}
+			if counted[i] {
+				cells = append(cells, flatCell{Value: c.Of})
 			}
 			if !bounded[i] {
 				continue

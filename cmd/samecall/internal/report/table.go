@@ -24,15 +24,18 @@ type Table struct {
 // Column is a column of a Table.
 type Column struct {
 	Name    string
-	Numbers bool // set flush right, and never cut
-	Long    bool // text that goes on in further lines where there is no room
+	Numbers bool   // set flush right, and never cut
+	Long    bool   // text that goes on in further lines where there is no room
+	Of      string // what counts in it are counted of, as a head
 }
 
 // Cell is a cell of a Table: what is read and, for programs, the number
-// behind it (int, float64) or nil, and its interval where it has one.
+// behind it (int, float64) or nil, what it is counted of where it is a count,
+// and its interval where it has one.
 type Cell struct {
 	Text         string
 	Value        any
+	Of           any // int or nil
 	Bounded      bool
 	Lower, Upper any // float64, or nil for a limit that does not exist
 }

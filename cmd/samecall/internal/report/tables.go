@@ -212,7 +212,12 @@ func ofCell(s agreement.Share) Cell {
 	if s.Absent != nil {
 		return say(format.Dash)
 	}
-	return say(format.Count(s.Count) + " of " + format.Count(s.Of))
+	return countCell(s.Count, s.Of)
+}
+
+// countCell is a count of so many.
+func countCell(n, of int) Cell {
+	return Cell{Text: format.Count(n) + " of " + format.Count(of), Value: n, Of: of}
 }
 
 func intCell(n int) Cell { return valueCell(format.Count(n), n) }
@@ -261,8 +266,8 @@ func errorsTable(r *Record) Table {
 	t := Table{
 		Name:  "errors",
 		Title: "Counts behind the rates",
-		Columns: []Column{{Name: "appraiser"}, {Name: "parts right", Numbers: true}, {Name: "misses", Numbers: true}, {Name: "effective bad calls", Numbers: true},
-			{Name: "false alarms", Numbers: true}, {Name: "effective good calls", Numbers: true}},
+		Columns: []Column{{Name: "appraiser"}, {Name: "parts right", Numbers: true, Of: "parts called"}, {Name: "misses", Numbers: true, Of: "calls on bad parts"}, {Name: "effective bad calls", Numbers: true},
+			{Name: "false alarms", Numbers: true, Of: "calls on good parts"}, {Name: "effective good calls", Numbers: true}},
 		Note: "Misses of the calls on bad parts, false alarms of those on good parts. Effective: how many independent calls they are worth, since calls on one part are alike.",
 	}
 	worth := func(s agreement.Share) Cell {
@@ -353,7 +358,7 @@ func withinTable(r *Record) Table {
 	t := Table{
 		Name:    "within",
 		Title:   "Within appraiser: does each repeat its own call?",
-		Columns: []Column{{Name: "appraiser"}, {Name: "parts alike", Numbers: true}, {Name: "share", Numbers: true}, {Name: "kappa over trials", Numbers: true}},
+		Columns: []Column{{Name: "appraiser"}, {Name: "parts alike", Numbers: true, Of: "parts with two calls or more"}, {Name: "share", Numbers: true}, {Name: "kappa over trials", Numbers: true}},
 	}
 	for a, w := range r.Agreement.Within {
 		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), ofCell(w.Share), shareCell(w.Share), kappaCell(w.Kappa)})
@@ -367,12 +372,12 @@ func pairsTable(r *Record) Table {
 		Name:    "pairs",
 		Title:   "Between appraisers: each two",
 		Keys:    2,
-		Columns: []Column{{Name: "first"}, {Name: "second"}, {Name: "parts alike", Numbers: true}, {Name: "share", Numbers: true}, {Name: "calls alike", Numbers: true}, {Name: "kappa", Numbers: true}},
+		Columns: []Column{{Name: "first"}, {Name: "second"}, {Name: "parts alike", Numbers: true, Of: "parts both called"}, {Name: "share", Numbers: true}, {Name: "calls alike", Numbers: true, Of: "pairs of calls"}, {Name: "kappa", Numbers: true}},
 		Note:    pairingNote(r.Options.Pairing),
 	}
 	for _, p := range r.Agreement.Between.Pairs {
 		row := []Cell{say(r.Study.Appraisers[p.A]), say(r.Study.Appraisers[p.B]), ofCell(p.Share), shareCell(p.Share),
-			say(format.Count(p.Alike) + " of " + format.Count(p.Pairs)), kappaCell(p.Kappa)}
+			countCell(p.Alike, p.Pairs), kappaCell(p.Kappa)}
 		t.Rows = append(t.Rows, row)
 	}
 	return t
@@ -508,7 +513,7 @@ func directionTable(r *Record) Table {
 		Name:    "direction",
 		Title:   "Do the errors lean one way?",
 		Keys:    2,
-		Columns: []Column{{Name: "appraiser"}, {Name: "test"}, {Name: "statistic", Numbers: true}, {Name: "degrees of freedom", Numbers: true}, {Name: "p", Numbers: true}},
+		Columns: []Column{{Name: "appraiser"}, {Name: "test"}, {Name: "statistic", Numbers: true, Of: "wrong calls"}, {Name: "degrees of freedom", Numbers: true}, {Name: "p", Numbers: true}},
 		Note:    "A small p: the calls differ from the reference more often one way than the other. Statistic of McNemar's test: the wrong calls of the rarer way, of all wrong calls. The tests take calls as independent; with several calls on a part p is too small.",
 	}
 	add := func(a int, name string, test *agreement.Test) {
@@ -519,12 +524,12 @@ func directionTable(r *Record) Table {
 		if test.DF > 0 {
 			df = intCell(test.DF)
 		}
-		statistic := fmt.Sprintf("%.2f", test.Statistic)
+		statistic := valueCell(fmt.Sprintf("%.2f", test.Statistic), test.Statistic)
 		if test.DF == 0 { // the exact test has counts
 			table := r.Agreement.Against[a].Table
-			statistic = fmt.Sprintf("%.0f of %d", test.Statistic, table[0][1]+table[1][0])
+			statistic = countCell(int(test.Statistic), table[0][1]+table[1][0])
 		}
-		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), say(name), valueCell(statistic, test.Statistic), df, valueCell(format.Probability(test.P), test.P)})
+		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), say(name), statistic, df, valueCell(format.Probability(test.P), test.P)})
 	}
 	for a, g := range r.Agreement.Against {
 		add(a, "McNemar, exact", g.McNemar)
