@@ -83,7 +83,7 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 			}
 			result.Command = commandLine(cmd, args)
 			result.FlagLevels = src.flagLevels(cmd)
-			failed := out.write(s.out, result)
+			failed := out.write(s, result)
 			if !out.toStandardOutput() {
 				err := buffered(s.out, func(w io.Writer) error { return report.Text(w, result, terminal(s.out), full) })
 				failed = errors.Join(failed, err)

@@ -12,6 +12,8 @@ import (
 	"github.com/spf13/cobra"
 	"github.com/spf13/pflag"
 
+	"samecall/cmd/samecall/internal/figure"
+	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/output"
 	"samecall/cmd/samecall/internal/report"
 	"samecall/cmd/samecall/internal/shell"
@@ -29,7 +31,7 @@ func (o *outputs) addFlags(f *pflag.FlagSet) {
 	f.StringVar(&o.markdown, "markdown", "", "write the record as Markdown to this `file`; - for standard output")
 	f.StringVar(&o.csv, "csv", "", "write every table as CSV to this `file`; - for standard output")
 	f.StringVar(&o.xlsx, "xlsx", "", "write every table to a workbook, this `file`, a sheet each")
-	f.StringVar(&o.figures, "figures", "", "write every figure as SVG and PNG into this `folder`")
+	f.StringVar(&o.figures, "figures", "", "write every figure as SVG and PNG into this `folder`, in place of those of an earlier study")
 }
 
 type writer struct {
@@ -80,7 +82,7 @@ func (o *outputs) check() error {
 
 // write writes every file that was asked for; one that fails does not keep
 // the others from being written.
-func (o *outputs) write(standard io.Writer, r *report.Record) error {
+func (o *outputs) write(s streams, r *report.Record) error {
 	var failed []error
 	for _, w := range o.writers() {
 		write := func(to io.Writer) error { return w.write(to, r) }
@@ -88,7 +90,7 @@ func (o *outputs) write(standard io.Writer, r *report.Record) error {
 		switch w.file {
 		case "":
 		case "-":
-			err = buffered(standard, write)
+			err = buffered(s.out, write)
 		default:
 			err = output.File(w.file, write)
 		}
@@ -97,20 +99,39 @@ func (o *outputs) write(standard io.Writer, r *report.Record) error {
 		}
 	}
 	if o.figures != "" {
-		failed = append(failed, writeFigures(o.figures, r))
+		failed = append(failed, writeFigures(s, o.figures, r))
 	}
 	return errors.Join(failed...)
 }
 
-func writeFigures(dir string, r *report.Record) error {
+// writeFigures writes the figures that a study has. Those that it has not are
+// not to be taken for its own: where an earlier study left them, they are
+// removed, and nothing else is.
+func writeFigures(s streams, dir string, r *report.Record) error {
 	if err := os.MkdirAll(dir, 0o777); err != nil {
 		return fmt.Errorf("--figures: %w", err)
 	}
 	var failed []error
+	drawn := make(map[string]bool)
 	for _, f := range report.Figures(r) {
+		drawn[f.Name] = true
 		for ending, write := range map[string]func(io.Writer) error{".svg": f.SVG, ".png": f.PNG} {
 			if err := output.File(filepath.Join(dir, f.Name+ending), write); err != nil {
 				failed = append(failed, fmt.Errorf("--figures: %w", err))
+			}
+		}
+	}
+	for _, name := range figure.Names() {
+		if drawn[name] || len(failed) > 0 { // what could not be replaced, stays whole
+			continue
+		}
+		for _, ending := range []string{".svg", ".png"} {
+			file := filepath.Join(dir, name+ending)
+			switch removed, err := output.Remove(file); {
+			case err != nil:
+				failed = append(failed, fmt.Errorf("--figures: this study has no such figure, and one is there: %w", err))
+			case removed:
+				fmt.Fprintln(s.err, "samecall: removed", format.Plain(file)+", a figure of an earlier study: this one has no such figure")
 			}
 		}
 	}

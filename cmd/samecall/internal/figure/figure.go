@@ -13,6 +13,9 @@ type Figure struct {
 	Marks         []Mark
 }
 
+// Names are those of all figures that there are.
+func Names() []string { return []string{"square", "errors", "calls", "curve"} }
+
 // Role is what a mark is; it decides the colours. Blue and orange are told
 // apart by colour-blind readers, and no mark differs from another by its
 // colour alone.

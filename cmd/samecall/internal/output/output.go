@@ -67,6 +67,24 @@ func Check(name string) error {
 	return nil
 }
 
+// Remove removes a regular file that could be replaced, and reports whether
+// there was one. Anything else of that name is left, and is an error.
+func Remove(name string) (bool, error) {
+	info, err := os.Lstat(name)
+	switch {
+	case errors.Is(err, fs.ErrNotExist):
+		return false, nil
+	case err == nil && !info.Mode().IsRegular():
+		err = fmt.Errorf("%s is no plain file; remove it, or name another folder", name)
+	case err == nil:
+		err = Check(name)
+	}
+	if err == nil {
+		err = os.Remove(name)
+	}
+	return err == nil, named(name, err)
+}
+
 // writable refuses a file that its owner has closed to writing: to replace it
 // takes a right to its folder only.
 func writable(name, target string, info fs.FileInfo) error {

@@ -4,12 +4,14 @@ import (
 	"encoding/csv"
 	"fmt"
 	"math/rand/v2"
+	"slices"
 	"strconv"
 	"strings"
 	"testing"
 	"testing/fstest"
 
 	"samecall/agreement"
+	"samecall/cmd/samecall/internal/figure"
 	"samecall/cmd/samecall/internal/judge"
 	"samecall/cmd/samecall/internal/report"
 	"samecall/cmd/samecall/internal/study"
@@ -241,6 +243,20 @@ func plans() []plan {
 		{name: "missing calls", missing: 0.2},
 		{name: "ragged trials", ragged: true, appraisers: some(4), trials: 4},
 		{name: "by chance", random: 1},
+	}
+}
+
+// Every figure has a name that is known, and every name a figure.
+func TestFigureNames(t *testing.T) {
+	found := make(map[string]bool)
+	for _, f := range report.Figures(plan{}.record(t)) {
+		found[f.Name] = true
+		if !slices.Contains(figure.Names(), f.Name) {
+			t.Errorf("the figure %s is not among the names", f.Name)
+		}
+	}
+	if len(found) != len(figure.Names()) {
+		t.Errorf("a study with everything has the figures %v; expected %v", found, figure.Names())
 	}
 }
 
