@@ -606,6 +606,34 @@ func levelsFrom(r *Record) string {
 	return "Levels: " + strings.Join(out, "; ") + "."
 }
 
+// oneSidedHead heads the limits that answers rest on.
+func oneSidedHead(r *Record) string {
+	return "one-sided " + format.Confidence(r.Options.Confidence) + " limit"
+}
+
+// decidingCell is the one-sided limit that the answer for a criterion rests on.
+// For programs it stands in the column of lower or of upper limits.
+func decidingCell(c verdict.Criterion) Cell {
+	limit, upper, ok := c.Deciding()
+	switch {
+	case !ok:
+		return say(format.Dash)
+	case upper:
+		return Cell{Text: "≤ " + c.DecidingText(), Bounded: true, Upper: limit}
+	}
+	return Cell{Text: "≥ " + c.DecidingText(), Bounded: true, Lower: limit}
+}
+
+// settling says how many parts more would settle a criterion, in fewer words
+// than a sentence has: "20 bad"; else why none would.
+func settling(c verdict.Criterion) string {
+	text := c.ToSettle()
+	if c.More == 0 || text != format.Counted(c.More, c.Kind)+" more" {
+		return text
+	}
+	return strings.TrimSpace(format.Count(c.More) + " " + strings.TrimSuffix(c.Kind, "part"))
+}
+
 // criteriaTable holds each figure of each appraiser against its levels.
 func criteriaTable(r *Record) Table {
 	t := Table{
@@ -613,17 +641,17 @@ func criteriaTable(r *Record) Table {
 		Title: "Criteria",
 		Keys:  2,
 		Columns: []Column{{Name: "appraiser"}, {Name: "figure"}, {Name: "found", Numbers: true}, {Name: "accept", Numbers: true},
-			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: "data"}, {Name: "to settle it", Long: true}},
-		Note: levelsFrom(r) + " " + fmt.Sprintf("Shown: at %s confidence, one-sided, the data show what the estimate says (of a reject, that the conditional level is missed). Open: they do not.", format.Confidence(r.Options.Confidence)),
+			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: oneSidedHead(r), Numbers: true}, {Name: "data"}, {Name: "parts more to settle it", Long: true}},
+		Note: levelsFrom(r) + " " + fmt.Sprintf("One-sided: at %s confidence the truth is at most, or at least, that; it is not an end of the two-sided interval. Shown: that limit, too, meets the level that the estimate meets (of a reject, misses the conditional level). Open: it does not.", format.Confidence(r.Options.Confidence)),
 	}
 	setAside := false
 	add := func(name, figure string, c verdict.Criterion) {
 		found, evidence, settle := say(format.Dash), "", ""
 		if c.Met != verdict.NotShown {
-			found, evidence, settle = valueCell(c.Found(), c.Estimate.Value), c.Shows(), c.ToSettle()
+			found, evidence, settle = valueCell(c.Found(), c.Estimate.Value), c.Shows(), settling(c)
 			setAside = setAside || c.Aside != ""
 		}
-		t.Rows = append(t.Rows, []Cell{say(name), say(figure), found, valueCell(c.Level(c.Levels[0]), c.Levels[0]), valueCell(c.Level(c.Levels[1]), c.Levels[1]), say(c.Met.String()), say(evidence), say(settle)})
+		t.Rows = append(t.Rows, []Cell{say(name), say(figure), found, valueCell(c.Level(c.Levels[0]), c.Levels[0]), valueCell(c.Level(c.Levels[1]), c.Levels[1]), say(c.Met.String()), decidingCell(c), say(evidence), say(settle)})
 	}
 	if r.Agreement.All != nil { // else nothing is known of any of these
 		for _, a := range r.Verdict.Appraisers {

@@ -33,12 +33,9 @@ func (c Criterion) Deciding() (limit float64, upper, ok bool) {
 // DecidingText writes that limit as the sentences on a criterion do; empty if
 // there is none.
 func (c Criterion) DecidingText() string {
-	limit, upper, ok := c.Deciding()
-	switch {
-	case !ok:
+	limit, _, ok := c.Deciding()
+	if !ok {
 		return ""
-	case upper:
-		return "at most " + c.exact(limit)
 	}
-	return "at least " + c.exact(limit)
+	return c.exact(limit)
 }

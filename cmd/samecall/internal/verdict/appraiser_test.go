@@ -62,11 +62,11 @@ func TestDecidingLimit(t *testing.T) {
 		upper     bool
 		text      string
 	}{
-		{rate(0.01, 0, 0.03), 0.03, true, "at most 3.0 %"},
-		{rate(0.03, 0.01, 0.07), 0.07, true, "at most 7.0 %"},
-		{rate(0.07, 0.04, 0.30), 0.04, false, "at least 4.0 %"},
-		{newCriterion(Effectiveness, Default[Effectiveness], agreement.Estimate{Value: 0.95, OneSided: interval.Interval{Lower: 0.85, Upper: 0.99}}, "part", 40, 0.95), 0.85, false, "at least 85 %"},
-		{newCriterion(Kappa, Default[Kappa], agreement.Estimate{Value: 0.3, OneSided: interval.Interval{Lower: 0.1, Upper: 0.5}}, "part", 40, 0.95), 0.5, true, "at most 0.50"},
+		{rate(0.01, 0, 0.03), 0.03, true, "3.0 %"},
+		{rate(0.03, 0.01, 0.07), 0.07, true, "7.0 %"},
+		{rate(0.07, 0.04, 0.30), 0.04, false, "4.0 %"},
+		{newCriterion(Effectiveness, Default[Effectiveness], agreement.Estimate{Value: 0.95, OneSided: interval.Interval{Lower: 0.85, Upper: 0.99}}, "part", 40, 0.95), 0.85, false, "85 %"},
+		{newCriterion(Kappa, Default[Kappa], agreement.Estimate{Value: 0.3, OneSided: interval.Interval{Lower: 0.1, Upper: 0.5}}, "part", 40, 0.95), 0.5, true, "0.50"},
 	} {
 		limit, upper, ok := c.criterion.Deciding()
 		if limit != c.limit || upper != c.upper || !ok || c.criterion.DecidingText() != c.text {
