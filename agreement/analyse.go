@@ -1,7 +1,5 @@
 package agreement
 
-import "samecall/agreement/interval"
-
 // Analysis is all that a study says about agreement. Appraisers, parts and
 // categories are numbered as in its Ratings.
 type Analysis struct {
@@ -125,8 +123,7 @@ func (s *study) cross(w Weights, t Table, pairs func(pattern int, add func(j, k 
 	e := s.estimate(m, z, nothing, undefined)
 	if s.opt.Independent && e.Absent == nil {
 		if se, _, err := t.Kappa1969(w); err == nil {
-			i := interval.Normal(e.Value, se, s.opt.Confidence)
-			e.Independent = &i
+			e.Independent = normal(e.Value, se, s.opt.Confidence)
 		}
 	}
 	return e

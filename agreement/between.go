@@ -156,8 +156,7 @@ func (s *study) fleissIndependent(counts [][]int, kappa float64) *interval.Inter
 	if err != nil {
 		return nil
 	}
-	i := interval.Normal(kappa, se, s.opt.Confidence)
-	return &i
+	return normal(kappa, se, s.opt.Confidence)
 }
 
 func (s *study) pair(a, b int) Pair {

@@ -258,7 +258,7 @@ func checkRate(t rapid.TB, what string, got Share, parts [][]bool, confidence fl
 		// Korn & Graubard's, but no surer than no event, or nothing but events, on
 		// so many parts: there the limits are the roots of (1−p)ⁿ = tail.
 		far := 1 - math.Pow((1-confidence)/2, 1/float64(len(parts)))
-		sameFigures(t, what, got.Interval, interval.Interval{Lower: min(want.Lower, 1-far), Upper: max(want.Upper, far)})
+		sameFigures(t, what, got.Interval, interval.Interval{Lower: min(want.Published.Lower, 1-far), Upper: max(want.Published.Upper, far)})
 		sameFigures(t, what, got.Effective, want.Effective)
 	}
 }

@@ -45,6 +45,15 @@ type Share struct {
 
 func absent(why error) Estimate { return Estimate{Absent: why} }
 
+// normal is the interval estimate ± z·se; nil where that is not defined.
+func normal(estimate, se, confidence float64) *interval.Interval {
+	i, err := interval.Normal(estimate, se, confidence)
+	if err != nil {
+		return nil
+	}
+	return &i
+}
+
 // shareOfParts is a share of parts with its exact interval.
 func shareOfParts(count, of int, confidence float64, none error) Share {
 	if of == 0 {
@@ -53,21 +62,19 @@ func shareOfParts(count, of int, confidence float64, none error) Share {
 	return Share{Count: count, Of: of, Estimate: Estimate{
 		Value:    float64(count) / float64(of),
 		Interval: interval.ClopperPearson(count, of, confidence),
-		OneSided: interval.ClopperPearson(count, of, eachSide(confidence)),
+		OneSided: interval.ClopperPearson(count, of, interval.EachSide(confidence)),
 		Method:   "Clopper-Pearson over parts",
 	}}
 }
 
-// rateOverCalls is a rate of events over calls, its interval by part: Korn and
-// Graubard's, but never surer than the number of parts allows.
+// rateOverCalls is a rate of events over calls, its interval by part.
 func rateOverCalls(clusters []interval.Cluster, opt Options, none error) Share {
 	r := interval.KornGraubard(clusters, opt.Confidence)
 	if r.Calls == 0 {
 		return Share{Estimate: absent(none)}
 	}
-	each := eachSide(opt.Confidence)
 	s := Share{Count: r.Events, Of: r.Calls, Effective: r.Effective, Estimate: Estimate{
-		Value: r.Value, Interval: r.NoSurerThanParts(opt.Confidence), OneSided: interval.KornGraubard(clusters, each).NoSurerThanParts(each),
+		Value: r.Value, Interval: r.Interval, OneSided: interval.KornGraubard(clusters, interval.EachSide(opt.Confidence)).Interval,
 		Method: "Korn-Graubard over parts, no surer than their number",
 	}}
 	if r.Events == 0 || r.Events == r.Calls {
@@ -79,7 +86,3 @@ func rateOverCalls(clusters []interval.Cluster, opt Options, none error) Share {
 	}
 	return s
 }
-
-// eachSide returns the confidence of the two-sided interval whose limits,
-// each for itself, have the confidence given.
-func eachSide(confidence float64) float64 { return max(0, 2*confidence-1) }

@@ -53,8 +53,8 @@ func TestFewPartsExpandTheConfidence(t *testing.T) {
 	m, z := fleiss(s.counts(func(row []Category) []Category { return row }), s.times)
 	e := s.estimate(m, z, errOneTrial, errWithinAlike)
 	sums := z.sums()
-	plain := interval.BCa(e.Value, s.resample(m, z), leaveOneOut(m, z, sums), 0.95)
-	expanded := interval.BCa(e.Value, s.resample(m, z), leaveOneOut(m, z, sums), interval.Expanded(0.95, 16))
+	plain := must[interval.Interval](t)(interval.BCa(e.Value, s.resample(m, z), leaveOneOut(m, z, sums), 0.95))
+	expanded := must[interval.Interval](t)(interval.BCa(e.Value, s.resample(m, z), leaveOneOut(m, z, sums), interval.Expanded(0.95, 16)))
 	if !(e.Interval.Lower <= expanded.Lower && e.Interval.Upper >= expanded.Upper && expanded.Lower < plain.Lower) {
 		t.Errorf("interval %v; BCa at 0.95 %v, expanded %v", e.Interval, plain, expanded)
 	}

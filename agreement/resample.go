@@ -1,6 +1,7 @@
 package agreement
 
 import (
+	"cmp"
 	"errors"
 	"math"
 	"math/rand/v2"
@@ -91,7 +92,7 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 		return e
 	}
 	e.StandardError = standardError(c, z, sums)
-	b := basis{c, z, sums, value, e.StandardError, parts, disagreeing, nil, nil}
+	b := basis{c, sums, value, e.StandardError, parts, disagreeing, nil, nil}
 	switch {
 	case disagreeing == 0 || lopsided(c.shares(sums), parts):
 	case !r.affordable:
@@ -108,8 +109,12 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 	default:
 		r.intervals.Linearised++
 	}
-	e.Interval, e.Method = b.interval(r.opt.Confidence)
-	e.OneSided, _ = b.interval(eachSide(r.opt.Confidence))
+	two, method, err := b.interval(r.opt.Confidence)
+	each, _, errEach := b.interval(interval.EachSide(r.opt.Confidence))
+	if err := cmp.Or(err, errEach); err != nil {
+		return Estimate{Value: value, Unbounded: err, Prevailing: e.Prevailing, Prevalent: e.Prevalent}
+	}
+	e.Interval, e.OneSided, e.Method = two, each, method
 	return e
 }
 
@@ -130,7 +135,6 @@ func lopsided(shares []float64, parts int) bool {
 // basis is what the interval of a coefficient is made from.
 type basis struct {
 	coefficient
-	z                  contributions
 	sums               []float64
 	value, se          float64
 	parts, disagreeing int
@@ -142,23 +146,27 @@ type basis struct {
 // parts there are, it is never narrower than the share of parts that disagree
 // is certain: where few do, resampling sees too little of what could have
 // been.
-func (b basis) interval(confidence float64) (interval.Interval, string) {
+func (b basis) interval(confidence float64) (interval.Interval, string, error) {
 	const exact = "exact on the share of disagreeing parts"
 	i := byShareOfParts(b, b.sums, b.disagreeing, b.parts, confidence)
 	method := exact
 	if b.disagreeing > 0 {
 		var other interval.Interval
+		var err error
 		if b.resampled != nil {
 			method = "BCa over parts"
-			other = interval.BCa(b.value, b.resampled, b.leftOut, interval.Expanded(confidence, b.parts))
+			other, err = interval.BCa(b.value, b.resampled, b.leftOut, interval.Expanded(confidence, b.parts))
 		} else {
 			method = "linearised over parts"
-			other = interval.Linearised(b.value, b.se, b.parts, confidence)
+			other, err = interval.Linearised(b.value, b.se, b.parts, confidence)
+		}
+		if err != nil {
+			return interval.Interval{}, "", err
 		}
 		method += ", no narrower than " + exact
 		i = interval.Interval{Lower: min(i.Lower, other.Lower), Upper: max(i.Upper, other.Upper)}
 	}
-	return interval.Interval{Lower: max(i.Lower, min(-1, b.value)), Upper: min(i.Upper, 1)}, method
+	return interval.Interval{Lower: max(i.Lower, min(-1, b.value)), Upper: min(i.Upper, 1)}, method, nil
 }
 
 // begin begins a group of coefficients that take so many additions for each

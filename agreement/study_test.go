@@ -110,7 +110,7 @@ func TestMSAStudy(t *testing.T) {
 	}
 	independent := func(what string, e Estimate, want pair) {
 		t.Helper()
-		near(t, what, e.Independent.Upper-e.Value, interval.Normal(0, want.SE, 0.95).Upper, closedForm)
+		near(t, what, e.Independent.Upper-e.Value, must[interval.Interval](t)(interval.Normal(0, want.SE, 0.95)).Upper, closedForm)
 	}
 	for a, name := range names {
 		w, g := got.Within[a], got.Against[a]

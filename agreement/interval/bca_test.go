@@ -30,7 +30,7 @@ func TestBCaOnSpatialTestData(t *testing.T) {
 		rest := append(append([]float64{}, spatialA[:i]...), spatialA[i+1:]...)
 		leftOut = append(leftOut, LeftOut{variance(rest), 1})
 	}
-	near(t, "acceleration", Acceleration(leftOut), 0.061, 0.0005)
+	near(t, "acceleration", must(Acceleration(leftOut)), 0.061, 0.0005)
 	rng := rand.New(rand.NewPCG(1, 2))
 	resampled := make([]float64, 50000)
 	sample := make([]float64, len(spatialA))
@@ -40,7 +40,7 @@ func TestBCaOnSpatialTestData(t *testing.T) {
 		}
 		resampled[b] = variance(sample)
 	}
-	got := BCa(estimate, resampled, leftOut, 0.90)
+	got := must(BCa(estimate, resampled, leftOut, 0.90))
 	// The printed limits carry the noise of 2000 resamples: a few units.
 	near(t, "lower", got.Lower, 115.8, 4)
 	near(t, "upper", got.Upper, 259.6, 8)
@@ -48,12 +48,11 @@ func TestBCaOnSpatialTestData(t *testing.T) {
 
 func TestBCaHoldsTheEstimate(t *testing.T) {
 	for name, resampled := range map[string][]float64{
-		"none":      nil,
 		"all alike": {0.5, 0.5, 0.5},
 		"all above": {0.8, 0.9, 1},
 		"all below": {0.1, 0.2, 0.3},
 	} {
-		got := BCa(0.5, resampled, []LeftOut{{0.4, 3}, {0.9, 1}}, 0.95)
+		got := must(BCa(0.5, resampled, []LeftOut{{0.4, 3}, {0.9, 1}}, 0.95))
 		if !got.Contains(0.5) {
 			t.Errorf("%s: %v does not hold the estimate", name, got)
 		}
@@ -63,7 +62,7 @@ func TestBCaHoldsTheEstimate(t *testing.T) {
 // The confidence expanded for two parts rounds to 1.
 func TestBCaOfTwoParts(t *testing.T) {
 	for _, leftOut := range [][]LeftOut{nil, {{0.2, 1}, {0.9, 1}}, {{0.2, 1}, {0.9, 5}}, {{0.2, 5}, {0.9, 1}}} {
-		got := BCa(0.5, []float64{0.1, 0.4, 0.5, 0.6, 0.9}, leftOut, Expanded(0.95, 2))
+		got := must(BCa(0.5, []float64{0.1, 0.4, 0.5, 0.6, 0.9}, leftOut, Expanded(0.95, 2)))
 		if want := (Interval{0.1, 0.9}); got != want {
 			t.Errorf("%v: %v, want all that was resampled, %v", leftOut, got, want)
 		}
@@ -74,7 +73,7 @@ func TestBCaOfTwoParts(t *testing.T) {
 // −1/47 as five sums of the same parts in different order give it.
 func TestAccelerationOfRounding(t *testing.T) {
 	leftOut := []LeftOut{{-0.021276595744680771, 4}, {-0.021276595744680549, 1}}
-	if a := Acceleration(leftOut); a != 0 {
+	if a := must(Acceleration(leftOut)); a != 0 {
 		t.Errorf("acceleration %v of values that are alike", a)
 	}
 }

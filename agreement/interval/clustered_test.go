@@ -2,8 +2,11 @@ package interval
 
 import (
 	"encoding/csv"
+	"math"
 	"os"
 	"testing"
+
+	"pgregory.net/rapid"
 )
 
 // msaClusters returns, for each appraiser, misses by bad part and false
@@ -73,14 +76,14 @@ func TestKornGraubardAgainstSurvey(t *testing.T) {
 			independent := w.Estimate * (1 - w.Estimate) / (w.SE * w.SE)
 			if independent > float64(w.Calls) { // survey did not cap
 				near(t, what+" effective, capped", got.Effective, w.Effective*float64(w.Calls)/independent, 1e-6)
-				if got.Lower > w.Lower || got.Upper < w.Upper {
-					t.Errorf("%s: capped [%g, %g] is inside survey's [%g, %g]", what, got.Lower, got.Upper, w.Lower, w.Upper)
+				if got.Published.Lower > w.Lower || got.Published.Upper < w.Upper {
+					t.Errorf("%s: capped [%g, %g] is inside survey's [%g, %g]", what, got.Published.Lower, got.Published.Upper, w.Lower, w.Upper)
 				}
 				continue
 			}
 			near(t, what+" effective", got.Effective, w.Effective, 1e-6)
-			near(t, what+" lower", got.Lower, w.Lower, 1e-6)
-			near(t, what+" upper", got.Upper, w.Upper, 1e-6)
+			near(t, what+" lower", got.Published.Lower, w.Lower, 1e-6)
+			near(t, what+" upper", got.Published.Upper, w.Upper, 1e-6)
 		}
 	}
 }
@@ -117,4 +120,46 @@ func TestKornGraubardWithoutConfidence(t *testing.T) {
 			t.Errorf("confidence %g: %+v", confidence, got)
 		}
 	}
+}
+
+// One miss never shows what no miss cannot, though the published limits do:
+// of 16 parts called three times, by Clopper & Pearson 1 − 0.025^(1/16) for none.
+func TestKornGraubardIsNoSurerThanItsParts(t *testing.T) {
+	one := KornGraubard([]Cluster{{1, 3, 1}, {0, 3, 15}}, 0.95)
+	near(t, "none", 1-math.Pow(0.025, 1.0/16), 0.2059, 5e-5)
+	near(t, "one", one.Upper, 1-math.Pow(0.025, 1.0/16), 1e-12)
+	near(t, "one, published", one.Published.Upper, 0.1211, 5e-5)
+	rapid.Check(t, func(t *rapid.T) {
+		clusters := drawClusters(t)
+		confidence := rapid.SampledFrom([]float64{0, 0.5, 0.9, 0.95, 0.9999, almostOne}).Draw(t, "confidence")
+		r := KornGraubard(clusters, confidence)
+		if r.Parts == 0 {
+			return
+		}
+		none := KornGraubard([]Cluster{{0, 1, r.Parts}}, confidence)
+		if r.Upper < none.Upper || r.Lower > 1-none.Upper+1e-12 {
+			t.Fatalf("%v at %v: %v; no event on %d parts: %v", clusters, confidence, r.Interval, r.Parts, none.Interval)
+		}
+		if r.Upper < r.Published.Upper || r.Lower > r.Published.Lower || !r.Contains(r.Value) {
+			t.Fatalf("%v at %v: %v, published %v", clusters, confidence, r.Interval, r.Published)
+		}
+	})
+}
+
+func drawClusters(t *rapid.T) []Cluster {
+	var clusters []Cluster
+	for range rapid.IntRange(0, 6).Draw(t, "kinds of part") {
+		calls := rapid.IntRange(0, 30).Draw(t, "calls")
+		clusters = append(clusters, Cluster{rapid.IntRange(0, calls).Draw(t, "events"), calls, rapid.IntRange(0, 20).Draw(t, "parts")})
+	}
+	return clusters
+}
+
+// A limit of one side is one of the two at the confidence turned about.
+func TestOneSidedLimitOfARate(t *testing.T) {
+	near(t, "each side", EachSide(0.95), 0.90, 1e-15)
+	near(t, "each side", EachSide(0.3), 0, 0)
+	// Without an event a rate is a share of parts, whose one-sided limit is
+	// checked against SciPy.
+	near(t, "upper", KornGraubard([]Cluster{{0, 3, 59}}, EachSide(0.95)).Upper, UpperLimit(0, 59, 0.95), 1e-15)
 }

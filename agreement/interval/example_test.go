@@ -35,11 +35,18 @@ func ExampleKornGraubard() {
 		{Events: 1, Calls: 3, Parts: 2},
 		{Events: 2, Calls: 3, Parts: 2},
 	}, 0.95)
+	shown := interval.KornGraubard([]interval.Cluster{
+		{Events: 0, Calls: 3, Parts: 12},
+		{Events: 1, Calls: 3, Parts: 2},
+		{Events: 2, Calls: 3, Parts: 2},
+	}, interval.EachSide(0.95)).Upper
 	calls := interval.ClopperPearson(6, 48, 0.95)
 	fmt.Printf("%d of %d: %.3f to %.3f, worth %.1f calls\n", r.Events, r.Calls, r.Lower, r.Upper, r.Effective)
+	fmt.Printf("one-sided: not above %.3f\n", shown)
 	fmt.Printf("were the calls independent: %.3f to %.3f\n", calls.Lower, calls.Upper)
 	// Output:
 	// 6 of 48: 0.030 to 0.308, worth 27.2 calls
+	// one-sided: not above 0.276
 	// were the calls independent: 0.047 to 0.252
 }
 
@@ -67,7 +74,11 @@ func ExampleBCa() {
 		rest := append(append([]float64{}, sample[:i]...), sample[i+1:]...)
 		leftOut = append(leftOut, interval.LeftOut{Value: mean(rest), Parts: 1})
 	}
-	i := interval.BCa(mean(sample), resampled, leftOut, 0.95)
+	i, err := interval.BCa(mean(sample), resampled, leftOut, 0.95)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
 	fmt.Printf("%.2f: %.1f to %.1f\n", mean(sample), i.Lower, i.Upper)
 	// Output:
 	// 0.55: 0.4 to 0.7

@@ -48,9 +48,8 @@ func shareOfParts(share, confidence float64) projection {
 	}
 }
 
-// rateOverCalls projects a rate over calls: the limits of Korn & Graubard, no
-// surer than the number of parts (interval.Rate.NoSurerThanParts), in a study
-// that holds each part of this one so many
+// rateOverCalls projects a rate over calls: the limits of
+// interval.KornGraubard in a study that holds each part of this one so many
 // times, which need not be a whole number.
 func rateOverCalls(clusters []interval.Cluster, confidence float64) projection {
 	now := interval.KornGraubard(clusters, confidence)
