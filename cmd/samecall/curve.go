@@ -23,8 +23,7 @@ func (c *curve) addFlags(cmd *cobra.Command) {
 }
 
 func (c *curve) addLink(cmd *cobra.Command) {
-	cmd.Flags().StringVar(&c.link, "link", "probit", "shape of the curve: probit (normal) or logit (heavier tails)")
-	_ = cmd.RegisterFlagCompletionFunc("link", cobra.FixedCompletions([]string{"probit", "logit"}, cobra.ShellCompDirectiveNoFileComp))
+	addChoice(cmd, &c.link, "link", "probit", "shape of the curve: probit (normal) or logit (heavier tails)", "probit", "logit")
 }
 
 // options returns what signal is to do; confidence may be 0 for the usual one.

@@ -49,7 +49,7 @@ All of them are invented. Files that are there already are not overwritten.`,
 			return nil
 		},
 	}
-	cmd.Flags().StringVar(&to, "to", "", "write the example's files into this `folder`")
+	addText(cmd.Flags(), &to, "to", "folder", "write the example's files into this folder")
 	return cmd
 }
 

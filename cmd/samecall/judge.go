@@ -98,14 +98,14 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 	f.SortFlags = false
 	f.BoolVar(&full, "full", false, "every table, not the one screen")
 	out.addFlags(f)
-	f.StringVar(&require, "require", "", "end with status 1 unless the verdict is at least this good: accept or conditional")
+	addChoice(cmd, &require, "require", "", "end with status 1 unless the verdict is at least this good", "accept", "conditional")
 	f.BoolVar(&shown, "shown", false, "with --require: hold the one-sided limit of every figure to that level, not the estimate")
-	f.StringVar(&pairing, "pairing", "matched", "calls of two appraisers side by side: matched, of trials with the same number, or all trials with all")
+	addChoice(cmd, &pairing, "pairing", "matched", "calls of two appraisers side by side: matched, of trials with the same number, or all trials with all", "matched", "all")
 	f.IntVar(&opt.Resamples, "resamples", opt.Resamples, "resamples of whole parts for the intervals of kappas; 0 for linearised ones")
+	describe(f, "resamples", "number", "a whole number such as 2000, or 0")
 	f.Uint64Var(&opt.Seed, "seed", opt.Seed, "of the resampling; the same seed gives the same answer")
+	describe(f, "seed", "number", "a whole number of 0 or more")
 	f.BoolVar(&opt.Independent, "independent", false, "in the JSON, also the intervals that treat calls as independent, which they are not")
-	_ = cmd.RegisterFlagCompletionFunc("require", cobra.FixedCompletions([]string{"accept", "conditional"}, cobra.ShellCompDirectiveNoFileComp))
-	_ = cmd.RegisterFlagCompletionFunc("pairing", cobra.FixedCompletions([]string{"matched", "all"}, cobra.ShellCompDirectiveNoFileComp))
 	src.addFlags(cmd)
 	return cmd
 }

@@ -25,13 +25,15 @@ type outputs struct {
 	figures                         string
 }
 
+const jsonUsage = "write everything as JSON to this file, for programs; - for standard output"
+
 func (o *outputs) addFlags(f *pflag.FlagSet) {
-	f.StringVar(&o.html, "html", "", "write the record as one page to this `file`, for the auditor; - for standard output")
-	f.StringVar(&o.json, "json", "", "write everything as JSON to this `file`, for programs; - for standard output")
-	f.StringVar(&o.markdown, "markdown", "", "write the record as Markdown to this `file`; - for standard output")
-	f.StringVar(&o.csv, "csv", "", "write every table as CSV to this `file`; - for standard output")
-	f.StringVar(&o.xlsx, "xlsx", "", "write every table to a workbook, this `file`, a sheet each")
-	f.StringVar(&o.figures, "figures", "", "write every figure as SVG and PNG into this `folder`, in place of those of an earlier study")
+	addText(f, &o.html, "html", "file", "write the record as one page to this file, for the auditor; - for standard output")
+	addText(f, &o.json, "json", "file", jsonUsage)
+	addText(f, &o.markdown, "markdown", "file", "write the record as Markdown to this file; - for standard output")
+	addText(f, &o.csv, "csv", "file", "write every table as CSV to this file; - for standard output")
+	addText(f, &o.xlsx, "xlsx", "file", "write every table to a workbook, this file, a sheet each")
+	addText(f, &o.figures, "figures", "folder", "write every figure as SVG and PNG into this folder, in place of those of an earlier study")
 }
 
 type writer struct {
@@ -153,7 +155,7 @@ func commandLine(cmd *cobra.Command, args []string) string {
 			return
 		}
 		value := f.Value.String()
-		if list, ok := f.Value.(pflag.SliceValue); ok {
+		if list, ok := inner(f).(pflag.SliceValue); ok {
 			value = shell.List(list.GetSlice())
 		}
 		words = append(words, "--"+f.Name+"="+value)

@@ -21,8 +21,8 @@ type riskFlags struct {
 	towards              string
 	values, column       string
 	cutLower, cutUpper   float64
-	sigma                []float64
-	guard                []float64
+	sigma                numberList
+	guard                numberList
 	target               float64
 	shown                bool
 	costEscape, costFail float64
@@ -91,23 +91,22 @@ written, 3 the data is wrong or gives no curve.`,
 func (a *riskFlags) addFlags(cmd *cobra.Command) {
 	f := cmd.Flags()
 	f.SortFlags = false
-	f.Float64Var(&a.mean, "mean", 0, "mean of the process, assumed normal")
-	f.Float64Var(&a.sd, "sd", 0, "standard deviation of the process")
-	f.Float64Var(&a.cp, "cp", 0, "capability Cp of the process, in place of mean and standard deviation")
-	f.Float64Var(&a.cpk, "cpk", 0, "capability Cpk of the process")
-	f.StringVar(&a.towards, "towards", "", "the limit that the process lies nearer to, where Cpk is less than Cp: lower or upper")
-	f.StringVar(&a.values, "process-values", "", "`file` with measured values of the process, CSV or .xlsx; no distribution is laid through them")
-	f.StringVar(&a.column, "process-column", "", "its column; without it the only one, or the one named value")
-	f.Var((*numberList)(&a.guard), "guard", "guard bands of the table, such as 0,0.002,0.004; without it multiples of σ")
-	f.Float64Var(&a.target, "escape-target", 0, "find the guard band that holds the escapes under so many ppm")
+	addNumber(f, &a.mean, "mean", "12.009", "mean of the process, assumed normal")
+	addNumber(f, &a.sd, "sd", "0.003", "standard deviation of the process")
+	addNumber(f, &a.cp, "cp", "1.33", "capability Cp of the process, in place of mean and standard deviation")
+	addNumber(f, &a.cpk, "cpk", "1.0", "capability Cpk of the process")
+	addChoice(cmd, &a.towards, "towards", "", "the limit that the process lies nearer to, where Cpk is less than Cp", "lower", "upper")
+	addText(f, &a.values, "process-values", "file", "file with measured values of the process, CSV or .xlsx; no distribution is laid through them")
+	addText(f, &a.column, "process-column", "name", "its column; without it the only one, or the one named value")
+	addNumbers(f, &a.guard, "guard", "numbers with commas between them, such as 0,0.002,0.004", "guard bands of the table, such as 0,0.002,0.004; without it multiples of σ")
+	addNumber(f, &a.target, "escape-target", "10", "find the guard band that holds the escapes under so many ppm")
 	f.BoolVar(&a.shown, "shown", false, "with --escape-target: hold the upper bound of the interval under it, not the estimate")
-	f.Float64Var(&a.costEscape, "cost-escape", 0, "find the cheapest guard band: cost of an escape")
-	f.Float64Var(&a.costFail, "cost-reject", 0, "and of a good part rejected, in the same money")
-	f.StringVar(&a.appraiser, "appraiser", "", "the curve of this appraiser in place of all together")
-	f.Float64Var(&a.cutLower, "cut-lower", 0, "without a study: the value accepted half of the time at the lower limit")
-	f.Float64Var(&a.cutUpper, "cut-upper", 0, "and at the upper limit")
-	f.Var((*numberList)(&a.sigma), "sigma", "without a study: σ of the inspection, or those at the lower and the upper limit")
-	_ = cmd.RegisterFlagCompletionFunc("towards", cobra.FixedCompletions([]string{"lower", "upper"}, cobra.ShellCompDirectiveNoFileComp))
+	addNumber(f, &a.costEscape, "cost-escape", "500", "find the cheapest guard band: cost of an escape")
+	addNumber(f, &a.costFail, "cost-reject", "4", "and of a good part rejected, in the same money")
+	addText(f, &a.appraiser, "appraiser", "name", "the curve of this appraiser in place of all together")
+	addNumber(f, &a.cutLower, "cut-lower", "9.95", "without a study: the value accepted half of the time at the lower limit")
+	addNumber(f, &a.cutUpper, "cut-upper", "10.05", "and at the upper limit")
+	addNumbers(f, &a.sigma, "sigma", "a number such as 0.005, or two with a comma between them", "without a study: σ of the inspection, or those at the lower and the upper limit")
 }
 
 // given reports whether any of the flags was given.

@@ -118,18 +118,22 @@ how many good ones are thrown out, and how far the study can show it.`,
 	root.SetVersionTemplate("samecall {{.Version}}\n")
 	root.SetFlagErrorFunc(flagError)
 	root.AddCommand(newJudge(s), newCheck(s), newZone(s), newRisk(s), newShort(s), newFlaw(s), newExample(s))
-	refuseUnknown(root)
+	root.SetUsageTemplate(strings.ReplaceAll(root.UsageTemplate(), ".FlagUsages ", ".FlagUsagesWrapped 100 "))
+	ownHelp(root)
 	return root
 }
 
-// refuseUnknown makes cobra's own commands, help and completion, refuse what
-// they do not know, as the others do.
-func refuseUnknown(root *cobra.Command) {
+// ownHelp makes cobra's own commands, help and completion, explain themselves
+// and refuse what they do not know, as the others do.
+func ownHelp(root *cobra.Command) {
 	root.InitDefaultHelpCmd()
 	root.InitDefaultCompletionCmd()
 	for _, c := range root.Commands() {
 		switch c.Name() {
 		case "help":
+			c.Short = "What a command does, with examples"
+			c.Long = "help tells what a command does and lists its flags, as --help behind the command does."
+			c.Example = "  samecall help judge"
 			c.Args = func(_ *cobra.Command, args []string) error {
 				found, rest, err := root.Find(args)
 				if err != nil || len(rest) > 0 || found == nil {
@@ -138,6 +142,7 @@ func refuseUnknown(root *cobra.Command) {
 				return nil
 			}
 		case "completion":
+			explainCompletion(c)
 			c.Args = func(_ *cobra.Command, args []string) error {
 				if len(args) > 0 {
 					return fmt.Errorf("there is no shell %q; expected bash, fish, powershell or zsh", args[0])

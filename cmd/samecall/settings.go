@@ -14,6 +14,7 @@ import (
 
 	"samecall/cmd/samecall/internal/example"
 	"samecall/cmd/samecall/internal/study"
+	"samecall/cmd/samecall/internal/verdict"
 )
 
 // source is what a command is to read: the file named on the command line or
@@ -30,34 +31,35 @@ type source struct {
 func (s *source) addFlags(cmd *cobra.Command) {
 	f := cmd.Flags()
 	f.SortFlags = false
-	f.StringVar(&s.example, "example", "", "read a built-in study instead of a file; samecall example lists them")
-	f.StringVar(&s.study, "study", "", "study file (TOML) with the settings, where the calls file is named on its own")
-	f.StringVar(&s.settings.Calls, "calls", "", "calls file, in place of the one that the study file names")
-	f.StringVar(&s.settings.Sheet, "sheet", "", "sheet of a workbook; the first if not given")
-	f.StringVar(&s.settings.Title, "title", "", "what the study is called in the answer")
-	f.StringVar(&s.settings.Characteristic, "characteristic", "", "what is inspected")
-	f.StringVar(&s.settings.Gauge, "gauge", "", "what it is inspected with")
-	f.StringVar(&s.settings.Unit, "unit", "", "unit of values and limits")
-	f.Float64Var(&s.lower, "lower", 0, "lower specification limit")
-	f.Float64Var(&s.upper, "upper", 0, "upper specification limit")
-	addWords(f, &s.settings.Accept, "accept", "words that accept a part, such as go,pass")
-	addWords(f, &s.settings.Reject, "reject", "words that reject a part")
-	addWords(f, &s.settings.Order, "order", "grades from best to worst, where calls are grades")
-	addWords(f, &s.settings.Categories, "categories", "kinds of calls, where they have no order")
-	addWords(f, &s.settings.Ignore, "ignore", "columns of the calls file to leave out")
-	f.Float64Var(&s.settings.Confidence, "confidence", 0, "of every interval; 0.95 if not given")
+	addText(f, &s.example, "example", "name", "read a built-in study instead of a file; samecall example lists them")
+	addText(f, &s.study, "study", "file", "study file (TOML) with the settings, where the calls file is named on its own")
+	addText(f, &s.settings.Calls, "calls", "file", "calls file, in place of the one that the study file names")
+	addText(f, &s.settings.Sheet, "sheet", "name", "sheet of a workbook; the first if not given")
+	addText(f, &s.settings.Title, "title", "text", "what the study is called in the answer")
+	addText(f, &s.settings.Characteristic, "characteristic", "text", "what is inspected")
+	addText(f, &s.settings.Gauge, "gauge", "text", "what it is inspected with")
+	addText(f, &s.settings.Unit, "unit", "text", "unit of values and limits")
+	addNumber(f, &s.lower, "lower", "12.000", "lower specification limit")
+	addNumber(f, &s.upper, "upper", "12.018", "upper specification limit")
+	accept, reject := study.UsualWords()
+	addWords(f, &s.settings.Accept, "accept", "go,pass", "words that accept a part, such as go,pass; without --accept and --reject: "+accept)
+	addWords(f, &s.settings.Reject, "reject", "nogo,fail", "words that reject a part, such as nogo,fail; without --accept and --reject: "+reject)
+	addWords(f, &s.settings.Order, "order", "A,B,C", "grades from best to worst, where calls are grades, such as A,B,C")
+	addWords(f, &s.settings.Categories, "categories", "fine,dent,burr", "kinds of calls, where they have no order, such as fine,dent,burr")
+	addWords(f, &s.settings.Ignore, "ignore", "date,remark", "columns of the calls file to leave out, such as date,remark")
+	addConfidence(f, &s.settings.Confidence, 0)
 	s.pairs = make(map[string]*levels)
-	for _, c := range []struct{ name, usage string }{
-		{"effectiveness", "accept and conditional level, such as 0.9,0.8"},
-		{"miss", "accept and conditional level of the miss rate, such as 0.02,0.05"},
-		{"false-alarm", "accept and conditional level of the false-alarm rate, such as 0.05,0.10"},
-		{"kappa", "accept and conditional level of kappa, against the reference and between appraisers, such as 0.75,0.40"},
+	for _, c := range []struct{ name, criterion, what string }{
+		{"effectiveness", verdict.Effectiveness, "effectiveness"},
+		{"miss", verdict.Miss, "the miss rate"},
+		{"false-alarm", verdict.FalseAlarm, "the false-alarm rate"},
+		{"kappa", verdict.Kappa, "kappa, against the reference and between appraisers"},
 	} {
 		s.pairs[c.name] = new(levels)
-		f.Var(s.pairs[c.name], c.name, c.usage)
+		addLevels(f, s.pairs[c.name], c.name, c.what, verdict.Default[c.criterion])
 	}
-	f.StringVar(&s.members[0], "gauge-sizes-lower", "", "calibrated gauge member at the lower limit, such as size=9.997,uncertainty=0.0008,wear_limit=9.999")
-	f.StringVar(&s.members[1], "gauge-sizes-upper", "", "calibrated gauge member at the upper limit, likewise")
+	addText(f, &s.members[0], "gauge-sizes-lower", "sizes", "calibrated gauge member at the lower limit, such as size=9.997,uncertainty=0.0008,wear_limit=9.999")
+	addText(f, &s.members[1], "gauge-sizes-upper", "sizes", "calibrated gauge member at the upper limit, likewise")
 	_ = cmd.RegisterFlagCompletionFunc("example", completeExamples)
 }
 
@@ -195,19 +197,11 @@ func flagError(cmd *cobra.Command, err error) error {
 		if errors.Is(err, errTwice) {
 			return fmt.Errorf("--%s is given twice; give both levels at once, with a comma between them", flag.Name)
 		}
-		if expected := flagValues[flag.Value.Type()]; expected != "" {
-			return fmt.Errorf("--%s is %q; expected %s", flag.Name, invalid.GetValue(), expected)
+		expected := "true or false" // of a flag that is on or off
+		if v, ok := flag.Value.(value); ok {
+			expected = v.expected
 		}
+		return fmt.Errorf("--%s is %q; expected %s", flag.Name, invalid.GetValue(), expected)
 	}
 	return fmt.Errorf("%w; %s --help lists what there is", err, cmd.CommandPath())
-}
-
-// flagValues says what a flag expects, by the type of its value.
-var flagValues = map[string]string{
-	"bool":         "true or false",
-	"float64":      "a number such as 12.018",
-	"float64Slice": "numbers with commas between them, such as 0.9,0.8",
-	"int":          "a whole number such as 1000",
-	"uint64":       "a whole number of 0 or more",
-	"stringSlice":  "words with commas between them, such as go,pass",
 }

@@ -21,11 +21,11 @@ type smallSource struct {
 
 func (s *smallSource) addFlags(cmd *cobra.Command) {
 	f := cmd.Flags()
-	f.StringVar(&s.title, "title", "", "what the study is called in the answer")
-	f.StringVar(&s.unit, "unit", "", "unit of the values")
-	f.StringVar(&s.sheet, "sheet", "", "sheet of a workbook; the first if not given")
-	addWords(f, &s.ignore, "ignore", "columns of the file to leave out")
-	f.Float64Var(&s.confidence, "confidence", study.DefaultConfidence, "of the intervals")
+	addText(f, &s.title, "title", "text", "what the study is called in the answer")
+	addText(f, &s.unit, "unit", "text", "unit of the values")
+	addText(f, &s.sheet, "sheet", "name", "sheet of a workbook; the first if not given")
+	addWords(f, &s.ignore, "ignore", "date,remark", "columns of the file to leave out, such as date,remark")
+	addConfidence(f, &s.confidence, study.DefaultConfidence)
 }
 
 // read reads the table that the command line names.
@@ -113,9 +113,8 @@ written, 3 the data is wrong.`,
 	}
 	f := cmd.Flags()
 	f.SortFlags = false
-	f.Float64Var(&limit, "limit", 0, "the specification limit that the study was made at")
-	f.StringVar(&sideName, "side", "", "whether it is the lower or the upper one: lower or upper")
-	_ = cmd.RegisterFlagCompletionFunc("side", cobra.FixedCompletions([]string{"lower", "upper"}, cobra.ShellCompDirectiveNoFileComp))
+	addNumber(f, &limit, "limit", "-0.010", "the specification limit that the study was made at")
+	addChoice(cmd, &sideName, "side", "", "whether it is the lower or the upper one", "lower", "upper")
 	addJSON(cmd, &jsonFile)
 	shape.addLink(cmd)
 	src.addFlags(cmd)

@@ -75,7 +75,8 @@ written, 3 the data is wrong or holds no values or limits.`,
 	f.BoolVar(&every, "every-part", false, "list every part beside the curve, not only those near the limits")
 	addJSON(cmd, &jsonFile)
 	shape.addFlags(cmd)
-	f.Float64Var(&spread, "spread", 5.15, "number of σ that the unanimous zone is taken to span: 5.15 or 6")
+	f.Float64Var(&spread, "spread", 5.15, "number of σ that the unanimous zone is taken to span")
+	describe(f, "spread", "5.15|6", "5.15 or 6")
 	src.addFlags(cmd)
 	return cmd
 }
@@ -99,7 +100,7 @@ func needValues(st *study.Study) error {
 }
 
 func addJSON(cmd *cobra.Command, file *string) {
-	cmd.Flags().StringVar(file, "json", "", "write everything as JSON to this `file`, for programs; - for standard output")
+	addText(cmd.Flags(), file, "json", "file", jsonUsage)
 }
 
 // jsonOrText writes the JSON to the file, if one is named, and the text to

@@ -48,12 +48,13 @@ type Criteria struct {
 	Kappa         *[2]float64
 }
 
-const confidences = "a number from 0.5 to 0.9999, such as 0.95"
+// Confidences says which ones CheckConfidence takes.
+const Confidences = "a number from 0.5 to 0.9999, such as 0.95"
 
 // CheckConfidence refuses a confidence at which limits say nothing.
 func CheckConfidence(c float64) error {
 	if !(c >= 0.5 && c <= 0.9999) {
-		return fmt.Errorf("confidence is %v; expected %s", c, confidences)
+		return fmt.Errorf("confidence is %v; expected %s", c, Confidences)
 	}
 	return nil
 }
@@ -295,7 +296,7 @@ func confidenceKey(to *float64) func(any) error {
 	return func(v any) error {
 		f, ok := number(v)
 		if !ok || CheckConfidence(f) != nil {
-			return wrongType(v, confidences)
+			return wrongType(v, Confidences)
 		}
 		*to = f
 		return nil

@@ -16,6 +16,12 @@ var (
 	rejectWords = []string{"reject", "fail", "nogo", "no-go", "nok", "ng", "bad", "nonconforming", "no", "0", "-"}
 )
 
+// UsualWords lists the calls that are understood where the settings do not
+// name any.
+func UsualWords() (accept, reject string) {
+	return strings.Join(acceptWords, ","), strings.Join(rejectWords, ",")
+}
+
 // Names of the two categories of a pass/fail study, by their index.
 var passFailNames = []string{"reject", "accept"}
 
