@@ -26,6 +26,9 @@ type work struct {
 }
 
 func main() {
+	if len(os.Args) > 2 && os.Args[1] == one {
+		os.Exit(measureOne(os.Args[2:]))
+	}
 	rounds := flag.Int("rounds", 5, "how often each process is run")
 	flag.Parse()
 	if err := measure(*rounds); err != nil {
@@ -82,15 +85,3 @@ func measure(rounds int) error {
 }
 
 func ms(d time.Duration) float64 { return float64(d) / float64(time.Millisecond) }
-
-// timed runs a process and returns how long it took and the most memory it held.
-func timed(args []string) (time.Duration, int64, error) {
-	cmd := exec.Command(args[0], args[1:]...)
-	begun := time.Now()
-	out, err := cmd.CombinedOutput()
-	took := time.Since(begun)
-	if err != nil {
-		return 0, 0, fmt.Errorf("%w\n%s", err, out)
-	}
-	return took, peakMemory(cmd.ProcessState), nil
-}
