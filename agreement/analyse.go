@@ -1,5 +1,7 @@
 package agreement
 
+import "fmt"
+
 // Analysis is all that a study says about agreement. Appraisers, parts and
 // categories are numbered as in its Ratings.
 type Analysis struct {
@@ -29,15 +31,19 @@ type study struct {
 }
 
 // Analyse computes the agreement of each appraiser with itself, of appraisers
-// with each other, and of all with the reference. It returns an error if an
-// option is out of range or a call is no category of the study; what a study
-// cannot say is absent from the result, with its reason.
+// with each other, and of all with the reference. It returns an error if there
+// are no Ratings, if an option is out of range, or if a call or a reference is
+// no category of the study; what a study cannot say is absent from the result,
+// with its reason.
 func Analyse(r *Ratings, opt Options) (*Analysis, error) {
 	if err := opt.check(); err != nil {
 		return nil, err
 	}
 	if err := r.validate(); err != nil {
 		return nil, err
+	}
+	if n := len(opt.Names); n != 0 && n != r.Appraisers() {
+		return nil, fmt.Errorf("agreement: %d names for %d appraisers", n, r.Appraisers())
 	}
 	s := &study{Ratings: r, patterns: r.patterns(), opt: opt}
 	s.resampler = newResampler(s.patterns, opt, s.coefficients())
@@ -64,9 +70,7 @@ func Analyse(r *Ratings, opt Options) (*Analysis, error) {
 }
 
 // of returns the calls of one appraiser in a row.
-func (s *study) of(row []Category, appraiser int) []Category {
-	return row[s.first[appraiser]:s.first[appraiser+1]]
-}
+func (s *study) of(row []Category, appraiser int) []Category { return s.CallsIn(row, appraiser) }
 
 // callers returns how many appraisers made a call in a row.
 func (s *study) callers(row []Category) int {

@@ -192,8 +192,12 @@ func (s *study) pair(a, b int) Pair {
 }
 
 // TrialPairs returns the trials of two appraisers that are put side by side,
-// the first's and the second's.
+// the first's and the second's. It panics on another Pairing than Matched and
+// All.
 func (r *Ratings) TrialPairs(a, b int, p Pairing) [][2]int {
+	if err := p.check(); err != nil {
+		panic(err.Error())
+	}
 	var pairs [][2]int
 	for t := range r.Trials(a) {
 		for u := range r.Trials(b) {

@@ -1,6 +1,9 @@
 package agreement
 
-import "math"
+import (
+	"fmt"
+	"math"
+)
 
 // Weights says how much two different categories disagree.
 type Weights int
@@ -38,9 +41,12 @@ func (w Weights) matrix(K int) []float64 {
 // Kappa returns Cohen's kappa (Educational and Psychological Measurement 20
 // (1960) 37–46), weighted for ordered categories if so asked (Cohen,
 // Psychological Bulletin 70 (1968) 213–220). It returns an error if the
-// table is malformed or empty, or if both sides used one and the same
-// category only.
+// table is malformed or empty, if both sides used one and the same category
+// only, or if there are no such weights.
 func (t Table) Kappa(w Weights) (float64, error) {
+	if w < Nominal || w > Quadratic {
+		return 0, fmt.Errorf("agreement: weights %d, want Nominal, Linear or Quadratic", int(w))
+	}
 	if err := t.check(); err != nil {
 		return 0, err
 	}

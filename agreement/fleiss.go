@@ -2,6 +2,7 @@ package agreement
 
 import (
 	"errors"
+	"fmt"
 	"math"
 )
 
@@ -12,25 +13,22 @@ import (
 // calls are alike.
 func (c Counts) FleissKappa() (float64, error) { return c.evaluate(fleiss) }
 
-// CategoryKappas returns Fleiss' kappa for each category against all others
-// together. It returns an error as FleissKappa does; a category that no call
-// or every call fell into has kappa NaN.
-func (c Counts) CategoryKappas() ([]float64, error) {
+// CategoryKappa returns Fleiss' kappa of one category against all others
+// together. It returns an error as FleissKappa does, if there is no such
+// category, and if no call or every call is of it.
+func (c Counts) CategoryKappa(category int) (float64, error) {
 	K, err := c.categories()
 	if err != nil {
-		return nil, err
+		return 0, err
 	}
-	kappas := make([]float64, K)
-	for k := range kappas {
-		kappa, err := Counts(onlyCategory(c, k)).FleissKappa()
-		if errors.Is(err, errAlike) {
-			kappa = math.NaN()
-		} else if err != nil {
-			return nil, err
-		}
-		kappas[k] = kappa
+	if category < 0 || category >= K {
+		return 0, fmt.Errorf("agreement: category %d, want 0 to %d", category, K-1)
 	}
-	return kappas, nil
+	kappa, err := Counts(onlyCategory(c, category)).FleissKappa()
+	if errors.Is(err, errAlike) {
+		err = errCategoryUnused
+	}
+	return kappa, err
 }
 
 // Fleiss1979 returns the standard errors of Fleiss' kappa and of each

@@ -13,12 +13,22 @@ const (
 	All
 )
 
-// String returns matched or all.
+// String returns matched or all; of another value, what it is.
 func (p Pairing) String() string {
-	if p == All {
+	switch p {
+	case Matched:
+		return "matched"
+	case All:
 		return "all"
 	}
-	return "matched"
+	return fmt.Sprintf("Pairing(%d)", int(p))
+}
+
+func (p Pairing) check() error {
+	if p != Matched && p != All {
+		return fmt.Errorf("agreement: %v, want Matched or All", p)
+	}
+	return nil
 }
 
 // Options says how a study is analysed. Its zero value is not useful; start
@@ -30,8 +40,8 @@ type Options struct {
 	Pairing     Pairing // of the trials of two appraisers
 	Ordered     bool    // categories are grades in order: weighted kappas too
 	Independent bool    // also the intervals that treat calls as independent
-	// Names are those of the appraisers, for the texts of warnings; without
-	// them an appraiser is told by number, the first as 1.
+	// Names are those of the appraisers, for the texts of warnings: one for
+	// each, or none. Without them an appraiser is told by number, the first as 1.
 	Names []string
 	// Progress, if not nil, is told from time to time how much of the
 	// resampling is done.
@@ -54,8 +64,5 @@ func (o Options) check() error {
 	if o.Resamples < 0 || o.Resamples > MaxResamples {
 		return fmt.Errorf("agreement: %d resamples, want 0 to %d", o.Resamples, MaxResamples)
 	}
-	if o.Pairing != Matched && o.Pairing != All {
-		return fmt.Errorf("agreement: pairing %d, want Matched or All", int(o.Pairing))
-	}
-	return nil
+	return o.Pairing.check()
 }

@@ -24,7 +24,8 @@ const maxCells = math.MaxInt32
 // it, a column for each trial of each appraiser, appraiser by appraiser.
 // Appraisers may have different numbers of trials and any call may be
 // Missing. Parts, appraisers, trials and categories are numbered from 0; a
-// number out of range panics, as an index does.
+// number out of range panics, as an index does. New makes them; the zero value
+// is no study.
 type Ratings struct {
 	parts      int
 	categories int
@@ -71,7 +72,7 @@ func New(parts, categories int, trials []int) (*Ratings, error) {
 func (r *Ratings) Parts() int { return r.parts }
 
 // Appraisers returns the number of appraisers.
-func (r *Ratings) Appraisers() int { return len(r.first) - 1 }
+func (r *Ratings) Appraisers() int { return max(0, len(r.first)-1) }
 
 // Categories returns the number of categories, used or not.
 func (r *Ratings) Categories() int { return r.categories }
@@ -89,24 +90,33 @@ func (r *Ratings) Row(part int) []Category {
 }
 
 // Column returns where in a Row the call of one appraiser in one trial stands.
-func (r *Ratings) Column(appraiser, trial int) int { return r.first[appraiser] + trial }
-
-// Calls returns the calls of one appraiser on one part, a trial each, shared with r.
-func (r *Ratings) Calls(part, appraiser int) []Category {
-	return r.Row(part)[r.first[appraiser]:r.first[appraiser+1]]
+func (r *Ratings) Column(appraiser, trial int) int {
+	if n := r.Trials(appraiser); uint(trial) >= uint(n) {
+		panic(fmt.Sprintf("agreement: trial %d of appraiser %d, who has %d", trial, appraiser, n))
+	}
+	return r.first[appraiser] + trial
 }
 
+// Calls returns the calls of one appraiser on one part, a trial each, shared
+// with r. Appending to them copies.
+func (r *Ratings) Calls(part, appraiser int) []Category { return r.CallsIn(r.Row(part), appraiser) }
+
 // CallsIn returns the calls of one appraiser in a Row, shared with it.
+// Appending to them copies.
 func (r *Ratings) CallsIn(row []Category, appraiser int) []Category {
-	return row[r.first[appraiser]:r.first[appraiser+1]]
+	from, to := r.first[appraiser], r.first[appraiser+1]
+	return row[from:to:to]
 }
 
 // SetReference gives each part the category that it truly belongs to, or
 // Missing. The slice, one entry a part, is kept. It returns an error if there
-// are more or fewer; Analyse returns one if an entry is no category.
+// are more or fewer, or if an entry is no category.
 func (r *Ratings) SetReference(reference []Category) error {
 	if len(reference) != r.parts {
 		return fmt.Errorf("agreement: %d references for %d parts", len(reference), r.parts)
+	}
+	if err := r.checkReference(reference); err != nil {
+		return err
 	}
 	r.reference = reference
 	return nil
@@ -118,6 +128,9 @@ func (r *Ratings) HasReference() bool { return r.reference != nil }
 // Reference returns the category that a part truly belongs to, or Missing.
 func (r *Ratings) Reference(part int) Category {
 	if r.reference == nil {
+		if uint(part) >= uint(r.parts) {
+			panic(fmt.Sprintf("agreement: part %d of %d", part, r.parts))
+		}
 		return Missing
 	}
 	return r.reference[part]
@@ -184,16 +197,43 @@ func (r *Ratings) Count() (made, missing int) {
 	return len(r.calls) - missing, missing
 }
 
-var errCategory = errors.New("agreement: a call or a reference is no category of the study")
-
-// validate checks what Row and SetReference let a caller break.
-func (r *Ratings) validate() error {
-	for _, s := range [][]Category{r.calls, r.reference} {
-		for _, c := range s {
-			if int(c) >= r.categories && c != Missing {
-				return errCategory
-			}
+// unknown returns where the first entry stands that is no category, and -1 if
+// there is none.
+func (r *Ratings) unknown(calls []Category) int {
+	for i, c := range calls {
+		if int(c) >= r.categories && c != Missing {
+			return i
 		}
 	}
+	return -1
+}
+
+func (r *Ratings) checkReference(reference []Category) error {
+	if part := r.unknown(reference); part >= 0 {
+		return fmt.Errorf("agreement: the reference of part %d is %s", part, r.noCategory(reference[part]))
+	}
 	return nil
+}
+
+func (r *Ratings) noCategory(c Category) string {
+	return fmt.Sprintf("%d, no category of the study: want 0 to %d, or Missing", c, r.categories-1)
+}
+
+var errNoRatings = errors.New("agreement: there are no ratings: make them with New")
+
+// validate checks what Row and the slices that are kept let a caller break.
+func (r *Ratings) validate() error {
+	if r == nil || r.first == nil {
+		return errNoRatings
+	}
+	if cell := r.unknown(r.calls); cell >= 0 {
+		part, column := cell/r.columns(), cell%r.columns()
+		appraiser := 0
+		for column >= r.first[appraiser+1] {
+			appraiser++
+		}
+		return fmt.Errorf("agreement: the call of appraiser %d in trial %d on part %d is %s",
+			appraiser, column-r.first[appraiser], part, r.noCategory(r.calls[cell]))
+	}
+	return r.checkReference(r.reference)
 }

@@ -1,6 +1,7 @@
 package agreement
 
 import (
+	"fmt"
 	"math"
 	"strings"
 	"testing"
@@ -30,24 +31,75 @@ func TestMisuse(t *testing.T) {
 		"confidence NaN is not between":      func() error { return with(func(o *Options) { o.Confidence = math.NaN() }) },
 		"-1 resamples":                       func() error { return with(func(o *Options) { o.Resamples = -1 }) },
 		"1000001 resamples, want 0 to 10000": func() error { return with(func(o *Options) { o.Resamples = 1_000_001 }) },
-		"a call or a reference is no": func() error {
+		"the call of appraiser 1 in trial 1 on part 1 is 2, no category of the study: want 0 to 1, or Missing": func() error {
 			r := ok()
 			r.Row(1)[2] = 2
 			_, err := Analyse(r, DefaultOptions())
 			return err
 		},
-		"reference is no category": func() error {
-			r := ok()
-			if err := r.SetReference([]Category{0, 7}); err != nil {
+		"the reference of part 1 is 7, no category": func() error { return ok().SetReference([]Category{0, 7}) },
+		"the reference of part 0 is 9, no category": func() error {
+			r, reference := ok(), []Category{0, Missing}
+			if err := r.SetReference(reference); err != nil {
 				return err
 			}
+			reference[0] = 9 // it is kept
 			_, err := Analyse(r, DefaultOptions())
+			return err
+		},
+		"make them with New":       func() error { _, err := Analyse(nil, DefaultOptions()); return err },
+		"there are no ratings":     func() error { _, err := Analyse(new(Ratings), DefaultOptions()); return err },
+		"1 names for 2":            func() error { return with(func(o *Options) { o.Names = []string{"early"} }) },
+		"3 names for 2":            func() error { return with(func(o *Options) { o.Names = make([]string, 3) }) },
+		"Pairing(9), want Matched": func() error { return with(func(o *Options) { o.Pairing = 9 }) },
+		"weights 7, want Nominal":  func() error { _, err := Table{{1, 2}, {3, 4}}.Kappa(7); return err },
+		"weights -1, want Nominal": func() error { _, _, err := Table{{1, 2}, {3, 4}}.Kappa1969(-1); return err },
+		"category 2, want 0 to 1":  func() error { _, err := Counts{{1, 2}, {3, 4}}.CategoryKappa(2); return err },
+		"category -1, want 0 to 1": func() error { _, err := Counts{{1, 2}, {3, 4}}.CategoryKappa(-1); return err },
+		"no call, or every call, is of this category": func() error {
+			_, err := Counts{{1, 2, 0}, {3, 4, 0}}.CategoryKappa(2)
 			return err
 		},
 	} {
 		if err := f(); err == nil || !strings.Contains(err.Error(), words) {
 			t.Errorf("%v, want words %q", err, words)
 		}
+	}
+}
+
+// What Ratings does not hold is never taken from somewhere else.
+func TestOutOfRangePanics(t *testing.T) {
+	r := must[*Ratings](t)(New(2, 2, []int{2, 1}))
+	for what, f := range map[string]func(){
+		"agreement: trial 2 of appraiser 0, who has 2":  func() { r.Column(0, 2) },
+		"agreement: trial -1 of appraiser 1, who has 1": func() { r.Column(1, -1) },
+		"index out of range [3]":                        func() { r.Column(2, 0) },
+		"index out of range [-1]":                       func() { r.Calls(0, -1) },
+		"slice bounds out of range":                     func() { r.Row(2) },
+		"agreement: part 2 of 2":                        func() { r.Reference(2) },
+		"agreement: Pairing(9), want Matched or All":    func() { r.TrialPairs(0, 1, 9) },
+	} {
+		func() {
+			defer func() {
+				if got := fmt.Sprint(recover()); !strings.Contains(got, what) {
+					t.Errorf("panic %q, want %q", got, what)
+				}
+			}()
+			f()
+		}()
+	}
+	if got := fmt.Sprint(Matched, All, Pairing(9)); got != "matched all Pairing(9)" {
+		t.Error(got)
+	}
+}
+
+// Appending to the calls of one appraiser leaves the next one's alone.
+func TestCallsEndWithTheAppraiser(t *testing.T) {
+	r := must[*Ratings](t)(New(1, 2, []int{1, 1}))
+	_ = append(r.Calls(0, 0), 1)
+	_ = append(r.CallsIn(r.Row(0), 0), 1)
+	if made, _ := r.Count(); made != 0 {
+		t.Errorf("row %v", r.Row(0))
 	}
 }
 

@@ -174,7 +174,7 @@ func (g affected) extent() string {
 
 // name is an appraiser's name, or number where it has none.
 func (s *study) name(appraiser int) string {
-	if appraiser < len(s.opt.Names) {
+	if len(s.opt.Names) > 0 {
 		return s.opt.Names[appraiser]
 	}
 	return fmt.Sprintf("appraiser %d", appraiser+1)
