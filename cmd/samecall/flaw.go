@@ -47,7 +47,7 @@ written, 3 the data is wrong or gives no curve.`,
 			if err != nil {
 				return err
 			}
-			t, st, err := src.read(args, s, study.ReadFlaws)
+			t, st, err := src.read(cmd, args, s, study.ReadFlaws)
 			if err != nil {
 				return err
 			}
@@ -57,7 +57,7 @@ written, 3 the data is wrong or gives no curve.`,
 			}
 			h, err := signal.FitHitMiss(flaws, opt)
 			if err != nil {
-				return statusError{exitWrongData, fmt.Errorf("%s: %w", st.Input.File, whyNoFlawCurve(flaws, err))}
+				return statusError{exitWrongData, fmt.Errorf("%s: %w", t.Input.File, whyNoFlawCurve(flaws, err))}
 			}
 			return jsonOrText(s, jsonFile,
 				func(w io.Writer) error { return report.FlawJSON(w, st, t.Rows, h) },

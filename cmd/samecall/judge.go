@@ -66,7 +66,7 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 			}
 			at := newProgress(s.err)
 			at.at("reading the calls")
-			st, err := src.read(cmd, args, s)
+			st, err := src.readFiled(cmd, args, s)
 			if err != nil {
 				at.end()
 				return err
@@ -81,7 +81,8 @@ is wrong or a file cannot be opened or written, 3 the data is wrong.`,
 			if err != nil {
 				return err
 			}
-			result.Command = commandLine(cmd, args)
+			result.Command = commandLine(cmd, args, src.filed)
+			result.RunIn = src.filed.where(result.Study.Inputs)
 			result.FlagLevels = src.flagLevels(cmd)
 			failed := out.write(s, result)
 			if !out.toStandardOutput() {

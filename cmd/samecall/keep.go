@@ -31,16 +31,22 @@ func written(cmd *cobra.Command) []namedFile {
 	return namedBy(cmd, "html", "json", "markdown", "csv", "xlsx")
 }
 
-// keep refuses a command line on which an output would replace a file that is
-// read, or another output, or cannot be written. No file is opened to be
-// read: some can be read once only. What a study file names, keepRead looks at.
-func keep(cmd *cobra.Command, args []string) error {
+// readBy returns the files that a command line names to be read.
+func readBy(cmd *cobra.Command, args []string) []namedFile {
 	read := namedBy(cmd, "study", "calls", "process-values")
 	for _, a := range args {
 		if a != "-" {
 			read = append(read, namedFile{"the file read", a})
 		}
 	}
+	return read
+}
+
+// keep refuses a command line on which an output would replace a file that is
+// read, or another output, or cannot be written. No file is opened to be
+// read: some can be read once only. What a study file names, keepRead looks at.
+func keep(cmd *cobra.Command, args []string) error {
+	read := readBy(cmd, args)
 	for _, r := range read {
 		if err := keepRead(cmd, r); err != nil {
 			return err

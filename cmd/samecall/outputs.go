@@ -140,10 +140,14 @@ func writeFigures(s streams, dir string, r *report.Record) error {
 	return errors.Join(failed...)
 }
 
-// commandLine is the line that computes a record again: the command with
-// every flag that bears on the figures.
-func commandLine(cmd *cobra.Command, args []string) string {
+// commandLine is the line that computes a record again, in the folder where it
+// is filed: the command with every flag that bears on the figures.
+func commandLine(cmd *cobra.Command, args []string, filed filedNames) string {
 	words := strings.Fields(cmd.CommandPath())
+	args = slices.Clone(args)
+	for i, a := range args {
+		args[i] = filed.word(a)
+	}
 	// Files come first, as people write them, unless one looks like a flag.
 	last := slices.ContainsFunc(args, func(a string) bool { return a != "-" && strings.HasPrefix(a, "-") })
 	if !last {
@@ -157,6 +161,10 @@ func commandLine(cmd *cobra.Command, args []string) string {
 		value := f.Value.String()
 		if list, ok := inner(f).(pflag.SliceValue); ok {
 			value = shell.List(list.GetSlice())
+		}
+		switch f.Name {
+		case "study", "calls":
+			value = filed.word(value)
 		}
 		words = append(words, "--"+f.Name+"="+value)
 	})

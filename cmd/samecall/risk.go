@@ -218,7 +218,7 @@ func (a *riskFlags) fitted(cmd *cobra.Command, src *source, in streams, args []s
 	at := newProgress(in.err)
 	defer at.end()
 	at.at("reading the calls")
-	st, err := src.read(cmd, args, in)
+	st, err := src.readFiled(cmd, args, in)
 	if err != nil {
 		return nil, nil, err
 	}
@@ -242,7 +242,7 @@ func (a *riskFlags) fitted(cmd *cobra.Command, src *source, in streams, args []s
 	if err != nil {
 		return nil, nil, statusError{exitWrongData, err}
 	}
-	r.Appraiser, r.ValuesFile = a.appraiser, file
+	r.Appraiser, r.ValuesFile = a.appraiser, newFiledNames(readBy(cmd, args)).input(file)
 	return r, report.StudyRecord(st), nil
 }
 
@@ -297,6 +297,6 @@ func (a *riskFlags) known(cmd *cobra.Command, src *source, in streams, args []st
 	if err != nil {
 		return nil, err
 	}
-	r.ValuesFile = file
+	r.ValuesFile = newFiledNames(readBy(cmd, args)).input(file)
 	return r, nil
 }

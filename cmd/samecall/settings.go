@@ -25,6 +25,7 @@ type source struct {
 	lower, upper   float64
 	pairs          map[string]*levels
 	members        [2]string // of the gauge, at the lower and the upper limit
+	filed          filedNames
 }
 
 // addFlags gives a command a flag for every setting of the study file.
@@ -93,6 +94,20 @@ func (s *source) read(cmd *cobra.Command, args []string, in streams) (*study.Stu
 		err = fmt.Errorf("%w; the folder is %s", err, folder())
 	}
 	return st, err
+}
+
+// readFiled reads the study that the command line names for what is filed
+// beside its files, and names them so.
+func (s *source) readFiled(cmd *cobra.Command, args []string, in streams) (*study.Study, error) {
+	st, err := s.read(cmd, args, in)
+	if err != nil || s.example != "" {
+		return st, err
+	}
+	s.filed = newFiledNames(readBy(cmd, args))
+	for i, in := range st.Inputs {
+		st.Inputs[i] = s.filed.input(in)
+	}
+	return st, nil
 }
 
 // callsOf is the calls file that a study file names.

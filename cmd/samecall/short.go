@@ -29,12 +29,12 @@ func (s *smallSource) addFlags(cmd *cobra.Command) {
 }
 
 // read reads the table that the command line names.
-func (s *smallSource) read(args []string, in streams, read func(study.Source, string, []string) (*study.Tallies, error)) (*study.Tallies, report.SmallStudy, error) {
+func (s *smallSource) read(cmd *cobra.Command, args []string, in streams, read func(study.Source, string, []string) (*study.Tallies, error)) (*study.Tallies, report.SmallStudy, error) {
 	t, err := read(study.Source{Path: args[0], Stdin: in.in}, s.sheet, s.ignore)
 	if err != nil {
 		return nil, report.SmallStudy{}, err
 	}
-	return t, report.SmallStudy{Title: s.title, Unit: s.unit, Input: t.Input}, nil
+	return t, report.SmallStudy{Title: s.title, Unit: s.unit, Input: newFiledNames(readBy(cmd, args)).input(t.Input)}, nil
 }
 
 // oneTable is the arguments of a command that reads a small table.
@@ -91,7 +91,7 @@ written, 3 the data is wrong.`,
 			if err != nil {
 				return err
 			}
-			t, st, err := src.read(args, s, study.ReadShort)
+			t, st, err := src.read(cmd, args, s, study.ReadShort)
 			if err != nil {
 				return err
 			}
@@ -104,7 +104,7 @@ written, 3 the data is wrong.`,
 				return statusError{exitWrongData, err}
 			}
 			if !short.HasLine && short.FitError != nil {
-				return statusError{exitWrongData, fmt.Errorf("%s gives no figures: %s", st.Input.File, short.Why)}
+				return statusError{exitWrongData, fmt.Errorf("%s gives no figures: %s", t.Input.File, short.Why)}
 			}
 			return jsonOrText(s, jsonFile,
 				func(w io.Writer) error { return report.ShortJSON(w, st, short) },

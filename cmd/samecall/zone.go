@@ -51,7 +51,7 @@ written, 3 the data is wrong or holds no values or limits.`,
 			at := newProgress(s.err)
 			defer at.end()
 			at.at("reading the calls")
-			st, err := src.read(cmd, args, s)
+			st, err := src.readFiled(cmd, args, s)
 			if err != nil {
 				return err
 			}

@@ -20,7 +20,7 @@ type SmallStudy struct {
 func (p *printer) smallHead(s SmallStudy, facts string) {
 	name := s.Title
 	if name == "" {
-		name = s.Input.File
+		name = fileName(s.Input)
 	}
 	p.title(name)
 	p.wrap(facts, "")

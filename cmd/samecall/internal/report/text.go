@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"path/filepath"
 	"slices"
 	"strings"
 
@@ -154,6 +155,7 @@ func (p *printer) table(t Table) {
 // command writes the line that computes the record again as it is to be typed:
 // on one line, however wide the terminal is.
 func (p *printer) command(r *Record) {
+	p.line("")
 	p.wrap(aboveCommand(r), "")
 	p.line(format.Plain(r.Command))
 }
@@ -177,7 +179,16 @@ func studyTitle(s *study.Study) string {
 	if t := s.Settings.Title; t != "" || len(s.Inputs) == 0 {
 		return t
 	}
-	return s.Inputs[len(s.Inputs)-1].File
+	return fileName(s.Inputs[len(s.Inputs)-1])
+}
+
+// fileName is the name of a file without its folders, which say nothing of a
+// study; a device is nothing without its folder.
+func fileName(in study.Input) string {
+	if strings.HasPrefix(in.File, "/dev/") {
+		return in.File
+	}
+	return filepath.Base(in.File)
 }
 
 // facts says in one paragraph what was studied.
