@@ -191,6 +191,8 @@ func TestExtremeStudies(t *testing.T) {
 				// the screen that it is meant for is not.
 				readable(t, out, c.columns, c.columns == 100 && !slices.Contains(c.command, "--full"))
 			}
+			t.Setenv("COLUMNS", "5000") // where no table is cut
+			everyDashHasAReason(t, answered(t, slices.Concat([]string{"judge", "--resamples", "0", "--full"}, s.args)...))
 		})
 	}
 }
@@ -262,6 +264,34 @@ func estimate(t *testing.T, path string, v map[string]any) {
 			t.Errorf("%s is absent, yet %v of %v", path, count, of)
 		case given && (lower < 0 || upper > 1):
 			t.Errorf("%s: the limits of a share are %v and %v", path, lower, upper)
+		}
+	}
+}
+
+// dashInTable is a cell of a table, or half of one, that holds a dash.
+var dashInTable = regexp.MustCompile(`(?m)(  |· |\[)–( ·|\]|  |$)`)
+
+// everyDashHasAReason holds tables to saying why there is a dash in them: below
+// each, every reason once.
+func everyDashHasAReason(t *testing.T, out string) {
+	t.Helper()
+	for _, table := range strings.Split(out, "\n\n") {
+		_, body, isTable := strings.Cut(table, "───\n")
+		if !isTable || strings.HasPrefix(table, "Every call\n") { // its note explains the dash
+			continue
+		}
+		said := make(map[string]bool)
+		for line := range strings.Lines(body) {
+			if !strings.HasPrefix(line, "–: ") {
+				continue
+			}
+			if said[line] {
+				t.Errorf("a reason is told twice:\n%s", table)
+			}
+			said[line] = true
+		}
+		if dashInTable.MatchString(body) != (len(said) > 0) {
+			t.Errorf("the dashes and their reasons do not go together:\n%s", table)
 		}
 	}
 }

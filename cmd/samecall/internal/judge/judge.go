@@ -19,12 +19,14 @@ type Result struct {
 	Leans     []Lean // of each pair of appraisers; nil without accepting categories
 	// Detection holds the detection indices of each appraiser; nil entries
 	// where bad or good parts are lacking.
-	Detection []*signal.Detection
+	Detection   []*signal.Detection
+	NoDetection []error // why an entry is nil
 	// Areas holds the area under each appraiser's ROC curve, where calls are
 	// grades; nil elsewhere, and nil entries as in Detection.
 	Areas    []*signal.Estimate
-	Zone     *Zone // nil where the study has none
-	NoZone   error // why
+	NoArea   []error // why an entry is nil
+	Zone     *Zone   // nil where the study has none
+	NoZone   error   // why
 	Warnings []Warning
 }
 
@@ -54,9 +56,9 @@ func Run(s *study.Study, opt agreement.Options, curve signal.Options) (*Result, 
 	for _, w := range a.Warnings {
 		r.Warnings = append(r.Warnings, Warning{w.Code, w.Text})
 	}
-	r.Detection = detection(s.Ratings, a.Patterns.List, opt.Confidence)
+	r.Detection, r.NoDetection = detection(s.Ratings, a.Patterns.List, opt.Confidence)
 	if opt.Ordered && len(s.Categories) > 2 {
-		r.Areas = areas(s.Ratings, opt.Confidence)
+		r.Areas, r.NoArea = areas(s.Ratings, opt.Confidence)
 	}
 	curve.Confidence = opt.Confidence
 	r.Zone, r.NoZone = NewZone(s, curve)
@@ -80,10 +82,10 @@ func missingCalls(r *agreement.Ratings) (Warning, bool) {
 // ErrNoReference is why a study without a reference has no errors to count.
 var ErrNoReference = errors.New("no part has a reference: nothing is known to be right or wrong")
 
-func detection(r *agreement.Ratings, patterns []agreement.Pattern, confidence float64) []*signal.Detection {
-	all := make([]*signal.Detection, r.Appraisers())
+func detection(r *agreement.Ratings, patterns []agreement.Pattern, confidence float64) (all []*signal.Detection, none []error) {
+	all, none = make([]*signal.Detection, r.Appraisers()), make([]error, r.Appraisers())
 	if !r.HasReference() || !r.HasAccept() {
-		return all
+		return all, none
 	}
 	for a := range all {
 		var bad, good []signal.Tally
@@ -107,19 +109,20 @@ func detection(r *agreement.Ratings, patterns []agreement.Pattern, confidence fl
 				bad = append(bad, t)
 			}
 		}
-		if d, err := signal.DetectByPart(bad, good, confidence); err == nil {
+		d, err := signal.DetectByPart(bad, good, confidence)
+		if none[a] = err; err == nil {
 			all[a] = &d
 		}
 	}
-	return all
+	return all, none
 }
 
 // areas takes the place of a category in the order, from best to worst, as
 // its grade.
-func areas(r *agreement.Ratings, confidence float64) []*signal.Estimate {
-	all := make([]*signal.Estimate, r.Appraisers())
+func areas(r *agreement.Ratings, confidence float64) (all []*signal.Estimate, none []error) {
+	all, none = make([]*signal.Estimate, r.Appraisers()), make([]error, r.Appraisers())
 	if !r.HasReference() || !r.HasAccept() {
-		return all
+		return all, none
 	}
 	for a := range all {
 		var parts []signal.Graded
@@ -136,9 +139,10 @@ func areas(r *agreement.Ratings, confidence float64) []*signal.Estimate {
 			}
 			parts = append(parts, g)
 		}
-		if e, err := signal.AreaUnderROC(parts, confidence); err == nil {
+		e, err := signal.AreaUnderROC(parts, confidence)
+		if none[a] = err; err == nil {
 			all[a] = &e
 		}
 	}
-	return all
+	return all, none
 }

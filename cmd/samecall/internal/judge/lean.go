@@ -9,7 +9,8 @@ type Lean struct {
 	Table agreement.Table // reject, accept: rows A, columns B
 	// Test is the exact test of McNemar, which takes pairs of calls as
 	// independent; nil where they never part.
-	Test *agreement.Test
+	Test   *agreement.Test
+	NoTest error // why
 }
 
 // Places in the Table of a Lean.
@@ -32,8 +33,13 @@ func leans(r *agreement.Ratings, a *agreement.Analysis) []Lean {
 				l.Table[side(r, agreement.Category(x))][side(r, agreement.Category(y))] += n
 			}
 		}
-		if t, err := l.Table.McNemar(); err == nil {
+		switch t, err := l.Table.McNemar(); {
+		case err == nil:
 			l.Test = &t
+		case p.Pairs == 0:
+			l.NoTest = p.Kappa.Absent
+		default:
+			l.NoTest = err
 		}
 		out = append(out, l)
 	}

@@ -54,10 +54,11 @@ type pageFigure struct {
 }
 
 type pageTable struct {
-	ID, Title, Note string
-	Heads           []pageCell
-	Rows            [][]pageCell
-	Class           string
+	ID, Title string
+	Notes     []string
+	Heads     []pageCell
+	Rows      [][]pageCell
+	Class     string
 }
 
 type pageCell struct {
@@ -214,7 +215,7 @@ const (
 )
 
 func newPageTable(t Table) pageTable {
-	out := pageTable{ID: "table-" + strings.ReplaceAll(t.Name, " ", "-"), Title: format.Plain(t.Title), Note: format.Plain(t.Note)}
+	out := pageTable{ID: "table-" + strings.ReplaceAll(t.Name, " ", "-"), Title: format.Plain(t.Title), Notes: plainLines(t.notes())}
 	switch n := len(t.Rows); {
 	case n <= smallTable:
 		out.Class = "small"

@@ -192,6 +192,7 @@ type againstAppraiserJSON struct {
 	Criterion         *float64      `json:"criterion,omitempty"`
 	DPrimeInterval    *estimateJSON `json:"d_prime_interval,omitempty"`
 	CriterionInterval *estimateJSON `json:"criterion_interval,omitempty"`
+	Reason            string        `json:"reason,omitempty"` // why there are none of these
 	ROCArea           *estimateJSON `json:"roc_area,omitempty"`
 }
 
@@ -332,10 +333,17 @@ func newAgainstAppraiser(r *Record, a int) againstAppraiserJSON {
 		out.DPrime, out.Criterion = &d.DPrime.Value, &d.Criterion.Value
 		dPrime, criterion := newSignal(d.DPrime), newSignal(d.Criterion)
 		out.DPrimeInterval, out.CriterionInterval = &dPrime, &criterion
+	} else if none := r.NoDetection[a]; none != nil {
+		out.Reason = none.Error()
 	}
-	if r.Areas != nil && r.Areas[a] != nil {
-		e := newSignal(*r.Areas[a])
-		out.ROCArea = &e
+	if r.Areas == nil {
+		return out
+	}
+	if e := r.Areas[a]; e != nil {
+		area := newSignal(*e)
+		out.ROCArea = &area
+	} else if none := r.NoArea[a]; none != nil {
+		out.ROCArea = &estimateJSON{Reason: none.Error()}
 	}
 	return out
 }

@@ -27,7 +27,7 @@ func leanTable(r *Record) Table {
 	}
 	for _, l := range r.Leans {
 		byA, byB := l.Rejected()
-		p := say(format.Dash)
+		p := dashFor(l.NoTest)
 		if l.Test != nil {
 			p = valueCell(format.Probability(l.Test.P), l.Test.P)
 		}
@@ -39,7 +39,7 @@ func leanTable(r *Record) Table {
 
 func shareOfPairs(n, of int) Cell {
 	if of == 0 {
-		return say(format.Dash)
+		return say(format.Dash) // as p, which says why
 	}
 	share := float64(n) / float64(of)
 	return valueCell(format.Percent(share), share)

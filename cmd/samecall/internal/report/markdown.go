@@ -41,8 +41,8 @@ func Markdown(w io.Writer, r *Record) error {
 		fmt.Fprintf(&s, "## %s\n\n", inline(t.Title))
 		t.markdown(&s)
 		s.WriteByte('\n')
-		if t.Note != "" {
-			fmt.Fprintf(&s, "%s\n\n", md(t.Note))
+		for _, n := range t.notes() {
+			fmt.Fprintf(&s, "%s\n\n", md(n))
 		}
 		if t.Name == "study" {
 			fmt.Fprintf(&s, "%s\n\n", md(aboveCommand(r)))

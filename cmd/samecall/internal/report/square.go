@@ -76,16 +76,17 @@ func (s square) table(kappas bool) Table {
 }
 
 func squareCell(share agreement.Share, kappa agreement.Estimate, kappas, itself bool) Cell {
-	c := Cell{Text: format.Dash}
+	c := dashFor(share.Absent)
 	if share.Absent == nil {
 		c = Cell{Text: format.Percent(share.Value), Value: share.Value}
 	}
 	if kappas {
-		k := format.Dash
+		k := dashFor(kappa.Absent)
 		if kappa.Absent == nil {
-			k = format.Figure(kappa.Value)
+			k.Text = format.Figure(kappa.Value)
 		}
-		c.Text += " · " + k
+		c.Text += " · " + k.Text
+		c.Why = append(c.Why, k.Why...)
 	}
 	if itself {
 		c.Text = "[" + c.Text + "]"

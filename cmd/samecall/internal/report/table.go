@@ -38,9 +38,46 @@ type Cell struct {
 	Of           any // int or nil
 	Bounded      bool
 	Lower, Upper any // float64, or nil for a limit that does not exist
+	// Why are the lines to be read below the table: why there is a dash, or no
+	// interval.
+	Why []string
 }
 
 func say(s string) Cell { return Cell{Text: s} }
+
+// dash is a cell of a figure that is absent, and why.
+func dash(why string) Cell { return Cell{Text: format.Dash, Why: []string{format.Dash + ": " + why}} }
+
+// dashFor is dash with an error for the reason.
+func dashFor(why error) Cell {
+	if why == nil {
+		return say(format.Dash)
+	}
+	return dash(why.Error())
+}
+
+// notes are the paragraphs to read below the table.
+func (t Table) notes() []string {
+	if t.Note == "" {
+		return t.whys()
+	}
+	return append([]string{t.Note}, t.whys()...)
+}
+
+// whys are the reasons of dashes, and of intervals that are lacking, each once.
+func (t Table) whys() []string {
+	var out []string
+	for _, row := range t.Rows {
+		for _, c := range row {
+			for _, why := range c.Why {
+				if why = strings.TrimSuffix(why, ".") + "."; !slices.Contains(out, why) {
+					out = append(out, why)
+				}
+			}
+		}
+	}
+	return out
+}
 
 // render writes a table for a terminal of so many columns: no frame, one
 // line under the heads.

@@ -1,6 +1,7 @@
 package report
 
 import (
+	"cmp"
 	"fmt"
 	"slices"
 	"strings"
@@ -185,7 +186,7 @@ func allNotes(r *Record) []string {
 
 func shareCell(s agreement.Share) Cell {
 	if s.Absent != nil {
-		return say(format.Dash)
+		return dashFor(s.Absent)
 	}
 	return bounded(format.Share(s), s.Estimate)
 }
@@ -194,6 +195,8 @@ func bounded(text string, e agreement.Estimate) Cell {
 	c := Cell{Text: text, Value: e.Value}
 	if e.Unbounded == nil {
 		c.Bounded, c.Lower, c.Upper = true, e.Interval.Lower, e.Interval.Upper
+	} else {
+		c.Why = []string{"No interval: " + e.Unbounded.Error()}
 	}
 	return c
 }
@@ -203,14 +206,14 @@ func valueCell(text string, value any) Cell { return Cell{Text: text, Value: val
 
 func kappaCell(e agreement.Estimate) Cell {
 	if e.Absent != nil {
-		return say(format.Dash)
+		return dashFor(e.Absent)
 	}
 	return bounded(format.Kappa(e), e)
 }
 
 func ofCell(s agreement.Share) Cell {
 	if s.Absent != nil {
-		return say(format.Dash)
+		return dashFor(s.Absent)
 	}
 	return countCell(s.Count, s.Of)
 }
@@ -272,7 +275,7 @@ func errorsTable(r *Record) Table {
 	}
 	worth := func(s agreement.Share) Cell {
 		if s.Absent != nil {
-			return say(format.Dash)
+			return dashFor(s.Absent)
 		}
 		return valueCell(fmt.Sprintf("%.1f", s.Effective), s.Effective)
 	}
@@ -305,27 +308,29 @@ func detectionTable(r *Record) Table {
 		t.Note += " ROC area: how often a bad part gets a worse grade than a good one."
 	}
 	for i, name := range r.Study.Appraisers {
-		row := []Cell{say(name), say(format.Dash), say(format.Dash)}
+		row := []Cell{say(name), dashFor(r.NoDetection[i]), dashFor(r.NoDetection[i])}
 		if d := r.Detection[i]; d != nil {
 			row[1], row[2] = valueCell(format.Figure(d.DPrime.Value), d.DPrime.Value), valueCell(format.Figure(d.Criterion.Value), d.Criterion.Value)
 		}
 		if r.Areas != nil {
-			row = append(row, areaCell(r.Areas[i]))
+			row = append(row, areaCell(r.Areas[i], r.NoArea[i]))
 		}
 		t.Rows = append(t.Rows, row)
 	}
 	return t
 }
 
-func areaCell(e *signal.Estimate) Cell {
+func areaCell(e *signal.Estimate, none error) Cell {
 	if e == nil {
-		return say(format.Dash)
+		return dashFor(none)
 	}
 	c := Cell{Text: format.Figure(e.Value), Value: e.Value}
 	if e.HasLower && e.HasUpper {
 		i := interval.Interval{Lower: e.Lower, Upper: e.Upper}
 		c.Text += " " + format.FigureRange(i)
 		c.Bounded, c.Lower, c.Upper = true, e.Lower, e.Upper
+	} else if e.Why != "" {
+		c.Why = []string{"No interval: " + e.Why}
 	}
 	return c
 }
@@ -413,7 +418,7 @@ func pairingNote(p agreement.Pairing) string {
 	if p == agreement.All {
 		return "Each trial of the one beside each trial of the other."
 	}
-	return "Trial by trial: the first trial of the one beside the first of the other, and so on."
+	return "Trials of the same number are set beside each other."
 }
 
 func coefficientsTable(r *Record) Table {
@@ -520,7 +525,7 @@ func directionTable(r *Record) Table {
 		if test == nil {
 			return
 		}
-		df := say(format.Dash)
+		df := say("") // an exact test has none
 		if test.DF > 0 {
 			df = intCell(test.DF)
 		}
@@ -617,7 +622,7 @@ func decidingCell(c verdict.Criterion) Cell {
 	limit, upper, ok := c.Deciding()
 	switch {
 	case !ok:
-		return say(format.Dash)
+		return dashFor(cmp.Or(c.Estimate.Absent, c.Estimate.Unbounded))
 	case upper:
 		return Cell{Text: "≤ " + c.DecidingText(), Bounded: true, Upper: limit}
 	}
@@ -646,7 +651,7 @@ func criteriaTable(r *Record) Table {
 	}
 	setAside := false
 	add := func(name, figure string, c verdict.Criterion) {
-		found, evidence, settle := say(format.Dash), "", ""
+		found, evidence, settle := dashFor(c.Estimate.Absent), "", ""
 		if c.Met != verdict.NotShown {
 			found, evidence, settle = valueCell(c.Found(), c.Estimate.Value), c.Shows(), settling(c)
 			setAside = setAside || c.Aside != ""

@@ -90,6 +90,7 @@ type printer struct {
 	w    io.Writer
 	term Terminal
 	err  error
+	said map[string]bool // reasons below the tables of one screen, each told once; nil: each below its table
 }
 
 func (p *printer) line(s string) {
@@ -149,6 +150,14 @@ func (p *printer) table(t Table) {
 	}
 	if t.Note != "" {
 		p.wrap(t.Note, "")
+	}
+	for _, why := range t.whys() {
+		if !p.said[why] {
+			p.wrap(why, "")
+		}
+		if p.said != nil {
+			p.said[why] = true
+		}
 	}
 }
 
@@ -257,6 +266,7 @@ const manyAppraisers = 12
 
 // answer writes the one screen.
 func (p *printer) answer(r *Record) {
+	p.said = make(map[string]bool)
 	main := withinTable(r)
 	if r.Agreement.All != nil {
 		main = againstTable(r, false)
@@ -357,6 +367,9 @@ func (p *printer) between(r *Record) {
 		s += " Kappa: " + k.Absent.Error() + "."
 	} else {
 		s += fmt.Sprintf(" Kappa between appraisers %s; Fleiss' kappa of all calls %s.", format.Kappa(k), format.Kappa(b.Fleiss))
+		if k.Unbounded != nil {
+			s += " No interval: " + k.Unbounded.Error() + "."
+		}
 		if note := belowNote(k, b.Fleiss); note != "" {
 			s += " " + note
 		}

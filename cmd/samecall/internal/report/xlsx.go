@@ -103,7 +103,8 @@ const (
 
 func writeSheet(f *excelize.File, sheet string, t Table, l look) error {
 	heads, rows := t.flat()
-	if headRow+len(rows)+2 > excelize.TotalRows { // with the note
+	notes := t.notes()
+	if headRow+len(rows)+1+len(notes) > excelize.TotalRows {
 		return fmt.Errorf("the table %q has %s rows, and a sheet of a workbook holds %s; write it as --csv or --json", t.Name, format.Count(len(rows)), format.Count(excelize.TotalRows))
 	}
 	put := func(column, row int, c flatCell, style int) error {
@@ -139,8 +140,8 @@ func writeSheet(f *excelize.File, sheet string, t Table, l look) error {
 			}
 		}
 	}
-	if t.Note != "" {
-		if err := put(1, headRow+len(rows)+2, flatCell{Value: t.Note}, 0); err != nil {
+	for i, n := range notes {
+		if err := put(1, headRow+len(rows)+2+i, flatCell{Value: n}, 0); err != nil {
 			return err
 		}
 	}

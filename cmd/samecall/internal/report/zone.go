@@ -32,13 +32,13 @@ func zoneTable(r *Record) Table {
 		row := []Cell{say(l.Side.String()), valueCell(s.Value(l.Limit), l.Limit)}
 		if !l.Known() {
 			for range 4 {
-				row = append(row, say(format.Dash))
+				row = append(row, noFit(l))
 			}
 			t.Rows = append(t.Rows, row)
 			continue
 		}
 		cells := zoneCells(s, l)
-		sigma, wide, share := cells[0], cells[3], say(format.Dash)
+		sigma, wide, share := cells[0], cells[3], dash("a share of the tolerance needs both limits")
 		if widthKnown(l) { // their intervals are in zone
 			sigma = valueCell(s.Value(l.Sigma.Value), l.Sigma.Value)
 		}
@@ -71,7 +71,8 @@ func zoneNotes(r *Record, screen bool) []string {
 	} else {
 		c := z.Curves.Pooled
 		for _, l := range []*signal.LimitFit{c.Lower, c.Upper} {
-			if l != nil && l.Status != signal.Fitted && l.Why != "" {
+			told := screen && l != nil && l.HasLimit && !l.Known() // below the table
+			if l != nil && l.Status != signal.Fitted && l.Why != "" && !told {
 				out = append(out, "At the "+l.Side.String()+" limit: "+l.Why+".")
 			}
 		}
@@ -127,7 +128,10 @@ func cutsTable(r *Record) Table {
 	for a, own := range all.Each {
 		row := []Cell{say(r.Study.Appraisers[a])}
 		for _, side := range sides {
-			cell := say(format.Dash)
+			cell := dashFor(all.Errors[a])
+			if own != nil {
+				cell = noFit(side(own))
+			}
 			if own != nil && side(own).Known() {
 				cell = placeCell(s, side(own), side(own).Offset, s.Signed)
 			}
@@ -160,7 +164,13 @@ func zonesTable(r *Record) Table {
 	all := r.Zone.Curves
 	for a, own := range all.Each {
 		for _, l := range limitsOf(own, all.Pooled) {
-			t.Rows = append(t.Rows, append([]Cell{say(r.Study.Appraisers[a]), say(l.side.String())}, zoneCells(s, l.fit)...))
+			cells := []Cell{l.none, l.none, l.none, l.none}
+			if l.fit != nil {
+				cells = zoneCells(s, l.fit)
+			} else if own == nil {
+				cells[0] = dashFor(all.Errors[a])
+			}
+			t.Rows = append(t.Rows, append([]Cell{say(r.Study.Appraisers[a]), say(l.side.String())}, cells...))
 		}
 	}
 	t.Note = testNote(all.SameSigma, "all have one σ")
@@ -171,6 +181,7 @@ func zonesTable(r *Record) Table {
 type sideFit struct {
 	side signal.Side
 	fit  *signal.LimitFit
+	none Cell // stands for what the calls do not tell
 }
 
 // limitsOf are an appraiser's fits at the limits that the pooled curve has.
@@ -180,9 +191,13 @@ func limitsOf(own, pooled *signal.Curve) []sideFit {
 		if of == nil || !of.HasLimit {
 			return
 		}
-		x := sideFit{side: of.Side}
-		if own != nil && fit(own).Known() {
+		x := sideFit{side: of.Side, none: say(format.Dash)}
+		switch {
+		case own == nil:
+		case fit(own).Known():
 			x.fit = fit(own)
+		default:
+			x.none = noFit(fit(own))
 		}
 		out = append(out, x)
 	}
@@ -191,13 +206,19 @@ func limitsOf(own, pooled *signal.Curve) []sideFit {
 	return out
 }
 
+// noFit is a cell at a limit where the calls do not turn.
+func noFit(l *signal.LimitFit) Cell {
+	if l == nil || l.Why == "" {
+		return say(format.Dash)
+	}
+	return dash(l.Why)
+}
+
 // zoneCells are σ, both ends and the width of a grey zone, no more of it than
 // the calls tell: a σ that may be nearly 0 is less than its upper bound, and
 // ends that lie anywhere are not known.
 func zoneCells(s format.Scale, l *signal.LimitFit) []Cell {
 	switch {
-	case l == nil:
-		return []Cell{say(format.Dash), say(format.Dash), say(format.Dash), say(format.Dash)}
 	case widthKnown(l):
 		return []Cell{boundedCell(s, l.Sigma, s.Value), zoneEnd(s, l, l.From), zoneEnd(s, l, l.To), zoneWidth(s, l, false)}
 	case informs(l):
