@@ -123,6 +123,7 @@ func (s *study) cross(w Weights, t Table, pairs func(pattern int, add func(j, k 
 	for i := range s.rows {
 		v := z.of(i)
 		pairs(i, func(j, k Category) { m.add(v, int(j), int(k), 1) })
+		v[disagreed] = m.whole(v[disagreed])
 	}
 	e := s.estimate(m, z, nothing, undefined)
 	if s.opt.Independent && e.Absent == nil {

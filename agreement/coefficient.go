@@ -19,6 +19,8 @@ type coefficient interface {
 	// shares returns the share of each category among all calls; nil where
 	// categories disagree unequally.
 	shares(sums []float64) []float64
+	// views returns orders of the sums in which the coefficient is the same.
+	views(z contributions) [][]int
 }
 
 // evaluate returns the coefficient. It is undefined when nothing can be

@@ -60,6 +60,16 @@ func (t Table) Kappa(w Weights) (float64, error) {
 	return k, nil
 }
 
+// whole takes off what rounding adds to a sum of weights, for it to be the same
+// in whatever order they were added.
+func (m twoMargins) whole(sum float64) float64 {
+	if m.weights == nil {
+		return sum
+	}
+	steps := float64((m.categories - 1) * (m.categories - 1)) // of which each weight is a whole number
+	return math.Round(sum*steps) / steps
+}
+
 // addTable adds a cross-table to sums.
 func (m twoMargins) addTable(sums []float64, t Table) {
 	for j, row := range t {

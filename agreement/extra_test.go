@@ -119,7 +119,7 @@ func TestBCaAgainstBoot(t *testing.T) {
 		left := leaveOneOut(c, z, sums)
 		near(t, name, value, w.Estimate, closedForm)
 		near(t, name+" acceleration", must[float64](t)(interval.Acceleration(left)), w.Acceleration, closedForm)
-		resampled := s.resample(c, z)
+		resampled := s.resample(c, z.canonical(c))
 		for _, l := range []struct{ confidence, lower, upper float64 }{{0.90, w.Lower90, w.Upper90}, {0.95, w.Lower95, w.Upper95}} {
 			got := must[interval.Interval](t)(interval.BCa(value, resampled, left, l.confidence))
 			t.Logf("%s %g: %.4f %.4f, boot %.4f %.4f", name, l.confidence, got.Lower, got.Upper, l.lower, l.upper)

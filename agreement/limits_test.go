@@ -52,6 +52,7 @@ func TestFewPartsExpandTheConfidence(t *testing.T) {
 	s.begin(1)
 	m, z := fleiss(s.counts(func(row []Category) []Category { return row }), s.times)
 	e := s.estimate(m, z, errOneTrial, errWithinAlike)
+	z = z.canonical(m)
 	sums := z.sums()
 	plain := must[interval.Interval](t)(interval.BCa(e.Value, s.resample(m, z), leaveOneOut(m, z, sums), 0.95))
 	expanded := must[interval.Interval](t)(interval.BCa(e.Value, s.resample(m, z), leaveOneOut(m, z, sums), interval.Expanded(0.95, 16)))

@@ -1,5 +1,11 @@
 package agreement
 
+import (
+	"bytes"
+	"cmp"
+	"slices"
+)
+
 // patterns holds the different rows of a study, each with its reference, and
 // how many parts have it. Every figure but the lists of parts depends on the
 // study only through them, and a million parts with ten calls each have but
@@ -31,7 +37,32 @@ func (r *Ratings) patterns() patterns {
 		p.times[i]++
 		p.pattern[part] = i
 	}
+	p.sort()
 	return p
+}
+
+// sort puts the patterns into the order of their rows, so that every sum over
+// them is the same, to its last digit, in whatever order the parts stand.
+func (p *patterns) sort() {
+	order := make([]int32, len(p.rows))
+	for i := range order {
+		order[i] = int32(i)
+	}
+	slices.SortFunc(order, func(i, k int32) int {
+		return cmp.Or(bytes.Compare(p.rows[i], p.rows[k]), cmp.Compare(p.ref[i], p.ref[k]))
+	})
+	sorted := patterns{pattern: p.pattern}
+	place := make([]int32, len(order))
+	for to, from := range order {
+		place[from] = int32(to)
+		sorted.rows = append(sorted.rows, p.rows[from])
+		sorted.ref = append(sorted.ref, p.ref[from])
+		sorted.times = append(sorted.times, p.times[from])
+	}
+	for part, i := range p.pattern {
+		p.pattern[part] = place[i]
+	}
+	*p = sorted
 }
 
 // where returns, in order, the parts whose pattern is chosen.

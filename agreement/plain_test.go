@@ -49,6 +49,10 @@ type shape struct {
 
 var anyShape = shape{1, 12, 1, 5, 4, 5}
 
+// largerShape holds studies whose coefficients are resampled: of few parts
+// outside the commonest category they are linearised.
+var largerShape = shape{25, 40, 1, 4, 3, 4}
+
 // drawStudy draws a study in which most calls are right, some wrong and some
 // missing: one where coefficients exist and differ.
 func drawStudy(t *rapid.T, s shape) plainStudy {

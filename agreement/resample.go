@@ -22,9 +22,8 @@ const (
 	// commonest category above which there is no resampling: about seven
 	// such parts in a study. Our own choice, no source.
 	hardlyAny = 0.005
-	// mostWeights bounds what is kept of the resampled studies, two bytes each.
-	// Beyond it no group of coefficients would be within the budget either.
-	mostWeights = 1e8
+	// mostDrawn bounds what is kept of the resampled studies, two bytes each.
+	mostDrawn = 1e8
 	// fewestBeyond is how many resampled values should lie beyond a limit: of
 	// fewer, the limit hardly goes further however high the confidence. Our own
 	// choice, no source.
@@ -37,12 +36,13 @@ const (
 
 var errOnePart = errors.New("only one part counts: an interval wants two or more")
 
-// resampler draws whole parts, once for all coefficients of a study, so that
-// they all see the same resampled studies.
+// resampler draws whole parts by their place in a row of all parts, once for
+// all coefficients of a study; each has the parts in a row of its own
+// (canonical).
 type resampler struct {
 	opt         Options
-	width       int
-	weights     []uint16 // resample after resample, how often each pattern was drawn; nil: linearise
+	parts       int
+	drawn       []uint16 // resample after resample, how many of the parts drawn stand before each place, and before the end; nil: linearise
 	budget      float64
 	wanted      bool      // asked for, of no more parts than are resampled
 	affordable  bool      // the group of coefficients that was begun
@@ -54,22 +54,31 @@ type resampler struct {
 }
 
 func newResampler(p patterns, opt Options, coefficients int) *resampler {
-	r := &resampler{opt: opt, width: len(p.rows), budget: resamplingBudget, total: coefficients}
 	parts := len(p.pattern)
+	r := &resampler{opt: opt, parts: parts, budget: resamplingBudget, total: coefficients}
 	r.wanted = opt.Resamples > 0 && parts >= 2 && parts <= manyParts
-	if !r.wanted || opt.Resamples*r.width > mostWeights {
+	if !r.wanted || opt.Resamples*(parts+1) > mostDrawn {
 		return r
 	}
 	rng := rand.New(rand.NewPCG(opt.Seed, 0))
-	r.weights = make([]uint16, opt.Resamples*r.width)
+	r.drawn = make([]uint16, opt.Resamples*(parts+1))
 	r.resampled = make([]float64, 0, opt.Resamples)
 	for b := range opt.Resamples {
-		w := r.weights[b*r.width : (b+1)*r.width]
+		drawn := r.of(b)
 		for range parts {
-			w[p.pattern[rng.IntN(parts)]]++
+			drawn[1+rng.IntN(parts)]++
+		}
+		for place := range parts {
+			drawn[place+1] += drawn[place]
 		}
 	}
 	return r
+}
+
+// of returns how many of the parts drawn stand before each place in one resample.
+func (r *resampler) of(resample int) []uint16 {
+	n := r.parts + 1
+	return r.drawn[resample*n : (resample+1)*n : (resample+1)*n]
 }
 
 // estimate returns a coefficient with its interval. undefined is the reason
@@ -98,8 +107,9 @@ func (r *resampler) estimate(c coefficient, z contributions, nothing, undefined 
 	case !r.affordable:
 		r.dear++
 	default:
-		if values := r.resample(c, z); len(values) >= min(fewestResamples, r.opt.Resamples) {
-			b.resampled, b.leftOut = values, leaveOneOut(c, z, sums)
+		row := z.canonical(c)
+		if values := r.resample(c, row); len(values) >= min(fewestResamples, r.opt.Resamples) {
+			b.resampled, b.leftOut = values, leaveOneOut(c, row, row.sums())
 		}
 	}
 	switch {
@@ -175,7 +185,7 @@ func (b basis) interval(confidence float64) (interval.Interval, string, error) {
 func (r *resampler) begin(additions int) {
 	r.additions += additions
 	cost := float64(additions) * float64(r.opt.Resamples)
-	r.affordable = r.weights != nil && cost <= r.budget
+	r.affordable = r.drawn != nil && cost <= r.budget
 	if r.affordable {
 		r.budget -= cost
 	}
@@ -184,20 +194,24 @@ func (r *resampler) begin(additions int) {
 // most returns how many resamples of the study are within the bounds, so that
 // every coefficient could be resampled. All groups have been begun.
 func (r *resampler) most() int {
-	return int(min(mostWeights/float64(max(1, r.width)), resamplingBudget/float64(max(1, r.additions)), MaxResamples))
+	return int(min(mostDrawn/float64(r.parts+1), resamplingBudget/float64(max(1, r.additions)), MaxResamples))
 }
 
-// resample returns the coefficient of each resampled study that has one.
+// resample returns the coefficient of each resampled study that has one, given
+// the contributions of the parts in their row.
 func (r *resampler) resample(c coefficient, z contributions) []float64 {
 	values := r.resampled[:0]
 	sums := make([]float64, z.size)
 	for b := range r.opt.Resamples {
 		clear(sums)
-		for i, w := range r.weights[b*r.width : (b+1)*r.width] {
-			if w == 0 {
+		drawn, place := r.of(b), 0
+		for i, parts := range z.parts {
+			before := drawn[place]
+			place += parts
+			if drawn[place] == before {
 				continue
 			}
-			n := float64(w)
+			n := float64(drawn[place] - before)
 			v := z.vectors[i*z.size : (i+1)*z.size]
 			for j := range sums {
 				sums[j] += n * v[j]

@@ -167,7 +167,7 @@ func patterned(t *testing.T, parts int) *Ratings {
 // What an analysis says of its intervals is what was done; where resamples were
 // asked for and are too many, it says so. Two coefficients, kappa within the
 // appraiser and that of pairs by the same one, of p patterns: 5 p and then
-// (5·5 + 2·5) p additions, of which 2·10⁹ are allowed, and 10⁸ weights.
+// (5·5 + 2·5) p additions, of which 2·10⁹ are allowed, and 10⁸ places of parts.
 func TestIntervalsAreCounted(t *testing.T) {
 	for _, c := range []struct {
 		parts, resamples int
@@ -216,11 +216,11 @@ func TestResamplesInVain(t *testing.T) {
 func TestResamplesBeyondMemory(t *testing.T) {
 	p := patterns{rows: make([][]Category, 500), pattern: make([]int32, 1000)}
 	opt := DefaultOptions()
-	if s := newResampler(p, opt, 1); s.weights == nil {
-		t.Error("2000 resamples of 500 patterns are linearised")
+	if s := newResampler(p, opt, 1); s.drawn == nil {
+		t.Error("2000 resamples of 1000 parts are linearised")
 	}
 	opt.Resamples = MaxResamples
-	if s := newResampler(p, opt, 1); s.weights != nil {
-		t.Errorf("%d weights kept", len(s.weights))
+	if s := newResampler(p, opt, 1); s.drawn != nil {
+		t.Errorf("%d places kept", len(s.drawn))
 	}
 }
