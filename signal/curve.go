@@ -101,6 +101,10 @@ type Curve struct {
 
 	Lapse    Estimate // share of calls made at random; meaningful if HasLapse
 	HasLapse bool
+	// LapseGain is the log-likelihood that a share of calls made at random adds,
+	// if Options.Lapse asks for it: also where σ is not determined besides one, so
+	// that HasLapse is false.
+	LapseGain float64
 
 	// LogLikelihood is that of the grouped binomial counts, with their
 	// coefficients; CallLogLikelihood that of the single calls, without.

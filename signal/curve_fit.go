@@ -3,6 +3,7 @@ package signal
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/mat"
 )
@@ -328,19 +329,19 @@ func (d *dataset) lapse(c *Curve, blocks *[]*block, hs [2]half) {
 	b.m.lapse = b.m.n
 	b.m.n++
 	b.s = newSolver(b.m)
-	for try := range 4 {
-		if try%2 == 0 {
-			copy(b.s.theta, plain.theta)
-		} else {
-			d.startAt(b, hs, 0)
-		}
-		b.s.theta[b.m.lapse] = [...]float64{-4, -4, -1.5, -1.5}[try]
+	highest := plain.loglik
+	for _, theta := range d.lapseStarts(b, plain, hs) {
+		copy(b.s.theta, theta)
 		out := b.s.maximise(absent, convergence)
 		b.keepIfHigher(out)
-		if out.converged && out.atBound && out.loglik > b.loglik+1e-3 && out.loglik > plain.loglik+1e-3 {
-			c.warn(WarnNoLapse, "no lapse rate: with one, σ is no longer determined; too few mixed parts lie near the limit")
-			return
-		}
+		highest = math.Max(highest, out.loglik)
+	}
+	c.LapseGain = math.Max(0, math.Max(highest, b.loglik)-plain.loglik)
+	// Without the calls at random a limit may be separated: then the likelihood
+	// is flat in σ, and no maximum can be verified.
+	if highest > math.Max(b.loglik, plain.loglik)+1e-3 {
+		c.warn(WarnNoLapse, "no lapse rate: with one, σ is no longer determined; too few mixed parts lie near the limit")
+		return
 	}
 	c.HasLapse = true
 	if b.theta == nil || b.loglik <= plain.loglik+1e-9 {
@@ -361,6 +362,31 @@ func (d *dataset) lapse(c *Curve, blocks *[]*block, hs [2]half) {
 	*blocks = []*block{b}
 	c.free, c.Parameters = 0, 0
 	c.take(b)
+}
+
+// lapseStarts returns where to look for a lapse rate from: the curve without
+// one, a guess by the halves, and the curve that outliers are looked for with.
+// Calls at random make the first one flat, and then no rate is a maximum, too.
+func (d *dataset) lapseStarts(b, plain *block, hs [2]half) (starts [][]float64) {
+	start := func(logitLapse float64) {
+		b.s.theta[b.m.lapse] = logitLapse
+		starts = append(starts, slices.Clone(b.s.theta))
+	}
+	for _, rate := range [...]float64{-4, -1.5} {
+		copy(b.s.theta, plain.theta)
+		start(rate)
+		d.startAt(b, hs, 0)
+		start(rate)
+	}
+	if steep := d.robust(hs); steep != nil {
+		for i, pi := range b.m.places(0) {
+			if pi != absent && steep.known[i] {
+				b.s.theta[pi] = steep.local[i]
+			}
+		}
+		start(logit(robustLapse))
+	}
+	return starts
 }
 
 func (c *Curve) separatedAnywhere() bool {

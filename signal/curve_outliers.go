@@ -11,11 +11,13 @@ import (
 // outweigh the rest. Parts whose calls have next to no chance under it are left
 // out, and the plain curve is fitted to the rest; those that have next to no
 // chance under that, too, even with σ and cuts at the ends of their intervals that
-// favour them, are outliers.
+// favour them, are outliers. A part that the curve of all parts expects is none:
+// without it, and few others that tell where calls turn, a curve is too steep.
 const (
 	robustLapse    = 0.05
 	outlierAlpha   = 1e-3 // over all parts (Bonferroni)
 	outlierScreen  = 0.05
+	outlierTail    = 0.3 // most that the chance of its calls may be under the curve of all
 	mostOutliers   = 0.2 // of the parts: more are no outliers but another pattern
 	outlierMinimum = 5   // parts
 )
@@ -45,7 +47,7 @@ func (d *dataset) outliers(c *Curve, hs [2]half) {
 		return
 	}
 	for i := range suspects {
-		if d.tailUnder(without, i, true)*float64(n) >= outlierAlpha {
+		if c.Parts[i].Tail > outlierTail || d.tailUnder(without, i, true)*float64(n) >= outlierAlpha {
 			delete(suspects, i)
 		}
 	}

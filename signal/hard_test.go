@@ -1,7 +1,9 @@
 package signal
 
 import (
+	"cmp"
 	"errors"
+	"fmt"
 	"math"
 	"math/rand/v2"
 	"slices"
@@ -510,5 +512,66 @@ func TestNamesOfNothing(t *testing.T) {
 	}
 	if s := QuasiSeparated.String(); s != "quasi-separated" {
 		t.Errorf("%q", s)
+	}
+}
+
+// The few parts that tell where calls turn are no outliers, though a curve
+// without them is steeper: the curve of all expects them.
+func TestMixedPartsAreNoOutliers(t *testing.T) {
+	var parts []Part
+	for x, accepted := range map[float64]int{ // of 36; invented, σ 0.001
+		9.99092: 0, 9.99501: 1, 9.99530: 1, 9.99616: 1, 9.99621: 9, 9.99810: 30,
+		10.04167: 1, 10.04384: 0, 10.04735: 0, 10.04748: 0,
+	} {
+		parts = append(parts, Part{Name: fmt.Sprint(x), Value: x, Calls: 36, Accepted: accepted})
+	}
+	for i := range 20 {
+		x := 10.0068 + 0.0011*float64(i)
+		parts = append(parts, Part{Name: fmt.Sprint(x), Value: x, Calls: 36, Accepted: 36})
+	}
+	slices.SortFunc(parts, func(a, b Part) int { return cmp.Compare(a.Value, b.Value) })
+	c := mustFit(t, parts, Between(10, 10.04), Options{})
+	if len(c.Outliers) != 0 {
+		t.Errorf("outliers %v of %+v", c.Outliers, c.Parts)
+	}
+}
+
+// The fit with lapses is at least as likely as the truth that calls were drawn
+// from, though the curve without them is flat; where σ is not determined besides
+// them, the gain is still told.
+func TestLapseReachesTheTruth(t *testing.T) {
+	rng := rand.New(rand.NewPCG(5, 5))
+	const sigma, lapse = 0.03, 0.12
+	accept := func(x float64) float64 {
+		p := distuv.UnitNormal.CDF((x-10)/sigma) - distuv.UnitNormal.CDF((x-11)/sigma)
+		return lapse/2 + (1-lapse)*p
+	}
+	determined := 0
+	for range 40 {
+		var parts []Part
+		truth := 0.0 // log-likelihood of single calls
+		for i := range 100 {
+			x := 9.6 + 0.018*(float64(i)+rng.Float64())
+			p := Part{Value: x, Calls: 3}
+			for range p.Calls {
+				if rng.Float64() < accept(x) {
+					p.Accepted++
+				}
+			}
+			truth += float64(p.Accepted)*math.Log(accept(x)) + float64(p.Calls-p.Accepted)*math.Log1p(-accept(x))
+			parts = append(parts, p)
+		}
+		plain := mustFit(t, parts, Between(10, 11), Options{SkipIntervals: true})
+		c := mustFit(t, parts, Between(10, 11), Options{SkipIntervals: true, Lapse: true})
+		if reached := plain.CallLogLikelihood + c.LapseGain; reached < truth {
+			t.Errorf("reached %v, the truth has %v", reached, truth)
+		}
+		if c.HasLapse {
+			determined++
+			near(t, "gain of the fit", c.CallLogLikelihood-plain.CallLogLikelihood, c.LapseGain, 1e-6)
+		}
+	}
+	if determined < 20 {
+		t.Errorf("a rate was told in %d of 40 studies", determined)
 	}
 }
