@@ -40,8 +40,9 @@ type criterionJSON struct {
 }
 
 type causeJSON struct {
-	Code      string `json:"code"`
-	Appraiser string `json:"appraiser,omitempty"`
+	Code       string   `json:"code"`
+	Appraiser  string   `json:"appraiser,omitempty"`
+	Appraisers []string `json:"appraisers,omitempty"` // several who share it
 }
 
 func newVerdict(v *verdict.Verdict) verdictJSON {
@@ -70,8 +71,11 @@ func newVerdict(v *verdict.Verdict) verdictJSON {
 	for _, c := range v.Causes {
 		out.Causes = append(out.Causes, c.Text)
 		code := causeJSON{Code: c.Code}
-		if c.Appraiser != verdict.Everyone {
-			code.Appraiser = v.Appraisers[c.Appraiser].Name
+		for _, a := range c.Appraisers {
+			code.Appraisers = append(code.Appraisers, v.Appraisers[a].Name)
+		}
+		if len(code.Appraisers) == 1 {
+			code.Appraiser, code.Appraisers = code.Appraisers[0], nil
 		}
 		out.CauseCodes = append(out.CauseCodes, code)
 	}

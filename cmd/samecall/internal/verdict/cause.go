@@ -7,18 +7,23 @@ import (
 	"samecall/cmd/samecall/internal/judge"
 )
 
-// Everyone stands for all appraisers in a Cause.
+// Everyone stands for all appraisers where one is asked for.
 const Everyone = -1
 
 // Cause is something behind the errors, read from their pattern, with the
 // figures that it rests on.
 type Cause struct {
-	Code      string // fixed, for programs; docs/verdict.md lists them
-	Appraiser int    // whose it is, or Everyone
-	Text      string
-	Do        string // what to do about it
+	Code       string // fixed, for programs; docs/verdict.md lists them
+	Appraisers []int  // whose it is; nil: everyone's
+	Text       string
+	Do         string // what to do about it
 
 	outside bool // a cut lies outside its limit: bad parts are accepted
+}
+
+// of reports whether the cause is an appraiser's own, or one of everyone.
+func (c Cause) of(appraiser int) bool {
+	return c.Appraisers == nil || slices.Contains(c.Appraisers, appraiser)
 }
 
 // Codes of the causes.
@@ -26,6 +31,7 @@ const (
 	codeAlike        = "all_alike"            // every call of everybody is the same
 	codeReversed     = "reversed"             // nearly every call is wrong
 	codeInconsistent = "inconsistent"         // does not repeat its own calls
+	codeScattered    = "scattered"            // calls made without regard to the value
 	codeFar          = "far_errors"           // wrong calls where nobody should be in doubt
 	codeGauge        = "gauge_shifted"        // all cut beside the limit alike
 	codeCut          = "appraiser_shifted"    // one appraiser cuts beside the limit
@@ -59,7 +65,7 @@ func causes(r *judge.Result, levels map[string]Levels, missed bool) []Cause {
 		return f.found
 	}
 	for _, rule := range []func(*finder) []Cause{
-		confusedKinds, leaningGrades, inconsistent, farErrors, shiftedCut, steadyErrors, apart, nearLimits,
+		confusedKinds, leaningGrades, inconsistent, scattered, farErrors, shiftedCut, steadyErrors, apart, nearLimits,
 	} {
 		f.found = append(f.found, rule(f)...)
 	}
@@ -74,17 +80,7 @@ func causes(r *judge.Result, levels map[string]Levels, missed bool) []Cause {
 func (f *finder) has(appraiser int, codes ...string) bool { return has(f.found, appraiser, codes...) }
 
 func has(found []Cause, appraiser int, codes ...string) bool {
-	for _, c := range found {
-		if c.Appraiser != appraiser && c.Appraiser != Everyone {
-			continue
-		}
-		for _, code := range codes {
-			if c.Code == code {
-				return true
-			}
-		}
-	}
-	return false
+	return slices.ContainsFunc(found, func(c Cause) bool { return c.of(appraiser) && slices.Contains(codes, c.Code) })
 }
 
 // name is an appraiser's name.

@@ -13,11 +13,14 @@ import (
 func found(v *Verdict) string {
 	var out []string
 	for _, c := range v.Causes {
-		who := "everyone"
-		if c.Appraiser != Everyone {
-			who = v.Appraisers[c.Appraiser].Name
+		who := []string{"everyone"}
+		if c.Appraisers != nil {
+			who = nil
 		}
-		out = append(out, c.Code+":"+who)
+		for _, a := range c.Appraisers {
+			who = append(who, v.Appraisers[a].Name)
+		}
+		out = append(out, c.Code+":"+strings.Join(who, "+"))
 	}
 	return strings.Join(out, " ")
 }
@@ -53,6 +56,15 @@ func grades(way int, p float64) func(*rand.Rand, int) int {
 func callers(m ...func(*rand.Rand, int) int) (out []person) {
 	for _, f := range m {
 		out = append(out, person{mistakes: f})
+	}
+	return out
+}
+
+// sameShift are so many people with the same σ, who all cut as far above the
+// lower limit.
+func sameShift(n int, sigma, shift float64) (out []person) {
+	for range n {
+		out = append(out, person{sigma: sigma, lowerShift: shift})
 	}
 	return out
 }
@@ -102,6 +114,11 @@ var causeTests = []struct {
 	{"far errors of one", drawn{people: three(person{sigma: 0.02, slips: map[int]bool{2: true, 30: true}}), values: true}, "far_errors:Ash", 0},
 	{"far errors of several", drawn{people: three(person{sigma: 0.02, slips: map[int]bool{30: true}}, person{sigma: 0.02, slips: map[int]bool{57: true}}), values: true}, "far_errors:everyone", 0},
 
+	// Of few calls at random chance makes fewer, or so many that kappa shows it.
+	{"all at random now and then", drawn{people: []person{{sigma: 0.02, lapse: 0.12}, {sigma: 0.02, lapse: 0.12}, {sigma: 0.02, lapse: 0.12}}, values: true, parts: 100}, "scattered:everyone", 0},
+	{"one at random now and then", drawn{people: three(good, person{sigma: 0.02, lapse: 0.15}), values: true, parts: 100}, "scattered:Birch", 1},
+	{"the only one at random now and then", drawn{people: []person{{sigma: 0.02, lapse: 0.1}}, values: true, parts: 100}, "scattered:Ash", 1},
+
 	{"gauge shifted, lower limit outside", drawn{people: []person{{sigma: 0.03, lowerShift: -0.1}, {sigma: 0.03, lowerShift: -0.1}, {sigma: 0.03, lowerShift: -0.1}}, values: true}, "gauge_shifted:everyone", 0},
 	{"gauge shifted, lower limit inside", drawn{people: []person{{sigma: 0.03, lowerShift: 0.1}, {sigma: 0.03, lowerShift: 0.1}, {sigma: 0.03, lowerShift: 0.1}}, values: true}, "gauge_shifted:everyone", 0},
 	{"gauge shifted, upper limit outside", drawn{people: []person{{sigma: 0.03, upShift: 0.1}, {sigma: 0.03, upShift: 0.1}, {sigma: 0.03, upShift: 0.1}}, values: true}, "gauge_shifted:everyone", 0},
@@ -110,6 +127,11 @@ var causeTests = []struct {
 	{"gauge shifted for all, unequally", drawn{people: []person{{sigma: 0.03, upShift: 0.1}, {sigma: 0.03, upShift: 0.13}, {sigma: 0.03, upShift: 0.2}}, values: true}, "gauge_shifted:everyone", 0},
 	{"one shifted, inside", drawn{people: three(good, person{sigma: 0.03, lowerShift: 0.12}), values: true}, "appraiser_shifted:Birch", 0},
 	{"one shifted, outside", drawn{people: three(good, good, person{sigma: 0.03, upShift: 0.12}), values: true}, "appraiser_shifted:Cedar", 0},
+	{"two shifted alike", drawn{people: []person{{sigma: 0.03, lowerShift: -0.15}, {sigma: 0.03, lowerShift: -0.15}, {sigma: 0.03}}, values: true}, "appraiser_shifted:Ash+Birch", 0},
+	// Of so many people, some own cut is elsewhere by chance.
+	{"six shifted a little", drawn{people: sameShift(6, 0.03, 0.04), values: true}, "gauge_shifted:everyone", 1},
+	{"twelve shifted a little", drawn{people: sameShift(12, 0.04, 0.04), values: true, parts: 50}, "gauge_shifted:everyone", 0},
+	{"gauge shifted, thirty parts", drawn{people: sameShift(3, 0.03, 0.08), values: true, parts: 30, from: lower - 0.15, to: upper + 0.15}, "gauge_shifted:everyone", 0},
 	{"the only one shifted", drawn{people: []person{{sigma: 0.03, upShift: 0.1}}, values: true}, "appraiser_shifted:Ash", 0},
 	{"all blind at one limit", drawn{people: []person{{sigma: 0.02, neverSeesTheUpperEnd: true}, {sigma: 0.02, neverSeesTheUpperEnd: true}, {sigma: 0.02, neverSeesTheUpperEnd: true}}, values: true}, "standard_shifted:everyone", 0},
 	{"one blind at one limit", drawn{people: three(good, person{sigma: 0.02, neverSeesTheUpperEnd: true}), values: true}, "consistently_wrong:Birch", 0},
@@ -169,7 +191,7 @@ func TestEveryCodeHasAStudy(t *testing.T) {
 		all += " " + c.want
 	}
 	for _, code := range []string{
-		codeInconsistent, codeFar, codeGauge, codeCut, codeStandard, codeSteady, codeApart, codeKinds, codeGrades, codeWide, codeNear, codeAlike, codeReversed,
+		codeInconsistent, codeFar, codeGauge, codeCut, codeStandard, codeSteady, codeApart, codeKinds, codeGrades, codeScattered, codeWide, codeNear, codeAlike, codeReversed,
 	} {
 		if !strings.Contains(all, " "+code+":") {
 			t.Errorf("no study has the cause %s", code)

@@ -16,7 +16,7 @@ func containment(r *judge.Result, v *Verdict) string {
 	if has(v.Causes, Everyone, codeReversed) || len(who) == 0 {
 		return ""
 	}
-	shared := slices.ContainsFunc(v.Causes, func(c Cause) bool { return c.Appraiser == Everyone })
+	shared := slices.ContainsFunc(v.Causes, func(c Cause) bool { return c.Appraisers == nil })
 	switch {
 	case !shared && (len(who) < len(v.Appraisers) || v.peopleOnly()):
 		var names []string
@@ -34,7 +34,7 @@ func containment(r *judge.Result, v *Verdict) string {
 func acceptBadParts(v *Verdict) []int {
 	var who []int
 	for a, ap := range v.Appraisers {
-		outside := slices.ContainsFunc(v.Causes, func(c Cause) bool { return c.outside && (c.Appraiser == a || c.Appraiser == Everyone) })
+		outside := slices.ContainsFunc(v.Causes, func(c Cause) bool { return c.outside && c.of(a) })
 		c := ap.criterion(Miss)
 		shown := c.Met != NotShown && c.Estimate.Unbounded == nil && !c.meets(c.Estimate.OneSided.Lower, c.Levels[0])
 		if outside || shown {
@@ -47,5 +47,5 @@ func acceptBadParts(v *Verdict) []int {
 // peopleOnly reports whether every cause is one of single appraisers and their
 // calls: nothing is to be done before something with them.
 func (v *Verdict) peopleOnly() bool {
-	return len(v.Causes) > 0 && !slices.ContainsFunc(v.Causes, func(c Cause) bool { return c.Appraiser == Everyone || c.beforePeople() })
+	return len(v.Causes) > 0 && !slices.ContainsFunc(v.Causes, func(c Cause) bool { return c.Appraisers == nil || c.beforePeople() })
 }

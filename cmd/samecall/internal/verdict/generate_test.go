@@ -54,7 +54,7 @@ func three(p ...person) []person {
 	return out
 }
 
-var names = []string{"Ash", "Birch", "Cedar", "Dogwood", "Elm", "Fir"}
+var names = []string{"Ash", "Birch", "Cedar", "Dogwood", "Elm", "Fir", "Gorse", "Hazel", "Ivy", "Juniper", "Larch", "Maple"}
 
 // files draws a study.
 func (d drawn) files(seed uint64) fstest.MapFS {

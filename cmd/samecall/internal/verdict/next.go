@@ -63,7 +63,7 @@ func doubtfulReference(r *judge.Result, v *Verdict) string {
 	if len(parts) == 0 {
 		return ""
 	}
-	return fmt.Sprintf("Every call on %s was wrong: check the reference of %s before anything else.", list(r.Study.Parts, parts), this(len(parts), "part"))
+	return fmt.Sprintf("Every call on %s was wrong: check the reference of %s before anything else.", theParts(r.Study.Parts, parts), this(len(parts), "part"))
 }
 
 // expected reports whether the acceptance curve expects the wrong calls on a
@@ -216,18 +216,25 @@ func repeatStudy(r *judge.Result, v *Verdict) string {
 		format.Counted(conditional, "bad part"), c.Level(c.Levels[1]), format.Count(accept), c.Level(c.Levels[0]))
 }
 
-// repeatTrials names the appraisers with one trial.
+// repeatTrials names the appraisers who called no part twice.
 func repeatTrials(r *judge.Result) string {
-	var who []string
+	var once, apart []string
 	for a, w := range r.Agreement.Within {
-		if w.Share.Absent != nil {
-			who = append(who, r.Study.Appraisers[a])
+		switch {
+		case w.Share.Absent == nil:
+		case r.Study.Ratings.Trials(a) == 1:
+			once = append(once, r.Study.Appraisers[a])
+		default:
+			apart = append(apart, r.Study.Appraisers[a])
 		}
 	}
-	if len(who) == 0 {
+	switch {
+	case len(once)+len(apart) == 0:
 		return ""
+	case len(apart) == 0:
+		return fmt.Sprintf("Have %s call the parts a second and a third time: with one trial nobody knows whether the calls repeat.", some(once))
 	}
-	return fmt.Sprintf("Have %s call the parts a second and a third time: with one trial nobody knows whether the calls repeat.", some(who))
+	return fmt.Sprintf("Have %s call the same parts a second and a third time: no part was called twice, and nobody knows whether the calls repeat.", some(slices.Concat(once, apart)))
 }
 
 // criterion returns one criterion of an appraiser by its name.

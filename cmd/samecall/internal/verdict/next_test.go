@@ -35,7 +35,7 @@ func TestNext(t *testing.T) {
 		{"no bad part, with limits", "part,reference,value,A-1,A-2\n1,1,9,1,1\n2,1,8,1,1\n", "upper = 10\n",
 			"The study holds no bad part. Add bad parts, some of them close to the limits.", nil, nil},
 		{"two decide, by different parts", "part,reference,A-1,A-2,B-1,B-2,C-1,C-2\n1,1,1,1,1,1,1,1\n2,0,1,1,0,0,0,0\n3,1,1,1,0,0,1,1\n4,0,0,0,1,1,0,0\n5,1,1,1,1,1,1,1\n", "",
-			"", []string{"Go through the wrong calls with A (bad parts accepted: 2).", "on which they differ every time: 2, 3 and 4."}, []string{"with C "}},
+			"", []string{"Go through the wrong calls with A (bad, but accepted: part 2).", "on which they differ every time: parts 2, 3 and 4."}, []string{"with C "}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			_, v := decide(t, calls(c.csv, c.toml))
@@ -72,18 +72,26 @@ func TestWrongCallsOfOthers(t *testing.T) {
 		return right(r, ref)
 	}
 	_, v := decide(t, d.files(1))
-	if at(v.Next, "Show Birch a boundary sample of run beside one of pinhole") < 0 || slices.ContainsFunc(v.Next, func(s string) bool { return strings.Contains(s, "with Birch") && strings.Contains(s, "wrong category") }) || at(v.Next, "wrong calls with Ash (bad parts accepted: P") < 0 {
+	if at(v.Next, "Show Birch a boundary sample of run beside one of pinhole") < 0 || slices.ContainsFunc(v.Next, func(s string) bool { return strings.Contains(s, "with Birch") && strings.Contains(s, "wrong category") }) || at(v.Next, "wrong calls with Ash (bad, but accepted: parts P") < 0 {
 		t.Errorf("%q", v.Next)
 	}
 	csv := "part,reference,A-1,B-1,C-1,D-1\n1,1,1,1,1,1\n2,0,1,0,0,0\n3,0,0,1,0,0\n4,0,0,0,1,0\n5,0,0,0,0,1\n6,1,1,1,1,1\n7,1,1,1,1,1\n"
 	_, v = decide(t, calls(csv, ""))
-	if at(v.Next, "the wrong calls of A, B, C and D, part by part: 2, 3, 4 and 5.") < 0 {
+	if at(v.Next, "the wrong calls of A, B, C and D, part by part: parts 2, 3, 4 and 5.") < 0 {
 		t.Errorf("%q", v.Next)
 	}
 	// What to do comes first, then that no pattern tells more, once.
 	_, v = decide(t, calls("part,reference,A-1,A-2,B-1,B-2\n1,1,1,1,1,0\n2,0,0,0,1,1\n3,0,1,0,0,0\n4,1,1,1,1,1\n", ""))
-	if first, second := at(v.Next, "Go through the wrong calls with B (bad parts accepted: 2; good parts rejected: 1). No pattern tells what is behind the wrong calls."),
-		at(v.Next, "Go through the wrong calls with A (bad parts accepted: 3)."); first < 0 || second != first+1 || strings.Contains(v.Next[second], "No pattern") {
+	if first, second := at(v.Next, "Go through the wrong calls with B (bad, but accepted: part 2; good, but rejected: part 1). No pattern tells what is behind the wrong calls."),
+		at(v.Next, "Go through the wrong calls with A (bad, but accepted: part 3)."); first < 0 || second != first+1 || strings.Contains(v.Next[second], "No pattern") {
+		t.Errorf("%q", v.Next)
+	}
+}
+
+// Two trials do not help where nobody called a part twice.
+func TestNoPartTwice(t *testing.T) {
+	_, v := decide(t, calls("part,reference,A-1,A-2\n1,1,1,\n2,0,0,\n3,1,,1\n4,0,,0\n", ""))
+	if at(v.Next, "Have A call the same parts a second and a third time: no part was called twice, and nobody knows") < 0 {
 		t.Errorf("%q", v.Next)
 	}
 }
@@ -214,11 +222,4 @@ func TestFewBadParts(t *testing.T) {
 	}) {
 		t.Errorf("%q\n%q %q", v.Next, v.Reasons, v.Carry)
 	}
-}
-
-func btoi(b bool) int {
-	if b {
-		return 1
-	}
-	return 0
 }

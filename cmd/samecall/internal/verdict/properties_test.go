@@ -96,14 +96,15 @@ func TestOrderDoesNotMatter(t *testing.T) {
 		}
 		var codesOne, codesTwo []string
 		for _, c := range one.Causes {
-			who := c.Appraiser
-			if who != Everyone {
-				who = mixedPeople[who]
+			who := slices.Clone(c.Appraisers)
+			for i, a := range who {
+				who[i] = mixedPeople[a]
 			}
+			slices.Sort(who)
 			codesOne = append(codesOne, fmt.Sprint(c.Code, who))
 		}
 		for _, c := range two.Causes {
-			codesTwo = append(codesTwo, fmt.Sprint(c.Code, c.Appraiser))
+			codesTwo = append(codesTwo, fmt.Sprint(c.Code, c.Appraisers))
 		}
 		slices.Sort(codesOne)
 		slices.Sort(codesTwo)

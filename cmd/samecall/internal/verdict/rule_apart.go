@@ -35,15 +35,16 @@ func apart(f *finder) []Cause {
 	}
 	text := fmt.Sprintf("Each appraiser repeats the same calls, kappa within appraisers %s, but they differ from each other, %s.", format.Kappa(same), differ)
 	do := "Have all appraisers call together, beside one standard, the parts on which they differ every time"
-	who := Apart(f.Result)
-	if who != Everyone {
+	var appraisers []int
+	if who := Apart(f.Result); who != Everyone {
+		appraisers = []int{who}
 		text += fmt.Sprintf(" %s stands apart; the others agree with each other.", f.name(who))
 		do = fmt.Sprintf("Compare the calls of %s with those of the others, beside one standard, on the parts on which they differ every time", f.name(who))
 	}
 	if parts := f.differing(); len(parts) > 0 {
-		do += ": " + f.list(parts)
+		do += ": " + f.theParts(parts)
 	}
-	return []Cause{{Code: codeApart, Appraiser: who, Text: text, Do: stop(do)}}
+	return []Cause{{Code: codeApart, Appraisers: appraisers, Text: text, Do: stop(do)}}
 }
 
 // Apart returns the appraiser with whom every pair agrees less, by the gap of

@@ -66,12 +66,13 @@ func farFromCuts(c *signal.Curve, x float64) bool {
 }
 
 // farErrors: wrong calls on parts where nobody should be in doubt. Those of
-// an appraiser who is in doubt everywhere are no surprise.
+// an appraiser who is in doubt everywhere, or calls without regard to the value,
+// are no surprise.
 func farErrors(f *finder) []Cause {
 	var names []string
 	var who []int
 	for _, far := range f.far {
-		surprising := slices.DeleteFunc(slices.Clone(far.wrong), func(a int) bool { return f.has(a, codeInconsistent) })
+		surprising := slices.DeleteFunc(slices.Clone(far.wrong), func(a int) bool { return f.has(a, codeInconsistent, codeScattered) })
 		if len(surprising) == 0 {
 			continue
 		}
@@ -89,12 +90,12 @@ func farErrors(f *finder) []Cause {
 	slices.Sort(who)
 	who = slices.Compact(who)
 	cause := Cause{
-		Code: codeFar, Appraiser: Everyone,
+		Code: codeFar,
 		Text: "Wrong calls where nobody should be in doubt: " + strings.Join(names, ", ") + ". Neither the width nor the place of the grey zone explains them.",
 		Do:   "Check these parts and their records first: parts mixed up, a slip in writing down, a defect that the value does not tell of. Then attention and handling.",
 	}
 	if len(who) == 1 && f.several() {
-		cause.Appraiser = who[0]
+		cause.Appraisers = who
 		cause.Text = fmt.Sprintf("%s made wrong calls where nobody should be in doubt: %s. Neither the width nor the place of the grey zone explains them.", f.name(who[0]), strings.Join(names, ", "))
 		cause.Do = fmt.Sprintf("Check these parts with %s, and the records of the calls: parts mixed up, a slip in writing down, attention, handling.", f.name(who[0]))
 	}

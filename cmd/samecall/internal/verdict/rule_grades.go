@@ -40,7 +40,7 @@ func leaningGrades(f *finder) []Cause {
 		}
 		leaning[lean]++
 		out = append(out, Cause{
-			Code: codeGrades, Appraiser: a,
+			Code: codeGrades, Appraisers: []int{a},
 			Text: fmt.Sprintf("%s grades too %s: %s of %s are wrong, %s of them that way.", f.name(a), lean, format.Count(wrong), format.Counted(calls, "call"), allOr(n, wrong)),
 			Do:   fmt.Sprintf("Set the grades of %s against the reference again, at each boundary between two grades.", f.name(a)),
 		})
@@ -48,7 +48,7 @@ func leaningGrades(f *finder) []Cause {
 	for _, lean := range []string{"strictly", "leniently"} {
 		if f.most(leaning[lean]) {
 			return []Cause{{
-				Code: codeGrades, Appraiser: Everyone,
+				Code: codeGrades,
 				Text: fmt.Sprintf("%d of %d appraisers grade too %s. That points to what they grade against, or to the reference, not to one person.", leaning[lean], len(f.Study.Appraisers), lean),
 				Do:   "Check the samples that all grade against, and the reference, at each boundary between two grades.",
 			}}

@@ -42,11 +42,11 @@ func inconsistent(f *finder) []Cause {
 			continue
 		}
 		out = append(out, Cause{
-			Code: codeInconsistent, Appraiser: a,
+			Code: codeInconsistent, Appraisers: []int{a},
 			Text: fmt.Sprintf("%s does not repeat the same calls: %s of %s %s mixed; %s.",
 				f.name(a), format.Count(len(w.Mixed)), format.Counted(w.Share.Of, "part"), are(len(w.Mixed)), u.text),
 			Do: stop(fmt.Sprintf("Go through the mixed parts with %s: lighting, handling, what counts as a reject. Then repeat the trials. Mixed: %s",
-				f.name(a), f.list(w.Mixed))),
+				f.name(a), f.theParts(w.Mixed))),
 		})
 	}
 	if len(all) == 0 {
@@ -60,7 +60,7 @@ func inconsistent(f *finder) []Cause {
 		why += ", or less than " + Criterion{Name: Effectiveness}.Level(f.levels[Effectiveness][0]) + " of the parts are called alike"
 	}
 	return []Cause{{
-		Code: codeInconsistent, Appraiser: Everyone,
+		Code: codeInconsistent,
 		Text: fmt.Sprintf("%d of %d appraisers do not repeat their own calls (%s). That points to the method or the gauge, not to one person.%s",
 			len(all), len(f.Study.Appraisers), why, f.zoneWidth()),
 		Do: stop("Look at the method first: gauge and fixture, lighting, the written standard for the call. " + f.mixedForMany()),
@@ -82,7 +82,7 @@ func (f *finder) togetherInconsistent() []Cause {
 		}
 	}
 	return []Cause{{
-		Code: codeInconsistent, Appraiser: Everyone,
+		Code: codeInconsistent,
 		Text: fmt.Sprintf("The appraisers together do not repeat their own calls: kappa within appraisers is %s. Of none alone does the study show it.%s",
 			below(k, level), f.zoneWidth()),
 		Do: stop("Look at the method first: gauge and fixture, lighting, the written standard for the call. " + f.mixedForMany()),
@@ -137,7 +137,7 @@ func alsoInconsistent(f *finder) {
 		}
 		var who, kappas []string
 		for a, w := range f.Agreement.Within {
-			if c.Appraiser != a && c.Appraiser != Everyone || told[a] {
+			if !c.of(a) || told[a] {
 				continue
 			}
 			u := f.unrepeated(a)
@@ -202,9 +202,9 @@ func sigma(c *signal.Curve) (s float64, known bool) {
 func (f *finder) mixedForMany() string {
 	half := (len(f.Agreement.Within) + 1) / 2
 	if parts := f.mixedFor(half); len(parts) > 0 {
-		return "Mixed for at least half of the appraisers: " + f.list(parts)
+		return "Mixed for at least half of the appraisers: " + f.theParts(parts)
 	}
-	return "Mixed for one of them or more: " + f.list(f.mixedFor(1))
+	return "Mixed for one of them or more: " + f.theParts(f.mixedFor(1))
 }
 
 // mixedFor returns the parts that are mixed for so many appraisers or more.

@@ -40,7 +40,7 @@ func confusedKinds(f *finder) []Cause {
 				}
 				nameX, nameY := f.Study.Categories[x], f.Study.Categories[y]
 				out = append(out, Cause{
-					Code: codeKinds, Appraiser: a,
+					Code: codeKinds, Appraisers: []int{a},
 					Text: fmt.Sprintf("%s confuses %s and %s: %s of %s (%s called %s where it was %s, %s the other way).",
 						f.name(a), nameX, nameY, format.Count(n), format.Counted(wrong, "wrong call"), format.Count(g.Table[x][y]), nameX, nameY, format.Count(g.Table[y][x])),
 					Do: fmt.Sprintf("Show %s a boundary sample of %s beside one of %s, and what tells them apart.", f.name(a), nameX, nameY),
@@ -54,7 +54,7 @@ func confusedKinds(f *finder) []Cause {
 		}
 		nameX, nameY := f.Study.Categories[k.x], f.Study.Categories[k.y]
 		return []Cause{{
-			Code: codeKinds, Appraiser: Everyone,
+			Code: codeKinds,
 			Text: fmt.Sprintf("%d of %d appraisers confuse %s and %s. That points to how the two are defined, not to one person.", shared[k], len(f.Study.Appraisers), nameX, nameY),
 			Do:   fmt.Sprintf("Define what tells %s and %s apart, with a boundary sample of each, and show it to all.", nameX, nameY),
 		}}

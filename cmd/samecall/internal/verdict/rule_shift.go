@@ -3,6 +3,7 @@ package verdict
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/stat/distuv"
 
@@ -16,55 +17,55 @@ const (
 	offsetOfSigma = 0.5
 	// The chance that in a study without any shift some offset is taken for one.
 	offsetChance = 0.01
-	// So many parts must lie between limit and cut: a single one may have a
-	// wrong value.
+	// So many parts must lie between limit and cut, or one more be called wrong in
+	// the way that the shift makes: a single one may have a wrong value. So many
+	// called wrong do where the offset is this many times what makes it certain.
 	partsBetween = 2
+	overCertain  = 2
 	// Appraisers cut alike when the offset of each is at least this share of
 	// the offset of all.
 	alikeOffset = 0.5
+	// The data tell the appraisers' cuts apart when cuts that are the same would
+	// differ as much with less than this chance.
+	apartChance = 0.01
 )
 
 // shiftedCut: the calls turn beside the limit. For all alike it is the gauge
-// or the standard, for one appraiser its own.
+// or the standard; for some, what these use.
 func shiftedCut(f *finder) []Cause {
 	if f.Zone == nil || f.Zone.Curves == nil {
 		return nil
 	}
 	curves := f.Zone.Curves
-	pooled := sides(plain(curves.Pooled))
-	looks := len(pooled) * (1 + len(curves.Each))
+	pooled := plain(curves.Pooled)
+	looks := len(sides(pooled)) * (1 + len(curves.Each))
 	var out []Cause
-	for _, l := range pooled {
+	for _, l := range sides(pooled) {
 		switch {
 		case !f.several():
-			if f.shifted(l, looks) {
+			if shifted(pooled, l, looks) {
 				out = append(out, Cause{
-					Code: codeCut, Appraiser: 0,
-					Text:    f.shift(f.name(0)+" cuts", l, "With one appraiser, a worn or mis-set gauge and a shifted standard cannot be told apart") + f.calibrated(l),
+					Code: codeCut, Appraisers: []int{0},
+					Text:    f.shift(f.name(0)+" cuts", l, without(curves.Pooled), "With one appraiser, a worn or mis-set gauge and a shifted standard cannot be told apart") + f.calibrated(l),
 					Do:      f.checkGauge(l, fmt.Sprintf("Check the %s limit of the gauge or standard that %s uses: calibrated size, wear, setting.", l.Side, f.name(0))),
 					outside: outside(l),
 				})
 			}
-		case f.cutAlike(l):
-			if f.shifted(l, looks) {
+		case f.cutAlike(l) || f.notToldApart():
+			if shifted(pooled, l, looks) {
+				who := "All appraisers cut"
+				if !f.cutAlike(l) {
+					who = "All appraisers together cut"
+				}
 				out = append(out, Cause{
-					Code: codeGauge, Appraiser: Everyone,
-					Text:    f.shift("All appraisers cut", l, "That points to a worn or mis-set gauge, or a shifted standard") + f.calibrated(l),
+					Code:    codeGauge,
+					Text:    f.shift(who, l, without(curves.Pooled), "That points to a worn or mis-set gauge, or a shifted standard") + f.calibrated(l),
 					Do:      f.checkGauge(l, fmt.Sprintf("Check the %s limit of the gauge or the standard: calibrated size, wear, setting. Correct it, then repeat the parts near that limit.", l.Side)),
 					outside: outside(l),
 				})
 			}
 		default:
-			for a := range curves.Each {
-				if own := f.ownSide(a, l.Side); own.Known() && f.shifted(own, looks) {
-					out = append(out, Cause{
-						Code: codeCut, Appraiser: a,
-						Text:    f.shift(f.name(a)+" cuts", own, "Others do not, so it is the gauge or the standard of this one"),
-						Do:      fmt.Sprintf("Compare the gauge and the standard of %s at the %s limit with those of the others.", f.name(a), l.Side),
-						outside: outside(own),
-					})
-				}
-			}
+			out = append(out, f.ownShifts(l.Side, looks)...)
 		}
 	}
 	return out
@@ -80,6 +81,93 @@ func (f *finder) cutAlike(all *signal.LimitFit) bool {
 		}
 	}
 	return true
+}
+
+// notToldApart reports whether the calls of all appraisers are such as the same
+// cuts may give: how their own offsets differ is then chance.
+//
+// The test is against chi-square, whatever the lack of fit: cuts that differ make
+// one themselves.
+func (f *finder) notToldApart() bool {
+	c := f.Zone.Curves
+	return c.SameCut.Done && len(c.Compared) == len(c.Each) &&
+		distuv.ChiSquared{K: float64(c.SameCut.DF)}.Survival(c.SameCut.Statistic) >= apartChance
+}
+
+// ownShifts are the appraisers' own shifts at a limit, one cause for those who
+// share one: the same way.
+func (f *finder) ownShifts(at signal.Side, looks int) (out []Cause) {
+	for _, way := range []float64{-1, 1} {
+		var who []int
+		var cuts []*signal.LimitFit
+		for a, c := range f.Zone.Curves.Each {
+			if own := f.ownSide(a, at); own.Known() && way*own.Offset.Value > 0 && shifted(plain(c), f.doubted(own), looks) {
+				who, cuts = append(who, a), append(cuts, own)
+			}
+		}
+		if len(who) == 0 {
+			continue
+		}
+		people, points := f.people(who), ""
+		switch othersToo := f.others(who, cuts); {
+		case othersToo:
+			points = "Whether that goes for others too the study does not tell"
+		case len(who) == 1:
+			points = "Others do not, so it is the gauge or the standard of this one"
+		default:
+			points = "Others do not, so it is a gauge or a standard that these share, or each one's own"
+		}
+		text := ""
+		if len(who) == 1 {
+			text = f.shift(people+" cuts", cuts[0], without(f.Zone.Curves.Each[who[0]]), points)
+		} else {
+			text = f.shiftOfSeveral(people, cuts, points)
+		}
+		out = append(out, Cause{
+			Code: codeCut, Appraisers: who, Text: text,
+			Do:      fmt.Sprintf("Compare the gauge and the standard of %s at the %s limit with those of the others.", people, at),
+			outside: outside(cuts[0]),
+		})
+	}
+	return out
+}
+
+// doubted is an appraiser's own side whose offset is no surer than the σ of all
+// allows: its own σ, of a few mixed parts, can be small by chance. The standard
+// error of a cut grows with the root of σ.
+func (f *finder) doubted(own *signal.LimitFit) *signal.LimitFit {
+	out := *own
+	for _, l := range sides(plain(f.Zone.Curves.Pooled)) {
+		if l.Side == own.Side && l.Sigma.Value > own.Sigma.Value && own.Sigma.Value > 0 {
+			out.Offset.SE *= math.Sqrt(l.Sigma.Value / own.Sigma.Value)
+		}
+	}
+	return &out
+}
+
+// others reports whether a shift may be that of others, too: one whose own cut
+// is not known, or lies the same way by a good part of the least of these.
+func (f *finder) others(who []int, cuts []*signal.LimitFit) bool {
+	least := math.Inf(1)
+	for _, l := range cuts {
+		least = min(least, math.Abs(l.Offset.Value))
+	}
+	for a := range f.Zone.Curves.Each {
+		own := f.ownSide(a, cuts[0].Side)
+		if !slices.Contains(who, a) && (!own.Known() || own.Offset.Value*math.Copysign(1, cuts[0].Offset.Value) >= alikeOffset*least) {
+			return true
+		}
+	}
+	return false
+}
+
+// people names appraisers.
+func (f *finder) people(who []int) string {
+	var names []string
+	for _, a := range who {
+		names = append(names, f.name(a))
+	}
+	return some(names)
 }
 
 // ownSide is an appraiser's own curve at a limit; nil if it has none.
@@ -112,14 +200,27 @@ func sides(c *signal.Curve) (out []*signal.LimitFit) {
 	return out
 }
 
-// shifted reports whether a cut lies beside its limit by enough to matter,
-// and for certain, though so many offsets are looked at (Bonferroni): by its
-// standard error or, where it has none, by its interval, widened in the same
+// without names the parts that a curve cannot explain, which were left out of
+// the figures told; empty if there are none.
+func without(c *signal.Curve) string {
+	if c.Without == nil {
+		return ""
+	}
+	var names []string
+	for _, i := range c.Outliers {
+		names = append(names, c.Parts[i].Name)
+	}
+	return " (without " + few(names, len(names)) + ", which the curve cannot explain)"
+}
+
+// shifted reports whether a cut of a curve lies beside its limit by enough to
+// matter, and for certain, though so many offsets are looked at (Bonferroni): by
+// its standard error or, where it has none, by its interval, widened in the same
 // proportion. (With a few parts in doubt, lack of fit can widen an interval
 // without bound; the standard error carries it in measure.)
-func (f *finder) shifted(l *signal.LimitFit, looks int) bool {
+func shifted(c *signal.Curve, l *signal.LimitFit, looks int) bool {
 	o := l.Offset
-	if !l.HasLimit || f.between(l.Limit, l.Cut.Value) < partsBetween {
+	if !l.HasLimit || !besideLimit(l) {
 		return false
 	}
 	z := func(tail float64) float64 { return -distuv.UnitNormal.Quantile(tail) }
@@ -132,7 +233,24 @@ func (f *finder) shifted(l *signal.LimitFit, looks int) bool {
 		}
 		doubt = (offset - near) * sure / z((1-o.Confidence)/2)
 	}
-	return offset >= offsetOfSigma*l.Sigma.Value && offset > doubt
+	if offset <= doubt {
+		return false
+	}
+	wrong := shiftedParts(c, l)
+	return between(c, l) >= partsBetween || wrong > partsBetween || wrong == partsBetween && offset > overCertain*doubt
+}
+
+// between counts the parts of a curve from a limit to its cut.
+func between(c *signal.Curve, l *signal.LimitFit) (n int) {
+	for _, p := range c.Parts {
+		n += btoi(p.Value >= min(l.Limit, l.Cut.Value) && p.Value <= max(l.Limit, l.Cut.Value))
+	}
+	return n
+}
+
+// besideLimit reports whether an offset is large enough to matter.
+func besideLimit(l *signal.LimitFit) bool {
+	return math.Abs(l.Offset.Value) >= offsetOfSigma*l.Sigma.Value
 }
 
 // beside returns the size of an offset and the end of its interval nearer to
@@ -144,36 +262,72 @@ func beside(o signal.Estimate) (offset, near float64, bounded bool) {
 	return o.Value, o.Lower, o.HasLower
 }
 
-// between counts the parts with a value from one end to the other.
-func (f *finder) between(x, y float64) int {
+// shiftedParts counts the parts of a curve that were called wrong at a limit in
+// the way that a cut beside it makes: bad ones accepted where it lies outside,
+// good ones rejected where it lies inside.
+func shiftedParts(c *signal.Curve, l *signal.LimitFit) int {
 	n := 0
-	for part, v := range f.Study.Values {
-		if f.Study.HasValue[part] && v >= min(x, y) && v <= max(x, y) {
+	for _, p := range c.Parts {
+		beyond := p.Value > l.Limit // on the side of the bad parts
+		if l.Side == signal.Lower {
+			beyond = p.Value < l.Limit
+		}
+		if outside(l) && beyond && p.Accepted > 0 || !outside(l) && !beyond && p.Accepted < p.Calls && nearest(c, l, p.Value) {
 			n++
 		}
 	}
 	return n
 }
 
+// nearest reports whether a value is nearer to a limit than to the other one.
+func nearest(c *signal.Curve, l *signal.LimitFit, x float64) bool {
+	if !c.Limits.HasLower || !c.Limits.HasUpper {
+		return true
+	}
+	toLower, toUpper := math.Abs(x-c.Limits.Lower), math.Abs(x-c.Limits.Upper)
+	return l.Side == signal.Lower && toLower <= toUpper || l.Side == signal.Upper && toUpper <= toLower
+}
+
 // shift tells of an offset; the sentence begins with who and ends with what
 // it points to.
-func (f *finder) shift(who string, l *signal.LimitFit, points string) string {
+func (f *finder) shift(who string, l *signal.LimitFit, without, points string) string {
 	s := f.Scale()
-	where := "above"
-	if l.Offset.Value < 0 {
-		where = "below"
-	}
 	offset, near, bounded := beside(l.Offset)
 	size := s.WithUnit(s.Value(offset))
 	if l.Offset.HasLower && l.Offset.HasUpper && bounded && near > 0 {
 		far := max(math.Abs(l.Offset.Lower), math.Abs(l.Offset.Upper))
 		size += fmt.Sprintf(" (%s to %s)", s.Value(near), s.Value(far))
 	}
+	return fmt.Sprintf("%s %s %s%s. %s.", who, size, follows(l), without, points)
+}
+
+// shiftOfSeveral tells of the offsets of several appraisers.
+func (f *finder) shiftOfSeveral(people string, cuts []*signal.LimitFit, points string) string {
+	s := f.Scale()
+	least, most := math.Inf(1), 0.0
+	for _, l := range cuts {
+		size := math.Abs(l.Offset.Value)
+		least, most = min(least, size), max(most, size)
+	}
+	return fmt.Sprintf("%s cut %s %s. %s.", people, s.WithUnit(s.Value(least)+" to "+s.Value(most)), follows(cuts[0]), points)
+}
+
+// follows says where a cut lies, and what follows.
+func follows(l *signal.LimitFit) string {
 	wrong := "good parts are rejected"
 	if outside(l) {
 		wrong = "bad parts are accepted"
 	}
-	return fmt.Sprintf("%s %s %s the %s limit, so that %s there. %s.", who, size, where, l.Side, wrong, points)
+	return fmt.Sprintf("%s, so that %s there", where(l), wrong)
+}
+
+// where says on which side of its limit a cut lies.
+func where(l *signal.LimitFit) string {
+	way := "above"
+	if l.Offset.Value < 0 {
+		way = "below"
+	}
+	return fmt.Sprintf("%s the %s limit", way, l.Side)
 }
 
 // outside reports whether a cut lies outside its limit.

@@ -25,7 +25,7 @@ func steadyErrors(f *finder) []Cause {
 	turns := f.Zone != nil && f.Zone.Curves != nil && turnsAtEachLimit(f.Zone.Curves.Pooled, f.Zone.Limits)
 	if t := f.together; f.several() && steady(t) && !turns && !has(f.found, Everyone, codeKinds, codeGrades) {
 		return []Cause{{
-			Code: codeStandard, Appraiser: Everyone,
+			Code: codeStandard,
 			Text: fmt.Sprintf("All appraisers are wrong about the same %s every time (%s). That points to a shifted standard or gauge, or to a wrong reference.",
 				format.Counted(len(t.steady), "part"), t.steadyCalls),
 			Do: fmt.Sprintf("Judge or measure the reference of parts %s again. If it holds, correct the standard or gauge that all work by.", f.list(t.steady)),
@@ -40,13 +40,28 @@ func steadyErrors(f *finder) []Cause {
 			continue
 		}
 		out = append(out, Cause{
-			Code: codeSteady, Appraiser: a,
+			Code: codeSteady, Appraisers: []int{a},
 			Text: fmt.Sprintf("%s is wrong about the same parts every time: %s of %s, on %s (%s).",
 				f.name(a), format.Count(p.steadyCalls.total()), format.Counted(p.wrong, "wrong call"), format.Counted(len(p.steady), "part"), p.steadyCalls),
-			Do: fmt.Sprintf("Go through parts %s with %s beside the standard: it is the idea of a good part that is shifted, not attention that is at fault.", f.list(p.steady), f.name(a)),
+			Do: f.steadyStep(p, f.name(a)),
 		})
 	}
 	return out
+}
+
+// oneWay is the share of the calls that are wrong every time above which they
+// go one way: too strict, or too lenient. Our own choice, no source.
+const oneWay = 0.8
+
+// steadyStep says what to do about calls that one appraiser makes wrong every
+// time. Only where they go one way is the idea of a good part shifted; parts
+// mixed up and calls copied look the same else.
+func (f *finder) steadyStep(p pattern, who string) string {
+	step := fmt.Sprintf("Go through parts %s with %s beside the standard", f.list(p.steady), who)
+	if w := p.steadyCalls; float64(max(w.misses, w.falseAlarms)) >= oneWay*float64(w.total()) {
+		return step + ": it is the idea of a good part that is shifted, rather than attention that is at fault."
+	}
+	return stop(fmt.Sprintf("Check the labels and the records of parts %s first: parts mixed up, calls copied from another sheet. Then go through them with %s beside the standard", f.list(p.steady), who))
 }
 
 // turnsAtEachLimit reports whether the calls turn at every limit that there is.

@@ -53,7 +53,7 @@ func uniform(f *finder) []Cause {
 		way = ", bad parts accepted and good ones rejected"
 	}
 	return []Cause{{
-		Code: codeReversed, Appraiser: Everyone,
+		Code: codeReversed,
 		Text: fmt.Sprintf("Nearly every call is wrong: %s of %s%s. That looks like words or a reference the wrong way round, not like bad calls.",
 			format.Count(wrong), format.Counted(calls, "call"), way),
 		Do: "Check first whether the words of the calls (accept, reject) or those of the reference column are swapped. Then read the study again.",
@@ -63,7 +63,7 @@ func uniform(f *finder) []Cause {
 // allAlike tells of calls that are all of one category.
 func (f *finder) allAlike(call, calls int) Cause {
 	c := Cause{
-		Code: codeAlike, Appraiser: Everyone,
+		Code: codeAlike,
 		Text: fmt.Sprintf("All %s are the same, %s. They tell nothing of whether one part can be told from another.", format.Counted(calls, "call"), f.Study.Categories[call]),
 		Do:   "Ask first whether the calls were written down as made. If they were, have all show, on a part of each kind, how it is told.",
 	}

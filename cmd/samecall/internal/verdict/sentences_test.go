@@ -58,7 +58,7 @@ func (v *Verdict) faults() []string {
 
 // Names as people give them: verbs of a format, a full stop at the end, marks
 // and other scripts.
-var odd = []string{"100%d", "Dr. %s No.", "<b>x & y</b>", "=1+1", "ציפורן", "a%v {{.}}"}
+var odd = []string{"100%d", "Dr. %s No.", "<b>x & y</b>", "=1+1", "ציפורן", "a%v {{.}}", "`g`", "h|i", "j\\k", "[l](m)", "*n*", "_o_"}
 
 func TestSentences(t *testing.T) {
 	for _, c := range causeTests {
@@ -81,8 +81,8 @@ func TestCausesNameNames(t *testing.T) {
 	for _, c := range causeTests {
 		_, v := decide(t, c.files(1))
 		for _, cause := range v.Causes {
-			if cause.Appraiser != Everyone {
-				if name := v.Appraisers[cause.Appraiser].Name; !strings.Contains(cause.Text, name) || !strings.Contains(cause.Do, name) {
+			for _, a := range cause.Appraisers {
+				if name := v.Appraisers[a].Name; !strings.Contains(cause.Text, name) || !strings.Contains(cause.Do, name) {
 					t.Errorf("%s: %q, %q do not name %s", c.name, cause.Text, cause.Do, name)
 				}
 			}

@@ -62,22 +62,46 @@ func TestThresholdsOfGrades(t *testing.T) {
 	}
 }
 
-// An offset counts from half a σ on, and with two parts between limit and cut.
+// An offset counts from half a σ on, and with two parts between limit and cut, or
+// three called wrong the way it makes: good ones rejected inside the limit, bad
+// ones accepted outside.
 func TestThresholdsOfAShift(t *testing.T) {
-	for _, c := range []struct {
+	rejected := func(x float64) signal.PartFit { return signal.PartFit{Value: x, Calls: 9, Accepted: 8} }
+	accepted := func(x float64) signal.PartFit { return signal.PartFit{Value: x, Calls: 9, Accepted: 1} }
+	never := func(x float64) signal.PartFit { return signal.PartFit{Value: x, Calls: 9} }
+	always := func(x float64) signal.PartFit { return signal.PartFit{Value: x, Calls: 9, Accepted: 9} }
+	for i, c := range []struct {
+		side   signal.Side
 		offset float64
-		parts  []float64
+		parts  []signal.PartFit
 		want   bool
 	}{
-		{0.50, []float64{10.1, 10.2}, true}, {0.49, []float64{10.1, 10.2}, false},
-		{-0.50, []float64{9.9, 9.8}, true}, {-0.49, []float64{9.9, 9.8}, false},
-		{0.50, []float64{10.1, 10.6}, false},
+		{signal.Lower, 0.50, []signal.PartFit{rejected(10.1), rejected(10.2)}, true}, // between
+		{signal.Lower, 0.49, []signal.PartFit{rejected(10.1), rejected(10.2)}, false},
+		{signal.Lower, 0.50, []signal.PartFit{rejected(10.1), rejected(10.6)}, false},
+		{signal.Lower, 1.10, []signal.PartFit{rejected(10.1), rejected(11.6)}, true}, // twice what makes it certain
+		{signal.Lower, 1.10, []signal.PartFit{rejected(10.1), always(11.6)}, false},
+		{signal.Lower, 0.50, []signal.PartFit{rejected(10.1), rejected(10.6), rejected(10.7)}, true},
+		{signal.Lower, 0.50, []signal.PartFit{rejected(10.1), rejected(10.6), rejected(19)}, false}, // near the upper limit
+		{signal.Lower, 0.50, []signal.PartFit{rejected(10.1), rejected(10.6), always(10.7), accepted(9.9), accepted(9.8)}, false},
+		{signal.Lower, -0.50, []signal.PartFit{accepted(9.9), accepted(9.6)}, true},
+		{signal.Lower, -0.49, []signal.PartFit{accepted(9.9), accepted(9.6)}, false},
+		{signal.Lower, -0.50, []signal.PartFit{accepted(9.6), accepted(9.4), accepted(9.3)}, true},
+		{signal.Lower, -0.50, []signal.PartFit{accepted(9.6), accepted(9.4), never(9.3), rejected(10.1), rejected(10.2)}, false},
+		{signal.Upper, 0.50, []signal.PartFit{accepted(20.1), accepted(20.6), accepted(20.9)}, true},
+		{signal.Upper, 0.50, []signal.PartFit{accepted(20.1), accepted(20.6), rejected(19), rejected(19.9)}, false},
+		{signal.Upper, -0.50, []signal.PartFit{rejected(19.9), rejected(19.4), rejected(19.1)}, true},
+		{signal.Upper, -0.50, []signal.PartFit{rejected(19.9), rejected(19.4), rejected(11)}, false},
 	} {
-		f := &finder{Result: &judge.Result{Study: &study.Study{Values: c.parts, HasValue: []bool{true, true}}}}
-		l := &signal.LimitFit{Limit: 10, HasLimit: true, Cut: signal.Estimate{Value: 10 + c.offset},
-			Offset: signal.Estimate{Value: c.offset, SE: 0.01}, Sigma: signal.Estimate{Value: 1}}
-		if got := f.shifted(l, 1); got != c.want {
-			t.Errorf("offset %v, parts at %v: %v", c.offset, c.parts, got)
+		limits := signal.Between(10, 20)
+		l := &signal.LimitFit{Side: c.side, HasLimit: true, Limit: limits.Lower,
+			Offset: signal.Estimate{Value: c.offset, SE: 0.19}, Sigma: signal.Estimate{Value: 1}}
+		if c.side == signal.Upper {
+			l.Limit = limits.Upper
+		}
+		l.Cut.Value = l.Limit + c.offset
+		if got := shifted(&signal.Curve{Limits: limits, Parts: c.parts}, l, 1); got != c.want {
+			t.Errorf("%d: offset %v at the %s limit: %v", i+1, c.offset, c.side, got)
 		}
 	}
 }

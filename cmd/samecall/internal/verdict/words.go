@@ -15,16 +15,34 @@ func list(names []string, parts []int) string {
 		return "none"
 	}
 	var out []string
-	for i, part := range parts {
-		if i == manyNames {
-			return strings.Join(out, ", ") + " and " + format.Count(len(parts)-manyNames) + " more"
+	for _, part := range parts {
+		if out = append(out, names[part]); len(out) > manyNames {
+			break
 		}
-		out = append(out, names[part])
 	}
-	return and(out)
+	return few(out, len(parts))
+}
+
+// few names some of so many.
+func few(names []string, of int) string {
+	if of <= manyNames {
+		return and(names)
+	}
+	return strings.Join(names[:manyNames], ", ") + " and " + format.Count(of-manyNames) + " more"
 }
 
 func (f *finder) list(parts []int) string { return list(f.Study.Parts, parts) }
+
+// theParts names parts as parts: some are named by a number, which would read as
+// a count.
+func theParts(names []string, parts []int) string {
+	if len(parts) == 1 {
+		return "part " + list(names, parts)
+	}
+	return "parts " + list(names, parts)
+}
+
+func (f *finder) theParts(parts []int) string { return theParts(f.Study.Parts, parts) }
 
 // and joins names: "A, B and C".
 func and(names []string) string {
@@ -47,3 +65,10 @@ func are(n int) string {
 
 // capital begins a sentence with a text of our own.
 func capital(s string) string { return strings.ToUpper(s[:1]) + s[1:] }
+
+func btoi(b bool) int {
+	if b {
+		return 1
+	}
+	return 0
+}

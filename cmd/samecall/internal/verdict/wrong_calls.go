@@ -42,7 +42,7 @@ func wrongCallsOf(r *judge.Result, v *Verdict) []string {
 			parts = append(parts, wrongParts(r, a, untold(v, a))...)
 		}
 		slices.Sort(parts)
-		return []string{stop(fmt.Sprintf("Go through the wrong calls of %s, part by part: %s", some(people), list(r.Study.Parts, slices.Compact(parts)))) + noPattern}
+		return []string{stop(fmt.Sprintf("Go through the wrong calls of %s, part by part: %s", some(people), theParts(r.Study.Parts, slices.Compact(parts)))) + noPattern}
 	}
 	// Whoever let the most bad parts pass comes first, whatever the names.
 	slices.SortStableFunc(who, func(a, b int) int {
@@ -59,12 +59,12 @@ func wrongCallsOf(r *judge.Result, v *Verdict) []string {
 			says string
 			way  func(ways) int
 		}{
-			{"bad parts accepted: ", func(w ways) int { return w.misses }},
-			{"good parts rejected: ", func(w ways) int { return w.falseAlarms }},
+			{"bad, but accepted: ", func(w ways) int { return w.misses }},
+			{"good, but rejected: ", func(w ways) int { return w.falseAlarms }},
 			{"wrong category: ", func(w ways) int { return untold(v, a)(ways{others: w.others}) }},
 		} {
 			if parts := wrongParts(r, a, kind.way); len(parts) > 0 {
-				told = append(told, kind.says+list(r.Study.Parts, parts))
+				told = append(told, kind.says+theParts(r.Study.Parts, parts))
 			}
 		}
 		out = append(out, stop(fmt.Sprintf("Go through the wrong calls with %s (%s)", v.Appraisers[a].Name, strings.Join(told, "; ")))+noPattern)
@@ -94,7 +94,7 @@ func untold(v *Verdict, a int) func(ways) int {
 // which parts, or which limit, it is about.
 func namesParts(found []Cause, a int) bool {
 	return slices.ContainsFunc(found, func(c Cause) bool {
-		return c.Appraiser == a && c.Code != codeKinds && c.Code != codeGrades
+		return c.Appraisers != nil && c.of(a) && c.Code != codeKinds && c.Code != codeGrades
 	})
 }
 
