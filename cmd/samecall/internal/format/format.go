@@ -12,7 +12,7 @@ import (
 )
 
 // Percent writes a share in percent. 0 and 100 are written for none and all
-// only, never for nearly so.
+// only, never for nearly so. What is not a share of calls may be above 100.
 func Percent(share float64) string { return digits(share, 19.95) + " %" }
 
 // Confidence writes a confidence level in percent, with the digits it has.
@@ -36,7 +36,7 @@ func digits(share, oneDecimal float64) string {
 		return strconv.FormatFloat(p, 'f', 2, 64)
 	case p < oneDecimal:
 		return decimals(1)
-	case p > 99: // never 100.0
+	case p > 99 && p < 100: // never 100.0
 		return strconv.FormatFloat(math.Floor(10*p)/10, 'f', 1, 64)
 	}
 	return decimals(0)

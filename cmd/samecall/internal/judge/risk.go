@@ -72,10 +72,20 @@ var guardSigmas = []float64{0, 0.25, 0.5, 1, 1.5, 2, 3}
 func NewRisks(c *signal.Curve, ask RiskAsk, unit string) (*Risks, error) {
 	g, err := c.Gauge()
 	if err != nil {
-		return nil, err
+		return nil, oneLimit(c, err)
 	}
 	r := &Risks{Ask: ask, Limits: c.Limits, Gauge: g, Curve: c}
 	return r, r.assess(c, unit)
+}
+
+// oneLimit adds the way out where only one of two limits has a cut.
+func oneLimit(c *signal.Curve, err error) error {
+	for _, pair := range [][2]*signal.LimitFit{{c.Lower, c.Upper}, {c.Upper, c.Lower}} {
+		if with, without := pair[0], pair[1]; with.Known() && without != nil && !without.Known() {
+			return fmt.Errorf("%w. For the risk at the %s limit alone, leave the %s limit out", err, with.Side, without.Side)
+		}
+	}
+	return err
 }
 
 // NewKnownRisks assesses a gauge that is taken as known, without intervals.

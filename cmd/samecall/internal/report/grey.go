@@ -89,8 +89,8 @@ func greyLimitsTable(g *judge.Grey) Table {
 		cell func(judge.GreyLimit) Cell
 	}{
 		{"limit", func(l judge.GreyLimit) Cell { return valueCell(s.Value(l.Limit), l.Limit) }},
-		{"cut: accepted half of the time", func(l judge.GreyLimit) Cell { return placeCell(s, l.Curve, l.Curve.Cut, s.Value) }},
-		{"cut − limit", func(l judge.GreyLimit) Cell { return placeCell(s, l.Curve, l.Curve.Offset, s.Signed) }},
+		{rowCut, func(l judge.GreyLimit) Cell { return placeCell(s, l.Curve, l.Curve.Cut, s.Value) }},
+		{rowOffset, func(l judge.GreyLimit) Cell { return placeCell(s, l.Curve, l.Curve.Offset, s.Signed) }},
 		{"σ", func(l judge.GreyLimit) Cell {
 			if !informs(l.Curve) {
 				return say(notKnown)
@@ -107,8 +107,11 @@ func greyLimitsTable(g *judge.Grey) Table {
 			return zoneShare(l.Curve)
 		}},
 		{"accepted at the limit itself", func(l judge.GreyLimit) Cell {
-			if !l.Curve.HasAtLimit {
+			switch e := l.Curve.AtLimit; {
+			case !l.Curve.HasAtLimit:
 				return say(format.Dash)
+			case !e.HasLower && !e.HasUpper: // it lies where no calls tell of the curve
+				return say(notKnown)
 			}
 			return boundedCell(s, l.Curve.AtLimit, format.Percent)
 		}},
@@ -119,6 +122,10 @@ func greyLimitsTable(g *judge.Grey) Table {
 			switch {
 			case row.name == "limit" || l.Curve.Known():
 				cells = append(cells, row.cell(l))
+			case row.name == rowCut:
+				cells = append(cells, oneBound(s, l.Curve, l.Curve.Cut, s.Value))
+			case row.name == rowOffset:
+				cells = append(cells, oneBound(s, l.Curve, l.Curve.Offset, s.Signed))
 			default:
 				cells = append(cells, say(format.Dash))
 			}
@@ -133,10 +140,44 @@ func greyLimitsTable(g *judge.Grey) Table {
 		t.Columns = append(t.Columns, Column{Name: name, Numbers: true})
 	}
 	t.Note = fmt.Sprintf("The grey zone runs from 0.5 to 99.5 %% acceptance. In brackets the %s interval, by profile likelihood.", format.Confidence(g.Result.Options.Confidence))
+	if who := outlierNames(g); who != "" {
+		t.Note += fmt.Sprintf(" The calls on %s do not fit this curve, and may make it flatter: the fit without them stands below.", who)
+	}
 	return t
 }
 
-const notKnown = "not known"
+// outlierNames names the parts that do not fit the curve; empty if there are none.
+func outlierNames(g *judge.Grey) string {
+	c := curveOf(g)
+	if c == nil || c.Without == nil {
+		return ""
+	}
+	var names []string
+	for _, i := range c.Outliers {
+		names = append(names, c.Parts[i].Name)
+	}
+	return strings.Join(names, ", ")
+}
+
+const (
+	notKnown  = "not known"
+	rowCut    = "cut: accepted half of the time"
+	rowOffset = "cut − limit"
+)
+
+// oneBound is what is known of a cut at a limit where calls do not turn: where
+// every part was accepted, that it lies beyond the outermost of them.
+func oneBound(s format.Scale, l *signal.LimitFit, e signal.Estimate, write func(float64) string) Cell {
+	switch {
+	case l == nil:
+		return say(format.Dash)
+	case e.HasLower:
+		return Cell{Text: "above " + write(e.Lower), Bounded: true, Lower: e.Lower}
+	case e.HasUpper:
+		return Cell{Text: "below " + write(e.Upper), Bounded: true, Upper: e.Upper}
+	}
+	return noFit(l)
+}
 
 // informs reports whether the calls say how wide the grey zone at a limit is:
 // rejected and accepted ones overlap there, and the width has an upper bound.
@@ -244,6 +285,9 @@ func greyMethodsTable(g *judge.Grey) Table {
 	note := []string{fmt.Sprintf("Unanimous: from the last part always rejected to the first always accepted, taken as %s σ. Curve: from 0.5 to 99.5 %% acceptance.", format.Number(u.Spread))}
 	if u.HasGRR {
 		note = append(note, fmt.Sprintf("%%GRR is 6 σ over the tolerance; the mean, %.0f %%, is %s by common practice (below 10 good, to 30 conditional).", u.PercentGRR, signal.BandGRR(u.PercentGRR)))
+	}
+	if grade := gradeOfCurve(g.Result.Zone); grade != "" {
+		note = append(note, grade)
 	}
 	t.Note = strings.Join(note, " ")
 	return t
@@ -393,37 +437,34 @@ func greyWithoutTable(g *judge.Grey) Table {
 		return Table{}
 	}
 	s := g.Result.Scale()
-	var names []string
-	for _, i := range c.Outliers {
-		names = append(names, c.Parts[i].Name)
-	}
 	t := Table{
-		Name: "without", Title: inUnit("The fit without "+strings.Join(names, ", "), s),
-		Columns: []Column{{Name: "limit"}, {Name: "cut", Numbers: true}, {Name: "cut without", Numbers: true}, {Name: "σ", Numbers: true}, {Name: "σ without", Numbers: true}},
+		Name: "without", Title: inUnit("The fit without "+outlierNames(g), s),
+		Columns: []Column{{Name: "limit"}, {Name: "parts"}, {Name: "cut − limit", Numbers: true}, {Name: "σ", Numbers: true}, {Name: "grey zone", Numbers: true}, {Name: "of tolerance", Numbers: true}},
 		Note:    "These parts were called against all the others. Look at them first: a wrong value or reference, parts mixed up, or a far error that the curve cannot describe.",
 	}
 	for _, l := range g.Limits {
-		row := []Cell{say(l.Side.String())}
 		without := c.Without.Lower
 		if l.Side == signal.Upper {
 			without = c.Without.Upper
 		}
-		fits := []*signal.LimitFit{l.Curve, without}
-		for _, f := range fits {
-			cell := say(format.Dash)
-			if f.Known() {
-				cell = valueCell(s.Value(f.Cut.Value), f.Cut.Value)
+		for _, fit := range []struct {
+			parts string
+			at    *signal.LimitFit
+		}{{"all", l.Curve}, {"without", without}} {
+			row := []Cell{say(l.Side.String()), say(fit.parts)}
+			if !fit.at.Known() {
+				for range 4 {
+					row = append(row, noFit(fit.at))
+				}
+				t.Rows = append(t.Rows, row)
+				continue
 			}
-			row = append(row, cell)
-		}
-		for _, f := range fits {
-			cell := say(format.Dash)
-			if f.Known() && f.Status == signal.Fitted {
-				cell = valueCell(s.Value(f.Sigma.Value), f.Sigma.Value)
+			share := dash("a share of the tolerance needs both limits")
+			if fit.at.HasShare {
+				share = zoneShare(fit.at)
 			}
-			row = append(row, cell)
+			t.Rows = append(t.Rows, append(row, placeCell(s, fit.at, fit.at.Offset, s.Signed), zoneCells(s, fit.at)[0], zoneWidth(s, fit.at, true), share))
 		}
-		t.Rows = append(t.Rows, row)
 	}
 	return t
 }

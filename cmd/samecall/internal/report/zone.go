@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"samecall/cmd/samecall/internal/format"
+	"samecall/cmd/samecall/internal/judge"
 	"samecall/signal"
 )
 
@@ -31,7 +32,8 @@ func zoneTable(r *Record) Table {
 		}
 		row := []Cell{say(l.Side.String()), valueCell(s.Value(l.Limit), l.Limit)}
 		if !l.Known() {
-			for range 4 {
+			row = append(row, oneBound(s, l, l.Offset, s.Signed))
+			for range 3 {
 				row = append(row, noFit(l))
 			}
 			t.Rows = append(t.Rows, row)
@@ -103,8 +105,32 @@ func zoneNotes(r *Record, screen bool) []string {
 			note += " See samecall zone."
 		}
 		out = append(out, note)
+	} else if note := gradeOfCurve(z); note != "" {
+		out = append(out, note)
 	}
 	return out
+}
+
+// gradeOfCurve grades the grey zone by the curve, where there is no unanimous
+// zone to grade; empty where the curve does not tell it either.
+func gradeOfCurve(z *judge.Zone) string {
+	if z.Unanimous.HasGRR || z.Curves == nil {
+		return ""
+	}
+	worst, known := 0.0, false
+	for _, l := range []*signal.LimitFit{z.Curves.Pooled.Lower, z.Curves.Pooled.Upper} {
+		if l == nil || !widthKnown(l) {
+			continue
+		}
+		if grr, ok := l.PercentGRR(z.Limits); ok {
+			worst, known = max(worst, grr.Value), true
+		}
+	}
+	if !known {
+		return ""
+	}
+	return fmt.Sprintf("By the curve %%GRR, 6 σ of the tolerance, is %.0f %%: %s by common practice (below 10 good, to 30 conditional). %s",
+		worst, signal.BandGRR(worst), sentence(z.Unanimous.Why))
 }
 
 // cutsTable says which appraiser cuts where; empty with one appraiser.

@@ -122,7 +122,7 @@ func (f *finder) zoneWidth() string {
 	for _, l := range f.zones() {
 		text := s.WithUnit(s.Value(l.Width.Value)) + " wide"
 		if l.HasShare {
-			text += " (" + percent(l.Share.Value) + " of the tolerance)"
+			text += " (" + format.Percent(l.Share.Value) + " of the tolerance)"
 		}
 		widths, at = append(widths, text), append(at, text+" at the "+l.Side.String()+" limit")
 	}
@@ -133,14 +133,6 @@ func (f *finder) zoneWidth() string {
 		return " The grey zone is " + widths[0] + " at each limit."
 	}
 	return " The grey zone is " + and(at) + "."
-}
-
-// percent writes a share that may be above 1.
-func percent(share float64) string {
-	if share > 1 {
-		return fmt.Sprintf("%.0f %%", 100*share)
-	}
-	return format.Percent(share)
 }
 
 // zoneRanges tells from where to where the grey zone reaches.
