@@ -102,19 +102,11 @@ func greyLimitsTable(g *judge.Grey) Table {
 		{"wide", func(l judge.GreyLimit) Cell { return zoneWidth(s, l.Curve, true) }},
 		{"of tolerance", func(l judge.GreyLimit) Cell {
 			if !l.Curve.HasShare {
-				return say(format.Dash)
+				return dash(needsBothLimits)
 			}
 			return zoneShare(l.Curve)
 		}},
-		{"accepted at the limit itself", func(l judge.GreyLimit) Cell {
-			switch e := l.Curve.AtLimit; {
-			case !l.Curve.HasAtLimit:
-				return say(format.Dash)
-			case !e.HasLower && !e.HasUpper: // it lies where no calls tell of the curve
-				return say(notKnown)
-			}
-			return boundedCell(s, l.Curve.AtLimit, format.Percent)
-		}},
+		{"accepted at the limit itself", func(l judge.GreyLimit) Cell { return atLimitCell(s, l.Curve) }},
 	}
 	for _, row := range rows {
 		cells := []Cell{say(row.name)}
@@ -127,7 +119,7 @@ func greyLimitsTable(g *judge.Grey) Table {
 			case row.name == rowOffset:
 				cells = append(cells, oneBound(s, l.Curve, l.Curve.Offset, s.Signed))
 			default:
-				cells = append(cells, say(format.Dash))
+				cells = append(cells, noFit(l.Curve))
 			}
 		}
 		t.Rows = append(t.Rows, cells)
@@ -202,6 +194,17 @@ func placeCell(s format.Scale, l *signal.LimitFit, e signal.Estimate, write func
 		return say(notKnown)
 	}
 	return boundedCell(s, e, write)
+}
+
+// atLimitCell is the acceptance at the limit itself.
+func atLimitCell(s format.Scale, l *signal.LimitFit) Cell {
+	switch e := l.AtLimit; {
+	case !l.HasAtLimit:
+		return say("")
+	case !e.HasLower && !e.HasUpper: // it lies where no calls tell of the curve
+		return say(notKnown)
+	}
+	return boundedCell(s, l.AtLimit, format.Percent)
 }
 
 // zoneShare is the width of the grey zone, of the tolerance.

@@ -11,6 +11,7 @@ import (
 
 	"github.com/jedib0t/go-pretty/v6/text"
 
+	"samecall/agreement"
 	"samecall/cmd/samecall/internal/figure"
 	"samecall/cmd/samecall/internal/format"
 )
@@ -138,7 +139,7 @@ func sections(r *Record) []pageSection {
 	add("appraisers", "Appraisers", []string{"errors"}, appraisers...)
 	square := []Table{withinTable(r)}
 	if len(r.Study.Appraisers) > 1 {
-		square = append(square, cutPairs(pairsTable(r), "share", "agree least"), cutPairs(leanTable(r), "p", "lean most"))
+		square = append(square, cutPairs(pairsTable(r), "share", "agree least"), cutPairs(narrowLean(r), "p", "lean most"), fewKinds(r))
 	}
 	square = append(square, coefficientsTable(r), weightedTable(r), categoriesTable(r))
 	add("agreement", "Agreement", []string{"square"}, square...)
@@ -167,6 +168,47 @@ func cutPairs(t Table, column, says string) Table {
 	slices.SortStableFunc(rows, func(a, b []Cell) int { return cmp.Compare(value(a), value(b)) })
 	t.Note = fmt.Sprintf("The %d pairs that %s, of %s; the JSON, the CSV and the workbook have them all. %s", most, says, format.Count(len(rows)), t.Note)
 	t.Rows = rows[:most]
+	return t
+}
+
+// narrowLean leaves out of who rejects more what the page can do without: the
+// sum of the four counts and, with a reference, against which the rates tell
+// it of each, the shares.
+func narrowLean(r *Record) Table {
+	t := leanTable(r)
+	out := []string{"pairs"}
+	if r.Agreement.All != nil {
+		out = append(out, "first rejects", "second rejects")
+	}
+	for _, name := range out {
+		i := slices.IndexFunc(t.Columns, func(c Column) bool { return c.Name == name })
+		t.Columns = slices.Delete(t.Columns, i, i+1)
+		for j, row := range t.Rows {
+			t.Rows[j] = slices.Delete(row, i, i+1)
+		}
+	}
+	return t
+}
+
+// fewKinds is the cross-table of each pair, of those that agree least where all
+// would fill page after page.
+func fewKinds(r *Record) Table {
+	const most = 120 // rows
+	all := r.Agreement.Between.Pairs
+	n := max(1, most/max(1, len(r.Study.Categories)))
+	if len(all) <= n {
+		return kindsTable(r, all)
+	}
+	pairs := slices.Clone(all)
+	share := func(p agreement.Pair) float64 {
+		if p.Share.Absent != nil {
+			return 2 // not known: last
+		}
+		return p.Share.Value
+	}
+	slices.SortStableFunc(pairs, func(a, b agreement.Pair) int { return cmp.Compare(share(a), share(b)) })
+	t := kindsTable(r, pairs[:n])
+	t.Note = fmt.Sprintf("The %s that agree least, of %s; the JSON, the CSV and the workbook have them all. %s", format.Counted(n, "pair"), format.Count(len(all)), t.Note)
 	return t
 }
 

@@ -23,9 +23,9 @@ func TestRecordNamesIntervalsOfKappas(t *testing.T) {
 	}{
 		{60, 2000, "2000, seed 1", "Intervals of kappas: 2000 resamples of whole parts, bias-corrected and accelerated (Efron, 1987), at a confidence expanded for few parts (Hesterberg, 2015), never narrower than"},
 		{60, 0, "none (linearised)", "Intervals of kappas: standard errors linearised over parts, never narrower than"},
-		{1200, 2000, "none (linearised)", "Intervals of kappas: standard errors linearised over parts, never narrower than"},
+		{1200, 2000, "none of the 2000 asked for (linearised)", "Intervals of kappas: standard errors linearised over parts, never narrower than"},
 		{90, 600_000, "600000, seed 1, for 1 of 2 kappas and coefficients; none for the others (linearised)", "Intervals of kappas: 600000 resamples of whole parts, bias-corrected and accelerated (Efron, 1987), at a confidence expanded for few parts (Hesterberg, 2015), for 1 of 2 kappas and coefficients; for the others standard errors linearised over parts; never narrower than"},
-		{0, 2000, "none (no interval rests on them)", "Intervals of kappas: from the exact limits of the share of parts that disagree."},
+		{0, 2000, "none of the 2000 asked for (no interval rests on them)", "Intervals of kappas: from the exact limits of the share of parts that disagree."},
 	} {
 		r := countedRecord(t, c.parts, c.resamples)
 		var page bytes.Buffer

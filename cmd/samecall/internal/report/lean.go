@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"strings"
 
+	"samecall/agreement"
 	"samecall/cmd/samecall/internal/format"
 	"samecall/cmd/samecall/internal/judge"
 	"samecall/cmd/samecall/internal/verdict"
@@ -11,19 +12,17 @@ import (
 
 const callsAsIndependent = "takes calls as independent: with several calls on a part p is too small"
 
-// leanTable tells of each two appraisers who rejects more; empty with a
-// reference, against which the rates tell it of each.
+// leanTable sets the calls of each two appraisers side by side, a cross-table in
+// a row, and tells who rejects more.
 func leanTable(r *Record) Table {
 	t := Table{
 		Name:  "lean",
 		Title: "Between appraisers: who rejects more?",
 		Keys:  2,
-		Columns: []Column{{Name: "first"}, {Name: "second"}, {Name: "pairs", Numbers: true}, {Name: "first rejects", Numbers: true}, {Name: "second rejects", Numbers: true},
-			{Name: "only the first", Numbers: true}, {Name: "only the second", Numbers: true}, {Name: "p", Numbers: true}},
-		Note: "Of the pairs of calls on one part. " + pairingNote(r.Options.Pairing) + " p: exact test of McNemar, small where one rejects more. It " + callsAsIndependent + ".",
-	}
-	if r.Agreement.All != nil {
-		return t
+		Columns: []Column{{Name: "first"}, {Name: "second"}, {Name: "pairs", Numbers: true}, {Name: "both reject", Numbers: true},
+			{Name: "only the first", Numbers: true}, {Name: "only the second", Numbers: true}, {Name: "both accept", Numbers: true},
+			{Name: "first rejects", Numbers: true}, {Name: "second rejects", Numbers: true}, {Name: "p", Numbers: true}},
+		Note: "Of the pairs of calls on one part, how many both reject, only one, or none: the cross-table of the two. " + pairingNote(r.Options.Pairing) + " p: exact test of McNemar, small where one rejects more. It " + callsAsIndependent + ".",
 	}
 	for _, l := range r.Leans {
 		byA, byB := l.Rejected()
@@ -32,7 +31,31 @@ func leanTable(r *Record) Table {
 			p = valueCell(format.Probability(l.Test.P), l.Test.P)
 		}
 		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[l.A]), say(r.Study.Appraisers[l.B]), intCell(l.Pairs()),
-			shareOfPairs(byA, l.Pairs()), shareOfPairs(byB, l.Pairs()), intCell(l.OnlyA()), intCell(l.OnlyB()), p})
+			intCell(byA - l.OnlyA()), intCell(l.OnlyA()), intCell(l.OnlyB()), intCell(l.Pairs() - byA - l.OnlyB()),
+			shareOfPairs(byA, l.Pairs()), shareOfPairs(byB, l.Pairs()), p})
+	}
+	return t
+}
+
+// kindsTable is the cross-table of each of some pairs, where it is more than
+// the four counts of leanTable; else empty.
+func kindsTable(r *Record, pairs []agreement.Pair) Table {
+	t := Table{Name: "pair tables", Title: "Between appraisers: the calls of each two side by side", Keys: 3,
+		Columns: []Column{{Name: "first"}, {Name: "second"}, {Name: "call of the first"}}, Note: pairingNote(r.Options.Pairing)}
+	if len(r.Study.Categories) < 3 && r.Leans != nil {
+		return t
+	}
+	for _, c := range r.Study.Categories {
+		t.Columns = append(t.Columns, Column{Name: "second: " + c, Numbers: true})
+	}
+	for _, p := range pairs {
+		for k, c := range r.Study.Categories {
+			row := []Cell{say(r.Study.Appraisers[p.A]), say(r.Study.Appraisers[p.B]), say(c)}
+			for _, n := range p.Table[k] {
+				row = append(row, intCell(n))
+			}
+			t.Rows = append(t.Rows, row)
+		}
 	}
 	return t
 }

@@ -224,6 +224,7 @@ func plans() []plan {
 		}, change: func(s *study.Settings) {
 			s.Title = "Bore 12 H7 of the pump body with the long flange, after the change of the supplier of raw castings, second repetition"
 		}},
+		{name: "long names, no reference", appraisers: long, noReference: true, noValues: true},
 		{name: "right to left", appraisers: []string{"דנה כהן", "أحمد الخطيب", "Rivka רבקה 2"}, part: func(i int) string { return fmt.Sprintf("חלק %d", i+1) },
 			change: func(s *study.Settings) { s.Title, s.Unit = "קוטר הקדח של גוף המשאבה", "מ״מ" }},
 		{name: "emoji and ideographs", appraisers: []string{"👩🏽‍🔧 Ada", "検査員一号", "검사원 둘"}, part: func(i int) string { return fmt.Sprintf("零件 %d 🔩", i+1) },

@@ -26,6 +26,7 @@ type Column struct {
 	Name    string
 	Numbers bool   // set flush right, and never cut
 	Long    bool   // text that goes on in further lines where there is no room
+	Whole   bool   // words of our own that stay on one line
 	Of      string // what counts in it are counted of, as a head
 }
 
@@ -208,6 +209,7 @@ func (t Table) least(step int, below bool) []int {
 			case c.Numbers && below:
 				w = text.LongestLineLen(intervalBelow(cell, 0))
 			case c.Numbers:
+			case c.Whole:
 			case step >= textsBroken:
 				w = min(w, widestWord(cell))
 			case c.Long && step >= longBroken:

@@ -17,17 +17,19 @@ const together = "all together"
 
 // Tables returns every table of a result, in the order of reading.
 func Tables(r *Record) []Table {
-	out := []Table{criteriaTable(r)}
+	out := []Table{criteriaTable(r), restsTable(r)}
 	if r.Agreement.All != nil {
 		out = append(out, againstTable(r, true), errorsTable(r), detectionTable(r))
 	}
-	out = append(out, zoneTable(r), cutsTable(r), zonesTable(r), withinTable(r))
+	out = append(out, zoneTable(r), unanimousTable(r), curveLimitsTable(r), cutsTable(r), zonesTable(r), curvesTable(r), gapsTable(r),
+		curveFitTable(r), curveErrorsTable(r), withinTable(r))
 	if len(r.Study.Appraisers) > 1 {
-		out = append(out, newSquare(r).table(true), pairsTable(r), leanTable(r))
+		out = append(out, newSquare(r).table(true), pairsTable(r), leanTable(r), kindsTable(r, r.Agreement.Between.Pairs))
 	}
 	out = append(out, coefficientsTable(r), weightedTable(r), categoriesTable(r))
 	out = append(out, crossTables(r)...)
-	out = append(out, directionTable(r), partsTable(r))
+	d := newDocument(r)
+	out = append(out, directionTable(r), partsTable(r), standardErrorsTable(d), methodsTable(d), absentTable(r, d))
 	return slices.DeleteFunc(out, func(t Table) bool { return len(t.Rows) == 0 })
 }
 
@@ -80,12 +82,17 @@ func studyTable(r *Record) Table {
 	add("parts", parts)
 	add("appraisers", strings.Join(r.Study.Appraisers, ", "))
 	add("trials", trials(r))
+	add("trials of each", trialsOfEach(r))
 	calls := format.Count(d.Calls)
 	if d.Missing > 0 {
 		calls += ", " + format.Count(d.Missing) + " missing"
 	}
 	add("calls", calls)
-	add("categories", strings.Join(r.Study.Categories, ", "))
+	categories := strings.Join(r.Study.Categories, ", ")
+	if d.Ordered {
+		categories += ", from best to worst"
+	}
+	add("categories", categories)
 	add("accepted", strings.Join(d.Accept, ", "))
 	add("words that accept", strings.Join(set.Accept, ", "))
 	add("words that reject", strings.Join(set.Reject, ", "))
@@ -131,20 +138,44 @@ func aboveCommand(r *Record) string {
 	return "Computed by this line, run in " + r.RunIn + ":"
 }
 
+// trialsOfEach lists the trials of each appraiser, where they are not 1, 2 and
+// so on of all; empty elsewhere.
+func trialsOfEach(r *Record) string {
+	plain := true
+	var out []string
+	for a, numbers := range r.Study.TrialNames {
+		var list []string
+		for i, n := range numbers {
+			plain = plain && n == i+1
+			list = append(list, fmt.Sprint(n))
+		}
+		plain = plain && len(numbers) == len(r.Study.TrialNames[0])
+		out = append(out, r.Study.Appraisers[a]+" "+strings.Join(list, ", "))
+	}
+	if plain {
+		return ""
+	}
+	return strings.Join(out, "; ")
+}
+
 // resamplesText says how many resamples the intervals of kappas rest on: those
 // that were drawn, not those that were asked for.
 func resamplesText(r *Record) string {
 	n := r.Agreement.Intervals
 	drawn := fmt.Sprintf("%d, seed %d", r.Options.Resamples, r.Options.Seed)
+	none := "none"
+	if n := r.Options.Resamples; n > 0 {
+		none = fmt.Sprintf("none of the %d asked for", n)
+	}
 	switch {
 	case n.Resampled > 0 && n.Linearised > 0:
 		return fmt.Sprintf("%s, for %s of %s kappas and coefficients; none for the others (linearised)", drawn, format.Count(n.Resampled), format.Count(n.Resampled+n.Linearised))
 	case n.Resampled > 0:
 		return drawn
 	case n.Linearised > 0:
-		return "none (linearised)"
+		return none + " (linearised)"
 	}
-	return "none (no interval rests on them)"
+	return none + " (no interval rests on them)"
 }
 
 // causesTable lists causes and what to do next.
@@ -298,7 +329,7 @@ func detectionTable(r *Record) Table {
 		Name:    "detection",
 		Title:   "How well bad is told from good",
 		Columns: []Column{{Name: "appraiser"}, {Name: "d′", Numbers: true}, {Name: "criterion", Numbers: true}},
-		Note:    "d′: how far calls on bad and on good parts lie apart; criterion: below 0 leans to rejecting, above 0 to accepting.",
+		Note:    "d′: how far calls on bad and on good parts lie apart; criterion: below 0 leans to rejecting, above 0 to accepting. In brackets the two-sided " + format.Confidence(r.Options.Confidence) + " interval.",
 	}
 	if !r.Study.Ratings.HasAccept() {
 		return t
@@ -310,7 +341,7 @@ func detectionTable(r *Record) Table {
 	for i, name := range r.Study.Appraisers {
 		row := []Cell{say(name), dashFor(r.NoDetection[i]), dashFor(r.NoDetection[i])}
 		if d := r.Detection[i]; d != nil {
-			row[1], row[2] = valueCell(format.Figure(d.DPrime.Value), d.DPrime.Value), valueCell(format.Figure(d.Criterion.Value), d.Criterion.Value)
+			row[1], row[2] = areaCell(&d.DPrime, nil), areaCell(&d.Criterion, nil)
 		}
 		if r.Areas != nil {
 			row = append(row, areaCell(r.Areas[i], r.NoArea[i]))
@@ -429,7 +460,14 @@ func coefficientsTable(r *Record) Table {
 		Columns: []Column{{Name: "figure"}, {Name: "value", Numbers: true}, {Name: "what it tells", Long: true}},
 	}
 	add := func(name string, c Cell, what string) { t.Rows = append(t.Rows, []Cell{say(name), c, say(what)}) }
-	add("parts alike", shareCell(b.Share), "every call of every appraiser is the same")
+	alike := "every call of every appraiser is the same"
+	if b.Share.Absent == nil {
+		alike += ": " + ofCell(b.Share).Text
+	}
+	add("parts alike", shareCell(b.Share), alike)
+	if b.Share.Absent == nil {
+		add("calls alike", valueCell(format.Percent(b.Agreement), b.Agreement), "of the pairs of calls on one part")
+	}
 	add("Fleiss' kappa", kappaCell(b.Fleiss), "agreement of all calls beyond chance")
 	add("Gwet's AC1", kappaCell(b.AC1), "the same, not pulled down where one category prevails")
 	add("Krippendorff's alpha", kappaCell(b.Alpha), "the same, corrected for few calls")
@@ -455,6 +493,9 @@ func categoriesTable(r *Record) Table {
 		for _, n := range r.Study.Appraisers {
 			t.Columns = append(t.Columns, Column{Name: n, Numbers: true})
 		}
+		if len(r.Study.Appraisers) > 1 {
+			t.Columns = append(t.Columns, Column{Name: together, Numbers: true})
+		}
 	}
 	for k, name := range r.Study.Categories {
 		row := []Cell{say(name), kappaCell(r.Agreement.Between.Categories[k])}
@@ -466,11 +507,14 @@ func categoriesTable(r *Record) Table {
 				}
 				row = append(row, kappaCell(a.Categories[k]))
 			}
+			if len(r.Study.Appraisers) > 1 {
+				row = append(row, kappaCell(r.Agreement.All.Categories[k]))
+			}
 		}
 		t.Rows = append(t.Rows, row)
 	}
 	if against {
-		t.Note = "Between: Fleiss' kappa of all calls; under an appraiser's name, Cohen's kappa against the reference."
+		t.Note = "Between: Fleiss' kappa of all calls; under an appraiser's name, and of all together, Cohen's kappa against the reference."
 	}
 	return t
 }
@@ -482,6 +526,11 @@ func crossTables(r *Record) []Table {
 		t := crossTable(r, g.Table)
 		t.Name = fmt.Sprintf("calls %d", a+1)
 		t.Title = "Calls of " + r.Study.Appraisers[a] + " by reference"
+		out = append(out, t)
+	}
+	if len(out) > 1 {
+		t := crossTable(r, r.Agreement.All.Table)
+		t.Name, t.Title = "calls of all", "Calls of all together by reference"
 		out = append(out, t)
 	}
 	return out
@@ -521,7 +570,7 @@ func directionTable(r *Record) Table {
 		Columns: []Column{{Name: "appraiser"}, {Name: "test"}, {Name: "statistic", Numbers: true, Of: "wrong calls"}, {Name: "degrees of freedom", Numbers: true}, {Name: "p", Numbers: true}},
 		Note:    "A small p: the calls differ from the reference more often one way than the other. Statistic of McNemar's test: the wrong calls of the rarer way, of all wrong calls. The tests take calls as independent; with several calls on a part p is too small.",
 	}
-	add := func(a int, name string, test *agreement.Test) {
+	add := func(who, name string, table agreement.Table, test *agreement.Test) {
 		if test == nil {
 			return
 		}
@@ -531,15 +580,20 @@ func directionTable(r *Record) Table {
 		}
 		statistic := valueCell(fmt.Sprintf("%.2f", test.Statistic), test.Statistic)
 		if test.DF == 0 { // the exact test has counts
-			table := r.Agreement.Against[a].Table
 			statistic = countCell(int(test.Statistic), table[0][1]+table[1][0])
 		}
-		t.Rows = append(t.Rows, []Cell{say(r.Study.Appraisers[a]), say(name), statistic, df, valueCell(format.Probability(test.P), test.P)})
+		t.Rows = append(t.Rows, []Cell{say(who), say(name), statistic, df, valueCell(format.Probability(test.P), test.P)})
+	}
+	tests := func(who string, g agreement.Against) {
+		add(who, "McNemar, exact", g.Table, g.McNemar)
+		add(who, "Bowker", g.Table, g.Bowker)
+		add(who, "Stuart–Maxwell", g.Table, g.StuartMaxwell)
 	}
 	for a, g := range r.Agreement.Against {
-		add(a, "McNemar, exact", g.McNemar)
-		add(a, "Bowker", g.Bowker)
-		add(a, "Stuart–Maxwell", g.StuartMaxwell)
+		tests(r.Study.Appraisers[a], g)
+	}
+	if len(r.Agreement.Against) > 1 {
+		tests(together, *r.Agreement.All)
 	}
 	return t
 }
@@ -563,6 +617,7 @@ func partsTable(r *Record) Table {
 	}
 	if all := r.Agreement.All; all != nil && len(r.Study.Appraisers) > 1 {
 		add(together, "wrong every time", all.WrongEveryTime)
+		add(together, "mixed", all.Mixed)
 	}
 	for _, l := range parting(r) {
 		onlyA, onlyB := r.Parted(l)
@@ -624,9 +679,9 @@ func decidingCell(c verdict.Criterion) Cell {
 	case !ok:
 		return dashFor(cmp.Or(c.Estimate.Absent, c.Estimate.Unbounded))
 	case upper:
-		return Cell{Text: "≤ " + c.DecidingText(), Bounded: true, Upper: limit}
+		return Cell{Text: "≤ " + c.Exact(limit), Bounded: true, Upper: limit}
 	}
-	return Cell{Text: "≥ " + c.DecidingText(), Bounded: true, Lower: limit}
+	return Cell{Text: "≥ " + c.Exact(limit), Bounded: true, Lower: limit}
 }
 
 // settling says how many parts more would settle a criterion, in fewer words
@@ -645,7 +700,7 @@ func criteriaTable(r *Record) Table {
 		Name:  "criteria",
 		Title: "Criteria",
 		Keys:  2,
-		Columns: []Column{{Name: "appraiser"}, {Name: "figure"}, {Name: "found", Numbers: true}, {Name: "accept", Numbers: true},
+		Columns: []Column{{Name: "appraiser"}, {Name: "figure", Whole: true}, {Name: "found", Numbers: true}, {Name: "accept", Numbers: true},
 			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: oneSidedHead(r), Numbers: true}, {Name: "data"}, {Name: "parts more to settle it", Long: true}},
 		Note: levelsFrom(r) + " " + fmt.Sprintf("One-sided: at %s confidence the truth is at most, or at least, that; it is not an end of the two-sided interval. Shown: that limit, too, meets the level that the estimate meets (of a reject, misses the conditional level). Open: it does not.", format.Confidence(r.Options.Confidence)),
 	}

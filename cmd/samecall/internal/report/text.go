@@ -36,8 +36,17 @@ func Text(w io.Writer, r *Record, term Terminal, full bool) error {
 	if full {
 		p.table(studyTable(r))
 		p.command(r)
+		said := false
 		for _, t := range Tables(r) {
 			p.table(t)
+			if t.Name == "zone" {
+				p.notes(zoneNotes(r, false), "")
+				said = true
+			}
+		}
+		if r.Zone != nil && !said {
+			p.line("")
+			p.notes(zoneNotes(r, false), "")
 		}
 		if t := callsTable(r); len(t.Rows) > 0 {
 			p.table(t)
@@ -377,6 +386,12 @@ func (p *printer) between(r *Record) {
 	p.wrap(s, "")
 	for _, l := range leanLines(r) {
 		p.wrap(l, "")
+	}
+}
+
+func (p *printer) notes(list []string, indent string) {
+	for _, n := range list {
+		p.wrap(n, indent)
 	}
 }
 

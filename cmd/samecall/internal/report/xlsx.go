@@ -3,6 +3,7 @@ package report
 import (
 	"fmt"
 	"io"
+	"slices"
 
 	"github.com/xuri/excelize/v2"
 
@@ -79,6 +80,9 @@ func newLook(f *excelize.File) (l look, err error) {
 	return l, nil
 }
 
+// asFine are the tables whose values are as fine as the characteristic.
+var asFine = []string{"zone", "cuts", "zones", "unanimous", "limits", "curves", "gaps", "curve errors", "standard errors"}
+
 // of returns the style of a cell; 0 is none.
 func (l look) of(t Table, c flatCell) int {
 	switch c.Value.(type) {
@@ -86,7 +90,7 @@ func (l look) of(t Table, c flatCell) int {
 		switch {
 		case c.Share:
 			return l.share
-		case t.Name != "zone" && t.Name != "cuts" && t.Name != "zones": // values there are as fine as the characteristic
+		case !slices.Contains(asFine, t.Name):
 			return l.figure
 		}
 	case string:

@@ -2,6 +2,7 @@ package report
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"samecall/cmd/samecall/internal/format"
@@ -40,7 +41,7 @@ func zoneTable(r *Record) Table {
 			continue
 		}
 		cells := zoneCells(s, l)
-		sigma, wide, share := cells[0], cells[3], dash("a share of the tolerance needs both limits")
+		sigma, wide, share := cells[0], cells[3], dash(needsBothLimits)
 		if widthKnown(l) { // their intervals are in zone
 			sigma = valueCell(s.Value(l.Sigma.Value), l.Sigma.Value)
 		}
@@ -87,6 +88,9 @@ func zoneNotes(r *Record, screen bool) []string {
 			out = append(out, fmt.Sprintf("The parts scatter about the curve more than calls by chance would (factor %.1f); the intervals are widened for it.", c.LackOfFit.Factor))
 		}
 	}
+	if !screen && z.Curves != nil {
+		out = append(out, otherWarnings(r)...)
+	}
 	u := z.Unanimous
 	if u.HasGRR {
 		var widths []string
@@ -131,6 +135,32 @@ func gradeOfCurve(z *judge.Zone) string {
 	}
 	return fmt.Sprintf("By the curve %%GRR, 6 σ of the tolerance, is %.0f %%: %s by common practice (below 10 good, to 30 conditional). %s",
 		worst, signal.BandGRR(worst), sentence(z.Unanimous.Why))
+}
+
+// otherWarnings are those of the curves that no note tells in other words;
+// appraisers who are not compared for the same reason stand together.
+func otherWarnings(r *Record) []string {
+	all := r.Zone.Curves
+	out := curveWarnings(slices.Concat(all.Pooled.Warnings, all.Warnings))
+	left := make(map[string][]string)
+	var whys []string
+	for a, own := range all.Each {
+		if slices.Contains(all.Compared, a) {
+			continue
+		}
+		why := "calls do not turn at each limit"
+		if own == nil {
+			why = all.Errors[a].Error()
+		}
+		if left[why] == nil {
+			whys = append(whys, why)
+		}
+		left[why] = append(left[why], r.Study.Appraisers[a])
+	}
+	for _, why := range whys {
+		out = append(out, "The tests between appraisers leave out "+named(left[why])+": "+why+".")
+	}
+	return out
 }
 
 // cutsTable says which appraiser cuts where; empty with one appraiser.
@@ -231,6 +261,8 @@ func limitsOf(own, pooled *signal.Curve) []sideFit {
 	add(pooled.Upper, func(c *signal.Curve) *signal.LimitFit { return c.Upper })
 	return out
 }
+
+const needsBothLimits = "a share of the tolerance needs both limits"
 
 // noFit is a cell at a limit where the calls do not turn.
 func noFit(l *signal.LimitFit) Cell {

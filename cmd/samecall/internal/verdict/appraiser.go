@@ -30,12 +30,6 @@ func (c Criterion) Deciding() (limit float64, upper, ok bool) {
 	return c.deciding(c.Estimate.OneSided), c.atMost() == (c.Met != Reject), true
 }
 
-// DecidingText writes that limit as the sentences on a criterion do; empty if
-// there is none.
-func (c Criterion) DecidingText() string {
-	limit, _, ok := c.Deciding()
-	if !ok {
-		return ""
-	}
-	return c.exact(limit)
-}
+// Exact writes a value beside the levels of the criterion, as the sentences on
+// it do: with more digits where it would else seem to lie on another side.
+func (c Criterion) Exact(x float64) string { return c.exact(x) }

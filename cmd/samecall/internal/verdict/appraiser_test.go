@@ -69,14 +69,14 @@ func TestDecidingLimit(t *testing.T) {
 		{newCriterion(Kappa, Default[Kappa], agreement.Estimate{Value: 0.3, OneSided: interval.Interval{Lower: 0.1, Upper: 0.5}}, "part", 40, 0.95), 0.5, true, "0.50"},
 	} {
 		limit, upper, ok := c.criterion.Deciding()
-		if limit != c.limit || upper != c.upper || !ok || c.criterion.DecidingText() != c.text {
-			t.Errorf("%s: %v, upper %v, %v, %q; want %v, %v, %q", c.criterion.Text(), limit, upper, ok, c.criterion.DecidingText(), c.limit, c.upper, c.text)
+		if limit != c.limit || upper != c.upper || !ok || c.criterion.Exact(limit) != c.text {
+			t.Errorf("%s: %v, upper %v, %v, %q; want %v, %v, %q", c.criterion.Text(), limit, upper, ok, c.criterion.Exact(limit), c.limit, c.upper, c.text)
 		}
 	}
 	for _, e := range []agreement.Estimate{{Absent: errUnknownHere}, {Value: 0.5, Unbounded: errUnknownHere}} {
 		c := newCriterion(Kappa, Default[Kappa], e, "part", 1, 0.95)
-		if _, _, ok := c.Deciding(); ok || c.DecidingText() != "" {
-			t.Errorf("%v has a limit: %q", e, c.DecidingText())
+		if limit, _, ok := c.Deciding(); ok {
+			t.Errorf("%v has a limit: %v", e, limit)
 		}
 	}
 }
