@@ -107,6 +107,7 @@ var causeTests = []struct {
 	{"one inconsistent", drawn{people: three(good, person{sigma: 0.25}), values: true}, "inconsistent:Birch", 0},
 	{"one inconsistent without values", drawn{people: three(good, person{sigma: 0.25})}, "inconsistent:Birch", 0},
 	{"one inattentive", drawn{people: three(good, good, person{sigma: 0.02, lapse: 0.4}), values: true}, "inconsistent:Cedar", 0},
+	{"one who guesses", drawn{people: three(person{sigma: 0.02, lapse: 1}), values: true, parts: 30}, "inconsistent:Ash", 0},
 	{"one inattentive without values", drawn{people: three(good, good, person{sigma: 0.02, lapse: 0.4})}, "inconsistent:Cedar", 0},
 	{"all inconsistent", drawn{people: []person{{sigma: 0.3}, {sigma: 0.3}, {sigma: 0.3}}, values: true}, "inconsistent:everyone", 0},
 	{"all inconsistent without values", drawn{people: []person{{sigma: 0.3}, {sigma: 0.3}, {sigma: 0.3}}}, "inconsistent:everyone", 0},

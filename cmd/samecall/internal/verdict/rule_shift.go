@@ -43,7 +43,7 @@ func shiftedCut(f *finder) []Cause {
 	for _, l := range sides(pooled) {
 		switch {
 		case !f.several():
-			if shifted(pooled, l, looks) {
+			if shifted(pooled, l, looks) && !f.blurred(0, l) {
 				out = append(out, Cause{
 					Code: codeCut, Appraisers: []int{0},
 					Text:    f.shift(f.name(0)+" cuts", l, without(curves.Pooled), "With one appraiser, a worn or mis-set gauge and a shifted standard cannot be told apart") + f.calibrated(l),
@@ -87,11 +87,26 @@ func (f *finder) cutAlike(all *signal.LimitFit) bool {
 // cuts may give: how their own offsets differ is then chance.
 //
 // The test is against chi-square, whatever the lack of fit: cuts that differ make
-// one themselves.
+// one themselves. It tells nothing where somebody has hardly a cut.
 func (f *finder) notToldApart() bool {
+	for a := range f.Study.Appraisers {
+		if f.hardlyCuts(a) {
+			return false
+		}
+	}
 	c := f.Zone.Curves
 	return c.SameCut.Done && len(c.Compared) == len(c.Each) &&
 		distuv.ChiSquared{K: float64(c.SameCut.DF)}.Survival(c.SameCut.Statistic) >= apartChance
+}
+
+// hardlyCuts reports whether an appraiser's calls are mixed everywhere, or go
+// without regard to the value.
+func (f *finder) hardlyCuts(a int) bool { return f.has(a, codeInconsistent, codeScattered) }
+
+// blurred reports whether an offset is lost in the calls of an appraiser who
+// hardly cuts.
+func (f *finder) blurred(a int, own *signal.LimitFit) bool {
+	return f.hardlyCuts(a) && math.Abs(own.Offset.Value) < own.Sigma.Value
 }
 
 // ownShifts are the appraisers' own shifts at a limit, one cause for those who
@@ -101,7 +116,11 @@ func (f *finder) ownShifts(at signal.Side, looks int) (out []Cause) {
 		var who []int
 		var cuts []*signal.LimitFit
 		for a, c := range f.Zone.Curves.Each {
-			if own := f.ownSide(a, at); own.Known() && way*own.Offset.Value > 0 && shifted(plain(c), f.doubted(own), looks) {
+			own := f.ownSide(a, at)
+			if !own.Known() || way*own.Offset.Value <= 0 || f.blurred(a, own) {
+				continue
+			}
+			if shifted(plain(c), f.doubted(own), looks) {
 				who, cuts = append(who, a), append(cuts, own)
 			}
 		}
