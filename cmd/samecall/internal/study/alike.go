@@ -25,9 +25,25 @@ func (a *alike) add(x, y string) {
 
 // consider takes two neighbours in natural order.
 func (a *alike) consider(x, y string) {
-	if string(naturalKey(nil, x)) == string(naturalKey(nil, y)) {
+	if string(naturalKey(nil, x)) == string(naturalKey(nil, y)) && decimals(x) == decimals(y) {
 		a.add(x, y)
 	}
+}
+
+// decimals returns the digits behind decimal points: a zero there is no leading
+// one, and 10.05 is not 10.5.
+func decimals(name string) string {
+	var b strings.Builder
+	for i := 1; i < len(name); i++ {
+		if name[i] != '.' || !digits([]byte(name[i-1:i])) {
+			continue
+		}
+		for i++; i < len(name) && digits([]byte(name[i:i+1])); i++ {
+			b.WriteByte(name[i])
+		}
+		b.WriteByte('.')
+	}
+	return b.String()
 }
 
 func (a *alike) notes() []Note {

@@ -153,3 +153,20 @@ func dump(b *builder) string {
 	fmt.Fprintln(&s, b.doubled, b.problems, b.more)
 	return s.String()
 }
+
+// Names that are alike but for leading zeros are noted; a zero behind a decimal
+// point is no leading one.
+func TestAlikeParts(t *testing.T) {
+	for csv, want := range map[string]int{
+		"part,a-1\nP7,go\nP07,go\n": 1, "part,a-1\nP10.05,go\nP10.5,go\n": 0, "part,a-1\nP10.5,go\np10.5,go\n": 1,
+		"part,a-1\n1.50,go\n1.5,go\n": 0, "part,a-1\nA.05,go\nA.5,go\n": 1, "part,a-1\n01.05,go\n1.05,go\n": 1,
+	} {
+		s, err := Read(Source{Path: "-", Stdin: strings.NewReader(csv)}, Settings{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if len(s.Notes) != want {
+			t.Errorf("%q: %+v", csv, s.Notes)
+		}
+	}
+}
