@@ -46,7 +46,7 @@ func FuzzAnalyse(f *testing.F) {
 			if int(b) < categories || b == 255 {
 				return b
 			}
-			if b > 252 { // no category: Analyse must say so
+			if b > 252 { // no category: SetReference or Analyse must say so
 				valid = false
 				return b
 			}
@@ -72,7 +72,10 @@ func FuzzAnalyse(f *testing.F) {
 		}
 		if referenced {
 			if err := r.SetReference(ref); err != nil {
-				t.Fatal(err)
+				if valid {
+					t.Fatal(err)
+				}
+				return
 			}
 		}
 		a, err := Analyse(r, opt)
