@@ -37,14 +37,10 @@ func (c *Criterion) settle(at projection) {
 	c.More = high - c.Parts
 }
 
-// eachSide returns the confidence of the two-sided interval whose limits,
-// each for itself, have the confidence given.
-func eachSide(confidence float64) float64 { return max(0, 2*confidence-1) }
-
 // shareOfParts projects a share of parts.
 func shareOfParts(share, confidence float64) projection {
 	return func(parts float64) interval.Interval {
-		return interval.Exact(share*parts, parts, eachSide(confidence))
+		return interval.Exact(share*parts, parts, interval.EachSide(confidence))
 	}
 }
 
@@ -62,7 +58,7 @@ func rateOverCalls(clusters []interval.Cluster, confidence float64) projection {
 		d := float64(c.Events) - rate*float64(c.Calls)
 		squares += d * d * float64(c.Parts)
 	}
-	tail := 1 - (1+eachSide(confidence))/2
+	tail := 1 - (1+interval.EachSide(confidence))/2
 	return func(parts float64) interval.Interval {
 		callsThen := calls * parts / n
 		effective := callsThen
@@ -73,8 +69,8 @@ func rateOverCalls(clusters []interval.Cluster, confidence float64) projection {
 			ratio := min(1, student(tail, callsThen-1)/t)
 			effective *= ratio * ratio
 		}
-		i := interval.Exact(rate*effective, effective, eachSide(confidence))
-		none, all := interval.Exact(0, parts, eachSide(confidence)), interval.Exact(parts, parts, eachSide(confidence))
+		i := interval.Exact(rate*effective, effective, interval.EachSide(confidence))
+		none, all := interval.Exact(0, parts, interval.EachSide(confidence)), interval.Exact(parts, parts, interval.EachSide(confidence))
 		return interval.Interval{Lower: min(i.Lower, all.Lower), Upper: max(i.Upper, none.Upper)}
 	}
 }
