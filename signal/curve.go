@@ -154,10 +154,17 @@ type Param struct {
 type NotConvergedError struct {
 	What   string // which fit
 	Reason string
+	// TwoSigmas tells that each limit was to have a σ of its own: one for both
+	// may fit.
+	TwoSigmas bool
 }
 
 func (e *NotConvergedError) Error() string {
-	return fmt.Sprintf("%s did not converge: %s", e.What, e.Reason)
+	text := fmt.Sprintf("%s did not converge: %s", e.What, e.Reason)
+	if e.TwoSigmas {
+		text += "; one σ for both limits may fit"
+	}
+	return text
 }
 
 // ErrNoTurn is wrapped by the error of a fit where calls turn at no limit.

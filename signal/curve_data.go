@@ -243,24 +243,26 @@ func (d *dataset) againstTurn(h *half) string {
 	if h.k == 1 {
 		innermost, outermost = outermost, innermost
 	}
-	named := func(i int) string {
-		p := d.parts[i]
-		name := "the part"
-		if p.Name != "" {
-			name = "part " + p.Name
-		}
-		return fmt.Sprintf("%s at %.10g", name, p.Value)
-	}
 	out, in := d.parts[outermost], d.parts[innermost]
 	switch far, near := out.Accepted == out.Calls, in.Accepted == 0; {
 	case far && near:
 		return "; check that accept and reject are not swapped"
 	case far:
-		return fmt.Sprintf(": %s, the farthest out, was always accepted; check its value", named(outermost))
+		return fmt.Sprintf(": %s, the farthest out, was always accepted; check its value", d.named(outermost))
 	case near && !d.has[1-h.k]:
-		return fmt.Sprintf(": %s, the farthest in, was always rejected; is there another limit?", named(innermost))
+		return fmt.Sprintf(": %s, the farthest in, was always rejected; is there another limit?", d.named(innermost))
 	}
 	return "; check the values of the parts, and that accept and reject are not swapped"
+}
+
+// named names part i, with its value.
+func (d *dataset) named(i int) string {
+	p := d.parts[i]
+	name := "the part"
+	if p.Name != "" {
+		name = "part " + p.Name
+	}
+	return fmt.Sprintf("%s at %.10g", name, p.Value)
 }
 
 // noCut tells whether part i lies where rejected calls give no cut.

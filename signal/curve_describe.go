@@ -11,6 +11,7 @@ const (
 	deltaWidened    = "normal on the link scale, widened for lack of fit"
 	separatedMethod = "bias-reduced (Firth); interval by profile likelihood"
 	whyFlat         = "the likelihood sets no bound on this side"
+	whyUnverified   = "no bound on this side could be verified: the likelihood has several maxima there"
 	whySkipped      = "intervals were not asked for"
 	cutReach        = 1e4 // half ranges
 	logSigmaReach   = 14  // a factor of a million; a bound beyond would be rounding
@@ -62,6 +63,23 @@ func (d *dataset) describe(c *Curve, b *block) {
 	}
 }
 
+// bounded marks the bounds that there are, with the reason if one is missing.
+func (e *Estimate) bounded(below, above ending) {
+	e.HasLower, e.HasUpper = below == crossed, above == crossed
+	if !e.HasLower {
+		e.Lower = 0
+	}
+	if !e.HasUpper {
+		e.Upper = 0
+	}
+	switch {
+	case below > level || above > level:
+		e.Why = whyUnverified
+	case below == level || above == level:
+		e.Why = whyFlat
+	}
+}
+
 // derive fills what follows from cut and σ.
 func (d *dataset) derive(c *Curve, l *LimitFit) {
 	link := d.options.Link
@@ -97,12 +115,11 @@ func (d *dataset) profile(c *Curve, b *block, param int, down, up float64) Estim
 	}
 	target := math.Sqrt(c.crit)
 	p := newProfiler(b.s, b.theta, b.loglik, b.cov, param)
-	e.Upper, e.HasUpper = crossing(e.Value, target*se, up, target, p.root)
-	p.restart()
-	e.Lower, e.HasLower = crossing(e.Value, -target*se, down, target, p.root)
-	if !e.HasLower || !e.HasUpper {
-		e.Why = whyFlat
-	}
+	p.others = b.others
+	var above, below ending
+	e.Upper, above = p.bound(target*se, up, target)
+	e.Lower, below = p.bound(-target*se, down, target)
+	e.bounded(below, above)
 	return e
 }
 
@@ -154,10 +171,14 @@ func (d *dataset) atLimit(c *Curve, b *block, k int) Estimate {
 	}
 	reach := 30 + 10*math.Abs(z)
 	copy(last, b.theta)
-	hi, hasHi := crossing(z, target*se, reach, target, root)
+	hi, above := crossing(z, target*se, reach, target, root)
 	copy(last, b.theta)
-	lo, hasLo := crossing(z, -target*se, reach, target, root)
+	lo, below := crossing(z, -target*se, reach, target, root)
 	b.m.shift[k] = 0
+	if above > level || below > level {
+		return e
+	}
+	hasHi, hasLo := above == crossed, below == crossed
 	f := d.options.Link.cdf
 	if k == 1 { // acceptance is F(−z) at an upper limit
 		lo, hi, hasLo, hasHi = -hi, -lo, hasHi, hasLo

@@ -166,6 +166,10 @@ type block struct {
 	loglik     float64
 	covariance *mat.SymDense
 	has        [2]bool
+
+	blocked      outcome // of the highest point that is no verified maximum
+	blockedTheta []float64
+	others       [][]float64 // lesser maxima
 }
 
 func (b *block) cov(i, j int) float64 { return b.covariance.At(i, j) }
@@ -177,9 +181,8 @@ const convergence = 1e-15
 // maximum: the gradient, measured by the gain that it still promises, is nil
 // and the Hessian is negative definite.
 func (d *dataset) maximum(from, to int, has [2]bool, hs [2]half) (*block, error) {
-	b := &block{m: d.model(from, to, has), has: has, loglik: math.Inf(-1)}
+	b := &block{m: d.model(from, to, has), has: has, loglik: math.Inf(-1), blocked: outcome{loglik: math.Inf(-1), kink: absent}}
 	b.s = newSolver(b.m)
-	var last outcome
 	what := "the acceptance curve"
 	if has != [2]bool{true, true} {
 		what = "the acceptance curve at the " + Side(boolInt(has[1])).String() + " limit"
@@ -192,29 +195,71 @@ func (d *dataset) maximum(from, to int, has [2]bool, hs [2]half) (*block, error)
 			}
 			b.s.fallback()
 		}
-		last = b.s.maximise(absent, convergence)
-		b.keepIfHigher(last)
+		b.keepIfHigher(b.s.climb(absent, convergence))
 		if b.theta != nil && has != [2]bool{true, true} {
 			break // the likelihood of one limit has one maximum
 		}
 	}
-	if g := b.m.groups[0]; b.theta != nil && has == [2]bool{true, true} && g.logSigma[0] != g.logSigma[1] {
+	if b.m.kinked() {
 		b.unequal()
 	}
-	if b.theta == nil {
-		reason := "the likelihood has no verified maximum"
-		switch {
-		case last.atBound && math.Abs(maxLogSigma(b)) >= logSigmaHigh-1:
-			reason = "σ grows without limit: acceptance hardly depends on the value"
-		case last.atBound:
-			reason = "σ shrinks to nothing"
-		case !last.converged:
-			reason = fmt.Sprintf("the likelihood still climbs after %d evaluations", b.s.evals)
-		}
-		return nil, &NotConvergedError{What: what, Reason: reason}
+	// With one σ what lies higher is a flat curve, where there is a maximum too.
+	if b.theta == nil || b.m.kinked() && b.blocked.loglik > b.loglik+higher {
+		return nil, &NotConvergedError{What: what, Reason: d.hurdle(b, from), TwoSigmas: b.m.kinked()}
+	}
+	if g := b.m.groups[0]; b.m.kinked() && b.theta[g.cut[0]] >= b.theta[g.cut[1]] {
+		return nil, &NotConvergedError{What: what, Reason: "with a σ for each limit, the cuts cross", TwoSigmas: true}
 	}
 	copy(b.s.theta, b.theta)
 	return b, nil
+}
+
+// higher is by how much a log-likelihood must be above another to matter.
+const higher = 1e-4
+
+// hurdle says what the highest point of the likelihood that was found is, if it
+// is no maximum. from is the first of the block's parts.
+func (d *dataset) hurdle(b *block, from int) string {
+	out := b.blocked
+	if out.kink != absent {
+		return fmt.Sprintf("with a σ for each limit, the curve falls to 0 at %s, which was only rejected, and fits best where it does", d.named(from+out.kink))
+	}
+	reason := "the likelihood has no verified maximum"
+	switch {
+	case math.IsInf(out.loglik, -1):
+	case out.atBound && b.most(b.blockedTheta, logSigmaHigh-1):
+		reason = "σ grows without limit: acceptance hardly depends on the value"
+	case out.atBound:
+		reason = "σ shrinks to nothing"
+	case !out.converged:
+		reason = fmt.Sprintf("the likelihood still climbs after %d evaluations", b.s.evals)
+	}
+	if !b.m.kinked() {
+		return reason
+	}
+	for k, at := range b.m.groups[0].logSigma {
+		switch s := b.blockedTheta; {
+		case s[at] >= logSigmaWide:
+			return fmt.Sprintf("with a σ for each limit, that of the %s limit grows without limit: acceptance hardly depends on the value there", Side(k))
+		case out.atBound && s[at] <= logSigmaLow+1:
+			return fmt.Sprintf("with a σ for each limit, that of the %s limit shrinks to nothing", Side(k))
+		}
+	}
+	return reason
+}
+
+// logSigmaWide is that of a σ so far above the range of the values, 150 times half
+// of it, that the values cannot tell it from one without end.
+const logSigmaWide = 5
+
+// most tells whether a log σ reaches a value.
+func (b *block) most(theta []float64, logSigma float64) bool {
+	for i, is := range b.s.isLogSigma {
+		if is && theta[i] >= logSigma {
+			return true
+		}
+	}
+	return false
 }
 
 // unequal looks for a higher maximum where one σ is far smaller than the other:
@@ -223,6 +268,12 @@ func (d *dataset) maximum(from, to int, has [2]bool, hs [2]half) (*block, error)
 func (b *block) unequal() {
 	g := b.m.groups[0]
 	first := append([]float64(nil), b.theta...)
+	if b.theta == nil {
+		first = append(first, b.blockedTheta...)
+	}
+	if len(first) == 0 {
+		return
+	}
 	for k := range 2 {
 		narrow, wide := g.logSigma[k], g.logSigma[1-k]
 		for _, change := range [...][2]float64{{1, 0.4}, {2.5, 0.1}, {2.5, 0.7}} {
@@ -231,20 +282,77 @@ func (b *block) unequal() {
 				b.s.theta[narrow] -= change[0]
 				b.s.theta[wide] += change[1]
 				b.s.theta[g.cut[k]] += aside * math.Exp(first[narrow])
-				b.keepIfHigher(b.s.maximise(absent, convergence))
+				b.keepIfHigher(b.s.climb(absent, convergence))
 			}
+		}
+	}
+	// A wider σ leads to where the curve falls to 0 at a part.
+	for _, at := range g.logSigma {
+		for _, wider := range [...]float64{0.3, 0.6, 1} {
+			copy(b.s.theta, first)
+			b.s.theta[at] += wider
+			b.s.climb(at, profileTolerance)
+			b.keepIfHigher(b.s.climb(absent, convergence))
+		}
+	}
+	if n := len(b.m.x); n <= stepParts && (b.theta == nil || b.m.midway(b.theta) < zonesApart) {
+		for _, s := range b.steps(first) {
+			copy(b.s.theta, s)
+			b.keepIfHigher(b.s.climb(absent, convergence))
 		}
 	}
 }
 
-// keepIfHigher takes the solver's point if it is a verified maximum above the
-// one there is.
-func (b *block) keepIfHigher(out outcome) {
-	if !out.converged || out.atBound || !(out.loglik > b.loglik+1e-9) {
-		return
+// stepParts is how many parts there may be for steps to be tried between each
+// two of them.
+const stepParts = 200
+
+// steps returns the likeliest starts at which one limit is nearly a step between
+// two neighbouring parts and the other is as it was or wider.
+func (b *block) steps(first []float64) [][]float64 {
+	g := b.m.groups[0]
+	var c candidates
+	theta := append([]float64(nil), first...)
+	for k := range 2 {
+		for i := 1; i < len(b.m.x); i++ {
+			gap := b.m.x[i] - b.m.x[i-1]
+			if !(gap > 0) {
+				continue
+			}
+			for _, wider := range [...]float64{0, 0.7} {
+				copy(theta, first)
+				theta[g.cut[k]], theta[g.logSigma[k]] = b.m.x[i-1]+gap/2, math.Log(gap/4)
+				theta[g.logSigma[1-k]] += wider
+				c.add(b.s, theta)
+			}
+		}
 	}
-	if cov, ok := b.s.definite(); ok {
-		b.theta, b.loglik, b.covariance = append(b.theta[:0], b.s.theta...), out.loglik, cov
+	return c.likeliest(branchesTried, 0)
+}
+
+// mostOthers is how many lesser maxima are remembered.
+const mostOthers = 8
+
+// keepIfHigher takes the solver's point if it is a verified maximum above the
+// one there is, and remembers the highest point that is none.
+func (b *block) keepIfHigher(out outcome) {
+	if out.converged && !out.atBound && out.kink == absent && !(b.m.kinked() && b.most(b.s.theta, logSigmaWide)) {
+		if !(out.loglik > b.loglik+1e-9) {
+			if out.loglik < b.loglik-1e-6 && len(b.others) < mostOthers {
+				b.others = append(b.others, append([]float64(nil), b.s.theta...))
+			}
+			return
+		}
+		if cov, ok := b.s.definite(); ok {
+			if b.theta != nil && len(b.others) < mostOthers {
+				b.others = append(b.others, b.theta)
+			}
+			b.theta, b.loglik, b.covariance = append([]float64(nil), b.s.theta...), out.loglik, cov
+			return
+		}
+	}
+	if out.loglik > b.blocked.loglik {
+		b.blocked, b.blockedTheta = out, append(b.blockedTheta[:0], b.s.theta...)
 	}
 }
 
@@ -253,16 +361,6 @@ func boolInt(b bool) int {
 		return 1
 	}
 	return 0
-}
-
-func maxLogSigma(b *block) float64 {
-	most := math.Inf(-1)
-	for i, is := range b.s.isLogSigma {
-		if is {
-			most = math.Max(most, b.s.theta[i])
-		}
-	}
-	return most
 }
 
 // startAt sets the solver to one of the guesses.
@@ -351,7 +449,7 @@ func (d *dataset) lapse(c *Curve, blocks *[]*block, hs [2]half) {
 		b.s.theta[b.m.lapse] = -12
 		start := append([]float64(nil), b.s.theta...)
 		p := newProfiler(b.s, start, plain.loglik, nil, b.m.lapse)
-		if at, ok := crossing(-12, 3, 19, twoSided(d.options.Confidence), p.root); ok {
+		if at, ok := found(crossing(-12, 3, 19, twoSided(d.options.Confidence), p.root)); ok {
 			c.Lapse.Upper, c.Lapse.HasUpper = logistic(at), true
 		} else {
 			c.Lapse.Why = "the likelihood sets no upper bound"

@@ -156,7 +156,7 @@ func (d *dataset) separatedIntervals(h half, f *firthFit) (cut, logSigma Estimat
 		if r >= target {
 			return edge, true
 		}
-		return crossing(edge+nudge, dir*unit/4, cutReach, target, p.root)
+		return found(crossing(edge+nudge, dir*unit/4, cutReach, target, p.root))
 	}
 	cut.Upper, cut.HasUpper = bound(hi, 1)
 	cut.Lower, cut.HasLower = bound(lo, -1)
@@ -172,7 +172,7 @@ func (d *dataset) separatedIntervals(h half, f *firthFit) (cut, logSigma Estimat
 		cut.Lower = math.Min(cut.Lower, cut.Value)
 	}
 	p := newProfiler(s, []float64{h.reject/2 + h.accept/2, math.Log(unit) - 6}, f.supremum, nil, 1)
-	logSigma.Upper, logSigma.HasUpper = crossing(math.Log(unit)-6, 3, logSigmaReach, target, p.root)
+	logSigma.Upper, logSigma.HasUpper = found(crossing(math.Log(unit)-6, 3, logSigmaReach, target, p.root))
 	logSigma.Why = "without two mixed values the calls may turn at a point: σ has no lower bound"
 	if !logSigma.HasUpper {
 		logSigma.Why += ", and the likelihood sets no upper one"

@@ -330,6 +330,9 @@ func TestLikelihoodDerivatives(t *testing.T) {
 			m.n++
 			theta = append(theta, rapid.Float64Range(-5, 0).Draw(t, "logit lapse"))
 		}
+		if in.logSigma == [2]int{2, 3} && m.lapse == absent && rapid.Bool().Draw(t, "rounded kink") {
+			m.soft = 0.05
+		}
 		m.shift = [2]float64{rapid.Float64Range(-1, 1).Draw(t, "shift"), 0}
 		m.groups = []indices{in}
 		for range 6 {

@@ -138,7 +138,7 @@ func (p *a90Profile) bound(target, way float64) (float64, bool) {
 		}
 		from += way * 1e-9
 	}
-	return crossing(from, way*target*p.step, cutReach, target, p.root)
+	return found(crossing(from, way*target*p.step, cutReach, target, p.root))
 }
 
 // a90 fills A90 and its bound.

@@ -32,6 +32,7 @@ type model struct {
 	lapse    int       // index of logit ε, or absent
 	epsilon  float64   // ε where it is fixed
 	shift    [2]float64
+	soft     float64 // how much the kink is rounded where the curve falls to 0 (kink.go)
 }
 
 // term holds the pieces of one part's log-likelihood at (z_L, z_U): each
@@ -200,12 +201,16 @@ func (m *model) eval(theta, grad, hess []float64) float64 {
 		for i := m.first[g]; i < m.first[g+1]; i++ {
 			a, r := m.accepted[i], m.rejected[i]
 			z := c.z(m.x[i])
-			if c.silent(m.link, z, a, r, epsilon) {
+			if m.soft == 0 && c.silent(m.link, z, a, r, epsilon) {
 				continue
 			}
 			t.at(m.link, z, c.has, a, r, epsilon)
 			if !t.possible {
 				return math.Inf(-1)
+			}
+			bend := 0.0
+			if m.soft > 0 && a == 0 {
+				bend = t.soften(m.soft, r)
 			}
 			total += t.loglik
 			u := [2]float64{a*t.overP[0] - r*t.overQ[0], r*t.overQ[1] - a*t.overP[1]}
@@ -213,7 +218,7 @@ func (m *model) eval(theta, grad, hess []float64) float64 {
 				if !c.has[k] {
 					continue
 				}
-				hzz := t.ratio[k]*u[k] - a*t.overP[k]*t.overP[k] - r*t.overQ[k]*t.overQ[k]
+				hzz := t.ratio[k]*u[k] - a*t.overP[k]*t.overP[k] - r*t.overQ[k]*t.overQ[k] - bend*t.densities[k]*t.densities[k]
 				s, w := c.inverse[k], z[k]-m.shift[k]
 				lg[2*k] -= u[k] * s
 				lg[2*k+1] -= u[k] * w
@@ -222,7 +227,7 @@ func (m *model) eval(theta, grad, hess []float64) float64 {
 				lh[2*k+1][2*k+1] += (hzz*w + u[k]) * w
 			}
 			if c.has[0] && c.has[1] {
-				if cross := a*t.overP[0]*t.overP[1] + r*t.overQ[0]*t.overQ[1]; cross != 0 {
+				if cross := a*t.overP[0]*t.overP[1] + r*t.overQ[0]*t.overQ[1] + bend*t.densities[0]*t.densities[1]; cross != 0 {
 					w0, w1 := z[0]-m.shift[0], z[1]-m.shift[1]
 					lh[cutL][cutU] += cross * c.inverse[0] * c.inverse[1]
 					lh[cutL][logSigmaU] += cross * c.inverse[0] * w1

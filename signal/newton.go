@@ -37,6 +37,7 @@ type outcome struct {
 	converged bool
 	atBound   bool    // a log σ rests on a bound
 	decrement float64 // ½ gᵀ(−H)⁻¹g at the last point: the log-likelihood still to be gained, to second order
+	kink      int     // the part at which the curve falls to 0 there, or absent
 }
 
 const (
@@ -67,7 +68,7 @@ func (s *solver) maximise(held int, tol float64) outcome {
 	n := s.m.n
 	s.clamp(s.theta)
 	l := s.eval(s.theta, s.grad, s.hess)
-	out := outcome{loglik: l}
+	out := outcome{loglik: l, kink: absent}
 	if math.IsInf(l, -1) {
 		return out
 	}
@@ -106,7 +107,8 @@ func (s *solver) maximise(held int, tol float64) outcome {
 			decrement += s.step[j] * s.grad[i] / 2
 		}
 		out.decrement = decrement
-		small := decrement <= tol
+		// A damped step is shorter by so much, and so is what it promises.
+		small := decrement*(1+damped) <= tol
 		s.limit()
 		copy(s.trial, s.theta)
 		for j, i := range s.free {

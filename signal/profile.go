@@ -2,20 +2,30 @@ package signal
 
 import "math"
 
+// ending says how the walk along a profile ended.
+type ending int
+
+const (
+	crossed ending = iota // the profile reaches the target
+	level                 // it does not within reach
+	jumps                 // it jumps past the target, where one constrained maximum gives way to another
+	failed                // constrained fits did not converge
+)
+
 // crossing walks from inside, where root is below target, in steps that start
 // at first, until root reaches target, and closes in on the value where it
 // does. root is the signed-root deviance, which grows nearly in proportion to
-// the distance, so that a secant finds the crossing in a few evaluations.
-// It returns false if target is not reached within reach of inside. Where a
+// the distance, so that a secant finds the crossing in a few evaluations. The
+// value returned means something where the profile is crossed or jumps. Where a
 // constrained fit does not converge, root returns NaN and a shorter step is
 // tried, since each fit starts from the one before.
-func crossing(inside, first, reach, target float64, root func(float64) float64) (at float64, found bool) {
+func crossing(inside, first, reach, target float64, root func(float64) float64) (float64, ending) {
 	lo, rlo := inside, 0.0
 	step := first
 	var hi, rhi float64
 	for tries := 0; ; tries++ {
 		if math.Abs(lo-inside) >= reach || tries > 60 {
-			return 0, false
+			return 0, level
 		}
 		if hi = lo + step; math.Abs(hi-inside) > reach {
 			hi = inside + math.Copysign(reach, step)
@@ -23,7 +33,7 @@ func crossing(inside, first, reach, target float64, root func(float64) float64) 
 		rhi = root(hi)
 		if math.IsNaN(rhi) {
 			if step /= 3; math.Abs(step) < 1e-4*math.Abs(first) {
-				return 0, false
+				return 0, failed
 			}
 			continue
 		}
@@ -42,7 +52,7 @@ func crossing(inside, first, reach, target float64, root func(float64) float64) 
 	side := 0
 	for range 60 {
 		if fhi == 0 {
-			return hi, true
+			return hi, crossed
 		}
 		mid := (lo*fhi - hi*flo) / (fhi - flo)
 		if !(math.Min(lo, hi) < mid && mid < math.Max(lo, hi)) {
@@ -51,14 +61,14 @@ func crossing(inside, first, reach, target float64, root func(float64) float64) 
 		r := root(mid)
 		for shorter := 0; math.IsNaN(r); shorter++ {
 			if shorter == 10 {
-				return 0, false
+				return 0, failed
 			}
 			mid = lo + (mid-lo)/2
 			r = root(mid)
 		}
 		f := r - target
-		if math.Abs(f) < 1e-8 || math.Abs(hi-lo) <= 1e-12*math.Abs(first) {
-			return mid, true
+		if math.Abs(f) < 1e-8 {
+			return mid, crossed
 		}
 		if f < 0 {
 			lo, flo = mid, f
@@ -73,8 +83,29 @@ func crossing(inside, first, reach, target float64, root func(float64) float64) 
 			}
 			side = 1
 		}
+		if math.Abs(hi-lo) <= 1e-12*math.Abs(first) {
+			break
+		}
 	}
-	return lo + (hi-lo)/2, true
+	// A bracket that has closed holds a crossing only if the profile is near the
+	// target there.
+	at := lo + (hi-lo)/2
+	if r := root(at); math.Abs(r-target) < closeToTarget {
+		return at, crossed
+	}
+	return at, jumps
+}
+
+// closeToTarget is how far from its target a profile may be at its bound, as a
+// root of twice the log-likelihood: the fits leave that much and less.
+const closeToTarget = 1e-3
+
+// found is the value of a walk that ended in a crossing, and whether it did.
+func found(at float64, end ending) (float64, bool) {
+	if end != crossed {
+		return 0, false
+	}
+	return at, true
 }
 
 // profiler finds likelihood-ratio limits of one parameter of a fitted model.
@@ -86,8 +117,9 @@ type profiler struct {
 	first   []float64 // slope at the maximum
 	tangent bool      // slope is known and kept up to date
 	param   int
-	last    []float64 // previous solution
-	held    []float64 // best with the parameter held
+	last    []float64   // previous solution
+	held    []float64   // best with the parameter held
+	others  [][]float64 // lesser maxima of the likelihood
 }
 
 // newProfiler returns a profiler of parameter param. covariance may be nil.
@@ -111,11 +143,11 @@ func (p *profiler) root(value float64) float64 {
 		p.s.theta[i] = p.last[i] + p.slope[i]*d
 	}
 	p.s.theta[p.param] = value
-	out := p.s.maximise(p.param, profileTolerance)
+	out := p.s.climb(p.param, profileTolerance)
 	if !out.converged {
 		copy(p.s.theta, p.best)
 		p.s.theta[p.param] = value
-		if out = p.s.maximise(p.param, profileTolerance); !out.converged {
+		if out = p.s.climb(p.param, profileTolerance); !out.converged {
 			return math.NaN()
 		}
 	}
@@ -128,7 +160,7 @@ func (p *profiler) root(value float64) float64 {
 	p.held[p.param] = value
 	if p.s.eval(p.held, p.s.grad, p.s.hess) > out.loglik+1e-9 {
 		copy(p.s.theta, p.held)
-		if out = p.s.maximise(p.param, profileTolerance); !out.converged {
+		if out = p.s.climb(p.param, profileTolerance); !out.converged {
 			return math.NaN()
 		}
 	}

@@ -213,7 +213,15 @@ func PooledCurve(s *study.Study, opt signal.Options, appraiser string) (*signal.
 	}
 	c, err := signal.Fit(parts, limits, opt)
 	if err != nil {
-		return nil, fmt.Errorf("the calls give no acceptance curve: %w", err)
+		return nil, fmt.Errorf("the calls give no acceptance curve: %w", wayOut(err))
 	}
 	return c, nil
+}
+
+// wayOut adds to the error of a fit what the user can do about it.
+func wayOut(err error) error {
+	if not, ok := errors.AsType[*signal.NotConvergedError](err); ok && not.TwoSigmas {
+		return fmt.Errorf("%w: leave out --two-sigmas", err)
+	}
+	return err
 }

@@ -36,6 +36,7 @@ func NewZone(s *study.Study, opt signal.Options) (*Zone, error) {
 		return nil, err
 	}
 	z.Curves, z.NoCurve = signal.FitAppraisers(byAppraiser, limits, opt)
+	z.NoCurve = wayOut(z.NoCurve)
 	return z, nil
 }
 
