@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 )
 
 // GuardForEscapes returns the smallest guard band, 0 or more, at which the
@@ -87,13 +88,7 @@ func (p Process) guardRange(g Gauge) (most, step float64, err error) {
 		most = (g.UpperCut - g.LowerCut) / 2
 		step = math.Min(g.LowerSigma, g.UpperSigma)
 	} else {
-		lo, hi := p.Mean-12*p.SD, p.Mean+12*p.SD
-		if len(p.Values) > 0 {
-			lo, hi = p.Values[0], p.Values[0]
-			for _, v := range p.Values {
-				lo, hi = math.Min(lo, v), math.Max(hi, v)
-			}
-		}
+		lo, hi := p.span()
 		if g.HasLower {
 			most, step = hi-g.LowerCut, g.LowerSigma
 		} else {
@@ -107,18 +102,56 @@ func (p Process) guardRange(g Gauge) (most, step float64, err error) {
 	return most, math.Min(step, most), nil
 }
 
+// span is where the values of the process lie, all but next to none.
+func (p Process) span() (lo, hi float64) {
+	if len(p.Values) == 0 {
+		return p.Mean - 12*p.SD, p.Mean + 12*p.SD
+	}
+	return slices.Min(p.Values), slices.Max(p.Values)
+}
+
+// outwardRange returns how far outwards the cuts must move for next to nothing of
+// the process to be rejected.
+func (p Process) outwardRange(g Gauge) float64 {
+	lo, hi := p.span()
+	out := 0.0
+	if g.HasLower {
+		out = math.Max(out, g.LowerCut-lo+40*g.LowerSigma)
+	}
+	if g.HasUpper {
+		out = math.Max(out, hi-g.UpperCut+40*g.UpperSigma)
+	}
+	return out
+}
+
+// Edge tells where the least cost lies.
+type Edge int
+
+const (
+	// NoEdge: at a guard band.
+	NoEdge Edge = iota
+	// InwardEdge: with the cuts as far inwards as they can be, where they meet or
+	// next to nothing is accepted.
+	InwardEdge
+	// AcceptAll: accepting every part costs no more than any guard band.
+	AcceptAll
+)
+
 // Cost is a guard band that costs least.
 type Cost struct {
-	Risk       Risk
-	PerPart    float64 // expected cost of a part made
-	PerPartNow float64 // the same without a guard band
-	AtEdge     bool    // the least cost lies at the end of what was searched
+	Risk             Risk
+	PerPart          float64 // expected cost of a part made
+	PerPartNow       float64 // the same without a guard band
+	PerPartAcceptAll float64 // the same if every part is accepted, without inspection
+	Edge             Edge
 }
 
 // GuardForCost returns the guard band that costs least, where an escape costs
 // costEscape and a good part rejected costs costReject. The band may be
 // negative: cuts moved outwards, where false rejects cost more. It is found by
-// a grid and golden sections in the best part of it.
+// a grid and golden sections in the best part of it. The grid reaches inwards
+// until the cuts meet, or with one limit next to nothing is accepted, and
+// outwards until next to nothing is rejected.
 func GuardForCost(p Process, in Inspection, costEscape, costReject float64) (Cost, error) {
 	if !finite(costEscape, costReject) || costEscape < 0 || costReject < 0 || costEscape+costReject == 0 {
 		return Cost{}, fmt.Errorf("cost of an escape %v and of a false reject %v: want numbers of 0 or more, one of them above 0", costEscape, costReject)
@@ -139,6 +172,7 @@ func GuardForCost(p Process, in Inspection, costEscape, costReject float64) (Cos
 		v := s.values()
 		return costEscape*v[qEscape] + costReject*v[qFalseReject]
 	}
+	outward := p.outwardRange(g)
 	// Steps of a fraction of σ near the cuts, coarser farther out.
 	sigma := math.Max(g.LowerSigma, g.UpperSigma)
 	var grid []float64
@@ -147,22 +181,34 @@ func GuardForCost(p Process, in Inspection, costEscape, costReject float64) (Cos
 		grid = append(grid, b)
 	}
 	grid = append(grid, most)
-	for b := step; b < most; b += math.Max(step, b/10) {
-		grid = append([]float64{-b}, grid...)
+	for b := step; b < outward; b += math.Max(step, b/10) {
+		grid = append(grid, -b)
 	}
+	grid = append(grid, -outward)
+	slices.Sort(grid)
 	best, least := 0, math.Inf(1)
 	for i, b := range grid {
 		if v := cost(b); v < least {
 			best, least = i, v
 		}
 	}
-	out := Cost{PerPartNow: cost(0), AtEdge: best == 0 || best == len(grid)-1}
+	s := p.shares(g, limits)
+	v := s.values()
+	out := Cost{PerPartNow: cost(0), PerPartAcceptAll: costEscape * v[qBad]}
 	band := grid[best]
-	if !out.AtEdge {
+	if 0 < best && best < len(grid)-1 {
 		band = golden(cost, grid[best-1], grid[best+1])
 	}
 	if out.PerPart = cost(band); out.PerPart > least {
 		band, out.PerPart = grid[best], least
+	}
+	// Far out the cost tends to that of accepting all, and rounding decides.
+	const rounding = 1e-9
+	switch {
+	case out.PerPartAcceptAll <= out.PerPart*(1+rounding):
+		out.Edge = AcceptAll
+	case best == len(grid)-1 || cost(most) <= out.PerPart+1e-12*(costEscape+costReject):
+		out.Edge = InwardEdge
 	}
 	out.Risk, err = Assess(p, in, band)
 	return out, err

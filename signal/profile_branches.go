@@ -170,11 +170,15 @@ func (p *profiler) grid(value float64, f func(theta []float64)) {
 			sigmas(value, value+d)
 		}
 		sigmas(value, p.best[g.cut[1]])
+		sigmas(value, 0)
+		sigmas(value, 1)
 	case g.cut[1]:
 		for _, d := range gaps {
 			sigmas(value-d, value)
 		}
 		sigmas(p.best[g.cut[0]], value)
+		sigmas(-1, value)
+		sigmas(0, value)
 	default:
 		for _, middle := range [...]float64{-1, -0.5, 0, 0.5, 1} {
 			for _, d := range gaps {

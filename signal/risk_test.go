@@ -224,6 +224,61 @@ func TestGuardForCostOfAStep(t *testing.T) {
 	}
 }
 
+// The cuts may have to move out farther than half the distance between them. By
+// a grid of 0.01, costs from the values of Assess: least 0.2198 a part at −0.69;
+// 0.2303 where the search ended once, at −0.5; 0.2279 with every part accepted.
+func TestGuardForCostFarOut(t *testing.T) {
+	known := Known{Gauge{LowerCut: 0, UpperCut: 1, LowerSigma: 0.02, UpperSigma: 0.5, HasLower: true, HasUpper: true}, Between(0, 1)}
+	p := Process{Mean: 0.6, SD: 0.3}
+	got, err := GuardForCost(p, known, 2, 1)
+	if err != nil || got.Edge != NoEdge {
+		t.Fatalf("%+v, %v", got, err)
+	}
+	least, at := math.Inf(1), 0.0
+	for i := range 400 {
+		b := -4 + 0.01*float64(i)
+		r, err := Assess(p, known, b)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if v := 2*r.Escape.Value + r.FalseReject.Value; v < least {
+			least, at = v, b
+		}
+	}
+	if math.Abs(got.Risk.GuardBand-at) > 0.011 || got.PerPart > least {
+		t.Errorf("band %v costs %v; by the grid %v costs %v", got.Risk.GuardBand, got.PerPart, at, least)
+	}
+	// Twice the share made bad: of a normal distribution, z = −2 and 4/3.
+	near(t, "cost of accepting all", got.PerPartAcceptAll, 2*(normalCDF(-2)+normalCDF(-4.0/3)), 1e-12)
+}
+
+// Where the least cost is no guard band's, it says which end of all it is.
+func TestGuardForCostEdges(t *testing.T) {
+	both := Known{Gauge{LowerCut: 0, UpperCut: 1, LowerSigma: 0.1, UpperSigma: 0.1, HasLower: true, HasUpper: true}, Between(0, 1)}
+	lower := Known{Gauge{LowerCut: 0, LowerSigma: 0.1, HasLower: true}, AtLeast(0)}
+	random := both
+	random.Gauge.Lapse = 0.2
+	for name, c := range map[string]struct {
+		in             Known
+		p              Process
+		escape, reject float64
+		want           Edge
+	}{
+		"escapes are free":              {both, Process{Mean: 0.5, SD: 0.3}, 0, 1, AcceptAll},
+		"escapes are free, one limit":   {lower, Process{Mean: 0.5, SD: 0.3}, 0, 1, AcceptAll},
+		"rejects are free":              {both, Process{Mean: 0.5, SD: 0.3}, 1, 0, InwardEdge},
+		"rejects are free, values":      {lower, Process{Values: []float64{-1, 0.5, 1}}, 1, 0, InwardEdge},
+		"calls at random cost more":     {random, Process{Mean: 0.5, SD: 0.2}, 1, 1, AcceptAll},
+		"an escape costs some":          {both, Process{Mean: 0.5, SD: 0.3}, 5, 1, NoEdge},
+		"an escape costs some, a limit": {lower, Process{Mean: 0.5, SD: 0.3}, 5, 1, NoEdge},
+	} {
+		got, err := GuardForCost(c.p, c.in, c.escape, c.reject)
+		if err != nil || got.Edge != c.want {
+			t.Errorf("%s: %+v, %v", name, got, err)
+		}
+	}
+}
+
 func TestNoInspection(t *testing.T) {
 	p := Process{Mean: 0.5, SD: 0.02}
 	for _, in := range []Inspection{nil, (*Curve)(nil), Known{}} {

@@ -280,9 +280,12 @@ func riskFound(r *judge.Risks) []string {
 		}
 		c := r.Cost
 		switch {
-		case c.AtEdge:
-			out = append(out, fmt.Sprintf("%s, no guard band is the cheapest within reach: cost falls as far as the cuts can move (%s at the end of what was searched). The inspection then accepts or rejects nearly all; look at the costs again.",
-				what, s.WithUnit(s.Signed(c.Risk.GuardBand))))
+		case c.Edge == signal.AcceptAll:
+			out = append(out, fmt.Sprintf("%s, accepting every part is cheapest: %s a thousand parts made, in place of %s with the cuts where they are. No guard band pays for the inspection; look at the costs again.",
+				what, costText(c.PerPartAcceptAll), costText(c.PerPartNow)))
+		case c.Edge == signal.InwardEdge:
+			out = append(out, fmt.Sprintf("%s, cost falls as far as the cuts can move inwards, by %s: %s a thousand parts made in place of %s. The inspection then rejects most of what is made; look at the costs again.",
+				what, s.WithUnit(s.Value(c.Risk.GuardBand)), costText(c.PerPart), costText(c.PerPartNow)))
 		default:
 			out = append(out, fmt.Sprintf("%s, it is cheapest to %s: %s a thousand parts made in place of %s. %s",
 				what, band(c.Risk), costText(c.PerPart), costText(c.PerPartNow), then(c.Risk)))

@@ -85,7 +85,9 @@ type costJSON struct {
 	GuardBand  *float64  `json:"guard_band,omitempty"`
 	PerPart    *float64  `json:"per_part,omitempty"`
 	PerPartNow *float64  `json:"per_part_now,omitempty"`
+	AcceptAll  *float64  `json:"per_part_accept_all,omitempty"`
 	AtEdge     bool      `json:"at_edge"`
+	Edge       string    `json:"edge,omitempty"` // inward or accept-all
 	Risk       *riskJSON `json:"risk,omitempty"`
 	Reason     string    `json:"reason,omitempty"`
 }
@@ -152,7 +154,8 @@ func RiskJSON(w io.Writer, r *judge.Risks, study *Record) error {
 			c.Reason = r.NoCost.Error()
 		} else {
 			risk := newRisk(r, r.Cost.Risk)
-			c.GuardBand, c.PerPart, c.PerPartNow, c.AtEdge, c.Risk = &r.Cost.Risk.GuardBand, &r.Cost.PerPart, &r.Cost.PerPartNow, r.Cost.AtEdge, &risk
+			c.GuardBand, c.PerPart, c.PerPartNow, c.AcceptAll, c.Risk = &r.Cost.Risk.GuardBand, &r.Cost.PerPart, &r.Cost.PerPartNow, &r.Cost.PerPartAcceptAll, &risk
+			c.AtEdge, c.Edge = r.Cost.Edge != signal.NoEdge, map[signal.Edge]string{signal.InwardEdge: "inward", signal.AcceptAll: "accept-all"}[r.Cost.Edge]
 		}
 		d.Cost = &c
 	}
