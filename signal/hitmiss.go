@@ -30,6 +30,16 @@ type HitMiss struct {
 	Curve *Curve // over the natural logarithm of the size, as a lower limit
 }
 
+// Found returns the fitted probability that a flaw of this size is found, with a
+// pointwise interval as of Curve.Band. It returns an error if the size is not
+// above 0.
+func (h *HitMiss) Found(size float64) (Estimate, error) {
+	if !(size > 0) || !finite(size) {
+		return Estimate{}, fmt.Errorf("size %v: want a number above 0", size)
+	}
+	return h.Curve.Band(math.Log(size)), nil
+}
+
 // a9095Confidence is that of the a90/95 bound, one-sided.
 const a9095Confidence = 0.95
 
@@ -39,8 +49,8 @@ const a9095Confidence = 0.95
 // square of the one-sided normal quantile 1.645, widened for lack of fit where
 // that is found. Options.Confidence governs the two-sided intervals of A50 and
 // A90 alone. Where found and missed sizes do not overlap the curve is
-// bias-reduced as in Fit, and there is no bound: how the chance rises is not
-// known.
+// bias-reduced as in Fit, and there is neither a bound nor an interval of A90:
+// how the chance rises is not known.
 //
 // It returns an error if a size is not above 0, a count cannot be, or larger
 // flaws are not found more often.
@@ -78,32 +88,18 @@ func FitHitMiss(flaws []Flaw, options Options) (*HitMiss, error) {
 // log σ.
 type a90Profile struct {
 	*profiler
-	value     float64 // the estimate of a90
-	se        float64 // its standard error by the information; 0 without a maximum
-	separated *half   // where found and missed sizes do not overlap
-	step      float64 // how far the search for a bound begins to go
+	se float64 // of a90 by the information
 }
 
 // a90Profile sets the likelihood up so that its cut is the size found nine times
 // in ten.
-func (d *dataset) a90Profile(c *Curve) *a90Profile {
+func (d *dataset) a90Profile(c *Curve, value float64) *a90Profile {
 	shift := d.options.Link.quantile(0.9)
-	sigma := math.Exp(c.local[logSigmaL])
 	m := d.model(0, len(d.x), d.has)
 	m.shift[0] = shift
-	p := &a90Profile{value: c.local[cutL] + shift*sigma, step: math.Max(sigma, 1e-6)}
-	best := []float64{p.value, c.local[logSigmaL]}
-	if !c.hasCov[cutL] {
-		// Under separation the supremum is reached with all of the curve's turn
-		// between the missed and the found sizes.
-		h := d.halves()[0]
-		p.separated = &h
-		p.profiler = newProfiler(newSolver(m), best, d.supremum(h), nil, 0)
-		return p
-	}
 	// The covariance of (a90, log σ), from that of (cut, log σ).
 	a, b, v := c.cov[cutL][cutL], c.cov[cutL][logSigmaL], c.cov[logSigmaL][logSigmaL]
-	k := shift * sigma
+	k := shift * math.Exp(c.local[logSigmaL])
 	va, vb := a+2*k*b+k*k*v, b+k*v
 	covariance := func(i, j int) float64 {
 		switch {
@@ -114,60 +110,43 @@ func (d *dataset) a90Profile(c *Curve) *a90Profile {
 		}
 		return vb
 	}
-	p.se = math.Sqrt(va)
-	p.step = p.se
-	p.profiler = newProfiler(newSolver(m), best, c.blockLogLikelihood, covariance, 0)
-	return p
+	best := []float64{value, c.local[logSigmaL]}
+	return &a90Profile{newProfiler(newSolver(m), best, c.blockLogLikelihood, covariance, 0), math.Sqrt(va)}
 }
 
 // bound is where the square root of twice the log-likelihood lost reaches
-// target, upwards (way 1) or downwards (−1), and false if it does not.
-func (p *a90Profile) bound(target, way float64) (float64, bool) {
-	p.restart()
-	from := p.value
-	if p.separated != nil {
-		// The supremum is reached at the end of the gap on either side.
-		from = p.separated.accept
-		if way < 0 {
-			from = p.separated.reject
-		}
-		if r := p.root(from + way*1e-9); math.IsNaN(r) {
-			return 0, false
-		} else if r >= target {
-			return from, true
-		}
-		from += way * 1e-9
-	}
-	return found(crossing(from, way*target*p.step, cutReach, target, p.root))
+// target, upwards (way 1) or downwards (−1).
+func (p *a90Profile) bound(target, way float64) (float64, ending) {
+	return p.profiler.bound(way*target*p.se, cutReach, target)
 }
 
 // a90 fills A90 and its bound.
 func (h *HitMiss) a90(d *dataset, c *Curve) error {
 	out := func(t float64) float64 { return math.Exp(d.sc.out(t)) }
-	p := d.a90Profile(c)
-	q := Estimate{Value: p.value, Confidence: d.options.Confidence, Method: c.Lower.Cut.Method, SE: p.se * math.Sqrt(c.factor)}
-	if d.options.SkipIntervals {
+	value := c.local[cutL] + d.options.Link.quantile(0.9)*math.Exp(c.local[logSigmaL])
+	q := Estimate{Value: value, Confidence: d.options.Confidence, Method: c.Lower.Cut.Method}
+	switch {
+	case c.Lower.Status != Fitted:
+		// An interval of a90 would say what a90/95 cannot.
+		q.Method, q.Why, h.Why = firthMethod, whyNoRise, whyNoRise
+	case d.options.SkipIntervals:
 		q.Why, h.Why = whySkipped, whySkipped
-	} else {
+	default:
+		p := d.a90Profile(c, value)
+		q.SE = p.se * math.Sqrt(c.factor)
 		target := math.Sqrt(c.crit)
-		q.Upper, q.HasUpper = p.bound(target, 1)
-		q.Lower, q.HasLower = p.bound(target, -1)
-		if q.HasUpper {
-			q.Upper = math.Max(q.Upper, q.Value)
-		}
-		if q.HasLower {
-			q.Lower = math.Min(q.Lower, q.Value)
-		}
-		if !q.HasLower || !q.HasUpper {
-			q.Why = whyFlat
-		}
+		var below, above ending
+		q.Upper, above = p.bound(target, 1)
+		q.Lower, below = p.bound(target, -1)
+		q.bounded(below, above)
+		h.a9095(c, p, out)
 	}
-	h.A90 = q.map1(out, d.sc.scale*out(p.value))
+	h.A90 = q.map1(out, d.sc.scale*out(value))
 	if h.A90.HasUpper && !finite(h.A90.Upper) {
 		h.A90.Upper, h.A90.HasUpper, h.A90.Why = 0, false, whyFlat
 	}
-	if !d.options.SkipIntervals {
-		h.a9095(c, p, out)
+	if h.HasA9095 {
+		h.A9095 = math.Max(h.A9095, h.A90.Value)
 	}
 	if !finite(h.A50.Value, h.A50.Lower, h.A50.Upper, h.A50.SE, h.A90.Value, h.A90.Lower, h.A90.Upper, h.A90.SE) {
 		return &NotConvergedError{What: "the hit/miss curve", Reason: "a size is not a finite number"}
@@ -175,19 +154,20 @@ func (h *HitMiss) a90(d *dataset, c *Curve) error {
 	return nil
 }
 
+const (
+	firthMethod = "bias-reduced (Firth)"
+	whyNoRise   = "hits and misses do not overlap in size, so the study does not tell how the chance rises"
+)
+
 // a9095 fills the bound of a90, which is one-sided.
 func (h *HitMiss) a9095(c *Curve, p *a90Profile, out func(float64) float64) {
-	if c.Lower.Status != Fitted {
-		h.Why = "hits and misses do not overlap in size, so the study does not tell how the chance rises"
-		return
-	}
 	target := normalQuantile(a9095Confidence)
 	if f := c.LackOfFit; f.Applied {
 		target = math.Sqrt(c.factor) * distuv.StudentsT{Sigma: 1, Nu: float64(f.DF)}.Quantile(a9095Confidence)
 	}
-	at, ok := p.bound(target, 1)
-	if a := out(at); ok && finite(a) {
-		h.A9095, h.HasA9095 = math.Max(a, h.A90.Value), true
+	at, end := p.bound(target, 1)
+	if a := out(at); end == crossed && finite(a) {
+		h.A9095, h.HasA9095 = a, true
 		return
 	}
 	h.Why = whyFlat

@@ -65,6 +65,13 @@ func TestHitMissHardCases(t *testing.T) {
 	if h.Curve.Lower.Status != Separated || h.HasA9095 || !strings.Contains(h.Why, "do not overlap") {
 		t.Errorf("%+v", h)
 	}
+	// An interval of a90 would tell more than a90/95.
+	if e := h.A90; e.HasLower || e.HasUpper || e.Why != h.Why {
+		t.Errorf("a90 %+v", e)
+	}
+	if e := h.A50; !e.HasLower || !e.HasUpper { // calls turn in the gap, whatever the curve
+		t.Errorf("a50 %+v", e)
+	}
 	for name, flaws := range map[string][]Flaw{
 		"no flaw":       nil,
 		"size 0":        {{Size: 0, Looked: 1}},
@@ -74,6 +81,28 @@ func TestHitMissHardCases(t *testing.T) {
 	} {
 		if _, err := FitHitMiss(flaws, Options{}); err == nil {
 			t.Errorf("%s: no error", name)
+		}
+	}
+}
+
+// The chance of being found at the sizes that are found half of the time and nine
+// times in ten.
+func TestHitMissFound(t *testing.T) {
+	flaws := []Flaw{{Size: 1, Looked: 9, Found: 1}, {Size: 2, Looked: 9, Found: 3}, {Size: 3, Looked: 9, Found: 7}, {Size: 4, Looked: 9, Found: 8}}
+	h, err := FitHitMiss(flaws, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for size, want := range map[float64]float64{h.A50.Value: 0.5, h.A90.Value: 0.9} {
+		e, err := h.Found(size)
+		if err != nil || !(e.Lower < e.Value && e.Value < e.Upper) {
+			t.Errorf("size %v: %+v, %v", size, e, err)
+		}
+		near(t, "found", e.Value, want, 1e-9)
+	}
+	for _, size := range []float64{0, -1, math.NaN(), math.Inf(1)} {
+		if _, err := h.Found(size); err == nil {
+			t.Errorf("size %v: no error", size)
 		}
 	}
 }

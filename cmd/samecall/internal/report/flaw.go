@@ -196,7 +196,7 @@ func flawNotes(st SmallStudy, rows []study.Tally, h *signal.HitMiss) []string {
 	}
 	if gap := c.Lower.Gap; gap != nil && gap.HasReject && gap.HasAccept {
 		from, to := s.Value(math.Exp(gap.Reject)), s.WithUnit(s.Value(math.Exp(gap.Accept)))
-		out = append(out, fmt.Sprintf("Hits and misses do not overlap in size: flaws up to %s were missed and flaws from %s found (one size at most had both). The curve is a bias-reduced one; where it turns between these sizes, and how steeply, the study does not tell.", from, to))
+		out = append(out, fmt.Sprintf("Hits and misses do not overlap in size: flaws up to %s were missed and flaws from %s found (one size at most had both). The curve is a bias-reduced one; where it turns between these sizes, and how steeply, the study does not tell: a90 has no interval.", from, to))
 	}
 	if h.HasA9095 && beyondTried(h, h.A9095) {
 		out = append(out, fmt.Sprintf("The number given for a90/95 is an extrapolation beyond the largest flaw tried, %s: it rests on the shape of the curve alone.", s.WithUnit(s.Value(largestFlaw(h)))))
