@@ -213,7 +213,8 @@ func (c *Curve) each(f func(l *LimitFit)) {
 }
 
 // Accept returns the fitted probability that a part of value x is accepted.
-// A limit at which calls do not turn is taken to reject nothing.
+// A limit at which calls do not turn is taken to reject nothing. It is NaN where
+// x is.
 func (c *Curve) Accept(x float64) float64 {
 	p, _ := c.probability(c.sc.in(x))
 	return p

@@ -38,8 +38,10 @@ func FitAppraisers(byAppraiser [][]Part, limits Limits, options Options) (*Appra
 	if err := limits.check(); err != nil {
 		return nil, err
 	}
+	calls := 0
 	for a, parts := range byAppraiser {
-		if err := checkParts(parts); err != nil {
+		var err error
+		if calls, err = countCalls(parts, calls); err != nil {
 			return nil, fmt.Errorf("appraiser %d: %w", a+1, err)
 		}
 	}

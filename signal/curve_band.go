@@ -7,8 +7,12 @@ import (
 // Band returns the fitted probability that a part of value x is accepted, with
 // a pointwise interval for plotting: normal on the link scale (delta method),
 // widened where lack of fit widens the rest. The interval is missing where a
-// limit that matters at x has no covariance, because its parts are separated.
+// limit that matters at x has no covariance, because its parts are separated. All
+// of it is absent where x is NaN.
 func (c *Curve) Band(x float64) Estimate {
+	if math.IsNaN(x) {
+		return Estimate{Absent: true, Confidence: c.Options.Confidence, Why: "the value is no number"}
+	}
 	t := c.sc.in(x)
 	p, q := c.probability(t)
 	e := Estimate{Value: p, Confidence: c.Options.Confidence, Method: c.method(deltaMethod, deltaWidened)}

@@ -44,7 +44,7 @@ func Detect(hits, bad, falseAlarms, good int, confidence float64) (Detection, er
 // Tally is how often one part was rejected out of its calls.
 type Tally struct {
 	Rejected, Calls int
-	Parts           int // how many parts are so, alike; 0 counts as one
+	Parts           int // how many parts are so, alike, 0 or more; 0 counts as one
 }
 
 func (t Tally) parts() int { return max(1, t.Parts) }
@@ -121,6 +121,9 @@ func clusteredRate(parts []Tally, kind string) (rate, variance float64, err erro
 	for i, t := range parts {
 		if t.Calls < 0 || t.Rejected < 0 || t.Rejected > t.Calls {
 			return 0, 0, fmt.Errorf("%s part %d: %d rejected out of %d calls", kind, i, t.Rejected, t.Calls)
+		}
+		if t.Parts < 0 {
+			return 0, 0, fmt.Errorf("%s part %d: there are %d such parts", kind, i, t.Parts)
 		}
 		if t.Calls > 0 {
 			n := t.parts()

@@ -2,6 +2,7 @@ package signal
 
 import (
 	"math"
+	"strings"
 	"testing"
 
 	"pgregory.net/rapid"
@@ -81,6 +82,10 @@ func TestDetectRefuses(t *testing.T) {
 		if _, err := Detect(1, 5, 1, 5, conf); err == nil {
 			t.Errorf("confidence %v: no error", conf)
 		}
+	}
+	one := []Tally{{Rejected: 1, Calls: 2}}
+	if _, err := DetectByPart(one, []Tally{{Rejected: 1, Calls: 2, Parts: -1}}, 0.95); err == nil || !strings.Contains(err.Error(), "-1 such parts") {
+		t.Errorf("−1 parts: %v", err)
 	}
 	if _, err := FromRates(1, 0.5); err == nil {
 		t.Error("hit rate 1: no error")

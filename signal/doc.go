@@ -17,5 +17,6 @@
 //
 // It is pure computation: nothing is printed, no file is read, and the same
 // input gives the same result. A quantity that cannot be computed is absent
-// with a reason; no result holds NaN or an infinity.
+// with a reason; no result holds NaN or an infinity, but for the probability of
+// acceptance at a value that is NaN (Curve.Accept, Gauge.Accept).
 package signal

@@ -62,7 +62,9 @@ func (g Gauge) Tighten(band float64) Gauge {
 }
 
 // Accept returns the probability that a part of value x is accepted and that
-// it is rejected, each precise in its own tail.
+// it is rejected, each precise in its own tail. A σ that is not above 0, such as
+// one not filled in, is a step: half of the calls accept at the cut itself, none
+// beyond it and all inside. Where x is NaN, so are both.
 func (g Gauge) Accept(x float64) (accept, reject float64) {
 	accept, reject, _ = g.accept(x)
 	return accept, reject
@@ -74,10 +76,10 @@ func (g Gauge) accept(x float64) (accept, reject float64, slope [locals]float64)
 	has := [2]bool{g.HasLower, g.HasUpper}
 	var z [2]float64
 	if g.HasLower {
-		z[0] = (x - g.LowerCut) / g.LowerSigma
+		z[0] = inSigmas(x-g.LowerCut, g.LowerSigma)
 	}
 	if g.HasUpper {
-		z[1] = (x - g.UpperCut) / g.UpperSigma
+		z[1] = inSigmas(x-g.UpperCut, g.UpperSigma)
 	}
 	var t term
 	t.at(g.Link, z, has, 0, 0, g.Lapse)
@@ -92,4 +94,15 @@ func (g Gauge) accept(x float64) (accept, reject float64, slope [locals]float64)
 	}
 	slope[logitE] = t.epsilonGradient * g.Lapse * steady
 	return math.Min(1, math.Max(0, t.p)), math.Min(1, math.Max(0, t.q)), slope
+}
+
+// inSigmas is a distance in units of σ, for which a step has infinite ones.
+func inSigmas(distance, sigma float64) float64 {
+	switch {
+	case distance == 0:
+		return 0
+	case sigma > 0:
+		return distance / sigma
+	}
+	return distance * math.Inf(1)
 }

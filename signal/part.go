@@ -75,19 +75,30 @@ func (l Limits) check() error {
 	return nil
 }
 
-// checkParts refuses values and counts that cannot be.
+// checkParts refuses values and counts that cannot be, and more calls together
+// than can be counted.
 func checkParts(parts []Part) error {
+	_, err := countCalls(parts, 0)
+	return err
+}
+
+// countCalls is checkParts, with so many calls counted before, and returns how
+// many there are with these.
+func countCalls(parts []Part, calls int) (int, error) {
 	for i, p := range parts {
 		switch {
 		case !finite(p.Value):
-			return fmt.Errorf("part %s: value %v is not a number", label(parts, i), p.Value)
+			return 0, fmt.Errorf("part %s: value %v is not a number", label(parts, i), p.Value)
 		case p.Calls < 0:
-			return fmt.Errorf("part %s: %d calls", label(parts, i), p.Calls)
+			return 0, fmt.Errorf("part %s: %d calls", label(parts, i), p.Calls)
 		case p.Accepted < 0 || p.Accepted > p.Calls:
-			return fmt.Errorf("part %s: %d accepted out of %d calls", label(parts, i), p.Accepted, p.Calls)
+			return 0, fmt.Errorf("part %s: %d accepted out of %d calls", label(parts, i), p.Accepted, p.Calls)
+		case p.Calls > math.MaxInt-calls:
+			return 0, fmt.Errorf("part %s: with its %d calls there are more than can be counted", label(parts, i), p.Calls)
 		}
+		calls += p.Calls
 	}
-	return nil
+	return calls, nil
 }
 
 // label names a part for a message.

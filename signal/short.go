@@ -11,11 +11,14 @@ import (
 	"gonum.org/v1/gonum/stat/distuv"
 )
 
-// The short study's constants (Measurement Systems Analysis reference manual,
-// 4th ed. 2010, ch. III C, analytic method): the factor that turns the spread
-// of 20 trials into repeatability, and that of the t statistic.
+// ShortTrials is how many trials a short study asks of each part (Measurement
+// Systems Analysis reference manual, 4th ed. 2010, ch. III C, analytic method).
+const ShortTrials = 20
+
+// The other constants of the method: how many parts it asks for, and how many of
+// them between never and always accepted; the factor that turns the spread of 20
+// trials into repeatability; those of the t statistic.
 const (
-	ShortTrials       = 20
 	shortParts        = 8
 	shortBetween      = 6
 	shortAdjustment   = 1.08
