@@ -18,8 +18,10 @@ type PartFit struct {
 	// NoCut marks a part that lies at a limit where rejected calls give no cut:
 	// nothing is fitted there, the figures below are 0, and its calls are not in
 	// the log-likelihoods.
-	NoCut    bool
-	Fitted   float64 // fitted probability of acceptance
+	NoCut bool
+	// Fitted is the fitted probability of acceptance, by the curve of all parts;
+	// of an outlier, see Curve.ExpectedByOthers.
+	Fitted   float64
 	Residual float64 // deviance residual: its square is the part's share of the deviance
 	// Tail is the chance of calls at least as far from the fitted share, in
 	// either direction.
@@ -31,6 +33,16 @@ type PartFit struct {
 	CutChange      [2]float64
 	LogSigmaChange [2]float64
 	Outlier        bool
+}
+
+// ExpectedByOthers returns the probability of acceptance that the other parts make
+// expected of c.Parts[i]: of an outlier, by the curve without the outliers, which
+// it cannot bend towards itself; of any other part, Fitted.
+func (c *Curve) ExpectedByOthers(i int) float64 {
+	if p := c.Parts[i]; !p.Outlier || c.Without == nil {
+		return p.Fitted
+	}
+	return c.Without.Accept(c.Parts[i].Value)
 }
 
 // summarise fills log-likelihoods and parts from the estimates.

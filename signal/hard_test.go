@@ -186,6 +186,13 @@ func TestFitOutlier(t *testing.T) {
 	if c.Without == nil {
 		t.Fatal("no fit without it")
 	}
+	// What the others make expected is not what the curve that it bends does.
+	if e := c.ExpectedByOthers(i); e < 0.999 || c.Parts[i].Fitted > 0.99 {
+		t.Errorf("%v expected by the others, %v with it", e, c.Parts[i].Fitted)
+	}
+	if c.ExpectedByOthers(i+1) != c.Parts[i+1].Fitted {
+		t.Error("a part that is no outlier")
+	}
 	near(t, "cut without", c.Without.Lower.Cut.Value, clean.Lower.Cut.Value, 1e-4)
 	if !(c.Lower.Sigma.Value > 1.5*c.Without.Lower.Sigma.Value) {
 		t.Errorf("σ %v with, %v without", c.Lower.Sigma.Value, c.Without.Lower.Sigma.Value)

@@ -207,7 +207,7 @@ func flawNotes(st SmallStudy, rows []study.Tally, h *signal.HitMiss) []string {
 		if name == "" {
 			name = fmt.Sprintf("row %d", p.Row+1)
 		}
-		out = append(out, fmt.Sprintf("The flaw of %s does not fit the curve: found in %d of %d looks where %s is expected.", name, p.Accepted, p.Calls, format.Percent(p.Fitted)))
+		out = append(out, fmt.Sprintf("The flaw of %s does not fit the curve: found in %d of %d looks where the other flaws make %s expected.", name, p.Accepted, p.Calls, format.Percent(c.ExpectedByOthers(i))))
 	}
 	if f := c.LackOfFit; f.Applied {
 		out = append(out, fmt.Sprintf("The flaws scatter about the curve more than looks by chance would (p %s): they differ by more than their size. The intervals are widened for it.", format.Probability(f.P)))

@@ -215,7 +215,7 @@ func shortNotes(s *signal.ShortStudy) []string {
 		}
 		for _, i := range s.Fit.Outliers {
 			p := s.Fit.Parts[i]
-			out = append(out, fmt.Sprintf("The part at %s does not fit the curve: accepted in %d of %d trials where %s is expected.", format.Number(p.Value), p.Accepted, p.Calls, format.Percent(p.Fitted)))
+			out = append(out, fmt.Sprintf("The part at %s does not fit the curve: accepted in %d of %d trials where the other parts make %s expected.", format.Number(p.Value), p.Accepted, p.Calls, format.Percent(s.Fit.ExpectedByOthers(i))))
 		}
 	}
 	return append(out, shortCautions...)

@@ -81,8 +81,8 @@ func zoneNotes(r *Record, screen bool) []string {
 		}
 		for _, i := range c.Outliers {
 			p := c.Parts[i]
-			out = append(out, fmt.Sprintf("Part %s at %s does not fit the curve: accepted in %d of %d calls where %s is expected. The command samecall zone shows the fit without it.",
-				p.Name, s.Value(p.Value), p.Accepted, p.Calls, format.Percent(p.Fitted)))
+			out = append(out, fmt.Sprintf("Part %s at %s does not fit the curve: accepted in %d of %d calls where the other parts make %s expected. The command samecall zone shows the fit without it.",
+				p.Name, s.Value(p.Value), p.Accepted, p.Calls, format.Percent(c.ExpectedByOthers(i))))
 		}
 		if c.LackOfFit.Applied {
 			out = append(out, fmt.Sprintf("The parts scatter about the curve more than calls by chance would (factor %.1f); the intervals are widened for it.", c.LackOfFit.Factor))
