@@ -30,13 +30,17 @@ func parseRequirement(level string, shown bool) (requirement, error) {
 }
 
 // check returns the exit status of a verdict that is not as good as required.
-// The answer tells why, but not that --shown asks for more than the verdict.
+// The answer tells why at length; a log of commands shows the one line only.
 func (r requirement) check(v *verdict.Verdict, confidence float64) error {
 	switch {
 	case !r.asked:
 		return nil
 	case v.Overall > r.level: // not shown, too, is worse than conditional
-		return statusError{status: exitShort}
+		why := ""
+		if missed := v.Missed(r.level); missed != "" {
+			why = ": " + missed
+		}
+		return statusError{exitShort, fmt.Errorf("--require %s: the verdict is %s%s", r.level, v.Overall, why)}
 	case !r.shown:
 		return nil
 	}

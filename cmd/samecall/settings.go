@@ -191,7 +191,7 @@ func completeExamples(*cobra.Command, []string, string) ([]string, cobra.ShellCo
 // oneFile is the arguments of a command that reads a study.
 func oneFile(cmd *cobra.Command, args []string) error {
 	if len(args) > 1 {
-		return fmt.Errorf("%d files are named; expected one (a calls file, a study file, or - for standard input)", len(args))
+		return fmt.Errorf("%d files are named; expected one (a calls file, a study file, or - for standard input); studies of the same parts before and after a fix go into one table, each appraiser under two names, such as early before and early after", len(args))
 	}
 	return nil
 }

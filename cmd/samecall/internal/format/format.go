@@ -36,10 +36,44 @@ func digits(share, oneDecimal float64) string {
 		return strconv.FormatFloat(p, 'f', 2, 64)
 	case p < oneDecimal:
 		return decimals(1)
-	case p > 99 && p < 100: // never 100.0
-		return strconv.FormatFloat(math.Floor(10*p)/10, 'f', 1, 64)
+	case share > 1 || p <= 99:
+		return decimals(0)
+	case 100-p < 0.005: // as near to all as others are to none
+		return ">99.99"
+	case 100-p < 0.095:
+		return strconv.FormatFloat(p, 'f', 2, 64)
+	default:
+		return decimals(1)
 	}
-	return decimals(0)
+}
+
+// PercentApart returns how to write an estimate of a share and the ends of its
+// interval in percent: with as many decimals as tell them apart, six at most.
+func PercentApart(value, lower, upper float64) func(share float64) string {
+	apart := func(write func(float64) string) bool {
+		return (write(value) != write(lower) || value == lower) && (write(value) != write(upper) || value == upper)
+	}
+	if apart(Percent) {
+		return Percent
+	}
+	const most = 6
+	for decimals := 1; ; decimals++ {
+		write := func(share float64) string {
+			text := strconv.FormatFloat(100*share, 'f', decimals, 64)
+			switch x, _ := strconv.ParseFloat(text, 64); {
+			case share == 0 || share == 1:
+				return Percent(share)
+			case x == 0: // none and all are for none and all only
+				text = "<" + strconv.FormatFloat(math.Pow10(-decimals), 'f', decimals, 64)
+			case x == 100:
+				text = ">" + strconv.FormatFloat(100-math.Pow10(-decimals), 'f', decimals, 64)
+			}
+			return text + " %"
+		}
+		if decimals == most || apart(write) {
+			return write
+		}
+	}
 }
 
 // PercentRange writes the limits of an interval of a share, in percent.

@@ -3,6 +3,7 @@ package format
 import (
 	"errors"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 	"testing"
@@ -23,8 +24,11 @@ func TestPercent(t *testing.T) {
 		{0, "0 %"},
 		{1, "100 %"}, {1.154, "115 %"},
 		{0.999, "99.9 %"},
-		{0.9999, "99.9 %"},
-		{0.99999999, "99.9 %"},
+		{0.9989, "99.9 %"},
+		{0.99906, "99.91 %"},
+		{0.9999, "99.99 %"},
+		{0.99999999, ">99.99 %"},
+		{0.9901, "99.0 %"},
 		{0.995, "99.5 %"},
 		{0.99, "99 %"},
 		{0.985, "99 %"},
@@ -58,7 +62,7 @@ func TestPercentAlways(t *testing.T) {
 			rapid.Map(rapid.Float64Range(-14, 0), func(e float64) float64 { return 1 - math.Pow(10, e) })).Draw(t, "share")
 		got := Percent(share)
 		digits := strings.TrimSuffix(got, " %")
-		x, err := strconv.ParseFloat(strings.TrimPrefix(digits, "<"), 64)
+		x, err := strconv.ParseFloat(strings.TrimLeft(digits, "<>"), 64)
 		if err != nil {
 			t.Fatalf("%q does not read as a number", got)
 		}
@@ -246,6 +250,52 @@ func TestNoNegativeZero(t *testing.T) {
 	for _, got := range append(Alike(minus, 0.25), Number(minus), Short(minus), decimal(-0.0001, 2)) {
 		if strings.ContainsAny(got, "-−") {
 			t.Errorf("%q has a sign", got)
+		}
+	}
+}
+
+// An estimate is written between the ends of its interval, whatever they are
+// near to.
+func TestPercentApart(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		near := rapid.OneOf(rapid.Float64Range(0, 1), rapid.Map(rapid.Float64Range(-12, 0), func(e float64) float64 { return math.Pow(10, e) }),
+			rapid.Map(rapid.Float64Range(-12, 0), func(e float64) float64 { return 1 - math.Pow(10, e) }), rapid.SampledFrom([]float64{0, 1}))
+		x := []float64{near.Draw(t, "a"), near.Draw(t, "b"), near.Draw(t, "c")}
+		slices.Sort(x)
+		write := PercentApart(x[1], x[0], x[2])
+		read := func(share float64) (low, high float64) { // what the text may stand for
+			text := strings.TrimSuffix(write(share), " %")
+			v, err := strconv.ParseFloat(strings.TrimLeft(text, "<>"), 64)
+			if err != nil {
+				t.Fatal(err)
+			}
+			switch text[0] {
+			case '<':
+				return 0, v
+			case '>':
+				return v, 100
+			}
+			return v, v
+		}
+		for i := range 2 {
+			low, _ := read(x[i])
+			_, high := read(x[i+1])
+			if low > high {
+				t.Fatalf("%v are written %s, %s, %s", x, write(x[0]), write(x[1]), write(x[2]))
+			}
+		}
+	})
+	for _, c := range []struct {
+		lower, value, upper float64
+		want                string
+	}{
+		{0.9999996, 0.9999999, 0.99999997, "99.99996 % 99.99999 % >99.99999 %"},
+		{0.1, 0.2, 0.3, "10.0 % 20 % 30 %"},
+		{0, 0.00000002, 0.5, "0 % <0.01 % 50 %"},
+	} {
+		write := PercentApart(c.value, c.lower, c.upper)
+		if got := write(c.lower) + " " + write(c.value) + " " + write(c.upper); got != c.want {
+			t.Errorf("%+v: %s", c, got)
 		}
 	}
 }

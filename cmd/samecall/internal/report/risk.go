@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"io"
 	"math"
-	"strconv"
 	"strings"
 
 	"samecall/cmd/samecall/internal/format"
@@ -124,32 +123,13 @@ func exactCell(e signal.Estimate, write func(float64) string) Cell {
 	return c
 }
 
-// percentApart writes shares in percent with as many decimals as tell the
-// estimate from the ends of its interval, six at most.
+// percentApart writes shares in percent so that the estimate is told from the
+// ends of its interval.
 func percentApart(e signal.Estimate) func(float64) string {
 	if e.Absent || !e.HasLower || !e.HasUpper || e.Lower == e.Upper {
 		return format.Percent
 	}
-	apart := func(write func(float64) string) bool {
-		value, lower, upper := write(e.Value), write(e.Lower), write(e.Upper)
-		return (value != lower || e.Value == e.Lower) && (value != upper || e.Value == e.Upper)
-	}
-	if apart(format.Percent) {
-		return format.Percent
-	}
-	for decimals := 1; decimals <= 6; decimals++ {
-		write := func(share float64) string {
-			text := strconv.FormatFloat(100*share, 'f', decimals, 64)
-			if x, _ := strconv.ParseFloat(text, 64); share == 0 || share == 1 || x == 0 || x == 100 {
-				return format.Percent(share) // none and all are for none and all only
-			}
-			return text + " %"
-		}
-		if apart(write) {
-			return write
-		}
-	}
-	return format.Percent
+	return format.PercentApart(e.Value, e.Lower, e.Upper)
 }
 
 // noneBeyond reports at which limits a process of measured values has none

@@ -134,6 +134,10 @@ func (m *merge) rareWords() {
 				name = w
 			}
 		}
-		m.note("rare_word", "The call %s occurs once among %d calls; is it spelt right? The setting categories or reject lists the words that are expected.", quote(name), total)
+		meant := ""
+		if near := nearest(name, slices.Concat(m.settings.Accept, slices.Delete(slices.Clone(m.words.names), c, c+1))); near != "" {
+			meant = ", or " + shown(near) + " meant"
+		}
+		m.note("rare_word", "The call %s occurs once among %d calls; is it spelt right%s? The setting categories or reject lists the words that are expected.", quote(name), total, meant)
 	}
 }

@@ -387,3 +387,13 @@ func TestManyAppraisersAndCategories(t *testing.T) {
 		}
 	}
 }
+
+// A word that occurs once is set beside the one it is near to.
+func TestRareWordMeant(t *testing.T) {
+	for word, want := range map[string]string{"fien": "is it spelt right, or fine meant?", "dent": "is it spelt right?"} {
+		s := read(t, "part,a-1\n"+numbered(19, "fine")+"x,"+word+"\n", Settings{Accept: []string{"fine"}})
+		if len(s.Notes) != 1 || !strings.Contains(s.Notes[0].Text, want) {
+			t.Errorf("%+v", s.Notes)
+		}
+	}
+}

@@ -36,6 +36,9 @@ func next(r *judge.Result, v *Verdict) []string {
 		add(c.Do)
 	}
 	add(containment(r, v))
+	for _, text := range missedKinds(r, v) {
+		add(text)
+	}
 	for _, text := range wrongCallsOf(r, v) {
 		add(text)
 	}
@@ -79,6 +82,9 @@ func expected(r *judge.Result, part int) bool {
 // lacks says what the study lacks for its figures to be known.
 func lacks(r *judge.Result, v *Verdict) []string {
 	if r.Agreement.All == nil {
+		if r.Study.Values != nil && !r.Study.PassFail && (r.Study.Settings.Lower != nil || r.Study.Settings.Upper != nil) {
+			return []string{"Give each part a reference in a column of that name: values and limits tell good from bad only, and the calls have more than two categories. If they are to have two, list the words of both with accept and reject."}
+		}
 		return []string{"Give each part a reference: a column reference, or values and limits."}
 	}
 	if !r.Study.Ratings.HasAccept() {

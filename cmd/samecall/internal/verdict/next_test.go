@@ -6,6 +6,7 @@ import (
 	"slices"
 	"strings"
 	"testing"
+	"testing/fstest"
 
 	"samecall/cmd/samecall/internal/study"
 )
@@ -93,6 +94,53 @@ func TestNoPartTwice(t *testing.T) {
 	_, v := decide(t, calls("part,reference,A-1,A-2\n1,1,1,\n2,0,0,\n3,1,,1\n4,0,,0\n", ""))
 	if at(v.Next, "Have A call the same parts a second and a third time: no part was called twice, and nobody knows") < 0 {
 		t.Errorf("%q", v.Next)
+	}
+}
+
+// Of kinds, those that are let pass are named, with how often.
+func TestMissedKinds(t *testing.T) {
+	study := func(scratches int) fstest.MapFS {
+		var b strings.Builder
+		b.WriteString("part,reference,A-1,A-2,B-1,B-2\n")
+		for i := range 12 {
+			fmt.Fprintf(&b, "g%d,ok,ok,ok,ok,ok\nd%d,dent,dent,dent,dent,dent\n", i, i)
+			call := "scratch"
+			if i < scratches {
+				call = "ok"
+			}
+			fmt.Fprintf(&b, "s%d,scratch,%s,scratch,scratch,scratch\n", i, call)
+		}
+		return calls(b.String(), "categories = [\"ok\", \"dent\", \"scratch\"]\naccept = [\"ok\"]\n")
+	}
+	if _, v := decide(t, study(3)); at(v.Next, "Show A samples of what is accepted though bad, beside good parts: scratch (3 of 24 calls).") < 0 {
+		t.Errorf("%q", v.Next)
+	}
+	if _, v := decide(t, study(2)); at(v.Next, "Show A samples") >= 0 {
+		t.Errorf("two misses: %q", v.Next)
+	}
+}
+
+// Where no cause is found, it is said where the wrong calls lie.
+func TestNoPattern(t *testing.T) {
+	csv := "part,value,A-1,A-2,B-1,B-2\n"
+	for i := range 10 {
+		csv += fmt.Sprintf("g%d,9.%d,1,1,1,1\nb%d,10.%d,0,0,0,0\n", i, i, i, i+1)
+	}
+	_, v := decide(t, calls(csv+"x,10,0,1,1,1\ny,10.05,1,0,0,0\n", "upper = 10\n"))
+	if at(v.Next, "No wrong call lies farther than 0.050 from a limit; no pattern tells more. On a limit itself, where a call can go either way: part x.") < 0 {
+		t.Errorf("%s: %q", found(v), v.Next)
+	}
+}
+
+// A reference does not follow from values where there are kinds.
+func TestLacksReference(t *testing.T) {
+	for settings, want := range map[string]string{
+		"upper = 10\naccept = [\"a\"]\n": "Give each part a reference in a column of that name: values and limits tell good from bad only",
+		"accept = [\"a\"]\n":             "Give each part a reference: a column reference, or values and limits.",
+	} {
+		if _, v := decide(t, calls("part,value,A-1,A-2\n1,9,a,a\n2,11,b,b\n3,12,c,c\n", settings)); at(v.Next, want) < 0 {
+			t.Errorf("%q", v.Next)
+		}
 	}
 }
 

@@ -10,9 +10,21 @@ import (
 // empty where they show it of every one. An estimate may meet the level all
 // the same.
 func (v *Verdict) Unshown(level Level) string {
+	return v.figures(func(c Criterion) bool { return !c.shows(level) })
+}
+
+// Missed names the figures, of those that the verdict rests on, whose estimate
+// does not meet a level, Accept or Conditional, or is not known.
+func (v *Verdict) Missed(level Level) string {
+	return v.figures(func(c Criterion) bool { return c.Met > level })
+}
+
+// figures names the figures that the verdict rests on and that are asked for,
+// each with the appraisers whose it is.
+func (v *Verdict) figures(asked func(Criterion) bool) string {
 	var open []ground
 	add := func(who string, c Criterion) {
-		if !c.counts() || c.shows(level) {
+		if !c.counts() || !asked(c) {
 			return
 		}
 		i := slices.IndexFunc(open, func(g ground) bool { return g.c.Label() == c.Label() })

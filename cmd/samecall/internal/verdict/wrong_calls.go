@@ -32,7 +32,7 @@ func wrongCallsOf(r *judge.Result, v *Verdict) []string {
 	}
 	noPattern := ""
 	if len(v.Causes) == 0 {
-		noPattern = " No pattern tells what is behind the wrong calls."
+		noPattern = " " + noPatternIn(r)
 	}
 	if len(who) > mostSteps {
 		var people []string
@@ -71,6 +71,35 @@ func wrongCallsOf(r *judge.Result, v *Verdict) []string {
 		noPattern = "" // said once
 	}
 	return out
+}
+
+// noPatternIn says that no pattern tells what is behind the wrong calls and, where
+// there are values, how near to a limit they lie all the same.
+func noPatternIn(r *judge.Result) string {
+	none := "No pattern tells what is behind the wrong calls."
+	if r.Zone == nil {
+		return none
+	}
+	away := 0.0
+	var on []int
+	for a := range r.Study.Appraisers {
+		for _, part := range wrongParts(r, a, ways.total) {
+			if !r.Study.HasValue[part] {
+				return none
+			}
+			d := toLimit(r.Zone.Limits, r.Study.Values[part])
+			if away = max(away, d); d == 0 && !slices.Contains(on, part) {
+				on = append(on, part)
+			}
+		}
+	}
+	s := r.Scale()
+	text := fmt.Sprintf("No wrong call lies farther than %s from a limit; no pattern tells more.", s.WithUnit(s.Value(away)))
+	if len(on) > 0 {
+		slices.Sort(on)
+		text += fmt.Sprintf(" On a limit itself, where a call can go either way: %s.", theParts(r.Study.Parts, on))
+	}
+	return text
 }
 
 // missRate is an appraiser's, 0 where it is not known.
