@@ -52,6 +52,23 @@ func byAppraiser(v *verdict.Verdict) string {
 	return strings.TrimSuffix("By appraiser: "+strings.Join(out, "; "), ".") + "."
 }
 
+// carriedBy says after a verdict on the whole how far the data carry it; empty
+// where there is none.
+func carriedBy(v *verdict.Verdict) string {
+	switch {
+	case v.Overall == verdict.NotShown:
+		return ""
+	case v.Shown():
+		return " (the data show it)"
+	}
+	return " (open: the data do not show it)"
+}
+
+// headline is the verdict on the whole in its own line.
+func headline(v *verdict.Verdict) string {
+	return "Verdict: " + strings.ToUpper(v.Overall.String()) + carriedBy(v)
+}
+
 // verdictWords is the verdict on an appraiser, with how far the data carry it.
 func verdictWords(a verdict.Appraiser) string {
 	switch {
@@ -64,11 +81,13 @@ func verdictWords(a verdict.Appraiser) string {
 }
 
 // evidenceWord is the same for a table.
-func evidenceWord(a verdict.Appraiser) string {
+func evidenceWord(a verdict.Appraiser) string { return shownWord(a.Verdict, a.Shown()) }
+
+func shownWord(level verdict.Level, shown bool) string {
 	switch {
-	case a.Verdict == verdict.NotShown:
+	case level == verdict.NotShown:
 		return ""
-	case a.Shown():
+	case shown:
 		return "shown"
 	}
 	return "open"

@@ -85,7 +85,7 @@ var places = []place{
 	{path: `^zone\.curve\.appraisers`, heads: []string{"Each appraiser's own acceptance curve", atEachLimit}},
 	{path: `^zone\.curve\.`, heads: []string{atEachLimit}},
 
-	{path: `^verdict\.overall`, heads: []string{"What was studied"}},
+	{path: `^verdict\.(overall|evidence)`, heads: []string{"What was studied"}},
 	{path: `^verdict\.(reasons|carry|causes|next|cautions)|^warnings`, heads: []string{anywhere}},
 	{path: `^verdict\.appraisers\[\]\.(verdict|evidence)`, heads: []string{"Against the reference"}},
 	{path: `^verdict\..*(one_sided|kind|parts)$`, heads: []string{"What each criterion rests on", criteria}},
@@ -266,8 +266,8 @@ func said(path, s string) string {
 		return map[string]string{"miss": "miss rate", "false_alarm": "false-alarm rate"}[s] + map[string]string{"effectiveness": s, "kappa": s}[s]
 	case strings.HasSuffix(path, "evidence") && s == "contradicted":
 		return "shown"
-	case path == "verdict.overall":
-		return s
+	case path == "verdict.evidence" && s == "shown":
+		return "the data show it"
 	}
 	return s
 }

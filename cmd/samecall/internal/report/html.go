@@ -36,6 +36,7 @@ type page struct {
 	Version, Title, Facts string
 	Style                 template.CSS
 	Verdict, VerdictClass string
+	Carried               string // how far the data carry the verdict
 	Reasons, Causes       []string
 	Next, Notes, Cautions []string
 	Study                 pageTable
@@ -83,6 +84,7 @@ func newPage(r *Record) page {
 		Facts:        format.Plain(facts(r)),
 		Style:        template.CSS(pageStyle + figure.Style()),
 		Verdict:      strings.ToUpper(v.Overall.String()),
+		Carried:      strings.TrimSpace(carriedBy(v)),
 		VerdictClass: strings.ReplaceAll(v.Overall.String(), " ", "-"),
 		Reasons:      plainLines(verdictLines(r)),
 		Next:         plainLines(v.Next),

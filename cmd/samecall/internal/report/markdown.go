@@ -14,7 +14,7 @@ func Markdown(w io.Writer, r *Record) error {
 	var s strings.Builder
 	v := r.Verdict
 	fmt.Fprintf(&s, "# %s\n\n%s\n\n", inline(title(r)), md(facts(r)))
-	fmt.Fprintf(&s, "**Verdict: %s**\n\n", strings.ToUpper(v.Overall.String()))
+	fmt.Fprintf(&s, "**%s**\n\n", headline(v))
 	bullets := func(lines []string) {
 		for _, l := range lines {
 			fmt.Fprintf(&s, "- %s\n", md(l))

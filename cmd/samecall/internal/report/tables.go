@@ -97,7 +97,7 @@ func studyTable(r *Record) Table {
 	add("words that accept", strings.Join(set.Accept, ", "))
 	add("words that reject", strings.Join(set.Reject, ", "))
 	add("reference", referenceText(r.Study))
-	add("verdict", r.Verdict.Overall.String())
+	add("verdict", r.Verdict.Overall.String()+carriedBy(r.Verdict))
 	add("confidence", format.Confidence(r.Options.Confidence))
 	add("resamples", resamplesText(r))
 	add("pairing of trials", r.Options.Pairing.String())

@@ -63,7 +63,7 @@ func Text(w io.Writer, r *Record, term Terminal, full bool) error {
 func (p *printer) verdict(r *Record) {
 	v := r.Verdict
 	p.line("")
-	p.line(p.term.bold("Verdict: " + strings.ToUpper(v.Overall.String())))
+	p.line(p.term.bold(headline(v)))
 	for _, why := range verdictLines(r) {
 		p.wrap("  "+why, "  ")
 	}

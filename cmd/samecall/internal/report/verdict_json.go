@@ -4,6 +4,7 @@ import "samecall/cmd/samecall/internal/verdict"
 
 type verdictJSON struct {
 	Overall    string                 `json:"overall"`
+	Evidence   string                 `json:"evidence,omitempty"`
 	Reasons    []string               `json:"reasons"`
 	Carry      []string               `json:"carry"`
 	Appraisers []appraiserVerdictJSON `json:"appraisers"`
@@ -49,6 +50,7 @@ func newVerdict(v *verdict.Verdict) verdictJSON {
 	list := func(texts []string) []string { return append([]string{}, texts...) }
 	out := verdictJSON{
 		Overall:    v.Overall.String(),
+		Evidence:   shownWord(v.Overall, v.Shown()),
 		Reasons:    list(v.Reasons),
 		Carry:      list(v.Carry),
 		Appraisers: []appraiserVerdictJSON{},
