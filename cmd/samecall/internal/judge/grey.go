@@ -76,6 +76,20 @@ func NewGrey(s *study.Study, opt signal.Options, spread float64) (*Grey, error) 
 	for _, n := range s.Notes {
 		g.Result.Warnings = append(g.Result.Warnings, Warning{n.Code, n.Text})
 	}
+	g.Limits = GreyLimits(zone)
+	for i := range g.Limits {
+		g.Limits[i].Outermost = outermost(g.Parts, &g.Limits[i])
+	}
+	if zone.Curves != nil {
+		g.Rows = partRows(zone.Curves.Pooled)
+	}
+	g.Members = members(s.Settings.GaugeSizes, zone)
+	return g, nil
+}
+
+// GreyLimits sets both methods side by side at each limit of a zone.
+func GreyLimits(zone *Zone) []GreyLimit {
+	var out []GreyLimit
 	tolerance, hasTolerance := zone.Limits.Tolerance()
 	for side, z := range []*signal.Zone{zone.Unanimous.Lower, zone.Unanimous.Upper} {
 		if z == nil {
@@ -95,14 +109,9 @@ func NewGrey(s *study.Study, opt signal.Options, spread float64) (*Grey, error) 
 				l.PercentGRR[1] = percentGRR(l.Curve.Sigma.Value, tolerance)
 			}
 		}
-		l.Outermost = outermost(g.Parts, &l)
-		g.Limits = append(g.Limits, l)
+		out = append(out, l)
 	}
-	if zone.Curves != nil {
-		g.Rows = partRows(zone.Curves.Pooled)
-	}
-	g.Members = members(s.Settings.GaugeSizes, zone)
-	return g, nil
+	return out
 }
 
 // percentGRR is 6 σ over the tolerance, in percent; 0 without a tolerance.

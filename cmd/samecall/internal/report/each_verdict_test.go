@@ -135,7 +135,7 @@ func pageRows(t *testing.T, r *report.Record, id string) (rows [][]string) {
 
 // barRows returns the rows of a table in Markdown.
 func barRows(page []byte, title string) (rows [][]string) {
-	_, rest, _ := strings.Cut(string(page), "\n## "+title)
+	_, rest, _ := strings.Cut(string(page), "# "+title)
 	_, rest, _ = strings.Cut(rest, "\n\n")
 	table, _, _ := strings.Cut(rest, "\n\n")
 	for line := range strings.Lines(table) {

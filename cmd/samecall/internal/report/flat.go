@@ -12,7 +12,8 @@ type flatCell struct {
 }
 
 // flat returns a table for spreadsheets: a figure with an interval takes
-// three columns, a count and what it is counted of two, and numbers are numbers.
+// three columns, a limit alone two, a count and what it is counted of two, and
+// numbers are numbers.
 func (t Table) flat() (heads []string, rows [][]flatCell) {
 	bounded, counted := make([]bool, len(t.Columns)), make([]bool, len(t.Columns))
 	for i := range t.Columns {
@@ -22,7 +23,9 @@ func (t Table) flat() (heads []string, rows [][]flatCell) {
 		}
 	}
 	for i, c := range t.Columns {
-		heads = append(heads, c.Name)
+		if !c.Limits {
+			heads = append(heads, c.Name)
+		}
 		if counted[i] {
 			heads = append(heads, c.Of)
 		}
@@ -33,11 +36,12 @@ func (t Table) flat() (heads []string, rows [][]flatCell) {
 	for _, row := range t.Rows {
 		var cells []flatCell
 		for i, c := range row {
-			share := strings.Contains(c.Text, "%")
+			share := strings.Contains(c.Text, "%") && t.Columns[i].Name != grr // which is in percent, for programs too
 			switch {
+			case t.Columns[i].Limits:
 			case c.Value != nil:
 				cells = append(cells, flatCell{positiveZero(c.Value), share})
-			case c.Text == "":
+			case c.Text == "", c.Text == c.Of: // which stands in its own column
 				cells = append(cells, flatCell{})
 			default:
 				cells = append(cells, flatCell{Value: c.Text})

@@ -36,13 +36,13 @@ type place struct {
 }
 
 const (
-	standardErrors = "Kappas, coefficients and indices"
 	pairTables     = "Between appraisers: the calls of each two"
 	whoRejects     = "Between appraisers: who rejects more?"
 	eachTwo        = "Between appraisers: each two"
 	criteria       = "Criteria"
 	atEachLimit    = "Acceptance curve at each limit"
-	anywhere       = "" // the words before the first table, or after the last
+	inProgramsOnly = "a standard error beside an interval tells a reader nothing more: the JSON, the CSV and the workbook have it"
+	anywhere       = "" // the words before the first table, or below the tables
 )
 
 // places are looked through from the top; the first that fits counts.
@@ -54,10 +54,10 @@ var places = []place{
 	{path: `^between\.pairs\[\]\.rejects\.(first|second)$`, why: "there as a share, and as the sum of two columns"},
 	{path: `^against\.appraisers\[\]\.(d_prime|criterion)$`, why: "once more, with its interval"},
 
-	{path: `\.reason$`, heads: []string{"What is not known"}},
+	{path: `\.reason$`, heads: []string{anywhere}},
 	{path: `\.method$`, heads: []string{"How the intervals were found"}},
-	{path: `^zone.*\.standard_error$`, heads: []string{"Standard errors of acceptance curves"}},
-	{path: `\.standard_error$`, heads: []string{standardErrors}},
+	{path: `^zone.*\.standard_error$`, why: inProgramsOnly},
+	{path: `\.standard_error$`, why: inProgramsOnly},
 
 	{path: `^study\.|^settings\.`, heads: []string{"What was studied"}},
 	{path: `^within\[\]\.mixed|^against\..*\.(wrong_every_time|mixed)`, heads: []string{"Parts to look at"}},
@@ -66,29 +66,32 @@ var places = []place{
 	{path: `^between\.pairs\[\]\.rejects`, heads: []string{whoRejects}},
 	{path: `\.kappa_(linear|quadratic)`, heads: []string{"Kappa weighted"}},
 	{path: `^between\.pairs\[\]`, heads: []string{eachTwo}},
-	{path: `^between\.categories`, heads: []string{"Kappa of each category", standardErrors, "What is not known"}},
+	{path: `^between\.categories`, heads: []string{"Kappa of each category"}},
 	{path: `^between\.`, heads: []string{"All appraisers together"}},
-	{path: `^against\..*\.table`, heads: []string{"Calls of "}},
+	{path: `^against\..*\.table`, heads: []string{"Calls by reference"}},
 	{path: `^against\..*\.(count|of|effective)$`, heads: []string{"Counts behind the rates"}},
 	{path: `^against\..*\.tests`, heads: []string{"Do the errors lean one way?"}},
-	{path: `^against\..*\.categories`, heads: []string{standardErrors}},
+	{path: `^against\..*\.categories\[\]\.category$`, heads: []string{"What was studied"}},
+	{path: `^against\..*\.categories`, heads: []string{"Kappa of each category"}},
 	{path: `^against\..*(_interval|roc_area)`, heads: []string{"How well bad is told from good"}},
 	{path: `^against\.`, heads: []string{"Against the reference"}},
 
 	{path: `^zone\.unanimous\.`, heads: []string{"Unanimous zone"}},
 	{path: `^zone\.curve.*\.(status|gap)`, heads: []string{"Limits where rejected and accepted parts do not overlap"}},
 	{path: `^zone\.curve\.(link|loglik|lack_of_fit|tests)`, heads: []string{"How well the acceptance curve fits"}},
-	{path: `^zone\.curve\.outliers`, heads: []string{"Grey zone: "}},
+	{path: `^zone\.curve\.outliers`, heads: []string{"══ Grey zone"}},
 	{path: `^zone\.curve\.appraisers\[\]\.appraiser$`, heads: []string{"What was studied"}},
 	{path: `^zone\.curve\.appraisers\[\]\.(lower|upper)\.offset`, heads: []string{"Which appraiser cuts where", atEachLimit}},
+	{path: `^zone\.curve\.appraisers\[\]\.(lower|upper)\.accepted`, heads: []string{"Which appraiser cuts where", atEachLimit}},
+	{path: `^zone\.curve\.appraisers\[\]\.(lower|upper)\.cut`, why: "there as cut − limit, with the limit in the table of all appraisers"},
+	{path: `^zone\.curve\.appraisers\[\]\.(lower|upper)\.share_of_tolerance`, why: "there as σ and as the width, in the unit: the same but for a factor"},
 	{path: `^zone\.curve\.appraisers\[\]\.(lower|upper)\.(sigma|from|to)`, heads: []string{"How wide each appraiser's", atEachLimit}},
-	{path: `^zone\.curve\.appraisers`, heads: []string{"Each appraiser's own acceptance curve", atEachLimit}},
 	{path: `^zone\.curve\.`, heads: []string{atEachLimit}},
 
 	{path: `^verdict\.(overall|evidence)`, heads: []string{"What was studied"}},
 	{path: `^verdict\.(reasons|carry|causes|next|cautions)|^warnings`, heads: []string{anywhere}},
 	{path: `^verdict\.appraisers\[\]\.(verdict|evidence)`, heads: []string{"Against the reference"}},
-	{path: `^verdict\..*(one_sided|kind|parts)$`, heads: []string{"What each criterion rests on", criteria}},
+	{path: `^verdict\..*(one_sided|kind|parts)$`, heads: []string{"The other one-sided limits", criteria}},
 	{path: `^verdict\.(appraisers\[\]\.criteria|between)`, heads: []string{criteria}},
 	{path: `appraisers?(\[\])?$`, heads: []string{"What was studied"}},
 }
@@ -253,6 +256,9 @@ func (f *finder) withheld(path, key string, v map[string]any) bool {
 		return key != "reason"
 	case v["reason"] != nil && strings.Contains(path, "criteria[]"):
 		return !slices.Contains([]string{"reason", "name", "accept", "conditional", "met"}, key)
+	case key == "categories" && path != "study":
+		list, _ := v[key].([]any)
+		return len(list) == 2 // the kappa of either is the kappa of the whole
 	case path == "settings" && key == "seed":
 		return f.r.Agreement.Intervals.Resampled == 0 // nothing was drawn
 	}
@@ -295,7 +301,7 @@ func (f *finder) find(path, what string, who []string, in func(line string) bool
 				about := plainly(b[0] + " " + line)
 				whose := !slices.ContainsFunc(who, func(w string) bool { return !strings.Contains(about, plainly(w)) })
 				shared := strings.HasPrefix(path, "zone.") && len(f.r.Study.Appraisers) == 1 || // of whom the curve of all is
-					slices.Contains([]string{"What was studied", "How the intervals were found", "What is not known, and why"}, b[0])
+					slices.Contains([]string{"What was studied", "How the intervals were found"}, b[0])
 				if (whose || shared) && in(line) {
 					return
 				}

@@ -200,7 +200,7 @@ func TestHostileTextInMarkdown(t *testing.T) {
 	strong, commands := 0, 0
 	elements(root, func(n *html.Node) {
 		switch n.Data {
-		case "html", "head", "body", "h1", "h2", "p", "ul", "ol", "li", "table", "thead", "tbody", "tr":
+		case "html", "head", "body", "h1", "h2", "h3", "p", "ul", "ol", "li", "table", "thead", "tbody", "tr":
 		case "strong":
 			strong++
 		case "td", "th":

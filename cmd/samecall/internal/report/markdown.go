@@ -37,24 +37,35 @@ func Markdown(w io.Writer, r *Record) error {
 		fmt.Fprintf(&s, "%d. %s\n", i+1, md(n))
 	}
 	s.WriteByte('\n')
-	for _, t := range allTables(r) {
-		fmt.Fprintf(&s, "## %s\n\n", inline(t.Title))
+	fmt.Fprintf(&s, "%s\n\n", md(strings.Join(v.Cautions, " ")))
+	if len(r.Warnings) > 0 {
+		s.WriteString("## Notes\n\n")
+		var notes []string
+		for _, n := range r.Warnings {
+			notes = append(notes, n.Text)
+		}
+		bullets(notes)
+	}
+	write := func(t Table, mark string) {
+		fmt.Fprintf(&s, "%s %s\n\n", mark, inline(t.Title))
 		t.markdown(&s)
 		s.WriteByte('\n')
 		for _, n := range t.notes() {
 			fmt.Fprintf(&s, "%s\n\n", md(n))
 		}
-		if t.Name == "study" {
-			fmt.Fprintf(&s, "%s\n\n", md(aboveCommand(r)))
-			codeBlock(&s, format.Plain(r.Command))
-			s.WriteByte('\n')
+	}
+	write(studyTable(r), "##")
+	fmt.Fprintf(&s, "%s\n\n", md(aboveCommand(r)))
+	codeBlock(&s, format.Plain(r.Command))
+	for _, g := range fullSections(r) {
+		fmt.Fprintf(&s, "\n## %s\n\n", inline(g.Title))
+		for _, n := range g.Notes {
+			fmt.Fprintf(&s, "%s\n\n", md(n))
+		}
+		for _, t := range g.Tables {
+			write(t, "###")
 		}
 	}
-	if notes := allNotes(r); len(notes) > 0 {
-		s.WriteString("## Notes\n\n")
-		bullets(notes)
-	}
-	fmt.Fprintf(&s, "%s\n", md(strings.Join(v.Cautions, " ")))
 	_, err := io.WriteString(w, s.String())
 	return err
 }

@@ -67,6 +67,9 @@ func (d document) every() []figureOf {
 		out = append(out, figureOf{figure: figure, of: of, kind: figure, share: true, estimateJSON: s.estimateJSON})
 	}
 	categories := func(figure, of string, kappas []categoryJSON) {
+		if len(kappas) < 3 {
+			return // either is the kappa of the whole
+		}
 		for _, c := range kappas {
 			out = append(out, figureOf{figure: fmt.Sprintf(figure, c.Category), of: of, kind: fmt.Sprintf(figure, "a category"), estimateJSON: c.Kappa})
 		}

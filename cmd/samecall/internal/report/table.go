@@ -27,16 +27,17 @@ type Column struct {
 	Numbers bool   // set flush right, and never cut
 	Long    bool   // text that goes on in further lines where there is no room
 	Whole   bool   // words of our own that stay on one line
+	Limits  bool   // limits alone, which programs get as numbers only
 	Of      string // what counts in it are counted of, as a head
 }
 
 // Cell is a cell of a Table: what is read and, for programs, the number
-// behind it (int, float64) or nil, what it is counted of where it is a count,
-// and its interval where it has one.
+// behind it (int, float64) or nil, what it is counted of, or a count of what,
+// where it is a count, and its interval where it has one.
 type Cell struct {
 	Text         string
 	Value        any
-	Of           any // int or nil
+	Of           any // int, string or nil
 	Bounded      bool
 	Lower, Upper any // float64, or nil for a limit that does not exist
 	// Why are the lines to be read below the table: why there is a dash, or no

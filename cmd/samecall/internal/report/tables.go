@@ -15,48 +15,25 @@ import (
 
 const together = "all together"
 
-// Tables returns every table of a result, in the order of reading.
-func Tables(r *Record) []Table {
-	out := []Table{criteriaTable(r), restsTable(r)}
+// numberTables are all tables for programs: what was studied first, then the
+// findings. Two figures do not share a cell, and every figure has its standard
+// error, or the reason why it is absent.
+func numberTables(r *Record) []Table {
+	d := newDocument(r)
+	out := []Table{withCommand(studyTable(r), r), causesTable(r), criteriaTable(r), restsTable(r)}
 	if r.Agreement.All != nil {
 		out = append(out, againstTable(r, true), errorsTable(r), detectionTable(r))
 	}
 	out = append(out, zoneTable(r), unanimousTable(r), curveLimitsTable(r), cutsTable(r), zonesTable(r), curvesTable(r), gapsTable(r),
 		curveFitTable(r), curveErrorsTable(r), withinTable(r))
 	if len(r.Study.Appraisers) > 1 {
-		out = append(out, newSquare(r).table(true), pairsTable(r), leanTable(r), kindsTable(r, r.Agreement.Between.Pairs))
+		out = append(out, newSquare(r).numbers()...)
+		out = append(out, pairsTable(r), leanTable(r), kindsTable(r, r.Agreement.Between.Pairs))
 	}
 	out = append(out, coefficientsTable(r), weightedTable(r), categoriesTable(r))
 	out = append(out, crossTables(r)...)
-	d := newDocument(r)
-	out = append(out, directionTable(r), partsTable(r), standardErrorsTable(d), methodsTable(d), absentTable(r, d))
+	out = append(out, directionTable(r), partsTable(r), standardErrorsTable(d), methodsTable(d), absentTable(r, d), callsTable(r))
 	return slices.DeleteFunc(out, func(t Table) bool { return len(t.Rows) == 0 })
-}
-
-// allTables are those of the whole record: what was studied first.
-func allTables(r *Record) []Table {
-	all := append([]Table{studyTable(r), causesTable(r)}, Tables(r)...)
-	if t := callsTable(r); len(t.Rows) > 0 {
-		all = append(all, t)
-	}
-	return all
-}
-
-// numberTables are all tables for programs, where two figures do not share a
-// cell.
-func numberTables(r *Record) []Table {
-	var out []Table
-	for _, t := range allTables(r) {
-		switch t.Name {
-		case "study":
-			out = append(out, withCommand(t, r))
-		case "square":
-			out = append(out, newSquare(r).numbers()...)
-		default:
-			out = append(out, t)
-		}
-	}
-	return out
 }
 
 // studyTable says what was studied and decided, and how it came about.
@@ -66,6 +43,9 @@ func studyTable(r *Record) Table {
 		if value != "" {
 			t.Rows = append(t.Rows, []Cell{say(what), say(value)})
 		}
+	}
+	number := func(what, text string, value any) {
+		t.Rows = append(t.Rows, []Cell{say(what), valueCell(text, value)})
 	}
 	d := newStudy(r)
 	set := r.Study.Settings
@@ -79,15 +59,18 @@ func studyTable(r *Record) Table {
 	if d.BadParts != nil {
 		parts += fmt.Sprintf(": %s bad, %s good", format.Count(*d.BadParts), format.Count(*d.GoodParts))
 	}
-	add("parts", parts)
+	if d.BadParts == nil {
+		number("parts", parts, d.Parts)
+	} else {
+		add("parts", parts)
+	}
 	add("appraisers", strings.Join(r.Study.Appraisers, ", "))
 	add("trials", trials(r))
 	add("trials of each", trialsOfEach(r))
-	calls := format.Count(d.Calls)
+	number("calls", format.Count(d.Calls), d.Calls)
 	if d.Missing > 0 {
-		calls += ", " + format.Count(d.Missing) + " missing"
+		number("missing calls", format.Count(d.Missing), d.Missing)
 	}
-	add("calls", calls)
 	categories := strings.Join(r.Study.Categories, ", ")
 	if d.Ordered {
 		categories += ", from best to worst"
@@ -98,7 +81,7 @@ func studyTable(r *Record) Table {
 	add("words that reject", strings.Join(set.Reject, ", "))
 	add("reference", referenceText(r.Study))
 	add("verdict", r.Verdict.Overall.String()+carriedBy(r.Verdict))
-	add("confidence", format.Confidence(r.Options.Confidence))
+	number("confidence", format.Confidence(r.Options.Confidence), r.Options.Confidence)
 	add("resamples", resamplesText(r))
 	add("pairing of trials", r.Options.Pairing.String())
 	if r.Zone != nil && r.Zone.Curves != nil {
@@ -206,9 +189,7 @@ func causesTable(r *Record) Table {
 // allNotes are the sentences to be said with the result.
 func allNotes(r *Record) []string {
 	var out []string
-	if r.Zone != nil {
-		out = append(out, zoneNotes(r, false)...)
-	}
+	out = append(out, zoneNotes(r, onPage)...)
 	for _, w := range r.Warnings {
 		out = append(out, w.Text)
 	}
@@ -568,7 +549,6 @@ func directionTable(r *Record) Table {
 		Title:   "Do the errors lean one way?",
 		Keys:    2,
 		Columns: []Column{{Name: "appraiser"}, {Name: "test"}, {Name: "statistic", Numbers: true, Of: "wrong calls"}, {Name: "degrees of freedom", Numbers: true}, {Name: "p", Numbers: true}},
-		Note:    "A small p: the calls differ from the reference more often one way than the other. Statistic of McNemar's test: the wrong calls of the rarer way, of all wrong calls. The tests take calls as independent; with several calls on a part p is too small.",
 	}
 	add := func(who, name string, table agreement.Table, test *agreement.Test) {
 		if test == nil {
@@ -584,6 +564,9 @@ func directionTable(r *Record) Table {
 		}
 		t.Rows = append(t.Rows, []Cell{say(who), say(name), statistic, df, valueCell(format.Probability(test.P), test.P)})
 	}
+	made := func(name string) bool {
+		return slices.ContainsFunc(t.Rows, func(row []Cell) bool { return row[1].Text == name })
+	}
 	tests := func(who string, g agreement.Against) {
 		add(who, "McNemar, exact", g.Table, g.McNemar)
 		add(who, "Bowker", g.Table, g.Bowker)
@@ -594,6 +577,13 @@ func directionTable(r *Record) Table {
 	}
 	if len(r.Agreement.Against) > 1 {
 		tests(together, *r.Agreement.All)
+	}
+	t.Note = "The tests take calls as independent; with several calls on a part p is too small."
+	if made("Bowker") || made("Stuart–Maxwell") {
+		t.Note = "Bowker's test asks whether each two categories are taken for each other as often one way as the other; Stuart–Maxwell's whether each is called as often as it is true. A small p: no. " + t.Note
+	}
+	if made("McNemar, exact") {
+		t.Note = "McNemar's test: a small p says that the calls differ from the reference more often one way than the other; its statistic is the wrong calls of the rarer way, of all wrong calls. " + t.Note
 	}
 	return t
 }
@@ -684,14 +674,20 @@ func decidingCell(c verdict.Criterion) Cell {
 	return Cell{Text: "≥ " + c.Exact(limit), Bounded: true, Lower: limit}
 }
 
+const moreParts = "parts more to settle it"
+
 // settling says how many parts more would settle a criterion, in fewer words
-// than a sentence has: "20 bad"; else why none would.
-func settling(c verdict.Criterion) string {
+// than a sentence has: "20 bad"; else why none would. For programs the number
+// and the kind of part, or the reason, stand in two columns.
+func settling(c verdict.Criterion) Cell {
 	text := c.ToSettle()
 	if c.More == 0 || text != format.Counted(c.More, c.Kind)+" more" {
-		return text
+		if text == "" {
+			return say("")
+		}
+		return Cell{Text: text, Of: text}
 	}
-	return strings.TrimSpace(format.Count(c.More) + " " + strings.TrimSuffix(c.Kind, "part"))
+	return Cell{Text: strings.TrimSpace(format.Count(c.More) + " " + strings.TrimSuffix(c.Kind, "part")), Value: c.More, Of: c.Kind}
 }
 
 // criteriaTable holds each figure of each appraiser against its levels.
@@ -701,17 +697,17 @@ func criteriaTable(r *Record) Table {
 		Title: "Criteria",
 		Keys:  2,
 		Columns: []Column{{Name: "appraiser"}, {Name: "figure", Whole: true}, {Name: "found", Numbers: true}, {Name: "accept", Numbers: true},
-			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: oneSidedHead(r), Numbers: true}, {Name: "data"}, {Name: "parts more to settle it", Long: true}},
+			{Name: "conditional", Numbers: true}, {Name: "by estimate"}, {Name: oneSidedHead(r), Numbers: true, Limits: true}, {Name: "data"}, {Name: moreParts, Long: true, Of: "kind of part, or why no more would"}},
 		Note: levelsFrom(r) + " " + fmt.Sprintf("One-sided: at %s confidence the truth is at most, or at least, that; it is not an end of the two-sided interval. Shown: that limit, too, meets the level that the estimate meets (of a reject, misses the conditional level). Open: it does not.", format.Confidence(r.Options.Confidence)),
 	}
 	setAside := false
 	add := func(name, figure string, c verdict.Criterion) {
-		found, evidence, settle := dashFor(c.Estimate.Absent), "", ""
+		found, evidence, settle := dashFor(c.Estimate.Absent), "", say("")
 		if c.Met != verdict.NotShown {
 			found, evidence, settle = valueCell(c.Found(), c.Estimate.Value), c.Shows(), settling(c)
 			setAside = setAside || c.Aside != ""
 		}
-		t.Rows = append(t.Rows, []Cell{say(name), say(figure), found, valueCell(c.Level(c.Levels[0]), c.Levels[0]), valueCell(c.Level(c.Levels[1]), c.Levels[1]), say(c.Met.String()), decidingCell(c), say(evidence), say(settle)})
+		t.Rows = append(t.Rows, []Cell{say(name), say(figure), found, valueCell(c.Level(c.Levels[0]), c.Levels[0]), valueCell(c.Level(c.Levels[1]), c.Levels[1]), say(c.Met.String()), decidingCell(c), say(evidence), settle})
 	}
 	if r.Agreement.All != nil { // else nothing is known of any of these
 		for _, a := range r.Verdict.Appraisers {

@@ -33,30 +33,33 @@ func Text(w io.Writer, r *Record, term Terminal, full bool) error {
 	p := &printer{w: w, term: term}
 	p.head(r)
 	p.verdict(r)
-	if full {
-		p.table(studyTable(r))
-		p.command(r)
-		said := false
-		for _, t := range Tables(r) {
-			p.table(t)
-			if t.Name == "zone" {
-				p.notes(zoneNotes(r, false), "")
-				said = true
-			}
-		}
-		if r.Zone != nil && !said {
-			p.line("")
-			p.notes(zoneNotes(r, false), "")
-		}
-		if t := callsTable(r); len(t.Rows) > 0 {
-			p.table(t)
-		}
-	} else {
+	if !full {
 		p.answer(r)
+		p.next(r)
+		p.warnings(r)
+		return p.err
 	}
 	p.next(r)
 	p.warnings(r)
+	p.table(studyTable(r))
+	p.command(r)
+	for _, s := range fullSections(r) {
+		p.heading(s.Title)
+		p.notes(s.Notes, "")
+		for _, t := range s.Tables {
+			p.table(t)
+		}
+	}
 	return p.err
+}
+
+// heading writes the heading of a group of tables, between double lines that no
+// table has.
+func (p *printer) heading(s string) {
+	const widest = 100
+	s = "══ " + s + " "
+	p.line("")
+	p.line(p.term.bold(s + strings.Repeat("═", max(0, min(p.term.Width, widest)-wide(s)))))
 }
 
 // verdict writes the answer to whether the inspection is fit for use.
@@ -296,7 +299,7 @@ func (p *printer) zone(r *Record) {
 	} else {
 		p.line("")
 	}
-	for _, n := range zoneNotes(r, true) {
+	for _, n := range zoneNotes(r, onScreen) {
 		p.wrap(n, "")
 	}
 }

@@ -63,10 +63,24 @@ func zoneTable(r *Record) Table {
 // is, from above and from below.
 func widthKnown(l *signal.LimitFit) bool { return informs(l) && l.Sigma.HasLower }
 
-// zoneNotes says in sentences what the table of the grey zone cannot. On the
-// screen it points at the command that shows more; a record says it.
-func zoneNotes(r *Record, screen bool) []string {
-	z := r.Zone
+// Where notes on the grey zone stand: on the one screen, which points at the
+// command that shows more; on a page, which has no table of the unanimous zone;
+// or beside all tables.
+type placeOfNotes int
+
+const (
+	onScreen placeOfNotes = iota
+	onPage
+	besideTables
+)
+
+// zoneNotes says in sentences what the tables of the grey zone do not; nothing
+// of a study without values.
+func zoneNotes(r *Record, at placeOfNotes) []string {
+	z, screen := r.Zone, at == onScreen
+	if z == nil {
+		return nil
+	}
 	s := r.Scale()
 	var out []string
 	if z.Curves == nil {
@@ -92,6 +106,9 @@ func zoneNotes(r *Record, screen bool) []string {
 		out = append(out, otherWarnings(r)...)
 	}
 	u := z.Unanimous
+	if u.HasGRR && at == besideTables {
+		return out // the table says it
+	}
 	if u.HasGRR {
 		var widths []string
 		for _, l := range []*signal.Zone{u.Lower, u.Upper} {

@@ -1,6 +1,7 @@
 package report
 
 import (
+	"cmp"
 	"fmt"
 	"strings"
 
@@ -9,13 +10,15 @@ import (
 	"samecall/signal"
 )
 
+const grr = "%GRR"
+
 // unanimousTable gives the zone between always rejected and always accepted.
 func unanimousTable(r *Record) Table {
 	t := Table{
 		Name:  "unanimous",
 		Title: "Unanimous zone",
 		Columns: []Column{{Name: "limit"}, {Name: "rejected to", Numbers: true}, {Name: "accepted from", Numbers: true}, {Name: "wide", Numbers: true},
-			{Name: "mixed parts", Numbers: true}, {Name: "σ", Numbers: true}, {Name: "%GRR", Numbers: true}},
+			{Name: "mixed parts", Numbers: true}, {Name: "σ", Numbers: true}, {Name: grr, Numbers: true}},
 	}
 	if r.Zone == nil {
 		return t
@@ -23,32 +26,34 @@ func unanimousTable(r *Record) Table {
 	s, u := r.Scale(), r.Zone.Unanimous
 	t.Title = inUnit(t.Title, s)
 	value := func(x float64) Cell { return valueCell(s.Value(x), x) }
-	for _, l := range []struct {
-		side signal.Side
-		zone *signal.Zone
-	}{{signal.Lower, u.Lower}, {signal.Upper, u.Upper}} {
-		switch z := l.zone; {
-		case z == nil:
-		case z.Found:
-			t.Rows = append(t.Rows, []Cell{say(l.side.String()), value(z.Reject), value(z.Accept), value(z.Width), intCell(z.Mixed), say(""), say("")})
-		default:
-			row := []Cell{say(l.side.String())}
-			for range 4 {
+	percent := func(has bool, x float64) Cell {
+		if !has {
+			return dash(cmp.Or(u.Why, needsBothLimits))
+		}
+		return valueCell(fmt.Sprintf("%.0f %%", x), x)
+	}
+	found := 0
+	for _, l := range judge.GreyLimits(r.Zone) {
+		row := []Cell{say(l.Side.String())}
+		if z := l.Unanimous; z.Found {
+			found++
+			row = append(row, value(z.Reject), value(z.Accept), value(z.Width), intCell(z.Mixed), value(l.Sigma), percent(l.HasTolerance, l.PercentGRR[0]))
+		} else {
+			for range 6 {
 				row = append(row, dash(z.Why))
 			}
-			t.Rows = append(t.Rows, append(row, say(""), say("")))
 		}
+		t.Rows = append(t.Rows, row)
 	}
-	if u.Found {
-		grr := dash(needsBothLimits)
-		if u.HasGRR {
-			grr = valueCell(fmt.Sprintf("%.0f %%", u.PercentGRR), u.PercentGRR)
-		}
-		t.Rows = append(t.Rows, []Cell{say("mean"), say(""), say(""), value(u.MeanWidth), say(""), value(u.Sigma), grr})
+	if u.Found && found > 1 {
+		t.Rows = append(t.Rows, []Cell{say("mean"), say(""), say(""), value(u.MeanWidth), say(""), value(u.Sigma), percent(u.HasGRR, u.PercentGRR)})
 	}
 	t.Note = fmt.Sprintf("From the last part always rejected to the first always accepted, taken as %s σ.", format.Number(u.Spread))
 	if u.HasGRR {
-		t.Note += fmt.Sprintf(" %%GRR is 6 σ over the tolerance: %s by common practice (below 10 good, to 30 conditional).", signal.BandGRR(u.PercentGRR))
+		t.Note += fmt.Sprintf(" %%GRR is 6 σ over the tolerance; the mean is %s by common practice (below 10 good, to 30 conditional).", signal.BandGRR(u.PercentGRR))
+	}
+	if !u.Found && u.Why != "" {
+		t.Note += " " + sentence(u.Why)
 	}
 	return t
 }
@@ -106,7 +111,7 @@ func curvesTable(r *Record) Table {
 func gapsTable(r *Record) Table {
 	t := Table{Name: "gaps", Title: "Limits where rejected and accepted parts do not overlap", Keys: 2, Columns: []Column{{Name: "calls of"}, {Name: "limit"},
 		{Name: "kind"}, {Name: "rejected to", Numbers: true}, {Name: "accepted from", Numbers: true}, {Name: "mixed at", Numbers: true}},
-		Note: "Separated: no part is mixed there. Quasi-separated: parts of one value only. One-sided: calls of one kind only. The grey zone is narrower than the gap."}
+		Note: "The grey zone is narrower than the gap."}
 	if r.Zone == nil || r.Zone.Curves == nil {
 		return t
 	}
@@ -130,7 +135,11 @@ func gapsTable(r *Record) Table {
 			if l.Gap != nil {
 				gap = *l.Gap
 			}
-			t.Rows = append(t.Rows, []Cell{say(who), say(l.Side.String()), say(l.Status.String()),
+			kind := say(l.Status.String())
+			if l.Why != "" {
+				kind.Why = []string{strings.ToUpper(kind.Text[:1]) + kind.Text[1:] + ": " + l.Why}
+			}
+			t.Rows = append(t.Rows, []Cell{say(who), say(l.Side.String()), kind,
 				value(gap.HasReject, gap.Reject), value(gap.HasAccept, gap.Accept), value(gap.HasMixed, gap.Mixed)})
 		}
 	}
@@ -210,11 +219,9 @@ func curveFitTable(r *Record) Table {
 		}
 	}
 	switch {
-	case l.Tested && l.Applied:
-		t.Note = "Lack of fit: parts differ by more than value and chance explain; the intervals are widened for it."
-	case l.Tested:
+	case l.Tested && !l.Applied: // else zoneNotes says it
 		t.Note = "Lack of fit: the intervals are not widened for it."
-	case l.Why != "":
+	case !l.Tested && l.Why != "":
 		t.Note = "Lack of fit is not tested: " + l.Why + "."
 	}
 	t.Note = strings.TrimSpace(t.Note + " The other tests are likelihood-ratio tests; a small p says that they differ.")
