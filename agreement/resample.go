@@ -22,8 +22,9 @@ const (
 	// commonest category above which there is no resampling: about seven
 	// such parts in a study. Our own choice, no source.
 	hardlyAny = 0.005
-	// mostDrawn bounds what is kept of the resampled studies, two bytes each.
-	mostDrawn = 1e8
+	// mostDrawn bounds what is kept of the resampled studies, two bytes each: a
+	// hundred thousand of a study of manyParts.
+	mostDrawn = 100_000 * (manyParts + 1)
 	// fewestBeyond is how many resampled values should lie beyond a limit: of
 	// fewer, the limit hardly goes further however high the confidence. Our own
 	// choice, no source.

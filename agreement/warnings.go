@@ -78,7 +78,7 @@ func (s *study) notResampled() []Warning {
 	if !s.wanted || n == 0 || s.opt.Resamples <= most {
 		return nil
 	}
-	text := fmt.Sprintf("The intervals of %d of the %d kappas and coefficients that were to be resampled are linearised: %d resamples of this study would take too long.",
+	text := fmt.Sprintf("The intervals of %d of the %d kappas and coefficients that were to be resampled are linearised: %d resamples of this study would take too much time or memory.",
 		n, n+s.intervals.Resampled, s.opt.Resamples)
 	if most >= max(s.enough(), fewestResamples) {
 		text += fmt.Sprintf(" Ask for %d or fewer.", most)

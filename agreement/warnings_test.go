@@ -177,7 +177,7 @@ func TestIntervalsAreCounted(t *testing.T) {
 		{90, 2000, Intervals{2, 0}, ""},
 		{90, 0, Intervals{0, 2}, ""},
 		{1001, 2000, Intervals{0, 2}, ""}, // as the documents say
-		{90, 600_000, Intervals{1, 1}, "The intervals of 1 of the 2 kappas and coefficients that were to be resampled are linearised: 600000 resamples of this study would take too long. Ask for 555555 or fewer."},
+		{90, 600_000, Intervals{1, 1}, "The intervals of 1 of the 2 kappas and coefficients that were to be resampled are linearised: 600000 resamples of this study would take too much time or memory. Ask for 555555 or fewer."},
 		{200, MaxResamples, Intervals{0, 2}, "of 2 of the 2 kappas"},
 	} {
 		r := patterned(t, c.parts)
@@ -207,7 +207,7 @@ func TestResamplesInVain(t *testing.T) {
 	if a := analyse(t, r, func(o *Options) { o.Confidence, o.Resamples = 0.9999, 2000 }); !has(a, "few_resamples", "100000 would be enough, but take too long") {
 		t.Errorf("%v", a.Warnings)
 	}
-	if a := analyse(t, r, func(o *Options) { o.Confidence, o.Resamples = 0.9999, 200_000 }); !has(a, "not_resampled", "too long.") || has(a, "not_resampled", "or fewer") {
+	if a := analyse(t, r, func(o *Options) { o.Confidence, o.Resamples = 0.9999, 200_000 }); !has(a, "not_resampled", "memory.") || has(a, "not_resampled", "or fewer") {
 		t.Errorf("%v", a.Warnings)
 	}
 }

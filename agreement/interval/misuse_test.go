@@ -133,3 +133,19 @@ func TestLimitsAreNumbers(t *testing.T) {
 		}
 	})
 }
+
+// Next to no confidence leaves but rounding between the limits, which never
+// turns them round.
+func TestLimitsInOrder(t *testing.T) {
+	for _, n := range []float64{1e5, 1e6, 3e7, 1e9} {
+		for k := range 200 {
+			x := math.Floor(n * (float64(k) + 0.5) / 200)
+			if i := Exact(x, n, 0); i.Lower > i.Upper {
+				t.Errorf("%v of %v: %v", x, n, i)
+			}
+			if i := Exact(x, n, 1e-9); i.Lower > i.Upper {
+				t.Errorf("%v of %v: %v", x, n, i)
+			}
+		}
+	}
+}

@@ -6,6 +6,7 @@ import (
 	"slices"
 	"strings"
 
+	"samecall/cmd/samecall/internal/output"
 	"samecall/cmd/samecall/internal/study"
 )
 
@@ -23,8 +24,8 @@ func newFiledNames(read []namedFile) filedNames {
 	var places []string
 	at := make(map[string]int) // the place of each name
 	for _, r := range read {
-		// A pipe or a device is filed nowhere.
-		if info, err := os.Stat(r.file); err != nil || !info.Mode().IsRegular() {
+		// A pipe, a device or what stands for an open file is filed nowhere.
+		if info, err := os.Stat(r.file); err != nil || !info.Mode().IsRegular() || output.IsDescriptor(r.file) {
 			continue
 		}
 		place := placeOf(r.file)

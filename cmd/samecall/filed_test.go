@@ -2,6 +2,7 @@ package main
 
 import (
 	"bytes"
+	"fmt"
 	"os"
 	"os/exec"
 	"path/filepath"
@@ -127,6 +128,24 @@ func TestRecordIsOfItsFolder(t *testing.T) {
 		if bytes.Contains(got, []byte(filepath.Dir(one))) {
 			t.Errorf("%s names a folder of this machine", name)
 		}
+	}
+}
+
+// What stands for a file that is open already is filed nowhere: the record keeps
+// its name, and names no folder to run in.
+func TestDescriptorsAreFiledNowhere(t *testing.T) {
+	if _, err := os.Stat("/dev/fd"); err != nil {
+		t.Skip("no /dev/fd here")
+	}
+	f, err := os.Open(filepath.Join("..", "..", "testdata", "reference", "msa-manual-50x3x3.csv"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	name := fmt.Sprintf("/dev/fd/%d", f.Fd())
+	n := newFiledNames([]namedFile{{"calls", name}})
+	if got := n.name(name); got != name || n.runIn != "" {
+		t.Errorf("%s is called %s, run in %q", name, got, n.runIn)
 	}
 }
 

@@ -141,6 +141,13 @@ func Place(name string) string {
 	return filepath.Join(dir, filepath.Base(target))
 }
 
+// IsDescriptor reports whether a name stands for a file that a process has
+// open, such as /dev/stdin or /dev/fd/3.
+func IsDescriptor(name string) bool {
+	_, descriptor := follow(name)
+	return descriptor
+}
+
 // follow returns the file that a name leads to through symbolic links, or
 // the link itself where it stands for an open descriptor of a process.
 func follow(name string) (target string, descriptor bool) {

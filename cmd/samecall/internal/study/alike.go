@@ -34,14 +34,17 @@ func (a *alike) consider(x, y string) {
 // one, and 10.05 is not 10.5.
 func decimals(name string) string {
 	var b strings.Builder
+	behind := false // a point that stands behind a digit
 	for i := 1; i < len(name); i++ {
-		if name[i] != '.' || !digits([]byte(name[i-1:i])) {
-			continue
-		}
-		for i++; i < len(name) && digits([]byte(name[i:i+1])); i++ {
+		switch isDigit := digits([]byte(name[i : i+1])); {
+		case name[i] == '.' && digits([]byte(name[i-1:i])):
+			behind = true
+			b.WriteByte('.')
+		case isDigit && behind:
 			b.WriteByte(name[i])
+		default:
+			behind = false
 		}
-		b.WriteByte('.')
 	}
 	return b.String()
 }
@@ -61,7 +64,8 @@ func (m *merge) similarAppraisers() {
 	a := newAlike("appraisers")
 	first := make(map[string]string)
 	for _, name := range m.study.Appraisers {
-		key := string(naturalKey(nil, strings.Join(strings.Fields(name), "")))
+		bare := strings.Join(strings.Fields(name), "")
+		key := string(naturalKey(nil, bare)) + "\x00" + decimals(bare)
 		if was, ok := first[key]; ok {
 			a.add(was, name)
 			continue

@@ -160,6 +160,8 @@ func TestAlikeParts(t *testing.T) {
 	for csv, want := range map[string]int{
 		"part,a-1\nP7,go\nP07,go\n": 1, "part,a-1\nP10.05,go\nP10.5,go\n": 0, "part,a-1\nP10.5,go\np10.5,go\n": 1,
 		"part,a-1\n1.50,go\n1.5,go\n": 0, "part,a-1\nA.05,go\nA.5,go\n": 1, "part,a-1\n01.05,go\n1.05,go\n": 1,
+		"part,a-1\n1.2.05,go\n1.2.5,go\n": 0, "part,a-1\n1.2.5x07,go\n1.2.5x7,go\n": 1, "part,a-1\n1.23.4,go\n1.2.34,go\n": 0,
+		"part,st 1.05-1,st 1.5-1\n1,go,go\n": 0, "part,st 5-1,st 05-1\n1,go,go\n": 1,
 	} {
 		s, err := Read(Source{Path: "-", Stdin: strings.NewReader(csv)}, Settings{})
 		if err != nil {

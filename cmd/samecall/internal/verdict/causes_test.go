@@ -185,6 +185,17 @@ func TestEachCause(t *testing.T) {
 	}
 }
 
+// Appraisers who are not equally sure make a curve of all with long tails, though
+// no call is made at random.
+func TestUnequalSigmaIsNotScattered(t *testing.T) {
+	for seed := range uint64(30) {
+		d := drawn{people: append(three(), person{sigma: 0.1}), values: true, parts: 100}
+		if _, v := decide(t, d.files(seed)); strings.Contains(found(v), codeScattered) {
+			t.Errorf("seed %d: %+v", seed, v.Causes)
+		}
+	}
+}
+
 // Every code of docs/verdict.md has a study above.
 func TestEveryCodeHasAStudy(t *testing.T) {
 	all := ""

@@ -224,23 +224,21 @@ func repeatStudy(r *judge.Result, v *Verdict) string {
 
 // repeatTrials names the appraisers who called no part twice.
 func repeatTrials(r *judge.Result) string {
-	var once, apart []string
+	var who []string
+	oneTrial := true
 	for a, w := range r.Agreement.Within {
-		switch {
-		case w.Share.Absent == nil:
-		case r.Study.Ratings.Trials(a) == 1:
-			once = append(once, r.Study.Appraisers[a])
-		default:
-			apart = append(apart, r.Study.Appraisers[a])
+		if w.Share.Absent != nil {
+			who = append(who, r.Study.Appraisers[a])
+			oneTrial = oneTrial && r.Study.Ratings.Trials(a) == 1
 		}
 	}
 	switch {
-	case len(once)+len(apart) == 0:
+	case len(who) == 0:
 		return ""
-	case len(apart) == 0:
-		return fmt.Sprintf("Have %s call the parts a second and a third time: with one trial nobody knows whether the calls repeat.", some(once))
+	case oneTrial:
+		return fmt.Sprintf("Have %s call the parts a second and a third time: with one trial nobody knows whether the calls repeat.", some(who))
 	}
-	return fmt.Sprintf("Have %s call the same parts a second and a third time: no part was called twice, and nobody knows whether the calls repeat.", some(slices.Concat(once, apart)))
+	return fmt.Sprintf("Have %s call the same parts a second and a third time: no part was called twice, and nobody knows whether the calls repeat.", some(who))
 }
 
 // criterion returns one criterion of an appraiser by its name.

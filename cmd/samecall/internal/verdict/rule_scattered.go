@@ -20,8 +20,11 @@ const (
 	// So many parts must have been called wrong outside the grey zone: fewer are
 	// a matter of these parts, or of their records.
 	scatteredParts = 5
-	// The share of what all show, from which on an appraiser does the same.
+	// The share of what all show, from which on an appraiser does the same, and the
+	// chance below which its own calls must look so: the calls of appraisers who
+	// are not equally sure look so together, and of none alone.
 	alikeScattered = 0.25
+	ownChance      = 0.01
 )
 
 // stray is how calls went outside the grey zone, where nobody should be in doubt.
@@ -37,7 +40,7 @@ func (s stray) rate() float64 { return float64(s.wrong) / max(1, float64(s.calls
 // nobody should be in doubt. A curve that knows no such calls becomes flatter
 // for them: its grey zone is then not that of the gauge.
 func scattered(f *finder) []Cause {
-	if !f.missed || f.patterns == nil || f.Zone == nil || f.Zone.Curves == nil || f.has(Everyone, codeInconsistent) {
+	if !f.missed || f.patterns == nil || f.Zone == nil || f.Zone.Curves == nil {
 		return nil
 	}
 	zone := f.zoneOfTheRest()
@@ -61,7 +64,7 @@ func scattered(f *finder) []Cause {
 	alike := f.several() && len(f.found) == 0
 	var out []Cause
 	for a, s := range each {
-		does := s.rate() >= alikeScattered*all.rate()
+		does := s.rate() >= alikeScattered*all.rate() && withLapses(f.Zone.Curves.Each[a], ownChance) != nil
 		if alike = alike && does; does && len(s.parts) >= scatteredParts && !f.has(a, codeInconsistent) {
 			out = append(out, f.scatteredCause([]int{a}, f.name(a), s))
 		}
@@ -85,11 +88,27 @@ func (f *finder) scatteredCause(who []int, name string, s stray) Cause {
 
 // zoneOfTheRest returns the grey zone of the calls that keep to their values,
 // where the others need a share of calls made at random; nil where they do not.
+func (f *finder) zoneOfTheRest() func(x float64) bool {
+	c := f.Zone.Curves.Pooled
+	s := withLapses(c, scatteredChance)
+	switch {
+	case s == nil:
+		return nil
+	case !s.HasLapse: // it is narrower than the values tell
+		return nextToCuts(s)
+	}
+	return func(x float64) bool { return inZone(s, x) }
+}
+
+// withLapses fits a curve anew with a share of calls made at random, where its
+// calls need one: nil where the chance of as much without is above the one given.
 // The statistic of the likelihood-ratio test of no such share is 0 in half of the
 // cases and chi-square in the other half, since none is at the edge of what the
 // share can be (Self and Liang 1987, J Am Stat Assoc 82:605).
-func (f *finder) zoneOfTheRest() func(x float64) bool {
-	c := f.Zone.Curves.Pooled
+func withLapses(c *signal.Curve, chance float64) *signal.Curve {
+	if c == nil {
+		return nil
+	}
 	var parts []signal.Part
 	for _, p := range c.Parts {
 		parts = append(parts, signal.Part{Name: p.Name, Value: p.Value, Calls: p.Calls, Accepted: p.Accepted})
@@ -97,13 +116,10 @@ func (f *finder) zoneOfTheRest() func(x float64) bool {
 	options := c.Options
 	options.Lapse, options.SkipIntervals = true, true
 	s, err := signal.Fit(parts, c.Limits, options)
-	switch {
-	case err != nil || len(sides(s)) < len(sides(c)) || (distuv.ChiSquared{K: 1}).Survival(2*s.LapseGain)/2 >= scatteredChance:
+	if err != nil || len(sides(s)) < len(sides(c)) || (distuv.ChiSquared{K: 1}).Survival(2*s.LapseGain)/2 >= chance {
 		return nil
-	case !s.HasLapse: // it is narrower than the values tell
-		return nextToCuts(s)
 	}
-	return func(x float64) bool { return inZone(s, x) }
+	return s
 }
 
 // nextToCuts takes the values next to each cut of a curve, one on either side,
@@ -152,21 +168,4 @@ func (f *finder) outside(zone func(x float64) bool, a int) (s stray) {
 		}
 	}
 	return s
-}
-
-// inZone reports whether a value lies in a grey zone of a curve.
-func inZone(c *signal.Curve, x float64) bool {
-	return slices.ContainsFunc(sides(c), func(l *signal.LimitFit) bool { return x >= l.From && x <= l.To })
-}
-
-// toLimit is the distance of a value from the nearest limit.
-func toLimit(l signal.Limits, x float64) float64 {
-	d := math.Inf(1)
-	if l.HasLower {
-		d = math.Abs(x - l.Lower)
-	}
-	if l.HasUpper {
-		d = min(d, math.Abs(x-l.Upper))
-	}
-	return d
 }

@@ -76,7 +76,7 @@ func shiftedCut(f *finder) []Cause {
 func (f *finder) cutAlike(all *signal.LimitFit) bool {
 	for a := range f.Zone.Curves.Each {
 		own := f.ownSide(a, all.Side)
-		if !own.Known() || own.Offset.Value*all.Offset.Value < alikeOffset*all.Offset.Value*all.Offset.Value {
+		if !own.Known() || all.Offset.Value == 0 || own.Offset.Value/all.Offset.Value < alikeOffset {
 			return false
 		}
 	}
@@ -127,28 +127,53 @@ func (f *finder) ownShifts(at signal.Side, looks int) (out []Cause) {
 		if len(who) == 0 {
 			continue
 		}
-		people, points := f.people(who), ""
-		switch othersToo := f.others(who, cuts); {
-		case othersToo:
-			points = "Whether that goes for others too the study does not tell"
-		case len(who) == 1:
-			points = "Others do not, so it is the gauge or the standard of this one"
-		default:
-			points = "Others do not, so it is a gauge or a standard that these share, or each one's own"
-		}
-		text := ""
-		if len(who) == 1 {
-			text = f.shift(people+" cuts", cuts[0], without(f.Zone.Curves.Each[who[0]]), points)
-		} else {
-			text = f.shiftOfSeveral(people, cuts, points)
-		}
-		out = append(out, Cause{
-			Code: codeCut, Appraisers: who, Text: text,
-			Do:      fmt.Sprintf("Compare the gauge and the standard of %s at the %s limit with those of the others.", people, at),
-			outside: outside(cuts[0]),
-		})
+		out = append(out, f.ownShift(at, who, cuts))
 	}
 	return out
+}
+
+// ownShift is the cause of those whose own cuts lie on one side of a limit.
+func (f *finder) ownShift(at signal.Side, who []int, cuts []*signal.LimitFit) Cause {
+	people := f.people(who)
+	cause := Cause{
+		Code: codeCut, Appraisers: who,
+		Do:      fmt.Sprintf("Compare the gauge and the standard of %s at the %s limit with those of the others.", people, at),
+		outside: outside(cuts[0]),
+	}
+	points := ""
+	switch {
+	case len(who) == len(f.Study.Appraisers):
+		people, points = "All appraisers", "By different amounts: the standard that they share comes first, then each one's gauge"
+		cause.Code, cause.Appraisers = codeGauge, nil
+		cause.Do = fmt.Sprintf("Check the %s limit of the standard that all work by, then each gauge: calibrated size, wear, setting.", at)
+	case f.others(who, cuts):
+		points = "Whether that goes for others too the study does not tell"
+	case len(who) == 1:
+		points = "Others do not, so it is the gauge or the standard of this one"
+	default:
+		points = "Others do not, so it is a gauge or a standard that these share, or each one's own"
+	}
+	if len(who) == 1 {
+		cause.Text = f.shift(people+" cuts", cuts[0], without(f.Zone.Curves.Each[who[0]]), points)
+		return cause
+	}
+	cause.Text = f.shiftOfSeveral(people, cuts, f.withoutOfEach(who), points)
+	return cause
+}
+
+// withoutOfEach names the parts left out of the curves of several appraisers.
+func (f *finder) withoutOfEach(who []int) string {
+	var names []string
+	for _, a := range who {
+		if c := f.Zone.Curves.Each[a]; c.Without != nil {
+			for _, i := range c.Outliers {
+				if !slices.Contains(names, c.Parts[i].Name) {
+					names = append(names, c.Parts[i].Name)
+				}
+			}
+		}
+	}
+	return leftOut(names)
 }
 
 // doubted is an appraiser's own side whose offset is no surer than the σ of all
@@ -187,49 +212,6 @@ func (f *finder) people(who []int) string {
 		names = append(names, f.name(a))
 	}
 	return some(names)
-}
-
-// ownSide is an appraiser's own curve at a limit; nil if it has none.
-func (f *finder) ownSide(a int, at signal.Side) *signal.LimitFit {
-	c := f.Zone.Curves.Each[a]
-	switch {
-	case c == nil:
-		return nil
-	case at == signal.Lower:
-		return plain(c).Lower
-	}
-	return plain(c).Upper
-}
-
-// plain is a curve without the parts that it cannot explain.
-func plain(c *signal.Curve) *signal.Curve {
-	if c.Without != nil {
-		return c.Without
-	}
-	return c
-}
-
-// sides returns the limits at which the calls of a curve turn.
-func sides(c *signal.Curve) (out []*signal.LimitFit) {
-	for _, l := range []*signal.LimitFit{c.Lower, c.Upper} {
-		if l.Known() {
-			out = append(out, l)
-		}
-	}
-	return out
-}
-
-// without names the parts that a curve cannot explain, which were left out of
-// the figures told; empty if there are none.
-func without(c *signal.Curve) string {
-	if c.Without == nil {
-		return ""
-	}
-	var names []string
-	for _, i := range c.Outliers {
-		names = append(names, c.Parts[i].Name)
-	}
-	return " (without " + few(names, len(names)) + ", which the curve cannot explain)"
 }
 
 // shifted reports whether a cut of a curve lies beside its limit by enough to
@@ -272,15 +254,6 @@ func besideLimit(l *signal.LimitFit) bool {
 	return math.Abs(l.Offset.Value) >= offsetOfSigma*l.Sigma.Value
 }
 
-// beside returns the size of an offset and the end of its interval nearer to
-// the limit, both away from the limit.
-func beside(o signal.Estimate) (offset, near float64, bounded bool) {
-	if o.Value < 0 {
-		return -o.Value, -o.Upper, o.HasUpper
-	}
-	return o.Value, o.Lower, o.HasLower
-}
-
 // shiftedParts counts the parts of a curve that were called wrong at a limit in
 // the way that a cut beside it makes: bad ones accepted where it lies outside,
 // good ones rejected where it lies inside.
@@ -298,15 +271,6 @@ func shiftedParts(c *signal.Curve, l *signal.LimitFit) int {
 	return n
 }
 
-// nearest reports whether a value is nearer to a limit than to the other one.
-func nearest(c *signal.Curve, l *signal.LimitFit, x float64) bool {
-	if !c.Limits.HasLower || !c.Limits.HasUpper {
-		return true
-	}
-	toLower, toUpper := math.Abs(x-c.Limits.Lower), math.Abs(x-c.Limits.Upper)
-	return l.Side == signal.Lower && toLower <= toUpper || l.Side == signal.Upper && toUpper <= toLower
-}
-
 // shift tells of an offset; the sentence begins with who and ends with what
 // it points to.
 func (f *finder) shift(who string, l *signal.LimitFit, without, points string) string {
@@ -321,14 +285,18 @@ func (f *finder) shift(who string, l *signal.LimitFit, without, points string) s
 }
 
 // shiftOfSeveral tells of the offsets of several appraisers.
-func (f *finder) shiftOfSeveral(people string, cuts []*signal.LimitFit, points string) string {
+func (f *finder) shiftOfSeveral(people string, cuts []*signal.LimitFit, without, points string) string {
 	s := f.Scale()
 	least, most := math.Inf(1), 0.0
 	for _, l := range cuts {
 		size := math.Abs(l.Offset.Value)
 		least, most = min(least, size), max(most, size)
 	}
-	return fmt.Sprintf("%s cut %s %s. %s.", people, s.WithUnit(s.Value(least)+" to "+s.Value(most)), follows(cuts[0]), points)
+	size := s.Value(least)
+	if s.Value(most) != size {
+		size += " to " + s.Value(most)
+	}
+	return fmt.Sprintf("%s cut %s %s%s. %s.", people, s.WithUnit(size), follows(cuts[0]), without, points)
 }
 
 // follows says where a cut lies, and what follows.
@@ -338,18 +306,4 @@ func follows(l *signal.LimitFit) string {
 		wrong = "bad parts are accepted"
 	}
 	return fmt.Sprintf("%s, so that %s there", where(l), wrong)
-}
-
-// where says on which side of its limit a cut lies.
-func where(l *signal.LimitFit) string {
-	way := "above"
-	if l.Offset.Value < 0 {
-		way = "below"
-	}
-	return fmt.Sprintf("%s the %s limit", way, l.Side)
-}
-
-// outside reports whether a cut lies outside its limit.
-func outside(l *signal.LimitFit) bool {
-	return (l.Side == signal.Lower) == (l.Offset.Value < 0)
 }
