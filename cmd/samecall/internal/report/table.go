@@ -237,7 +237,7 @@ func widestWord(s string) int {
 func (t Table) fit(width int) []int {
 	below := total(t.least(textsBroken, false)) > width
 	room := t.least(wholeTable, below)
-	for step := headsBroken; step <= textsBroken; step++ {
+	for step := headsBroken; step <= textsBroken && total(room) > width; step++ {
 		least := t.least(step, below)
 		for total(room) > width {
 			widest := -1
@@ -273,9 +273,10 @@ func (t Table) blocks(width int) []Table {
 	if t.fits(width) {
 		return []Table{t}
 	}
-	ends := t.ends(width)
+	room := t.least(textsBroken, false)
+	ends := t.ends(room, width)
 	for narrower := width - 1; narrower > 0; narrower-- {
-		even := t.ends(narrower)
+		even := t.ends(room, narrower)
 		if len(even) > len(ends) {
 			break
 		}
@@ -293,9 +294,9 @@ func (t Table) blocks(width int) []Table {
 
 func (t Table) keys() int { return min(max(t.Keys, 1), len(t.Columns)) }
 
-// ends is behind which columns a table is cut to blocks of so much width.
-func (t Table) ends(width int) []int {
-	room := t.least(textsBroken, false)
+// ends is behind which columns a table is cut to blocks of so much width, where
+// its columns take so much room.
+func (t Table) ends(room []int, width int) []int {
 	keys := t.keys()
 	var out []int
 	from, taken := keys, total(room[:keys])
