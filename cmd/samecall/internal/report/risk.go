@@ -84,14 +84,24 @@ func capability(c float64) string { return strings.Replace(fmt.Sprintf("%.2f", c
 func gaugeText(r *judge.Risks) string {
 	s, g := r.Scale, r.Gauge
 	var out []string
-	one := func(side string, limit, cut, sigma float64) {
-		out = append(out, fmt.Sprintf("%s limit %s cuts at %s, σ %s", side, s.WithUnit(s.Value(limit)), s.WithUnit(s.Value(cut)), s.WithUnit(s.Value(sigma))))
+	one := func(side signal.Side, limit, cut, sigma float64) {
+		width := "σ " + s.WithUnit(s.Value(sigma))
+		if r.Curve != nil {
+			switch l := limitAt(r.Curve, side); {
+			case l == nil || informs(l):
+			case l.Status != signal.Fitted:
+				width = "σ not known, " + s.WithUnit(s.Value(sigma)) + " assumed (bias-reduced)"
+			default:
+				width = "σ not known, " + s.WithUnit(s.Value(sigma)) + " assumed"
+			}
+		}
+		out = append(out, fmt.Sprintf("%s limit %s cuts at %s, %s", side, s.WithUnit(s.Value(limit)), s.WithUnit(s.Value(cut)), width))
 	}
 	if g.HasLower {
-		one("lower", r.Limits.Lower, g.LowerCut, g.LowerSigma)
+		one(signal.Lower, r.Limits.Lower, g.LowerCut, g.LowerSigma)
 	}
 	if g.HasUpper {
-		one("upper", r.Limits.Upper, g.UpperCut, g.UpperSigma)
+		one(signal.Upper, r.Limits.Upper, g.UpperCut, g.UpperSigma)
 	}
 	if g.Lapse > 0 {
 		out = append(out, format.Percent(g.Lapse)+" of the calls at random")
