@@ -59,7 +59,7 @@ func otherLimitsTable(r *Record) Table {
 		Note:    "Each limit holds for itself; with the one of the criteria it holds less often.",
 	}
 	cell := func(c verdict.Criterion) Cell {
-		limit, upper, ok := c.Deciding()
+		_, upper, ok := c.Deciding()
 		parts := ", " + format.Counted(c.Parts, c.Kind)
 		switch {
 		case c.Estimate.Absent != nil:
@@ -69,10 +69,10 @@ func otherLimitsTable(r *Record) Table {
 			none.Text += parts
 			return none
 		case upper:
-			limit = c.Estimate.OneSided.Lower
+			limit := c.Estimate.OneSided.Lower
 			return valueCell("≥ "+c.Exact(limit)+parts, limit)
 		}
-		limit = c.Estimate.OneSided.Upper
+		limit := c.Estimate.OneSided.Upper
 		return valueCell("≤ "+c.Exact(limit)+parts, limit)
 	}
 	if r.Agreement.All != nil {
