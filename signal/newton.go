@@ -62,6 +62,10 @@ func newSolver(m *model) *solver {
 	return s
 }
 
+// noLapse is the logit of a lapse rate that is none: less than one call in a
+// million.
+const noLapse = -14
+
 // maximise climbs from s.theta over every parameter but those held. tol is the
 // log-likelihood that may remain to be gained.
 func (s *solver) maximise(held int, tol float64) outcome {
@@ -86,6 +90,9 @@ func (s *solver) maximise(held int, tol float64) outcome {
 				continue
 			}
 			s.free = append(s.free, i)
+		}
+		if at := s.m.lapse; at != absent && at != held && s.theta[at] < noLapse && s.grad[at] < 0 {
+			return out // towards no lapses at all, which has no end on this scale
 		}
 		if len(s.free) == 0 {
 			out.converged, out.decrement = true, 0
