@@ -23,9 +23,7 @@ func zoneTable(r *Record) Table {
 		return t
 	}
 	s := r.Scale()
-	if s.Unit != "" {
-		t.Title += ", in " + s.Unit
-	}
+	t.Title = inUnit(t.Title, s)
 	c := r.Zone.Curves.Pooled
 	for _, l := range []*signal.LimitFit{c.Lower, c.Upper} {
 		if l == nil || !l.HasLimit {
