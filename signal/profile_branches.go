@@ -151,7 +151,7 @@ func (p *profiler) grid(value float64, f func(theta []float64)) {
 		theta[p.param] = value
 		f(theta)
 	}
-	// σs calls set with the σs there are to try about a pair of cuts.
+	// sigmas calls set with each σ there is to try about a pair of cuts.
 	sigmas := func(low, high float64) {
 		for _, a := range logs {
 			if g.logSigma[0] == g.logSigma[1] {

@@ -78,7 +78,11 @@ func PercentApart(value, lower, upper float64) func(share float64) string {
 
 // PercentRange writes the limits of an interval of a share, in percent.
 func PercentRange(i interval.Interval) string {
-	return "(" + digits(i.Lower, 9.95) + "–" + digits(i.Upper, 9.95) + ")"
+	to, upper := "–", digits(i.Upper, 9.95)
+	if upper[0] == '>' { // which would read as an arrow
+		to = " to "
+	}
+	return "(" + digits(i.Lower, 9.95) + to + upper + ")"
 }
 
 // Figure writes a kappa: two digits, a true minus, and 1.00 for 1 only.

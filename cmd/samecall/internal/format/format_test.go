@@ -87,6 +87,7 @@ func TestPercentRange(t *testing.T) {
 		{0.78, 0.991, "(78–99.1)"},
 		{0.0003, 0.14, "(0.03–14)"},
 		{0.09, 0.0999, "(9.0–10)"},
+		{0.00001, 0.99999, "(<0.01 to >99.99)"},
 	} {
 		if got := PercentRange(interval.Interval{Lower: c.lower, Upper: c.upper}); got != c.want {
 			t.Errorf("PercentRange(%v, %v) is %q; want %q", c.lower, c.upper, got, c.want)
